@@ -1,0 +1,181 @@
+import type { Rational } from '../expression/rational';
+import type { Span } from '../text/span';
+
+/**
+ * The common program form: what every language folder turns its syntax into, and all that the executor knows of code.
+ * It holds what dynamics code needs and says `opaque`, with the reason in plain words, for everything else. A language
+ * folder resolves its own peculiarities on the way in: `4/3` between integers in C becomes `integer-divide`, MATLAB's
+ * `y(1)` an index, Python's `a @ b` the operator `matmul`. Spans are offsets into the document.
+ */
+
+/** A parsed document. */
+export interface Program {
+  readonly language: string;
+  /** Index of the first array element: 0 or 1. */
+  readonly indexBase: 0 | 1;
+  readonly body: readonly Statement[];
+  /** Every comment and docstring, with what it stands before or in. */
+  readonly comments: readonly Comment[];
+  /** Syntax errors of the source itself; functions that contain one are not to be trusted. */
+  readonly errors: readonly { readonly message: string; readonly span: Span }[];
+}
+
+export interface Comment {
+  readonly span: Span;
+  /** Marks that may open a line inside it: `//`, `*`, `#` ... */
+  readonly lineMarks: readonly string[];
+  /** What follows it (or, for a docstring, owns it). */
+  readonly subject: Subject;
+}
+
+/** `function`: a function or method; `class`; `file`: the top-level statements, run in order as a script. */
+export type Subject =
+  | { readonly kind: 'function'; readonly path: string; readonly node: FunctionNode; readonly owner?: ClassNode }
+  | { readonly kind: 'class'; readonly path: string; readonly node: ClassNode }
+  | { readonly kind: 'file' };
+
+export type BinaryOperator =
+  | '+' | '-' | '*' | '/' | '%' | '**'
+  | 'integer-divide' | 'floor-divide' | 'remainder-floor'
+  | 'matmul' | 'elementwise-multiply' | 'elementwise-divide' | 'elementwise-power' | 'left-divide'
+  | '<' | '<=' | '>' | '>=' | '==' | '!='
+  | 'in' | 'instanceof' | 'bit';
+
+export type Expression =
+  | { readonly kind: 'number'; readonly value: Rational; readonly text: string; readonly integer: boolean; readonly span: Span }
+  | { readonly kind: 'string'; readonly value: string; readonly span: Span }
+  | { readonly kind: 'boolean'; readonly value: boolean; readonly span: Span }
+  /** null, None, undefined, nil */
+  | { readonly kind: 'nothing'; readonly span: Span }
+  | { readonly kind: 'name'; readonly name: string; readonly span: Span }
+  /** `this`, `self` */
+  | { readonly kind: 'self'; readonly span: Span }
+  | { readonly kind: 'super'; readonly span: Span }
+  | { readonly kind: 'member'; readonly object: Expression; readonly name: string; readonly nameSpan: Span; readonly optional?: boolean; readonly span: Span }
+  | { readonly kind: 'index'; readonly object: Expression; readonly indices: readonly Expression[]; readonly optional?: boolean; readonly span: Span }
+  /** Only as an index. */
+  | { readonly kind: 'slice'; readonly from?: Expression; readonly to?: Expression; readonly step?: Expression; readonly span: Span }
+  | { readonly kind: 'call'; readonly callee: Expression; readonly args: readonly Argument[]; readonly isNew?: boolean; readonly optional?: boolean; readonly span: Span }
+  | { readonly kind: 'unary'; readonly op: '-' | '+' | 'not' | 'bit' | 'transpose' | 'typeof'; readonly operand: Expression; readonly span: Span }
+  | { readonly kind: 'binary'; readonly op: BinaryOperator; readonly left: Expression; readonly right: Expression; readonly opSpan: Span; readonly span: Span }
+  | { readonly kind: 'logical'; readonly op: 'and' | 'or' | 'coalesce'; readonly left: Expression; readonly right: Expression; readonly span: Span }
+  | { readonly kind: 'conditional'; readonly condition: Expression; readonly whenTrue: Expression; readonly whenFalse: Expression; readonly span: Span }
+  /** `a = v`, `a += v`; its value is the assigned one (`old`: the value before, as of `i++`). */
+  | { readonly kind: 'assign'; readonly target: Pattern; readonly op?: BinaryOperator; readonly value: Expression; readonly yields: 'new' | 'old'; readonly span: Span }
+  | { readonly kind: 'function'; readonly node: FunctionNode; readonly span: Span }
+  | { readonly kind: 'class'; readonly node: ClassNode; readonly span: Span }
+  /** A list, tuple or array literal. `rows` marks a matrix literal, whose items are lists. */
+  | { readonly kind: 'list'; readonly items: readonly Element[]; readonly rows?: boolean; readonly span: Span }
+  | { readonly kind: 'record'; readonly fields: readonly Field[]; readonly span: Span }
+  /** `[f(x) for x in xs if c]` */
+  | { readonly kind: 'comprehension'; readonly body: Expression; readonly loops: readonly ComprehensionLoop[]; readonly span: Span }
+  | { readonly kind: 'sequence'; readonly items: readonly Expression[]; readonly span: Span }
+  /** What the executor must not read: the reason, in words that complete "can't read ...". */
+  | { readonly kind: 'opaque'; readonly reason: string; readonly span: Span };
+
+export interface ComprehensionLoop {
+  readonly target: Pattern;
+  readonly over: Expression;
+  readonly conditions: readonly Expression[];
+}
+
+export interface Argument {
+  readonly value: Expression;
+  readonly name?: string;
+  readonly spread?: boolean;
+}
+
+export interface Element {
+  readonly value: Expression;
+  readonly spread?: boolean;
+}
+
+export type Field =
+  | { readonly kind: 'field'; readonly name: string; readonly value: Expression; readonly span: Span }
+  | { readonly kind: 'computed'; readonly name: Expression; readonly value: Expression; readonly span: Span }
+  | { readonly kind: 'spread'; readonly value: Expression; readonly span: Span }
+  | { readonly kind: 'getter' | 'setter'; readonly name: string; readonly node: FunctionNode; readonly span: Span };
+
+/** What may stand left of an assignment or as a parameter. */
+export type Pattern =
+  | { readonly kind: 'name'; readonly name: string; readonly span: Span }
+  /** A member or index expression that is written to. */
+  | { readonly kind: 'place'; readonly target: Expression; readonly span: Span }
+  | { readonly kind: 'list'; readonly items: readonly (PatternItem | undefined)[]; readonly span: Span }
+  | { readonly kind: 'record'; readonly fields: readonly { readonly name: string; readonly item: PatternItem }[]; readonly rest?: Pattern; readonly span: Span }
+  | { readonly kind: 'opaque'; readonly reason: string; readonly span: Span };
+
+export interface PatternItem {
+  readonly pattern: Pattern;
+  readonly initial?: Expression;
+  readonly rest?: boolean;
+}
+
+export interface Parameter extends PatternItem {
+  /** Keyword-only or TypeScript parameter property: `constructor(private m: number)` also sets the field. */
+  readonly field?: boolean;
+  readonly keywordOnly?: boolean;
+  /** Python's `**kw`. */
+  readonly restNamed?: boolean;
+}
+
+export interface FunctionNode {
+  /** `rates`, `<anonymous>` */
+  readonly name: string;
+  readonly nameSpan: Span;
+  readonly parameters: readonly Parameter[];
+  readonly body: readonly Statement[];
+  /** What keeps a call from being read: `an async function`, `a generator`. */
+  readonly opaque?: string;
+  /** Arrow functions and nested functions of most languages see the `this` around them. */
+  readonly inheritsSelf: boolean;
+  /** The first parameter is the receiver (Python methods, Rust `&self`). */
+  readonly selfParameter?: boolean;
+  /** MATLAB and Fortran: the variables that are the result. */
+  readonly results?: readonly { readonly name: string; readonly span: Span }[];
+  readonly span: Span;
+  readonly bodySpan: Span;
+}
+
+export interface ClassNode {
+  readonly name: string;
+  readonly nameSpan: Span;
+  readonly base?: Expression;
+  readonly members: readonly Member[];
+  readonly span: Span;
+}
+
+export interface Member {
+  readonly kind: 'field' | 'method' | 'getter' | 'setter' | 'constructor';
+  /** Private names keep their mark: `#m`. */
+  readonly name: string;
+  readonly isStatic: boolean;
+  readonly value?: Expression;
+  readonly node?: FunctionNode;
+  readonly span: Span;
+}
+
+export type Statement =
+  | { readonly kind: 'declare'; readonly mutable: boolean; readonly scope: 'block' | 'function'; readonly target: Pattern; readonly value?: Expression; readonly span: Span }
+  | { readonly kind: 'expression'; readonly value: Expression; readonly span: Span }
+  | { readonly kind: 'function'; readonly node: FunctionNode; readonly span: Span }
+  | { readonly kind: 'class'; readonly node: ClassNode; readonly span: Span }
+  /** Named constants in a row of their own: `enum Slot { X, TH }`. */
+  | { readonly kind: 'enum'; readonly name: string; readonly members: readonly { readonly name: string; readonly value?: Expression; readonly span: Span }[]; readonly span: Span }
+  | { readonly kind: 'return'; readonly value?: Expression; readonly span: Span }
+  | { readonly kind: 'if'; readonly condition: Expression; readonly whenTrue: readonly Statement[]; readonly whenFalse: readonly Statement[]; readonly span: Span }
+  /** C-style and while loops; `before: false` tests after the body (do-while). */
+  | { readonly kind: 'loop'; readonly initial: readonly Statement[]; readonly condition?: Expression; readonly testFirst: boolean; readonly update: readonly Statement[]; readonly body: readonly Statement[]; readonly span: Span }
+  /** `for x of xs`; `keys` for JavaScript's `for in`. */
+  | { readonly kind: 'for-each'; readonly target: Pattern; readonly declares: boolean; readonly over: Expression; readonly keys?: boolean; readonly body: readonly Statement[]; readonly span: Span }
+  | { readonly kind: 'switch'; readonly value: Expression; readonly cases: readonly { readonly test?: Expression; readonly body: readonly Statement[]; readonly span: Span }[]; readonly fallsThrough: boolean; readonly span: Span }
+  | { readonly kind: 'break' | 'continue'; readonly label?: string; readonly span: Span }
+  | { readonly kind: 'labelled'; readonly label: string; readonly body: Statement; readonly span: Span }
+  | { readonly kind: 'throw'; readonly value?: Expression; readonly span: Span }
+  | { readonly kind: 'try'; readonly body: readonly Statement[]; readonly handler?: { readonly parameter?: Pattern; readonly body: readonly Statement[] }; readonly finalizer: readonly Statement[]; readonly span: Span }
+  | { readonly kind: 'block'; readonly body: readonly Statement[]; readonly span: Span }
+  | { readonly kind: 'import'; readonly from: string; readonly names: readonly { readonly imported: string; readonly local: string; readonly span: Span }[]; readonly namespace?: string; readonly span: Span }
+  /** `export { a as b }`, `export * from './x'`, `module.exports = ...`; declarations that are exported are listed here by name too. */
+  | { readonly kind: 'export'; readonly names: readonly { readonly local: string; readonly exported: string }[]; readonly from?: string; readonly all?: boolean; readonly value?: Expression; readonly span: Span }
+  | { readonly kind: 'opaque'; readonly reason: string; readonly span: Span }
+  | { readonly kind: 'empty'; readonly span: Span };

@@ -1,0 +1,23 @@
+import type { Expr } from '../expression/node';
+import type { Graph } from '../expression/graph';
+
+/**
+ * A language's numeric library, as a table of meanings. A language folder fills one in; the executor looks names up in it
+ * after the names of the program itself.
+ */
+export interface Library {
+  /** Scalar functions by dotted path: `Math.sin`. Arguments are scalars already. */
+  readonly scalars: ReadonlyMap<string, ScalarFunction>;
+  /** Constants by dotted path: `Math.PI`. */
+  readonly constants: ReadonlyMap<string, (graph: Graph) => Expr>;
+  /** Functions and methods with richer arguments, by the name of a shared intrinsic of `program/intrinsics`: `Array.from` -> `list-from`. */
+  readonly intrinsics: ReadonlyMap<string, string>;
+  /** Methods by the receiver's kind: `list.map` -> `list-map`. */
+  readonly methods: ReadonlyMap<string, string>;
+  /** Modules whose import gives the names of this table: `import { sin } from 'math'` -> prefix `Math.` */
+  readonly modules: ReadonlyMap<string, string>;
+  /** Calls that can be left out when their value is not used: `console.log`. */
+  readonly ignorable: ReadonlySet<string>;
+}
+
+export type ScalarFunction = (graph: Graph, args: readonly Expr[]) => Expr | { readonly unread: string };

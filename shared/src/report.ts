@@ -1,0 +1,96 @@
+/** The report of a check, as `visviva check --format json` prints it. Public and stable: fields are only ever added. */
+
+export interface Report {
+  readonly schema: 1;
+  readonly tool: { readonly name: 'visviva'; readonly version: string };
+  readonly summary: Summary;
+  readonly claims: readonly ReportClaim[];
+  readonly problems: readonly Problem[];
+  /** Files left out, and why: not an error. */
+  readonly skipped: readonly { readonly file: string; readonly reason: string }[];
+}
+
+export interface Summary {
+  readonly files: number;
+  readonly systems: number;
+  readonly claims: number;
+  readonly holds: number;
+  readonly differs: number;
+  readonly unread: number;
+  readonly problems: number;
+}
+
+/** Lines and columns start at 1; columns count UTF-16 units. */
+export interface ReportPosition {
+  readonly line: number;
+  readonly column: number;
+}
+
+export interface ReportRange {
+  readonly start: ReportPosition;
+  readonly end: ReportPosition;
+}
+
+export type Verdict = 'holds' | 'differs' | 'unread';
+
+export interface ReportClaim {
+  readonly file: string;
+  readonly language: string;
+  readonly system: string;
+  readonly function: string;
+  readonly output: string;
+  readonly quantity: string;
+  /** Line of the claim in its declaration. */
+  readonly line: number;
+  readonly verdict: Verdict;
+  readonly evidence?: Evidence;
+  readonly witness?: Witness;
+  readonly findings: readonly Finding[];
+}
+
+export interface Evidence {
+  readonly kind: 'numeric' | 'identity';
+  /** States that voted. */
+  readonly states: number;
+  /** Largest relative difference over the voting states. */
+  readonly worst: number;
+}
+
+export interface Witness {
+  /** Only the symbols that matter, by name: coordinates, velocities, inputs, parameters. */
+  readonly state: Readonly<Record<string, number>>;
+  readonly expected: number;
+  readonly found: number;
+}
+
+export type FindingCode =
+  | 'sign' | 'factor' | 'missing-term' | 'extra-term' | 'swapped-symbol' | 'swapped-rows' | 'wrong-function'
+  | 'wrong-power' | 'wrong-operator' | 'grouping' | 'rounded-constant' | 'differs' | 'unread';
+
+export type ProblemCode =
+  | 'syntax' | 'undeclared' | 'unused' | 'ambiguous' | 'dimension' | 'not-quadratic' | 'singular' | 'inconsistent';
+
+export interface Finding {
+  readonly code: FindingCode;
+  readonly message: string;
+  readonly range: ReportRange;
+  /** The file of the range, where it is not the claim's own. */
+  readonly file?: string;
+  readonly repair?: Repair;
+}
+
+export interface Repair {
+  readonly title: string;
+  readonly edits: readonly { readonly range: ReportRange; readonly text: string }[];
+  readonly verified: boolean;
+}
+
+/** A finding about a declaration. */
+export interface Problem {
+  readonly file: string;
+  readonly code: ProblemCode;
+  readonly message: string;
+  readonly range: ReportRange;
+  /** Problems that do not keep a claim from being decided are notes. */
+  readonly severity: 'error' | 'warning';
+}
