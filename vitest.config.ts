@@ -1,8 +1,32 @@
 import { defineConfig } from 'vitest/config';
 
+const results = process.env['VISVIVA_RESULTS'];
+
 export default defineConfig({
   test: {
-    include: ['tests/{unit,languages,published,property,service,cli,fuzz}/**/*.test.ts'],
     testTimeout: 30_000,
+    reporters: results ? ['default', ['json', { outputFile: results }]] : ['default'],
+    projects: [
+      {
+        extends: true,
+        test: { name: 'unit', include: ['tests/{unit,languages,published,service}/**/*.test.ts'] },
+      },
+      {
+        extends: true,
+        test: {
+          name: 'built',
+          include: ['tests/{lsp,cli}/**/*.test.ts'],
+          globalSetup: ['tests/lsp/build-first.ts'],
+        },
+      },
+      {
+        extends: true,
+        test: { name: 'property', include: ['tests/{property,fuzz}/**/*.test.ts'], testTimeout: 120_000 },
+      },
+      {
+        extends: true,
+        test: { name: 'bench', include: [], benchmark: { include: ['tests/bench/**/*.bench.ts'] } },
+      },
+    ],
   },
 });

@@ -1,1 +1,4 @@
+export * from './messages';
 export * from './report';
+export * from './settings';
+export * from './version';

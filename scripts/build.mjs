@@ -1,0 +1,71 @@
+/**
+ * Bundles the product into dist/: the extension (client.cjs), the language server (server.mjs) and the command
+ * (visviva.mjs). Server and command share their code through chunks, and what is imported dynamically (the TypeScript
+ * parser) stays a chunk of its own that is loaded at the first file that needs it.
+ */
+import { build } from 'esbuild';
+import { chmod, mkdir, rm } from 'node:fs/promises';
+import { existsSync } from 'node:fs';
+import { join } from 'node:path';
+import { fileURLToPath } from 'node:url';
+
+const root = fileURLToPath(new URL('..', import.meta.url));
+
+/**
+ * @param {{ production?: boolean, outdir?: string }} [options] production: smaller, without source maps.
+ */
+export async function buildAll({ production = false, outdir = join(root, 'dist') } = {}) {
+  await rm(outdir, { recursive: true, force: true });
+  await mkdir(outdir, { recursive: true });
+
+  /** @type {import('esbuild').BuildOptions} */
+  const common = {
+    absWorkingDir: root,
+    bundle: true,
+    platform: 'node',
+    target: 'node20',
+    logLevel: 'warning',
+    legalComments: 'none',
+    minifySyntax: true,
+    minifyWhitespace: true,
+    minifyIdentifiers: production,
+    keepNames: production,
+    sourcemap: production ? false : 'linked',
+    sourcesContent: false,
+  };
+  await Promise.all([
+    build({
+      ...common,
+      entryPoints: { client: 'client/src/extension.ts' },
+      outdir,
+      outExtension: { '.js': '.cjs' },
+      format: 'cjs',
+      external: ['vscode'],
+    }),
+    build({
+      ...common,
+      entryPoints: Object.fromEntries(
+        Object.entries({ server: 'server/src/lsp/main.ts', visviva: 'server/src/cli/main.ts' }).filter(([, file]) =>
+          existsSync(join(root, file)),
+        ),
+      ),
+      outdir,
+      outExtension: { '.js': '.mjs' },
+      format: 'esm',
+      splitting: true,
+      chunkNames: 'chunks/[name]-[hash]',
+      banner: { js: requireForCommonJs },
+    }),
+  ]);
+  const command = join(outdir, 'visviva.mjs');
+  if (existsSync(command)) await chmod(command, 0o755);
+}
+
+/** CommonJS packages inside an ES module bundle still ask for Node's own modules by `require`. */
+const requireForCommonJs =
+  "import { createRequire as visvivaCreateRequire } from 'node:module';" +
+  'const require = visvivaCreateRequire(import.meta.url);';
+
+if (process.argv[1] === fileURLToPath(import.meta.url)) {
+  await buildAll({ production: process.argv.includes('--production') });
+}

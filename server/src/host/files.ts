@@ -1,0 +1,53 @@
+import type { Files } from '../service/api';
+import { readTextFile } from './text-file';
+import { walk } from './walk';
+
+/** The files of some folders on disk, as the service asks for them, remembered until told that they changed. */
+export interface DiskFiles extends Files {
+  /** Call when a file was created, changed or deleted. */
+  changed(file: string): void;
+  /** Call when the set of folders has changed, or when nobody can tell what has. */
+  reset(): void;
+}
+
+/** The word that every declaration begins with. */
+const mark = '@visviva';
+/** A project with more source files than this is not searched further for declarations. */
+const searchLimit = 20_000;
+
+export function createDiskFiles(folders: () => readonly string[], handles: (file: string) => boolean): DiskFiles {
+  let declaring: Set<string> | undefined;
+
+  const declares = (file: string): boolean => {
+    if (file.endsWith('.visviva')) return true;
+    const read = readTextFile(file);
+    return 'text' in read && read.text.includes(mark);
+  };
+
+  return {
+    read(file) {
+      const read = readTextFile(file);
+      return 'text' in read ? read.text : undefined;
+    },
+
+    declarations() {
+      if (!declaring) {
+        declaring = new Set();
+        for (const folder of folders()) {
+          for (const file of walk(folder, handles, searchLimit).files) if (declares(file)) declaring.add(file);
+        }
+      }
+      return [...declaring].sort();
+    },
+
+    changed(file) {
+      if (!declaring || !handles(file)) return;
+      if (declares(file)) declaring.add(file);
+      else declaring.delete(file);
+    },
+
+    reset() {
+      declaring = undefined;
+    },
+  };
+}

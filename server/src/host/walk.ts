@@ -1,0 +1,94 @@
+import { readdirSync, readFileSync, realpathSync, statSync } from 'node:fs';
+import { join } from 'node:path';
+import ignore, { type Ignore } from 'ignore';
+import { toSlashes } from './paths';
+
+export interface Walk {
+  /** Absolute paths with `/`, in order of their names, folder by folder. */
+  readonly files: readonly string[];
+  readonly skipped: readonly { readonly file: string; readonly reason: string }[];
+}
+
+/** Folders that hold no source of the project itself. */
+const neverEntered = new Set(['node_modules', '.git', '.hg', '.svn', 'bower_components', '__pycache__', '.venv']);
+
+const depthLimit = 64;
+
+interface Rules {
+  readonly folder: string;
+  readonly matcher: Ignore;
+}
+
+/**
+ * All files below a folder that `wanted` accepts, without what a `.gitignore` on the way excludes. Symbolic links are
+ * followed, each folder is entered once: links that lead back do no harm.
+ */
+export function walk(root: string, wanted: (file: string) => boolean, fileLimit = Infinity): Walk {
+  const files: string[] = [];
+  const skipped: { file: string; reason: string }[] = [];
+  const entered = new Set<string>();
+
+  const enter = (folder: string, rules: readonly Rules[], depth: number): void => {
+    if (files.length >= fileLimit) return;
+    if (depth > depthLimit) {
+      skipped.push({ file: toSlashes(folder), reason: `it lies more than ${depthLimit} folders deep` });
+      return;
+    }
+    let names: string[];
+    try {
+      const real = realpathSync(folder);
+      if (entered.has(real)) return;
+      entered.add(real);
+      names = readdirSync(folder).sort();
+    } catch (error) {
+      skipped.push({ file: toSlashes(folder), reason: `the folder cannot be read (${codeOf(error)})` });
+      return;
+    }
+    const here = names.includes('.gitignore') ? withRules(rules, folder) : rules;
+    for (const name of names) {
+      if (neverEntered.has(name)) continue;
+      const path = join(folder, name);
+      let isFolder: boolean;
+      try {
+        const stat = statSync(path);
+        isFolder = stat.isDirectory();
+        if (!isFolder && (!stat.isFile() || !wanted(toSlashes(path)))) continue;
+      } catch (error) {
+        if (wanted(toSlashes(path))) {
+          skipped.push({ file: toSlashes(path), reason: `it cannot be read (${codeOf(error)})` });
+        }
+        continue;
+      }
+      if (excluded(here, path, isFolder)) continue;
+      if (isFolder) enter(path, here, depth + 1);
+      else if (files.length < fileLimit) files.push(toSlashes(path));
+    }
+  };
+  enter(root, [], 0);
+  return { files, skipped };
+}
+
+function withRules(rules: readonly Rules[], folder: string): readonly Rules[] {
+  try {
+    return [...rules, { folder, matcher: ignore().add(readFileSync(join(folder, '.gitignore'), 'utf8')) }];
+  } catch {
+    return rules;
+  }
+}
+
+/** The innermost file with an opinion decides, as git does it. */
+function excluded(rules: readonly Rules[], path: string, isFolder: boolean): boolean {
+  for (let i = rules.length - 1; i >= 0; i--) {
+    const { folder, matcher } = rules[i]!;
+    const relative = toSlashes(path.slice(folder.length)).replace(/^\/+/, '');
+    if (relative === '') continue;
+    const answer = matcher.test(isFolder ? `${relative}/` : relative);
+    if (answer.ignored) return true;
+    if (answer.unignored) return false;
+  }
+  return false;
+}
+
+function codeOf(error: unknown): string {
+  return (error as NodeJS.ErrnoException).code ?? String(error);
+}
