@@ -1,0 +1,93 @@
+import { statusNotification, type FileStatus } from '@visviva/shared';
+import * as vscode from 'vscode';
+import {
+  CloseAction,
+  ErrorAction,
+  LanguageClient,
+  State,
+  TransportKind,
+  type LanguageClientOptions,
+  type ServerOptions,
+} from 'vscode-languageclient/node';
+import type { StatusItem } from './status-item';
+
+const languages = ['typescript', 'javascript', 'typescriptreact', 'javascriptreact', 'html', 'visviva'];
+
+/** A server that stops this often within the time below is not started again by itself. */
+const stopLimit = 4;
+const stopWindow = 3 * 60_000;
+
+/** Starts the language server, keeps it running and passes on what it tells. */
+export class CheckerClient {
+  private readonly client: LanguageClient;
+  private stops: number[] = [];
+
+  constructor(
+    context: vscode.ExtensionContext,
+    private readonly output: vscode.LogOutputChannel,
+    private readonly status: StatusItem,
+  ) {
+    const module = context.asAbsolutePath('dist/server.mjs');
+    const server: ServerOptions = {
+      run: { module, transport: TransportKind.ipc },
+      debug: { module, transport: TransportKind.ipc, options: { execArgv: ['--nolazy', '--inspect=6059'] } },
+    };
+    const options: LanguageClientOptions = {
+      documentSelector: languages.flatMap((language) => [
+        { scheme: 'file', language },
+        { scheme: 'untitled', language },
+      ]),
+      outputChannel: output,
+      initializationOptions: { ...vscode.workspace.getConfiguration('visviva') },
+      errorHandler: {
+        error: () => ({ action: ErrorAction.Continue }),
+        closed: () => this.closed(),
+      },
+    };
+    this.client = new LanguageClient('visviva', 'Visviva', server, options);
+    context.subscriptions.push(
+      this.client.onNotification(statusNotification, (told: FileStatus) => status.update(told)),
+      this.client.onDidChangeState(({ newState }) => {
+        if (newState === State.Starting) status.starting();
+        if (newState === State.Running) status.running();
+      }),
+    );
+  }
+
+  async start(): Promise<void> {
+    try {
+      await this.client.start();
+    } catch (error) {
+      this.output.error(`The checker did not start: ${String(error)}`);
+      this.status.stopped('The checker did not start. Click for the output, or restart it.');
+    }
+  }
+
+  async restart(): Promise<void> {
+    this.stops = [];
+    this.status.starting();
+    try {
+      if (this.client.isRunning()) await this.client.restart();
+      else await this.client.start();
+    } catch (error) {
+      this.output.error(`The checker did not restart: ${String(error)}`);
+      this.status.stopped('The checker did not restart. Click for the output.');
+    }
+  }
+
+  async stop(): Promise<void> {
+    await this.client.dispose();
+  }
+
+  private closed(): { action: CloseAction; message?: string; handled: true } {
+    const now = Date.now();
+    this.stops = [...this.stops.filter((time) => now - time < stopWindow), now];
+    if (this.stops.length < stopLimit) {
+      this.output.warn('The checker stopped and is started again.');
+      return { action: CloseAction.Restart, handled: true };
+    }
+    this.output.error(`The checker stopped ${stopLimit} times within ${stopWindow / 60_000} minutes.`);
+    this.status.stopped('The checker stopped several times. Click for the output, or run "Visviva: Restart the Checker".');
+    return { action: CloseAction.DoNotRestart, handled: true };
+  }
+}

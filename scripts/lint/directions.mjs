@@ -1,0 +1,52 @@
+/**
+ * Which folder may import from which: the house's one-way streets. A folder may always import from itself. `packages`
+ * are those from outside; `node` allows Node's own modules, which is to say input and output.
+ */
+export const directions = {
+  'shared/src': { from: [], packages: [] },
+
+  'server/src/text': { from: [], packages: [] },
+  'server/src/expression': { from: ['text'], packages: [] },
+  'server/src/notation': { from: ['text', 'expression', 'shared'], packages: ['unitmath'] },
+  'server/src/program': { from: ['text', 'expression'], packages: [] },
+  'server/src/mechanics': { from: ['text', 'expression', 'notation', 'shared'], packages: [] },
+  'server/src/languages': { from: ['text', 'expression', 'program'], packages: ['typescript', 'htmlparser2'] },
+  'server/src/comparison': {
+    from: ['text', 'expression', 'notation', 'program', 'mechanics', 'shared'],
+    packages: [],
+  },
+  'server/src/diagnosis': {
+    from: ['text', 'expression', 'notation', 'program', 'mechanics', 'comparison', 'shared'],
+    packages: [],
+  },
+  'server/src/workspace': {
+    from: ['text', 'expression', 'notation', 'program', 'languages', 'shared'],
+    packages: [],
+  },
+  'server/src/service': {
+    from: [
+      'text', 'expression', 'notation', 'program', 'mechanics', 'languages', 'comparison', 'diagnosis', 'workspace',
+      'shared',
+    ],
+    packages: [],
+  },
+  // The service's contract names what the host has to give; nothing else of it is used there.
+  'server/src/host': { from: ['text', 'shared', 'service/api'], packages: ['ignore', 'tinyglobby'], node: true },
+  'server/src/lsp': {
+    from: ['text', 'service', 'host', 'shared'],
+    packages: ['vscode-languageserver', 'vscode-languageserver-textdocument'],
+    node: true,
+  },
+  'server/src/cli': {
+    from: ['text', 'service', 'host', 'diagnosis', 'lsp', 'shared'],
+    packages: ['commander', 'picocolors', 'tinyglobby', 'ignore'],
+    node: true,
+  },
+
+  'client/src': { from: ['shared'], packages: ['vscode', 'vscode-languageclient'] },
+};
+
+/** Where a name in a `from` list lies. */
+export function folderOf(name) {
+  return name === 'shared' ? 'shared/src' : `server/src/${name}`;
+}

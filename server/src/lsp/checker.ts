@@ -1,0 +1,125 @@
+import { statusNotification, type FileCounts, type FileStatus, type Settings } from '@visviva/shared';
+import { DiagnosticSeverity, type Connection, type Diagnostic } from 'vscode-languageserver';
+import type { Clock } from '../host/clock';
+import { sizeLimit } from '../host/text-file';
+import type { FileResult, Service } from '../service/api';
+import { Budget } from '../text/budget';
+import type { Addresses } from './addresses';
+import { CheckQueue, type Run } from './check-queue';
+import { toDiagnostics } from './diagnostics';
+import { contentOf, lineOf, type OpenFile, type OpenFiles } from './open-files';
+
+export interface CheckerContext {
+  readonly connection: Connection;
+  readonly service: Service;
+  readonly addresses: Addresses;
+  readonly files: OpenFiles;
+  readonly clock: Clock;
+  readonly settings: () => Settings;
+  /** True where the editor keeps track of which version a diagnostic belongs to: it then hears of each one checked. */
+  readonly tracksVersions: () => boolean;
+}
+
+/** Checks open files and keeps the editor's diagnostics and status in step with the results. */
+export class Checker {
+  private readonly queue: CheckQueue;
+
+  constructor(private readonly context: CheckerContext) {
+    this.queue = new CheckQueue((run) => this.run(run), context.clock);
+  }
+
+  request(open: OpenFile, atLeast = 0): void {
+    this.queue.request(open.document.uri, atLeast);
+  }
+
+  requestAll(): void {
+    for (const open of this.context.files.all()) this.request(open);
+  }
+
+  /** Takes away everything that the editor shows of a document that is closed. */
+  close(open: OpenFile): void {
+    this.queue.forget(open.document.uri);
+    void this.context.connection.sendDiagnostics({ uri: open.document.uri, diagnostics: [] });
+    this.tell({ uri: open.document.uri });
+  }
+
+  private async run(run: Run): Promise<void> {
+    const { clock, files, service, settings } = this.context;
+    const open = files.get(run.key);
+    if (!open) return;
+    const { document, file } = open;
+    const version = document.version;
+    const stale = (): boolean => run.cancelled() || files.get(run.key) !== open || document.version !== version;
+
+    const reason = this.reasonToSkip(open);
+    if (reason !== undefined) {
+      this.publish(open, version, []);
+      this.tell({ uri: run.key, version, reason });
+      return;
+    }
+    const start = clock();
+    const budget = new Budget({ milliseconds: settings().timeLimit }, clock, stale);
+    try {
+      const result = await service.check(file, budget);
+      if (stale()) return;
+      open.dependsOn = result.dependsOn;
+      const diagnostics = toDiagnostics(result, {
+        uriOf: (name) => this.context.addresses.uriOf(name),
+        line: (line) => lineOf(document, line),
+      });
+      this.publish(open, version, diagnostics);
+      this.tell({ uri: run.key, version, counts: count(result), milliseconds: clock() - start });
+    } catch (error) {
+      this.context.connection.console.error(`Check of ${file} failed: ${describe(error)}`);
+      if (stale()) return;
+      this.publish(open, version, [internalFailure()]);
+      this.tell({ uri: run.key, version, reason: 'The check failed; the output channel has the details.' });
+    }
+  }
+
+  private reasonToSkip({ document, file }: OpenFile): string | undefined {
+    if (!this.context.settings().enable) return 'Checking is switched off (visviva.enable).';
+    if (!this.context.service.handles(file)) return 'Files of this kind are not read.';
+    if (document.getText().length > sizeLimit) return 'The file is too large to be read.';
+    return undefined;
+  }
+
+  private publish(open: OpenFile, version: number, diagnostics: Diagnostic[]): void {
+    const content = contentOf(diagnostics);
+    const before = open.published;
+    const sameVersion = before?.version === version || !this.context.tracksVersions();
+    open.published = { version, content };
+    if (before?.content === content && sameVersion) return;
+    void this.context.connection.sendDiagnostics({ uri: open.document.uri, version, diagnostics });
+  }
+
+  private tell(status: FileStatus): void {
+    void this.context.connection.sendNotification(statusNotification, status);
+  }
+}
+
+function count(result: FileResult): FileCounts {
+  const of = (verdict: string): number => result.claims.filter((claim) => claim.verdict === verdict).length;
+  return {
+    systems: result.systems.length,
+    holds: of('holds'),
+    differs: of('differs'),
+    unread: of('unread'),
+    problems: result.problems.length,
+  };
+}
+
+function internalFailure(): Diagnostic {
+  return {
+    range: { start: { line: 0, character: 0 }, end: { line: 0, character: 0 } },
+    severity: DiagnosticSeverity.Information,
+    source: 'visviva',
+    code: 'unread',
+    message: 'This file could not be checked because of a fault in Visviva; its output channel has the details.',
+  };
+}
+
+/** The whole stack: a failure that reaches this place is a fault of ours. */
+export function describe(error: unknown): string {
+  return error instanceof Error ? (error.stack ?? error.message) : String(error);
+}

@@ -1,0 +1,117 @@
+import type { Finding, ReportClaim, Verdict } from '@visviva/shared';
+import {
+  DiagnosticSeverity,
+  type Diagnostic,
+  type DiagnosticRelatedInformation,
+  type Range,
+} from 'vscode-languageserver';
+import type { FileResult } from '../service/api';
+import { toRange } from './ranges';
+
+export interface DiagnosticContext {
+  readonly uriOf: (file: string) => string;
+  /** The text of a line (from 1) of the checked document; empty where there is none. */
+  readonly line: (line: number) => string;
+}
+
+const severityOf: Readonly<Record<Verdict, DiagnosticSeverity>> = {
+  differs: DiagnosticSeverity.Error,
+  unread: DiagnosticSeverity.Information,
+  holds: DiagnosticSeverity.Warning,
+};
+
+/**
+ * What the editor shows for a checked file. One fault is shown once, however many claims it breaks; each diagnostic
+ * leads to the claims that it belongs to.
+ */
+export function toDiagnostics(result: FileResult, context: DiagnosticContext): Diagnostic[] {
+  const shown = new Map<string, Diagnostic>();
+  const add = (diagnostic: Diagnostic): void => {
+    const { start, end } = diagnostic.range;
+    const key = JSON.stringify([start, end, diagnostic.code, diagnostic.message]);
+    const before = shown.get(key);
+    if (!before) {
+      shown.set(key, diagnostic);
+      return;
+    }
+    before.severity = Math.min(before.severity ?? 1, diagnostic.severity ?? 1) as DiagnosticSeverity;
+    before.relatedInformation = merge(before.relatedInformation, diagnostic.relatedInformation);
+  };
+
+  for (const problem of result.problems) {
+    if (problem.file !== result.file) continue;
+    add({
+      range: toRange(problem.range),
+      severity: problem.severity === 'error' ? DiagnosticSeverity.Error : DiagnosticSeverity.Warning,
+      code: problem.code,
+      source: 'visviva',
+      message: problem.message,
+    });
+  }
+  for (const claim of result.claims) {
+    for (const finding of claim.findings) add(ofFinding(result.file, claim, finding, context));
+    if (claim.verdict !== 'holds' && claim.findings.length === 0) add(ofClaim(result.file, claim, context));
+  }
+  return [...shown.values()].sort(byPlace);
+}
+
+function ofFinding(file: string, claim: ReportClaim, finding: Finding, context: DiagnosticContext): Diagnostic {
+  const elsewhere = finding.file !== undefined && finding.file !== file;
+  const related: DiagnosticRelatedInformation[] = [];
+  if (elsewhere) {
+    related.push({
+      location: { uri: context.uriOf(finding.file!), range: toRange(finding.range) },
+      message: 'the place in the code',
+    });
+  }
+  related.push(toClaim(file, claim, context));
+  return {
+    range: elsewhere ? claimRange(file, claim, context) : toRange(finding.range),
+    severity: severityOf[claim.verdict],
+    code: finding.code,
+    source: 'visviva',
+    message: finding.message,
+    relatedInformation: related,
+  };
+}
+
+/** A claim that does not hold is never passed over, even if nothing more is known about it. */
+function ofClaim(file: string, claim: ReportClaim, context: DiagnosticContext): Diagnostic {
+  return {
+    range: claimRange(file, claim, context),
+    severity: severityOf[claim.verdict],
+    code: claim.verdict,
+    source: 'visviva',
+    message:
+      claim.verdict === 'differs'
+        ? `${claim.output} differs from ${claim.quantity} of ${claim.system}.`
+        : `${claim.output} could not be compared with ${claim.quantity} of ${claim.system}.`,
+  };
+}
+
+function toClaim(file: string, claim: ReportClaim, context: DiagnosticContext): DiagnosticRelatedInformation {
+  return {
+    location: { uri: context.uriOf(claim.file), range: claimRange(file, claim, context) },
+    message: `claimed here: ${claim.output} = ${claim.quantity} (${claim.system})`,
+  };
+}
+
+/** The claim's line without the blanks around it; the line's start where its text is in another document. */
+function claimRange(file: string, claim: ReportClaim, context: DiagnosticContext): Range {
+  const text = claim.file === file ? context.line(claim.line) : '';
+  const line = Math.max(0, claim.line - 1);
+  const from = text.length - text.trimStart().length;
+  return { start: { line, character: from }, end: { line, character: Math.max(from, text.trimEnd().length) } };
+}
+
+function merge(
+  a: readonly DiagnosticRelatedInformation[] = [],
+  b: readonly DiagnosticRelatedInformation[] = [],
+): DiagnosticRelatedInformation[] {
+  const seen = new Map([...a, ...b].map((information) => [JSON.stringify(information), information]));
+  return [...seen.values()];
+}
+
+function byPlace(a: Diagnostic, b: Diagnostic): number {
+  return a.range.start.line - b.range.start.line || a.range.start.character - b.range.start.character;
+}

@@ -1,0 +1,214 @@
+import { defaultSettings, readSettings, type Settings } from '@visviva/shared';
+import {
+  DidChangeConfigurationNotification,
+  DidChangeWatchedFilesNotification,
+  FileChangeType,
+  TextDocuments,
+  TextDocumentSyncKind,
+  type CancellationToken,
+  type ClientCapabilities,
+  type Connection,
+  type DidChangeWatchedFilesParams,
+  type InitializeParams,
+  type InitializeResult,
+} from 'vscode-languageserver';
+import { TextDocument } from 'vscode-languageserver-textdocument';
+import { version } from '@visviva/shared';
+import { clock } from '../host/clock';
+import { createDiskFiles } from '../host/files';
+import { pathOf } from '../host/paths';
+import type { Files, Service } from '../service/api';
+import { Budget } from '../text/budget';
+import { Addresses } from './addresses';
+import { Checker, describe } from './checker';
+import { plainText } from './hover';
+import { OpenFiles } from './open-files';
+import { fromPosition, toRange } from './ranges';
+import { toFlatSymbols, toSymbols } from './symbols';
+
+/** Kinds of files whose change on disk can change a result. */
+export const watchedFiles = '**/*.{ts,tsx,mts,cts,js,jsx,mjs,cjs,htm,html,json,visviva}';
+/** A file that only depends on the one being typed in may wait for a pause. */
+const dependentDelay = 100;
+
+/**
+ * Wires the service to the language server protocol. Nothing is analysed here: each request becomes a call of the
+ * service and its answer is translated. A request that fails is logged and answered with nothing.
+ */
+export function serve(connection: Connection, createService: (files: Files) => Service): void {
+  let capabilities: ClientCapabilities = {};
+  let settings: Settings = defaultSettings;
+  let folders: string[] = [];
+
+  const disk = createDiskFiles(
+    () => folders,
+    (file) => service.handles(file),
+  );
+  const service: Service = createService(disk);
+  const addresses = new Addresses();
+  const files = new OpenFiles();
+  const documents = new TextDocuments(TextDocument);
+  const checker = new Checker({
+    connection,
+    service,
+    addresses,
+    files,
+    clock,
+    settings: () => settings,
+    tracksVersions: () => capabilities.textDocument?.publishDiagnostics?.versionSupport === true,
+  });
+
+  connection.onInitialize((params: InitializeParams): InitializeResult => {
+    capabilities = params.capabilities ?? {};
+    settings = readSettings(params.initializationOptions);
+    folders = foldersOf(params);
+    return {
+      serverInfo: { name: 'visviva', version },
+      capabilities: {
+        textDocumentSync: { openClose: true, change: TextDocumentSyncKind.Incremental },
+        hoverProvider: true,
+        documentSymbolProvider: true,
+        workspace: { workspaceFolders: { supported: true, changeNotifications: true } },
+      },
+    };
+  });
+
+  connection.onInitialized(
+    guarded('initialized', undefined, async () => {
+      const workspace = capabilities.workspace;
+      if (workspace?.didChangeWatchedFiles?.dynamicRegistration) {
+        await connection.client.register(DidChangeWatchedFilesNotification.type, {
+          watchers: [{ globPattern: watchedFiles }],
+        });
+      }
+      if (workspace?.didChangeConfiguration?.dynamicRegistration) {
+        await connection.client.register(DidChangeConfigurationNotification.type, { section: 'visviva' });
+      }
+      if (workspace?.workspaceFolders) {
+        connection.workspace.onDidChangeWorkspaceFolders(({ added, removed }) => {
+          const gone = new Set(removed.map((folder) => pathOf(folder.uri)));
+          folders = [...folders.filter((folder) => !gone.has(folder)), ...pathsOf(added)];
+          disk.reset();
+          checker.requestAll();
+        });
+      }
+      await pullSettings();
+    }),
+  );
+
+  const pullSettings = async (pushed?: unknown): Promise<void> => {
+    const given = capabilities.workspace?.configuration
+      ? ((await connection.workspace.getConfiguration('visviva')) as unknown)
+      : pushed;
+    if (given === undefined) return;
+    const before = settings;
+    settings = readSettings(given);
+    if (settings.enable !== before.enable || settings.timeLimit !== before.timeLimit) checker.requestAll();
+  };
+
+  connection.onDidChangeConfiguration(
+    guarded('configuration', undefined, async ({ settings: pushed }) => {
+      await pullSettings((pushed as { visviva?: unknown } | null)?.visviva);
+    }),
+  );
+
+  documents.onDidOpen(({ document }) => {
+    const file = addresses.fileOf(document.uri, document.languageId);
+    addresses.open(file, document.uri);
+    files.set(file, document);
+  });
+
+  // Comes after the opening of a document too.
+  documents.onDidChangeContent(({ document }) => {
+    const open = files.get(document.uri);
+    if (!open) return;
+    service.update(open.file, document.getText());
+    checker.request(open);
+    for (const dependent of files.dependents(open.file)) checker.request(dependent, dependentDelay);
+  });
+
+  documents.onDidClose(({ document }) => {
+    const open = files.get(document.uri);
+    if (!open) return;
+    files.delete(document.uri);
+    addresses.close(open.file);
+    service.close(open.file);
+    checker.close(open);
+    for (const dependent of files.dependents(open.file)) checker.request(dependent, dependentDelay);
+  });
+
+  connection.onDidChangeWatchedFiles(
+    guarded('watched files', undefined, ({ changes }: DidChangeWatchedFilesParams) => {
+      const again = new Set<string>();
+      for (const { uri, type } of changes) {
+        const file = pathOf(uri);
+        if (file === undefined) continue;
+        service.invalidate(file);
+        disk.changed(file);
+        // A new file may be the one that an import or a name was looking for.
+        const affected = type === FileChangeType.Changed ? files.dependents(file) : files.all();
+        for (const open of affected) again.add(open.document.uri);
+      }
+      for (const uri of again) checker.request(files.get(uri)!);
+    }),
+  );
+
+  const budgetFor = (token: CancellationToken): Budget =>
+    new Budget({ milliseconds: settings.timeLimit }, clock, () => token.isCancellationRequested);
+
+  connection.onHover(
+    guarded('hover', null, async ({ textDocument, position }, token) => {
+      const open = files.get(textDocument.uri);
+      if (!open || !settings.enable || !service.handles(open.file)) return null;
+      const hover = await service.hover(open.file, fromPosition(position), budgetFor(token));
+      if (!hover) return null;
+      const formats = capabilities.textDocument?.hover?.contentFormat;
+      const markdown = !formats || formats.includes('markdown');
+      return {
+        contents: markdown
+          ? { kind: 'markdown', value: hover.markdown }
+          : { kind: 'plaintext', value: plainText(hover.markdown) },
+        range: toRange(hover.range),
+      };
+    }),
+  );
+
+  connection.onDocumentSymbol(
+    guarded('document symbols', null, async ({ textDocument }) => {
+      const open = files.get(textDocument.uri);
+      if (!open || !settings.enable || !service.handles(open.file)) return null;
+      const symbols = await service.symbols(open.file);
+      return capabilities.textDocument?.documentSymbol?.hierarchicalDocumentSymbolSupport
+        ? toSymbols(symbols)
+        : toFlatSymbols(symbols, textDocument.uri);
+    }),
+  );
+
+  /** A handler whose failure is logged and answered with `fallback`. */
+  function guarded<P extends unknown[], R>(
+    what: string,
+    fallback: R,
+    handler: (...parameters: P) => R | Promise<R>,
+  ): (...parameters: P) => Promise<R> {
+    return async (...parameters) => {
+      try {
+        return await handler(...parameters);
+      } catch (error) {
+        connection.console.error(`The request for ${what} failed: ${describe(error)}`);
+        return fallback;
+      }
+    };
+  }
+
+  documents.listen(connection);
+  connection.listen();
+}
+
+function foldersOf({ workspaceFolders, rootUri }: InitializeParams): string[] {
+  if (workspaceFolders) return pathsOf(workspaceFolders);
+  return rootUri ? pathsOf([{ uri: rootUri }]) : [];
+}
+
+function pathsOf(folders: readonly { readonly uri: string }[]): string[] {
+  return folders.map((folder) => pathOf(folder.uri)).filter((path) => path !== undefined);
+}
