@@ -170,6 +170,9 @@ export class Graph {
 
   apply(name: FunctionName, args: readonly Expr[]): Expr {
     if (args.some((a) => a.op === 'nan')) return this.nan;
+    if ((name === 'min' || name === 'max') && args.length > 2) {
+      return args.slice(1).reduce((a, b) => this.apply(name, [a, b]), args[0]!);
+    }
     return foldFunction(this, name, args) ?? this.intern(name, args, null);
   }
 

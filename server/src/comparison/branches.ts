@@ -1,0 +1,93 @@
+import type { Expr } from '../expression/node';
+import type { Rational } from '../expression/rational';
+import { reachable } from '../expression/reach';
+import type { Registers } from '../expression/tape';
+import type { Unvisited } from './pair';
+
+/** The conditions that choose values of these expressions. */
+export function conditionsOf(roots: readonly Expr[]): Expr[] {
+  const out = new Set<Expr>();
+  for (const node of reachable(roots)) {
+    // Where one side is "no value" (a thrown error), nothing has to be seen there.
+    if (node.op === 'select' && node.args[1]!.op !== 'nan' && node.args[2]!.op !== 'nan') out.add(node.args[0]!);
+  }
+  return [...out];
+}
+
+/**
+ * Whether a side of a condition is too thin for random states to hit: an equality between reals, or a guard against
+ * dividing by almost nothing. Such a side is not asked for.
+ */
+export function isThin(condition: Expr, side: boolean): boolean {
+  switch (condition.op) {
+    case 'not':
+      return isThin(condition.args[0]!, !side);
+    case 'equal':
+      return side;
+    case 'and':
+      return side ? condition.args.some((c) => isThin(c, true)) : condition.args.every((c) => isThin(c, false));
+    case 'or':
+      return side ? condition.args.every((c) => isThin(c, true)) : condition.args.some((c) => isThin(c, false));
+    case 'less':
+    case 'lessEqual': {
+      const [a, b] = condition.args as [Expr, Expr];
+      if (side && isSize(a) && isTiny(b)) return true;
+      if (!side && isTiny(a) && isSize(b)) return true;
+      return false;
+    }
+    default:
+      return false;
+  }
+}
+
+function isTiny(e: Expr): boolean {
+  return e.op === 'number' && Math.abs((e.data as Rational).toNumber()) <= 1e-3;
+}
+
+/** Never negative: an absolute value, a root, a square, or sums and products of such. */
+function isSize(e: Expr): boolean {
+  if (e.op === 'abs') return true;
+  if (e.op === 'power') {
+    const exponent = e.args[1]!;
+    if (exponent.op !== 'number') return false;
+    const r = exponent.data as Rational;
+    return !r.isInteger || r.numerator % 2n === 0n || isSize(e.args[0]!);
+  }
+  if (e.op === 'sum' || e.op === 'product') {
+    return e.args.every((a) => isSize(a) || (a.op === 'number' && (a.data as Rational).sign >= 0));
+  }
+  return false;
+}
+
+/** Keeps count of which sides of which conditions voting states have taken. */
+export class Visits {
+  private readonly seen = new Map<Expr, [boolean, boolean]>();
+
+  constructor(readonly conditions: readonly Expr[]) {
+    for (const c of conditions) this.seen.set(c, [false, false]);
+  }
+
+  /** True when the state is the first on some side. */
+  note(registers: Registers, sample: number): boolean {
+    let fresh = false;
+    for (const c of this.conditions) {
+      if (registers.error(c, sample) !== 0) continue;
+      const side = registers.value(c, sample) === 1 ? 1 : 0;
+      const seen = this.seen.get(c)!;
+      if (!seen[side]) {
+        seen[side] = true;
+        fresh = true;
+      }
+    }
+    return fresh;
+  }
+
+  get missing(): Unvisited[] {
+    const out: Unvisited[] = [];
+    for (const [condition, [no, yes]] of this.seen) {
+      if (!yes && !isThin(condition, true)) out.push({ condition, side: true });
+      if (!no && !isThin(condition, false)) out.push({ condition, side: false });
+    }
+    return out;
+  }
+}
