@@ -11,13 +11,15 @@ const { fixtures, declarations } = loadFixtures('typescript');
 describe.each(fixtures)('$file', (fixture) => {
   for (const section of fixture.sections) {
     if (section.run.length === 0) {
-      const needed = section.expectations.length === 0 || section.faults.length > 0;
+      const claiming = /\bchecks\b/.test(fixture.text.slice(section.start, section.end));
+      const needed = claiming && (section.expectations.length === 0 || section.faults.length > 0);
       test.skipIf(!needed)(`${section.name} says why it is not run`, () => {
         expect(section.notRun, 'add "//= CALL" or "//= none: why"').toBeTruthy();
       });
       continue;
     }
-    const judge = (): Judge => new Judge(fixture, section, declarations);
+    let made: Judge | undefined;
+    const judge = (): Judge => (made ??= new Judge(fixture, section, declarations));
     test(`${section.name} is correct as it stands`, () => {
       const wrong = new Set(section.expectations.filter((e) => e.verdict === 'differs').map((e) => e.output));
       for (const j of judge().judge(fixture.text)) {

@@ -28,6 +28,7 @@ export interface Section {
   readonly name: string;
   readonly start: number;
   readonly end: number;
+  /** Lines from 1, the last one not included. */
   readonly startLine: number;
   readonly endLine: number;
   readonly expectations: readonly Expectation[];
@@ -87,7 +88,7 @@ function splitSections(file: string, text: string): Draft[] {
       start,
       end,
       startLine: lineOf(start),
-      endLine: lineOf(end),
+      endLine: names[i + 1] ? lineOf(end) : lineOf(end) + 1,
       expectations: [],
       problems: [],
       underlines: [],
