@@ -1,0 +1,46 @@
+import ts from 'typescript';
+import type { ClassNode, Expression, FunctionNode, Pattern, Statement } from '../../program/form';
+import { classNode } from './classes';
+import type { Context, FunctionSyntax, Name } from './context';
+import { expression } from './expressions';
+import { functionNode } from './functions';
+import { binding, target } from './patterns';
+import { branch, statements } from './statements';
+
+/** Ties the converting functions together; see `Context`. */
+export class Converter implements Context {
+  constructor(
+    readonly source: ts.SourceFile,
+    readonly exported: Set<string>,
+    readonly functions = new WeakMap<ts.Node, FunctionNode>(),
+    readonly classes = new WeakMap<ts.Node, ClassNode>(),
+  ) {}
+
+  expression(node: ts.Expression): Expression {
+    return expression(this, node);
+  }
+
+  statements(nodes: readonly ts.Statement[]): Statement[] {
+    return statements(this, nodes);
+  }
+
+  branch(node: ts.Statement): Statement[] {
+    return branch(this, node);
+  }
+
+  binding(node: ts.BindingName): Pattern {
+    return binding(this, node);
+  }
+
+  target(node: ts.Expression): Pattern {
+    return target(this, node);
+  }
+
+  functionNode(node: FunctionSyntax, name?: Name): FunctionNode {
+    return functionNode(this, node, name);
+  }
+
+  classNode(node: ts.ClassLikeDeclaration, name?: Name): ClassNode {
+    return classNode(this, node, name);
+  }
+}

@@ -1,0 +1,72 @@
+import type { Library } from '../../program/library';
+import { CONSTANTS, SCALARS } from './library-scalars';
+
+/**
+ * What the standard library of JavaScript means. Names are looked up by dotted path after the names of the program, so
+ * `const { sin } = Math`, `const M = Math` and `const s = Math.sin` all come back to these entries.
+ */
+export const typescriptLibrary: Library = {
+  scalars: SCALARS,
+  constants: CONSTANTS,
+  intrinsics: new Map([
+    ['Array', 'list-new'],
+    ['Array.from', 'list-from'],
+    ['Array.of', 'list-of'],
+    ['Array.isArray', 'is-list'],
+    ...numericArrays(),
+    ['Object.assign', 'record-assign'],
+    ['Object.keys', 'record-keys'],
+    ['Object.values', 'record-values'],
+    ['Object.entries', 'record-entries'],
+    ['Object.fromEntries', 'record-from-entries'],
+    ['Object.freeze', 'identity'],
+    ['Object.seal', 'identity'],
+    ['Object.preventExtensions', 'identity'],
+    ['structuredClone', 'deep-copy'],
+    ['Boolean', 'to-condition'],
+    ['require', 'require'],
+  ]),
+  methods: new Map([
+    ...listMethods(),
+    ['function.call', 'function-call'],
+    ['function.apply', 'function-apply'],
+    ['function.bind', 'function-bind'],
+    ['scalar.valueOf', 'identity'],
+  ]),
+  modules: new Map(),
+  ignorable: new Set([
+    ...'log info warn error debug trace assert table group groupEnd time timeEnd timeLog count'.split(' ').map((n) => `console.${n}`),
+    'alert',
+    'performance.mark',
+    'performance.measure',
+    'Error.captureStackTrace',
+  ]),
+};
+
+/** `new Float64Array(4)` is four zeros, `new Float64Array(xs)` and `Float64Array.from(xs)` copies. */
+function numericArrays(): [string, string][] {
+  return ['Float64Array', 'Float32Array', 'Float16Array'].flatMap((name): [string, string][] => [
+    [name, 'numbers-new'],
+    [`${name}.from`, 'list-from'],
+    [`${name}.of`, 'list-of'],
+  ]);
+}
+
+function listMethods(): [string, string][] {
+  const plain =
+    'map forEach reduce reduceRight filter slice splice concat push pop shift unshift fill indexOf lastIndexOf includes every ' +
+    'some find findIndex findLast findLastIndex flat flatMap reverse at keys values entries with sort join';
+  const named: [string, string][] = plain.split(' ').map((n) => [`list.${n}`, `list-${kebab(n)}`]);
+  return [
+    ...named,
+    ['list.set', 'list-set-from'],
+    ['list.subarray', 'list-view'],
+    ['list.toReversed', 'list-reversed'],
+    ['list.toSorted', 'list-sorted'],
+    ['list.copyWithin', 'list-copy-within'],
+  ];
+}
+
+function kebab(name: string): string {
+  return name.replace(/[A-Z]/g, (c) => `-${c.toLowerCase()}`);
+}
