@@ -1,0 +1,417 @@
+import { Rational } from '../expression/rational';
+import { cover, type Span } from '../text/span';
+import type { Cursor } from './cursor';
+import { parsePhrase } from './phrases';
+import { parseFamilies } from './family';
+import type { BinaryOperator, Formula } from './tree';
+
+/** Brackets, signs and powers may nest this deep; the trees may grow no higher than this, so that walking them is safe. */
+const MOST_DEPTH = 1000;
+const MOST_HEIGHT = 1500;
+
+export const LEVEL = { or: 1, and: 2, not: 3, comparison: 4, sum: 5, product: 6, sign: 7, power: 8, postfix: 9 } as const;
+
+const FUNCTIONS = new Set(
+  ('sin cos tan asin acos atan atan2 sinh cosh tanh exp log sqrt abs sign min max dot cross norm transpose det sum floor').split(' '),
+);
+
+interface Infix {
+  readonly op: BinaryOperator;
+  readonly level: number;
+}
+
+const INFIX: Readonly<Record<string, Infix>> = {
+  '||': { op: 'or', level: LEVEL.or },
+  or: { op: 'or', level: LEVEL.or },
+  '&&': { op: 'and', level: LEVEL.and },
+  and: { op: 'and', level: LEVEL.and },
+  '=': { op: '=', level: LEVEL.comparison },
+  '==': { op: '=', level: LEVEL.comparison },
+  '!=': { op: '!=', level: LEVEL.comparison },
+  '<': { op: '<', level: LEVEL.comparison },
+  '<=': { op: '<=', level: LEVEL.comparison },
+  '>': { op: '>', level: LEVEL.comparison },
+  '>=': { op: '>=', level: LEVEL.comparison },
+  '+': { op: '+', level: LEVEL.sum },
+  '-': { op: '-', level: LEVEL.sum },
+  '*': { op: '*', level: LEVEL.product },
+  '/': { op: '/', level: LEVEL.product },
+  '^': { op: '^', level: LEVEL.power },
+};
+
+const heights = new WeakMap<Formula, number>();
+
+/** Registers a node above its parts; where the tree grows too high, it is cut off with an error. */
+export function grow(c: Cursor, node: Formula, ...parts: readonly Formula[]): Formula {
+  let height = 1;
+  for (const part of parts) height = Math.max(height, 1 + (heights.get(part) ?? 1));
+  if (height > MOST_HEIGHT) {
+    if (!c.tooDeep) c.error(`this formula has more than ${MOST_HEIGHT} operations in a row: split it with \`where\``, node.span);
+    c.tooDeep = true;
+    return { kind: 'hole', span: node.span };
+  }
+  heights.set(node, height);
+  return node;
+}
+
+/** Reads a formula of this level or tighter. Where there is none it says so, and a hole stands in its place. */
+export function parseExpression(c: Cursor, level: number = LEVEL.or): Formula {
+  let left = parsePrefix(c);
+  for (;;) {
+    c.skipRemark();
+    const infix = infixAt(c);
+    if (infix) {
+      if (infix.level < level) return left;
+      const token = c.take();
+      if (c.depth >= MOST_DEPTH) return overflow(c);
+      c.depth++;
+      // A power is right-associative, and its exponent may have a sign of its own.
+      const right = parseOperand(c, infix.op === '^' ? LEVEL.sign : infix.level + 1, token.text);
+      c.depth--;
+      left = binary(c, infix.op, left, right);
+      continue;
+    }
+    if (level > LEVEL.product || !juxtaposed(c)) return left;
+    const token = c.peek();
+    const words = c.text.slice(left.span.start, left.span.end);
+    c.error(
+      left.kind === 'binary' && left.op === '^' && isFunctionName(left.left) && token.text === '('
+        ? `a power of a function is written after its argument: \`${words.split(/[\^*²³]/)[0]}(...)^n\``
+        : `an operator is missing before ${c.describeNext()}: a product is written \`${shorten(words)}*${shorten(c.text.slice(token.span.start, token.span.end))}\`; a remark begins after two spaces`,
+      token.span,
+    );
+    left = binary(c, '*', left, parseExpression(c, LEVEL.sign));
+  }
+}
+
+function parseOperand(c: Cursor, level: number, after: string): Formula {
+  if (startsOperand(c)) return parseExpression(c, level);
+  return hole(c, `a formula is expected after \`${after}\`, before ${c.describeNext()}`);
+}
+
+/** A hole at the cursor, with its error. */
+export function hole(c: Cursor, message: string): Formula {
+  const at = c.peek();
+  c.error(message, at.kind === 'end' ? c.lastSpan : at.span);
+  const place = at.kind === 'end' ? c.lastSpan.end : at.span.start;
+  return { kind: 'hole', span: { start: place, end: place } };
+}
+
+function binary(c: Cursor, op: BinaryOperator, left: Formula, right: Formula): Formula {
+  const make = (by: BinaryOperator, a: Formula, b: Formula): Formula =>
+    grow(c, { kind: 'binary', op: by, left: a, right: b, span: cover(a.span, b.span) }, a, b);
+  // `a < b < c` means a < b and b < c.
+  if (isOrder(op) && left.kind === 'binary' && isOrder(left.op)) return make('and', left, make(op, left.right, right));
+  return make(op, left, right);
+}
+
+function isOrder(op: BinaryOperator): boolean {
+  return op === '<' || op === '<=' || op === '>' || op === '>=';
+}
+
+function infixAt(c: Cursor): Infix | undefined {
+  const token = c.peek();
+  if (token.kind === 'name') {
+    if (token.text !== 'and' && token.text !== 'or') return undefined;
+    if (c.mode.stops.has(token.text) || c.mode.logic === 'never') return undefined;
+    return INFIX[token.text];
+  }
+  return token.kind === 'operator' && Object.hasOwn(INFIX, token.text) ? INFIX[token.text] : undefined;
+}
+
+/** True where a second operand follows with no operator between, on the same line. */
+function juxtaposed(c: Cursor): boolean {
+  const token = c.peek();
+  if (token.newline) return false;
+  if (token.kind === 'name') return !c.mode.stops.has(token.text) && token.text !== 'and' && token.text !== 'or' && token.text !== 'in';
+  return token.kind === 'number' || token.kind === 'string' || c.is('(');
+}
+
+function startsOperand(c: Cursor): boolean {
+  const token = c.peek();
+  switch (token.kind) {
+    case 'end':
+      return false;
+    case 'operator':
+      return ['(', '[', '-', '+', '!', '~'].includes(token.text) || (c.mode.code && ['*', '&'].includes(token.text));
+    case 'name':
+      return !c.mode.stops.has(token.text) && token.text !== 'and' && token.text !== 'or';
+    default:
+      return true;
+  }
+}
+
+function parsePrefix(c: Cursor): Formula {
+  // The address and pointer marks of C carry nothing that a claim needs.
+  while (c.mode.code && (c.is('*') || c.is('&'))) c.take();
+  const token = c.peek();
+  const sign = token.kind === 'operator' && (token.text === '-' || token.text === '+') ? token.text : undefined;
+  const negated = (token.kind === 'operator' && (token.text === '!' || token.text === '~')) || c.isWord('not');
+  if (!sign && !negated) return parsePostfix(c);
+  c.take();
+  if (c.depth >= MOST_DEPTH) return overflow(c);
+  c.depth++;
+  const operand = parseOperand(c, sign ? LEVEL.sign : LEVEL.comparison, token.text);
+  c.depth--;
+  const op = sign ?? 'not';
+  return grow(c, { kind: 'unary', op, operand, span: cover(token.span, operand.span) }, operand);
+}
+
+function overflow(c: Cursor): Formula {
+  const place = c.peek().span;
+  if (!c.tooDeep) c.error(`brackets and signs nest deeper than ${MOST_DEPTH}`, place);
+  c.tooDeep = true;
+  // Nothing sensible can follow: give up the rest of the statement.
+  while (!c.atEnd) c.take();
+  return { kind: 'hole', span: place };
+}
+
+function parsePostfix(c: Cursor): Formula {
+  const phrase = parsePhrase(c);
+  let node = phrase ?? parsePrimary(c);
+  for (;;) {
+    const token = c.peek();
+    const touching = !token.newline && token.gap === 0;
+    if (token.kind === 'prime' && touching) {
+      c.take();
+      if (token.problem) c.error(token.problem, token.span);
+      node =
+        node.kind === 'prime'
+          ? grow(c, { ...node, order: node.order + token.order, span: cover(node.span, token.span) }, node.operand)
+          : grow(c, { kind: 'prime', operand: node, order: token.order, span: cover(node.span, token.span) }, node);
+    } else if (token.kind === 'superscript' && touching) {
+      c.take();
+      const right: Formula = { kind: 'number', value: token.value ?? Rational.ONE, text: token.text, span: token.span };
+      node = binary(c, '^', node, right);
+    } else if (c.is('(') && isCallable(node) && (touching || (token.gap === 1 && !token.newline && isFunctionName(node)))) {
+      node = parseCall(c, node);
+    } else if (c.is('[') && (touching || (token.gap === 1 && !token.newline)) && isIndexable(node)) {
+      if (!touching && node.kind !== 'quantity') {
+        c.error('an index stands directly after its name, without a space; a unit belongs to `coordinates`, `parameters` and `inputs`', token.span);
+      }
+      node = parseIndex(c, node);
+    } else if (touching && token.kind === 'operator' && ['.', '->', '::', '?.'].includes(token.text) && isIndexable(node)) {
+      c.take();
+      const name = c.peek();
+      if (name.kind === 'name' && name.gap === 0 && !name.newline) {
+        c.take();
+        node = grow(c, { kind: 'member', object: node, name: name.raw ?? name.text, span: cover(node.span, name.span) }, node);
+      } else {
+        c.error(`the name of a field is expected after \`${token.text}\``, token.span);
+        return grow(c, { kind: 'member', object: node, name: '', span: cover(node.span, token.span) }, node);
+      }
+    } else return node;
+  }
+}
+
+function isCallable(node: Formula): boolean {
+  return node.kind === 'name' || node.kind === 'member' || node.kind === 'call' || node.kind === 'index' || node.kind === 'hole';
+}
+
+function isFunctionName(node: Formula): boolean {
+  return node.kind === 'name' && FUNCTIONS.has(node.name);
+}
+
+function isIndexable(node: Formula): boolean {
+  return node.kind !== 'number' && node.kind !== 'string';
+}
+
+function parsePrimary(c: Cursor): Formula {
+  const token = c.peek();
+  switch (token.kind) {
+    case 'number':
+      c.take();
+      return { kind: 'number', value: token.value ?? Rational.ZERO, text: token.text, span: token.span };
+    case 'string':
+      c.take();
+      return { kind: 'string', value: token.text, span: token.span };
+    case 'name': {
+      if (!startsOperand(c)) break;
+      c.take();
+      if (c.mode.code) return { kind: 'name', name: token.raw ?? token.text, span: token.span };
+      const name: Formula = { kind: 'name', name: token.text, span: token.span };
+      return token.order > 0 ? grow(c, { kind: 'prime', operand: name, order: token.order, span: token.span }, name) : name;
+    }
+    case 'operator':
+      if (token.text === '(' || token.text === '[') return parseBracket(c);
+      break;
+    case 'bad':
+    case 'prime':
+    case 'superscript':
+      c.take();
+      c.error(token.problem ?? `\`${token.text}\` stands after nothing that it could belong to`, token.span);
+      return { kind: 'hole', span: token.span };
+    default:
+  }
+  return hole(c, `a formula is expected here, but there is ${c.describeNext()}`);
+}
+
+/** Brackets set the statement's own words aside: inside them only their own punctuation ends a formula. */
+function inside<T>(c: Cursor, stops: readonly string[], read: () => T): T {
+  const outer = c.mode;
+  c.mode = { ...outer, stops: new Set(stops), logic: outer.logic === 'never' ? 'close' : outer.logic };
+  c.depth++;
+  const result = read();
+  c.depth--;
+  c.mode = outer;
+  return result;
+}
+
+function parseBracket(c: Cursor): Formula {
+  if (c.depth >= MOST_DEPTH) return overflow(c);
+  const open = c.take();
+  const close = open.text === '(' ? ')' : ']';
+  const { items, rows, comma } = inside(c, [], () => parseItems(c, close, open.span));
+  const span = c.from(open.span.start);
+  if (close === ']') {
+    if (rows.length < 2) return grow(c, { kind: 'list', items, span }, ...items);
+    const lists = rows.map((row) => grow(c, { kind: 'list', items: row, span: row.length ? cover(row[0]!.span, row.at(-1)!.span) : span }, ...row));
+    return grow(c, { kind: 'list', items: lists, span }, ...lists);
+  }
+  if (rows.length > 1) c.error('rows are separated by `;` only in square brackets', span);
+  if (items.length === 1 && !comma) {
+    // The bracket belongs to the place of what it encloses, but the formula itself stays bare.
+    const only = items[0]!;
+    return grow(c, { ...only, span } as Formula, ...childrenOf(only));
+  }
+  if (items.length === 0) {
+    c.error('a formula is expected between these brackets', span);
+    return { kind: 'hole', span };
+  }
+  return grow(c, { kind: 'tuple', items, span }, ...items);
+}
+
+interface Items {
+  readonly items: Formula[];
+  readonly rows: Formula[][];
+  readonly comma: boolean;
+}
+
+/** Formulas between commas up to a closing bracket, which is taken. */
+function parseItems(c: Cursor, close: string, open: Span, slices = false): Items {
+  const rows: Formula[][] = [[]];
+  let comma = false;
+  for (;;) {
+    c.skipRemark();
+    if (c.eat(close)) break;
+    const token = c.peek();
+    if (token.kind === 'end') {
+      c.error(`this bracket is not closed: \`${close}\` is missing`, open);
+      break;
+    }
+    if (token.kind === 'operator' && (token.text === ')' || token.text === ']' || token.text === '}')) {
+      c.error(`\`${close}\` is expected here, not \`${token.text}\``, token.span);
+      c.take();
+      break;
+    }
+    if (c.is(',') || c.is(';')) {
+      hole(c, `a formula is expected before \`${token.text}\``);
+      rows.at(-1)!.push({ kind: 'hole', span: { start: token.span.start, end: token.span.start } });
+    } else {
+      rows.at(-1)!.push(slices ? parseIndexItem(c) : parseExpression(c));
+      c.skipRemark();
+    }
+    if (c.eat(',')) comma = true;
+    else if (c.eat(';')) rows.push([]);
+    else if (!c.is(close) && !c.atEnd && !c.is(')') && !c.is(']') && !c.is('}')) {
+      const odd = c.take();
+      c.error(odd.problem ?? `a comma or \`${close}\` is expected before \`${shorten(c.text.slice(odd.span.start, odd.span.end))}\``, odd.span);
+    }
+  }
+  if (rows.length > 1 && rows.at(-1)!.length === 0) rows.pop();
+  return { items: rows.flat(), rows, comma };
+}
+
+function parseIndexItem(c: Cursor): Formula {
+  const start = c.peek().span.start;
+  const from = c.is(':') ? undefined : parseExpression(c);
+  if (!c.is(':')) return from!;
+  c.take();
+  const to = c.is(']') || c.is(',') || c.is(')') || c.atEnd ? undefined : parseExpression(c);
+  if (c.is(':')) {
+    c.error('a slice has no step here: write its slots one by one', c.peek().span);
+    c.take();
+    if (startsOperand(c)) parseExpression(c);
+  }
+  const parts = [from, to].filter((x) => x !== undefined);
+  return grow(c, { kind: 'slice', ...(from && { from }), ...(to && { to }), span: c.from(start) }, ...parts);
+}
+
+function parseIndex(c: Cursor, object: Formula): Formula {
+  if (c.depth >= MOST_DEPTH) return overflow(c);
+  const open = c.take();
+  const { items } = inside(c, [], () => parseItems(c, ']', open.span, true));
+  const span = c.from(object.span.start);
+  if (items.length === 0) c.error('an index is expected between these brackets', { start: open.span.start, end: span.end });
+  if (object.kind === 'quantity' && object.args.length === 0) return grow(c, { ...object, args: items, span }, ...items);
+  return grow(c, { kind: 'index', object, indices: items, span }, object, ...items);
+}
+
+function parseCall(c: Cursor, callee: Formula): Formula {
+  if (c.depth >= MOST_DEPTH) return overflow(c);
+  const open = c.take();
+  if (callee.kind === 'name' && callee.name === 'sum' && !c.mode.code) {
+    const sum = inside(c, ['over', 'for'], () => parseSum(c, callee.span, open.span));
+    if (sum.kind === 'sum') return sum;
+    return grow(c, { kind: 'call', callee, args: sum.args, span: c.from(callee.span.start) }, callee, ...sum.args);
+  }
+  // `y(1:2)` is MATLAB's slice.
+  const { items } = inside(c, [], () => parseItems(c, ')', open.span, c.mode.code));
+  return grow(c, { kind: 'call', callee, args: items, span: c.from(callee.span.start) }, callee, ...items);
+}
+
+function parseSum(c: Cursor, word: Span, open: Span): (Formula & { kind: 'sum' }) | { kind: 'args'; args: Formula[] } {
+  if (c.is(')')) {
+    c.error('a sum is written `sum(m[i]*x[i] over i in 1..n)`', cover(word, c.take().span));
+    return { kind: 'args', args: [] };
+  }
+  const body = parseExpression(c);
+  if (c.isWord('over') || c.isWord('for')) {
+    const over = parseFamilies(c);
+    if (!c.eat(')')) {
+      if (c.atEnd) c.error('this bracket is not closed: `)` is missing', open);
+      else {
+        c.error(`\`)\` is expected after the ranges of a sum, not ${c.describeNext()}`, c.peek().span);
+        while (!c.atEnd && !c.eat(')')) c.take();
+      }
+    }
+    const node = { kind: 'sum' as const, body, over, span: c.from(word.start) };
+    grow(c, node, body);
+    return node;
+  }
+  c.eat(',');
+  const rest = parseItems(c, ')', open);
+  return { kind: 'args', args: [body, ...rest.items] };
+}
+
+export function childrenOf(f: Formula): readonly Formula[] {
+  switch (f.kind) {
+    case 'prime':
+    case 'unary':
+      return [f.operand];
+    case 'binary':
+      return [f.left, f.right];
+    case 'call':
+      return [f.callee, ...f.args];
+    case 'member':
+      return [f.object];
+    case 'index':
+      return [f.object, ...f.indices];
+    case 'slice':
+      return [f.from, f.to].filter((x) => x !== undefined);
+    case 'tuple':
+    case 'list':
+      return f.items;
+    case 'sum':
+      return [f.body, ...f.over.flatMap((o) => [o.from, o.to])];
+    case 'quantity':
+      return f.args;
+    default:
+      return [];
+  }
+}
+
+function shorten(text: string): string {
+  const line = text.replace(/\s+/g, ' ');
+  return line.length <= 24 ? line : `...${line.slice(-20)}`;
+}
