@@ -5,6 +5,7 @@ import type { Block, CommentText, Formula, NotationError } from './tree';
 
 export { findBlocks } from './scan';
 export { printFormula, printFamilies } from './print';
+export { Dimension, DIMENSIONS, parseUnit, UNIT_NAMES } from './units';
 export { STATEMENT_WORDS, type StatementWord } from './words';
 
 /** The declarations of all comments of a document, in order. */

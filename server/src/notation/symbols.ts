@@ -1,5 +1,6 @@
 import type { Cursor } from './cursor';
 import { LEVEL, parseExpression } from './formula';
+import { parseUnit } from './units';
 import type { Bound, Formula, SymbolItem, UnitText } from './tree';
 
 interface Draft {
@@ -127,7 +128,10 @@ function parseUnitText(c: Cursor): UnitText {
   }
   const end = open.end + close + 1;
   c.seek(end);
-  return { text: line.slice(0, close).trim(), span: { start: open.start, end } };
+  const unit = { text: line.slice(0, close).trim(), span: { start: open.start, end } };
+  const read = parseUnit(unit.text);
+  if ('error' in read) c.error(read.error, unit.span);
+  return unit;
 }
 
 /** `[a, b]`, `(a, b]`, `[a, b)`, `(a, b)`: both ends. */
