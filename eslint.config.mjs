@@ -16,7 +16,11 @@ export default tseslint.config(
     extends: [...tseslint.configs.recommended],
     languageOptions: { parserOptions: { projectService: true, tsconfigRootDir: import.meta.dirname } },
     plugins: { 'import-x': importX, visviva },
-    settings: { 'import-x/resolver-next': [createNodeResolver({ extensions: ['.ts', '.tsx', '.js', '.json'] })] },
+    settings: {
+      'import-x/extensions': ['.ts', '.tsx'],
+      'import-x/parsers': { '@typescript-eslint/parser': ['.ts', '.tsx'] },
+      'import-x/resolver-next': [createNodeResolver({ extensions: ['.ts', '.tsx', '.js', '.json'] })],
+    },
     rules: {
       'visviva/import-directions': 'error',
       'import-x/no-cycle': ['error', { ignoreExternal: true }],

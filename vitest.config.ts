@@ -16,7 +16,7 @@ export default defineConfig({
         test: {
           name: 'built',
           include: ['tests/{lsp,cli}/**/*.test.ts'],
-          globalSetup: ['tests/lsp/build-first.ts'],
+          globalSetup: process.env['NOBUILD'] ? [] : ['tests/lsp/build-first.ts'],
         },
       },
       {

@@ -1,10 +1,7 @@
 /** The lint rule that holds the import directions of `directions.mjs`. */
 import { isBuiltin } from 'node:module';
-import { dirname, posix, relative, sep } from 'node:path';
-import { fileURLToPath } from 'node:url';
+import { posix, sep } from 'node:path';
 import { directions, folderOf } from './directions.mjs';
-
-const root = fileURLToPath(new URL('../..', import.meta.url));
 
 /** @type {import('eslint').Rule.RuleModule} */
 export const importDirections = {
@@ -21,8 +18,8 @@ export const importDirections = {
   },
 
   create(context) {
-    const file = toSlashes(relative(root, context.filename));
-    if (!/^(server|client|shared)\/src\//.test(file)) return {};
+    const file = /^(?:.*\/)?((?:server|client|shared)\/src\/.*)$/.exec(context.filename.split(sep).join('/'))?.[1];
+    if (file === undefined) return {};
     const here = Object.keys(directions).find((folder) => file.startsWith(`${folder}/`));
     const rule = here === undefined ? undefined : directions[here];
 
@@ -51,13 +48,9 @@ function judge(name, file, here, rule) {
   }
   const there = name.startsWith('@visviva/')
     ? name.replace(/^@visviva\/(\w+)/, '$1/src')
-    : posix.normalize(posix.join(toSlashes(dirname(file)), name));
+    : posix.join(posix.dirname(file), name);
   if (there === 'package.json' && here === 'shared/src') return undefined;
   const allowed = [here, ...rule.from.map(folderOf)];
   if (allowed.some((folder) => there === folder || there.startsWith(`${folder}/`))) return undefined;
   return { messageId: 'direction', data: { here, there } };
-}
-
-function toSlashes(path) {
-  return path.split(sep).join('/');
 }

@@ -1,0 +1,3 @@
+import type { Linter } from 'eslint';
+declare const config: Linter.Config[];
+export default config;

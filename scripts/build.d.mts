@@ -1,0 +1,1 @@
+export declare function buildAll(options?: { production?: boolean; outdir?: string }): Promise<void>;

@@ -1,0 +1,2 @@
+import type { Rule } from 'eslint';
+export declare const importDirections: Rule.RuleModule;

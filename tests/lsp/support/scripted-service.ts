@@ -1,0 +1,96 @@
+import type { ReportClaim, ReportRange } from '@visviva/shared';
+import type { DocumentSymbol, FileResult, Files, Hover, Service } from '../../../server/src/service/api';
+import type { Budget } from '../../../server/src/text/budget';
+
+/**
+ * A service that finds what the text tells it to, so that the wiring can be tested by itself. Words in the text: `sign`
+ * is a differing claim's finding at that word, `unread` an unread one, `throw` makes the check fail, `slow` makes it take
+ * 60 ms, `needs:FILE` makes the result depend on another file.
+ */
+export class ScriptedService implements Service {
+  readonly texts = new Map<string, string>();
+  readonly checked: string[] = [];
+  readonly stopped: string[] = [];
+
+  constructor(readonly files: Files) {}
+
+  update(file: string, text: string): void {
+    this.texts.set(file, text);
+  }
+  close(file: string): void {
+    this.texts.delete(file);
+  }
+  invalidate(): void {}
+  handles(file: string): boolean {
+    return /\.(ts|js|visviva)$/.test(file);
+  }
+  async prepare(): Promise<void> {}
+
+  async check(file: string, budget: Budget): Promise<FileResult> {
+    const text = this.textOf(file);
+    this.checked.push(text);
+    if (text.includes('slow')) {
+      for (let i = 0; i < 6; i++) {
+        await new Promise((done) => setTimeout(done, 10));
+        if (!budget.look()) {
+          this.stopped.push(text);
+          break;
+        }
+      }
+    }
+    if (text.includes('throw')) throw new Error('the scripted failure');
+    const dependsOn = [...text.matchAll(/needs:(\S+)/g)].map((match) => match[1]!);
+    const seen = [text, ...dependsOn.map((other) => this.textOf(other))].join('\n');
+    return {
+      file,
+      language: 'typescript',
+      systems: [],
+      claims: [
+        ...[...seen.matchAll(/sign/g)].map((match) => claim(file, 'differs', rangeAt(seen, match.index, 4))),
+        ...[...seen.matchAll(/unread/g)].map((match) => claim(file, 'unread', rangeAt(seen, match.index, 6))),
+      ],
+      problems: [],
+      dependsOn,
+    };
+  }
+
+  async hover(file: string): Promise<Hover | undefined> {
+    if (this.textOf(file).includes('throw')) throw new Error('the scripted failure');
+    return { markdown: '**crane** has `th\'\'`', range: rangeAt(this.textOf(file), 0, 3) };
+  }
+
+  async symbols(file: string): Promise<readonly DocumentSymbol[]> {
+    const range = rangeAt(this.textOf(file), 0, 3);
+    const leaf: DocumentSymbol = { name: 'th', detail: 'rad', kind: 'coordinate', range, nameRange: range, children: [] };
+    return [{ name: 'crane', detail: 'system', kind: 'system', range, nameRange: range, children: [leaf] }];
+  }
+
+  async derive(): Promise<readonly []> {
+    return [];
+  }
+
+  private textOf(file: string): string {
+    return this.texts.get(file) ?? this.files.read(file) ?? '';
+  }
+}
+
+function claim(file: string, verdict: 'differs' | 'unread', range: ReportRange): ReportClaim {
+  const code = verdict === 'differs' ? 'sign' : 'unread';
+  return {
+    file,
+    language: 'typescript',
+    system: 'crane',
+    function: 'rates',
+    output: 'return[3]',
+    quantity: "th''",
+    line: 1,
+    verdict,
+    findings: [{ code, message: `scripted ${code}`, range }],
+  };
+}
+
+function rangeAt(text: string, offset: number, length: number): ReportRange {
+  const before = text.slice(0, offset).split('\n');
+  const position = { line: before.length, column: before.at(-1)!.length + 1 };
+  return { start: position, end: { line: position.line, column: position.column + length } };
+}
