@@ -34,7 +34,8 @@ function member(c: Context, node: ts.ClassElement): Member | undefined {
     if (hasModifier(node, K.AbstractKeyword) || hasModifier(node, K.DeclareKeyword)) return undefined;
     const label = { text: memberName(c, node.name), span: spanOf(c, node.name) };
     const value = node.initializer ? { value: valueNamed(c, node.initializer, label) } : {};
-    return { kind: 'field', name: label.text, isStatic, ...value, span };
+    const constant = hasModifier(node, K.ReadonlyKeyword) ? { isConstant: true } : {};
+    return { kind: 'field', name: label.text, isStatic, ...constant, ...value, span };
   }
   if (ts.isMethodDeclaration(node) || ts.isGetAccessorDeclaration(node) || ts.isSetAccessorDeclaration(node)) {
     if (!node.body) return undefined;
