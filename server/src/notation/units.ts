@@ -38,6 +38,10 @@ export class Dimension {
     return this.exponents.every((e, i) => e.equals(o.exponents[i]!));
   }
 
+  get hasTime(): boolean {
+    return !this.exponents[BASES.indexOf('s')]!.isZero;
+  }
+
   get isNone(): boolean {
     return this.exponents.every((e) => e.isZero);
   }
