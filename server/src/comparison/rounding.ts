@@ -62,7 +62,8 @@ function exactMeanings(r: Rational): Meaning[] {
   if (digits === undefined || digits < 2 || r.isZero) return [];
   const x = r.toNumber();
   const lastPlace = 10 ** (Math.floor(Math.log10(Math.abs(x))) + 1 - digits);
-  const fits = (y: number): boolean => Math.abs(x - y) <= (digits < 3 ? 0.6 : 1.2) * lastPlace;
+  // Rounded or cut off at its last digit.
+  const fits = (y: number): boolean => Math.abs(x - y) <= (digits < 3 ? 0.6 : 1) * lastPlace;
   const out: Meaning[] = [];
   /** Adds the multiple of `base` with the smallest denominator that fits. */
   const multiples = (base: number, name: string, largest: number, build: (graph: Graph) => Expr): void => {
@@ -70,7 +71,9 @@ function exactMeanings(r: Rational): Meaning[] {
       const p = Math.round((x / base) * q);
       if (p === 0 || Math.abs(p) > 400 || !fits((p / q) * base)) continue;
       const factor = Rational.of(p, q);
-      if (factor.equals(r)) return;
+      // A decimal that could have been typed in full is not what another one stands for.
+      if (name === '' && significantDigits(factor) !== undefined) return;
+      if (name === '' && factor.isInteger) return;
       out.push({
         text: multipleText(factor, name),
         build: (graph) => graph.multiply(graph.number(factor), build(graph)),

@@ -6,6 +6,11 @@ export interface LanguageCore {
   /** Never throws; syntax errors are in the program. Spans are UTF-16 offsets into `text`. */
   parse(file: string, text: string): Program;
   readonly library: Library;
+  /**
+   * The file that an import's text means, seen from the file it stands in; undefined for anything outside the project.
+   * Absent where the language has no imports.
+   */
+  resolveImport?(from: string, importer: string, files: { read(file: string): string | undefined }): string | undefined;
 }
 
 /** An entry of the list of languages: light, so that it can be at hand without the parser. */

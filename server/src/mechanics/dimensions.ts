@@ -95,7 +95,7 @@ class Check implements Environment {
       if (s.kind === 'point' && dimensionIs(dimensionOf(s.mass, this), DIMENSIONS.mass)) return DIMENSIONS.energy;
       if (s.kind === 'body' && s.mass && dimensionIs(dimensionOf(s.mass, this), DIMENSIONS.mass)) return DIMENSIONS.energy;
       if (s.kind !== 'energy' || s.which === 'D') continue;
-      const dim = dimensionOf(s.value, this);
+      const dim = dimensionOf(s.value, this, DIMENSIONS.energy);
       if (dim.kind !== 'is') {
         // With one of them unknown nothing is known about the scale of the others.
         if (dim.kind === 'unknown') whole = true;
@@ -120,24 +120,24 @@ class Check implements Environment {
         return;
       case 'energy':
         return s.which === 'D'
-          ? this.expect(s.value, this.energy.divide(DIMENSIONS.time), 'D is half the power lost, in')
-          : this.expect(s.value, this.energy, `${s.which} is an energy, in`);
+          ? this.expect(s.value, this.energy.divide(DIMENSIONS.time), 'D is half the power lost,')
+          : this.expect(s.value, this.energy, `${s.which} is an energy,`);
       case 'generalized-force':
-        return this.perCoordinate(s.value, s.coordinate, `Q[${quote(s.coordinate)}] is energy per ${quote(s.coordinate)}, in`);
+        return this.perCoordinate(s.value, s.coordinate, `Q[${quote(s.coordinate)}] is energy per ${quote(s.coordinate)},`);
       case 'torque':
-        return this.perCoordinate(s.value, s.on, `a torque on ${quote(s.on)} is energy per ${quote(s.on)}, in`);
+        return this.perCoordinate(s.value, s.on, `a torque on ${quote(s.on)} is energy per ${quote(s.on)},`);
       case 'force':
         return this.force(s);
       case 'constraint':
         agree([s.left, s.right], this, 'compared with');
         return;
       case 'point':
-        this.expectUnlessPlain(s.mass, DIMENSIONS.mass, 'a mass is in');
+        this.expectUnlessPlain(s.mass, DIMENSIONS.mass, 'a mass is');
         return this.position(s.at);
       case 'body':
         return this.body(s);
       case 'gravity':
-        return this.expectUnlessPlain(s.value, DIMENSIONS.acceleration, 'gravity is an acceleration, in');
+        return this.expectUnlessPlain(s.value, DIMENSIONS.acceleration, 'gravity is an acceleration,');
       case 'spring':
       case 'damper':
         return this.link(s);
@@ -175,7 +175,7 @@ class Check implements Environment {
   private compare(own: Dim, name: string, value: Formula): void {
     const dim = dimensionOf(value, this);
     if (isNumeric(value) || dim.kind !== 'is' || own.kind !== 'is' || own.dimension.equals(dim.dimension)) return;
-    this.report(`\`${quote(value)}\` is in ${dim.dimension.describe()}, but \`${name}\` in ${own.dimension.describe()}`, value.span);
+    this.report(`\`${quote(value)}\` is ${dim.dimension.describe()}, but \`${name}\` ${own.dimension.describe()}`, value.span);
   }
 
   /** Reports where a formula, or a component of it, is known and has another dimension. */
@@ -195,7 +195,7 @@ class Check implements Environment {
       return;
     }
     if (dim.kind !== 'is' || dim.dimension.equals(expected) || (orPlain && dim.dimension.isNone)) return;
-    this.report(`\`${quote(f)}\` is in ${dim.dimension.describe()}, but ${why} ${expected.describe()}`, f.span);
+    this.report(`\`${quote(f)}\` is ${dim.dimension.describe()}, but ${why} ${expected.describe()}`, f.span);
   }
 
   private perCoordinate(value: Formula, coordinate: Formula, why: string): void {
@@ -207,7 +207,7 @@ class Check implements Environment {
   private force(s: Of<'force'>): void {
     const place = uniform(dimensionOf(s.at, this));
     this.position(s.at);
-    if (place.kind === 'is') this.expect(s.value, this.energy.divide(place.dimension), 'a force here is in');
+    if (place.kind === 'is') this.expect(s.value, this.energy.divide(place.dimension), 'a force here is');
     else dimensionOf(s.value, this);
   }
 
@@ -215,7 +215,12 @@ class Check implements Environment {
   private position(f: Formula): void {
     const dim = dimensionOf(f, this);
     if (dim.kind !== 'vector' || (f.kind !== 'tuple' && f.kind !== 'list')) {
-      if (dim.kind === 'vector') this.compareTo(dim, f, DIMENSIONS.length, 'a position is in', true);
+      if (dim.kind !== 'vector') return;
+      const parts = dim.items.flatMap((d) => (d.kind === 'is' ? [d.dimension] : []));
+      const odd = parts.find((d) => !d.equals(DIMENSIONS.length));
+      if (odd && (!odd.isNone || parts.some((d) => !d.isNone))) {
+        this.report(`a component of the position \`${quote(f)}\` is ${odd.describe()}, but a position is in m`, f.span);
+      }
       return;
     }
     const parts = dim.items.flatMap((d, i) => (d.kind === 'is' ? [{ part: f.items[i]!, dimension: d.dimension }] : []));
@@ -223,20 +228,20 @@ class Check implements Environment {
     for (const { part, dimension } of parts) {
       if (dimension.equals(right!.dimension)) {
         if (!dimension.isNone && !dimension.equals(DIMENSIONS.length)) {
-          this.report(`\`${quote(part)}\` is in ${dimension.describe()}, but a position is in m`, part.span);
+          this.report(`\`${quote(part)}\` is ${dimension.describe()}, but a position is m`, part.span);
         }
         continue;
       }
-      this.report(`\`${quote(part)}\` is in ${dimension.describe()}, but the component \`${quote(right!.part)}\` of this position in ${right!.dimension.describe()}`, part.span);
+      this.report(`\`${quote(part)}\` is ${dimension.describe()}, but the component \`${quote(right!.part)}\` of this position ${right!.dimension.describe()}`, part.span);
     }
   }
 
   private body(s: Of<'body'>): void {
-    if (s.mass) this.expectUnlessPlain(s.mass, DIMENSIONS.mass, 'a mass is in');
-    if (s.inertia) this.expectUnlessPlain(s.inertia, DIMENSIONS.inertia, 'a moment of inertia is in');
+    if (s.mass) this.expectUnlessPlain(s.mass, DIMENSIONS.mass, 'a mass is');
+    if (s.inertia) this.expectUnlessPlain(s.inertia, DIMENSIONS.inertia, 'a moment of inertia is');
     if (s.centre) this.position(s.centre);
-    if (s.angle) this.expect(s.angle, DIMENSIONS.none, 'an angle has');
-    if (s.rotation) this.expect(s.rotation, DIMENSIONS.none, 'a rotation matrix has');
+    if (s.angle) this.expect(s.angle, DIMENSIONS.none, 'an angle is');
+    if (s.rotation) this.expect(s.rotation, DIMENSIONS.none, 'a rotation matrix is');
   }
 
   /** k d^2 is an energy and c d'^2 a power, whatever the distance d is: a length or an angle. */
@@ -249,9 +254,9 @@ class Check implements Environment {
     }
     const square = ends.dimension.power(Rational.of(2));
     const perSquare = this.energy.divide(square);
-    if (s.kind === 'spring') this.expect(value, perSquare, 'this stiffness is in');
-    else this.expect(value, perSquare.multiply(DIMENSIONS.time), 'this damping coefficient is in');
-    if (s.kind === 'spring' && s.rest) this.expect(s.rest, ends.dimension, 'the distance between the ends is in');
+    if (s.kind === 'spring') this.expect(value, perSquare, 'this stiffness is');
+    else this.expect(value, perSquare.multiply(DIMENSIONS.time), 'this damping coefficient is');
+    if (s.kind === 'spring' && s.rest) this.expect(s.rest, ends.dimension, 'the distance between the ends is');
   }
 
   /** In claims the energies and momenta are quantities, where no symbol has their name. */

@@ -44,6 +44,8 @@ export interface ReadRequest {
   readonly library: Library;
   readonly subject:
     | { readonly kind: 'function'; readonly node: FunctionNode; readonly owner?: ClassNode }
+    /** Nothing is run: outputs call methods (`H(q)`, `rates.return[1]`) on a generic instance. */
+    | { readonly kind: 'class'; readonly node: ClassNode }
     | { readonly kind: 'file' };
   readonly meanings: Meanings;
   /** Conditions of `assume`, in program form, each to be taken as true. */

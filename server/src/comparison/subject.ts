@@ -1,0 +1,228 @@
+import type { Expr } from '../expression/node';
+import { evaluate, type FormulaContext } from '../mechanics/formula';
+import type { Derived } from '../mechanics/lagrange';
+import type { FormulaError, Scope } from '../mechanics/scope';
+import type { DeclarationProblem } from '../mechanics/system';
+import type { Quantity } from '../mechanics/value';
+import { printFormula } from '../notation';
+import type { Block, Formula } from '../notation/tree';
+import type { Expression, Program, Subject } from '../program/form';
+import type { Library } from '../program/library';
+import { read } from '../program/read';
+import type { Meaning, Meanings, OutputRequest, ReadRequest, Reading, ReadsBinding } from '../program/reading';
+import type { Budget } from '../text/budget';
+import type { Place, Span } from '../text/span';
+import { evaluateLeft, freeSymbol, isFamilyName, pairUp, prepareClaims } from './claims';
+import { codeExpression } from './code-path';
+import { decide } from './decide';
+import type { Decision } from './pair';
+import { Spellings } from './spellings';
+
+export interface SubjectRequest {
+  /** The block with `reads` and `checks`: the system's own, or one that names it. */
+  readonly block: Block;
+  readonly derived: Derived;
+  readonly spellings: Spellings;
+  readonly file: string;
+  readonly program: Program;
+  readonly library: Library;
+  readonly subject: Subject;
+  readonly importFile: ReadRequest['importFile'];
+  readonly budget: Budget;
+}
+
+export interface ClaimResult {
+  /** `return[3]`, `this.w` */
+  readonly output: string;
+  readonly quantity: string;
+  /** The claim in its declaration. */
+  readonly span: Span;
+  readonly decision: Decision;
+  /** Where the code makes the output. */
+  readonly place: Place | undefined;
+  readonly found: Expr | undefined;
+  readonly expected: Expr | undefined;
+}
+
+export interface SubjectResult {
+  readonly claims: readonly ClaimResult[];
+  readonly problems: readonly DeclarationProblem[];
+  /** Names in the code that could mean several things. */
+  readonly ambiguities: readonly { readonly message: string; readonly place: Place }[];
+  readonly reading: Reading | undefined;
+}
+
+/** Reads what a block is about and decides all its claims. */
+export function checkSubject(request: SubjectRequest): SubjectResult {
+  const { block, derived, program, file, budget } = request;
+  const { system } = derived;
+  const errors: FormulaError[] = [];
+  const outputs: OutputRequest[] = [];
+  const prepared = prepareClaims(block, derived, outputs, errors);
+  const reads = readsBindings(block, system.scope, errors);
+  const problems = errors.map((e): DeclarationProblem => ({ ...e, severity: 'error' }));
+  const whole = (reason: string, span: Span): SubjectResult => ({
+    claims: prepared.flatMap((p) =>
+      (p.target ? pairUp({ kind: 'unread', reason, place: undefined }, p.target, p.outputText, program.indexBase) : [
+        { output: p.outputText, quantity: printFormula(p.claim.right), found: undefined, expected: undefined },
+      ]).map((c) => ({
+        output: c.output,
+        quantity: c.quantity,
+        span: p.claim.span,
+        decision: { verdict: 'unread' as const, reason, place: { file, span } },
+        place: undefined,
+        found: undefined,
+        expected: c.expected,
+      })),
+    ),
+    problems,
+    ambiguities: [],
+    reading: undefined,
+  });
+  if (system.blocked) return whole(system.blocked.reason, block.nameSpan);
+  if (prepared.length === 0) return { claims: [], problems, ambiguities: [], reading: undefined };
+
+  const reading = readSubject(request, reads, outputs);
+  const results: ClaimResult[] = [];
+  const pending: { at: number; found: Expr; expected: Expr }[] = [];
+  for (const p of prepared) {
+    const unread = (reason: string, place: Place | undefined): Decision => ({ verdict: 'unread', reason, place });
+    if (!p.target) {
+      const decision = unread(p.unread!.reason, { file, span: p.unread!.span });
+      const quantity = printFormula(p.claim.right);
+      results.push({ output: p.outputText, quantity, span: p.claim.span, decision, place: undefined, found: undefined, expected: undefined });
+      continue;
+    }
+    const value = evaluateLeft(p, derived, reading.outputs);
+    for (const single of pairUp(value, p.target, p.outputText, program.indexBase)) {
+      const { found, output, quantity } = single;
+      const base = { output, quantity, span: p.claim.span, place: found.place };
+      const expected = p.increment === -1 ? system.graph.negate(single.expected!) : single.expected!;
+      if (found.kind !== 'scalar') {
+        const reason = found.kind === 'unread' ? found.reason : 'it is a list';
+        results.push({ ...base, decision: unread(reason, found.place), found: undefined, expected });
+        continue;
+      }
+      const free = freeSymbol(found.expr);
+      if (free) {
+        const why = reading.free.get(free);
+        const decision = unread(why?.reason ?? 'it depends on something that has no meaning here', why?.place ?? found.place);
+        results.push({ ...base, decision, found: found.expr, expected });
+        continue;
+      }
+      pending.push({ at: results.length, found: found.expr, expected });
+      results.push({ ...base, decision: unread('not decided', found.place), found: found.expr, expected });
+    }
+  }
+  if (pending.length > 0) {
+    const places = new Map(reading.conditions.map((c) => [c.expr, c.place]));
+    const assumed = reading.assumed.filter((a) => !freeSymbol(a));
+    const decisions = decide({ derived, pairs: pending, assumed, budget, placeOf: (c) => places.get(c) });
+    pending.forEach((p, i) => (results[p.at] = { ...results[p.at]!, decision: decisions[i]! }));
+  }
+  return { claims: results, problems, ambiguities: reading.ambiguities, reading };
+}
+
+/** Reads the subject of a block; also used for energies that the code defines. */
+export function readSubject(request: SubjectRequest, reads: readonly ReadsBinding[], outputs: readonly OutputRequest[]): Reading {
+  const { block, derived, spellings, subject } = request;
+  const { system } = derived;
+  const declared = new Set<Expr>();
+  const meanings: Meanings = {
+    reads,
+    byName: (name) => spellings.byName(name),
+    familyByName: (name) => spellings.familyByName(name),
+    isDeclared: (symbol) => {
+      if (declared.has(symbol)) return true;
+      const data = symbol.data;
+      const known = data !== null && typeof data === 'object' && 'role' in data && data.role !== 'free' && data.role !== 'auxiliary';
+      if (known) declared.add(symbol);
+      return known;
+    },
+  };
+  const assumptions: Expression[] = [];
+  let withinLimits = system.withinLimits;
+  for (const s of new Set([...system.block.statements, ...block.statements])) {
+    if (s.kind !== 'assume') continue;
+    if (s.withinLimits) withinLimits = true;
+    if (s.condition) assumptions.push(codeExpression(s.condition));
+  }
+  return read({
+    graph: system.graph,
+    file: request.file,
+    program: request.program,
+    library: request.library,
+    subject:
+      subject.kind === 'function'
+        ? { kind: 'function', node: subject.node, ...(subject.owner ? { owner: subject.owner } : {}) }
+        : subject.kind === 'class'
+          ? { kind: 'class', node: subject.node }
+          : { kind: 'file' },
+    meanings,
+    assumptions,
+    withinLimits,
+    outputs,
+    importFile: request.importFile,
+    budget: request.budget,
+  });
+}
+
+/** `reads CODE = FORMULA` of a block, the right sides evaluated. */
+export function readsBindings(block: Block, scope: Scope, errors: FormulaError[]): ReadsBinding[] {
+  const out: ReadsBinding[] = [];
+  const bind = (left: Formula, right: Formula): void => {
+    if ((left.kind === 'list' || left.kind === 'tuple') && (right.kind === 'list' || right.kind === 'tuple')) {
+      if (left.items.length !== right.items.length) {
+        errors.push({
+          code: 'syntax',
+          message: `${left.items.length} code names are given ${right.items.length} meanings`,
+          span: { start: left.span.start, end: right.span.end },
+        });
+        return;
+      }
+      left.items.forEach((item, i) => bind(item, right.items[i]!));
+      return;
+    }
+    const meaning = meaningOf(right, { scope, indices: new Map(), errors });
+    if (!meaning) return;
+    if (left.kind === 'list' || left.kind === 'tuple') {
+      if (meaning.kind === 'list' && meaning.items.length === left.items.length) {
+        left.items.forEach((item, i) => out.push(binding(item, meaning.items[i]!, right)));
+        return;
+      }
+      errors.push({ code: 'syntax', message: 'a list of code names needs a list of as many meanings', span: left.span });
+      return;
+    }
+    out.push(binding(left, meaning, right));
+  };
+  for (const s of block.statements) if (s.kind === 'reads') for (const item of s.items) bind(item.left, item.right);
+  return out;
+}
+
+function binding(left: Formula, meaning: Meaning, right: Formula): ReadsBinding {
+  return {
+    target: codeExpression(left),
+    meaning,
+    text: `${printFormula(left)} = ${printFormula(right)}`,
+    span: { start: left.span.start, end: right.span.end },
+  };
+}
+
+function meaningOf(f: Formula, context: FormulaContext): Meaning | undefined {
+  if (f.kind === 'list' || f.kind === 'tuple') {
+    const items: Meaning[] = [];
+    for (const item of f.items) {
+      const m = meaningOf(item, context);
+      if (!m) return undefined;
+      if (m.kind === 'list' && isFamilyName(item, context.scope)) items.push(...m.items);
+      else items.push(m);
+    }
+    return { kind: 'list', items };
+  }
+  const q = evaluate(f, context);
+  return q && asMeaning(q);
+}
+
+function asMeaning(q: Quantity): Meaning {
+  return q.kind === 'scalar' ? q : { kind: 'list', items: q.items.map(asMeaning) };
+}

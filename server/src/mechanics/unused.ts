@@ -1,0 +1,32 @@
+import type { Expr, SymbolData } from '../expression/node';
+import { symbolsOf } from '../expression/reach';
+import type { DeclarationProblem, System } from './system';
+
+/** Declared names that nothing uses: mostly a slip of the pen in an energy. */
+export function findUnused(system: System): DeclarationProblem[] {
+  const out: DeclarationProblem[] = [];
+  const named = new Set<string>();
+  for (const s of symbolsOf(system.L, system.D, ...system.Q)) named.add((s.data as SymbolData).name);
+  const used = (symbol: Expr, name: string) => named.has(name) || system.scope.used.has(symbol);
+  for (const d of [...system.parameters, ...system.inputs]) {
+    if (used(d.symbol, d.name)) continue;
+    const what = d.kind === 'input' ? 'input' : 'parameter';
+    out.push({
+      code: 'unused',
+      message: `the ${what} \`${d.name}\` is declared but no energy, force or claim uses it`,
+      span: d.span,
+      severity: 'warning',
+    });
+  }
+  const velocities = new Set(symbolsOf(system.L).filter((s) => (s.data as SymbolData).order === 1));
+  for (const c of system.coordinates) {
+    if (velocities.has(c.velocity)) continue;
+    out.push({
+      code: 'singular',
+      message: `no kinetic energy goes with \`${c.name}\`: its acceleration can't be determined from these energies`,
+      span: c.span,
+      severity: 'error',
+    });
+  }
+  return out;
+}

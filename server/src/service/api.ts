@@ -1,0 +1,62 @@
+import type { Problem, ReportClaim, ReportPosition, ReportRange } from '@visviva/shared';
+import type { Budget } from '../text/budget';
+
+/**
+ * The façade that the language server and the command share: plain functions of documents, no protocol and no input or
+ * output of their own. Whatever the editor shows and the command prints comes through here, so the two cannot disagree.
+ */
+export interface Service {
+  /** Sets the text of an open document, replacing what `files` would give. */
+  update(file: string, text: string): void;
+  /** Forgets an open document; its file on disk counts again. */
+  close(file: string): void;
+  /** Drops what was read from a file that changed on disk. */
+  invalidate(file: string): void;
+  /** True for files whose language is read here, by name. */
+  handles(file: string): boolean;
+  /** Loads the parsers that a file needs; `check` and the others call it themselves. */
+  prepare(file: string): Promise<void>;
+  check(file: string, budget: Budget): Promise<FileResult>;
+  hover(file: string, position: ReportPosition, budget: Budget): Promise<Hover | undefined>;
+  symbols(file: string): Promise<readonly DocumentSymbol[]>;
+  /** The derived equations of every system a file declares. */
+  derive(file: string, as: 'text' | 'tex' | 'typescript', budget: Budget): Promise<readonly DerivedSystem[]>;
+}
+
+/** Where documents that are not open come from; given by the rim. Paths are whatever the rim uses, `/` between folders. */
+export interface Files {
+  /** Undefined where there is no readable text file. Never throws. */
+  read(file: string): string | undefined;
+  /** Files that may hold declarations other files refer to by name. */
+  declarations(): readonly string[];
+}
+
+export interface FileResult {
+  readonly file: string;
+  readonly language: string;
+  readonly systems: readonly { readonly name: string; readonly range: ReportRange }[];
+  readonly claims: readonly ReportClaim[];
+  readonly problems: readonly Problem[];
+  /** Other files that were read for it: a change there makes the result stale. */
+  readonly dependsOn: readonly string[];
+}
+
+export interface Hover {
+  readonly markdown: string;
+  readonly range: ReportRange;
+}
+
+export interface DocumentSymbol {
+  readonly name: string;
+  readonly detail: string;
+  readonly kind: 'system' | 'coordinate' | 'parameter' | 'input' | 'claim' | 'function';
+  readonly range: ReportRange;
+  readonly nameRange: ReportRange;
+  readonly children: readonly DocumentSymbol[];
+}
+
+export interface DerivedSystem {
+  readonly system: string;
+  readonly range: ReportRange;
+  readonly text: string;
+}

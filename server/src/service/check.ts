@@ -1,0 +1,170 @@
+import type { Problem, ReportClaim, Witness } from '@visviva/shared';
+import { checkSubject, type ClaimResult, type SubjectResult } from '../comparison/subject';
+import { describeClaim, type RawFinding } from '../diagnosis/findings';
+import { inOrder } from '../diagnosis/describe';
+import { symbolText, type SymbolData } from '../expression/node';
+import { checkDimensions } from '../mechanics/dimensions';
+import { findUnused } from '../mechanics/unused';
+import type { DeclarationProblem, System } from '../mechanics/system';
+import type { Subject } from '../program/form';
+import type { Budget } from '../text/budget';
+import type { Place } from '../text/span';
+import type { Document, Documents, PlacedBlock } from '../workspace/documents';
+import type { Imports } from '../workspace/imports';
+import { declares, type SystemEntry, type Systems } from '../workspace/systems';
+import type { FileResult } from './api';
+
+/** Everything that was found out about one declaration. */
+export interface BlockOutcome {
+  readonly placed: PlacedBlock;
+  readonly entry: SystemEntry | undefined;
+  readonly result: SubjectResult | undefined;
+  readonly problems: readonly DeclarationProblem[];
+  /** Findings about the code itself: ambiguous names. */
+  readonly ambiguities: readonly { readonly message: string; readonly place: Place }[];
+}
+
+export interface Project {
+  readonly documents: Documents;
+  readonly systems: Systems;
+  readonly imports: Imports;
+}
+
+/** Checks every declaration of a document. */
+export async function checkDocument(project: Project, document: Document, budget: Budget): Promise<BlockOutcome[]> {
+  const outcomes: BlockOutcome[] = [];
+  for (const placed of document.blocks) {
+    outcomes.push(await checkBlock(project, document, placed, budget));
+  }
+  return withUnused(document, outcomes);
+}
+
+async function checkBlock(project: Project, document: Document, placed: PlacedBlock, budget: Budget): Promise<BlockOutcome> {
+  const { block, subject } = placed;
+  const lookup = await project.systems.lookup(document, block, budget);
+  const problem = (code: Problem['code'], message: string): BlockOutcome => ({
+    placed,
+    entry: undefined,
+    result: undefined,
+    problems: [
+      ...block.errors.map((e): DeclarationProblem => ({ ...e, severity: 'error' })),
+      { code, message, span: block.nameSpan, severity: 'error' },
+    ],
+    ambiguities: [],
+  });
+  if (lookup.kind === 'none') {
+    return problem('undeclared', `no declaration of \`${block.name}\` with \`coordinates\` was found in this file or the project`);
+  }
+  if (lookup.kind === 'several') {
+    const places = [...new Set(lookup.files)].join(', ');
+    return problem('ambiguous', `\`${block.name}\` is declared more than once (${places}): give the systems names of their own`);
+  }
+  const { entry } = lookup;
+  await project.imports.prepare(document);
+  const result = checkSubject({
+    block,
+    derived: entry.derived,
+    spellings: entry.spellings,
+    file: document.file,
+    program: document.program,
+    library: document.core.library,
+    subject,
+    importFile: project.imports.reader(document),
+    budget,
+  });
+  const own = declares(block)
+    ? [...entry.problems, ...checkDimensions(block).map((d): DeclarationProblem => ({ ...d, severity: 'warning' }))]
+    : block.errors.map((e): DeclarationProblem => ({ ...e, severity: 'error' }));
+  return { placed, entry, result, problems: [...own, ...result.problems], ambiguities: result.ambiguities };
+}
+
+/** A name counts as used when any declaration of the file uses it, so this waits for the last of them. */
+function withUnused(document: Document, outcomes: BlockOutcome[]): BlockOutcome[] {
+  return outcomes.map((o) => {
+    const system = o.entry?.derived.system;
+    if (!system || !declares(o.placed.block) || system.blocked) return o;
+    const claimed = outcomes.some((x) => x.placed.block.name === system.name && x.result && x.result.claims.length > 0);
+    if (!claimed || document.language === 'visviva') return o;
+    const shift = o.placed.block.span.start - system.block.span.start;
+    const unused = findUnused(system).map((p) => ({ ...p, span: { start: p.span.start + shift, end: p.span.end + shift } }));
+    return unused.length > 0 ? { ...o, problems: [...o.problems, ...unused] } : o;
+  });
+}
+
+export function fileResult(document: Document, outcomes: readonly BlockOutcome[]): FileResult {
+  const { lines, file } = document;
+  const problems: Problem[] = [];
+  const claims: ReportClaim[] = [];
+  const dependsOn = new Set<string>();
+  for (const o of outcomes) {
+    for (const p of o.problems) {
+      problems.push({ file, code: p.code, message: p.message, range: lines.range(p.span), severity: p.severity });
+    }
+    for (const a of o.ambiguities) {
+      problems.push({ file: a.place.file, code: 'ambiguous', message: a.message, range: lines.range(a.place.span), severity: 'error' });
+    }
+    if (o.entry && o.entry.file !== file) dependsOn.add(o.entry.file);
+    o.result?.reading?.files.forEach((f) => dependsOn.add(f));
+    for (const c of o.result?.claims ?? []) claims.push(reportClaim(document, o, c));
+  }
+  return {
+    file,
+    language: document.program.language,
+    systems: document.blocks
+      .filter((b) => declares(b.block))
+      .map((b) => ({ name: b.block.name, range: lines.range(b.block.span) })),
+    claims,
+    problems: distinct(problems).sort(
+      (a, b) => a.range.start.line - b.range.start.line || a.range.start.column - b.range.start.column,
+    ),
+    dependsOn: [...dependsOn].sort(),
+  };
+}
+
+function reportClaim(document: Document, outcome: BlockOutcome, claim: ClaimResult): ReportClaim {
+  const { lines, file, program } = document;
+  const system = outcome.entry!.derived.system;
+  const findings = describeClaim(system, claim, { file, span: claim.span }).map((f) => reportFinding(document, f, claim));
+  const { decision } = claim;
+  return {
+    file,
+    language: program.language,
+    system: system.name,
+    function: subjectName(outcome.placed.subject),
+    output: claim.output,
+    quantity: claim.quantity,
+    line: lines.position(claim.span.start).line,
+    verdict: decision.verdict,
+    ...(decision.verdict === 'unread'
+      ? {}
+      : { evidence: { kind: 'numeric' as const, states: decision.states, worst: decision.worst } }),
+    ...(decision.verdict === 'differs' ? { witness: reportWitness(system, decision.witness) } : {}),
+    findings,
+  };
+}
+
+function reportFinding(document: Document, f: RawFinding, claim: ClaimResult): ReportClaim['findings'][number] {
+  if (f.place.file === document.file) return { code: f.code, message: f.message, range: document.lines.range(f.place.span) };
+  // Text of another file: the editor shows the claim, the report names the place.
+  return { code: f.code, message: f.message, range: document.lines.range(claim.span), file: document.file };
+}
+
+function reportWitness(system: System, witness: Parameters<typeof inOrder>[1]): Witness {
+  const state: Record<string, number> = Object.create(null) as Record<string, number>;
+  for (const [symbol, value] of inOrder(system, witness)) state[symbolText(symbol.data as SymbolData)] = value;
+  return { state, expected: witness.expected, found: witness.found };
+}
+
+export function subjectName(subject: Subject): string {
+  return subject.kind === 'file' ? '' : subject.path;
+}
+
+function distinct(problems: readonly Problem[]): Problem[] {
+  const seen = new Set<string>();
+  return problems.filter((p) => {
+    const key = JSON.stringify(p);
+    if (seen.has(key)) return false;
+    seen.add(key);
+    return true;
+  });
+}

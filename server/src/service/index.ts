@@ -1,0 +1,57 @@
+import { languageOf } from '../languages';
+import type { Budget } from '../text/budget';
+import { Documents } from '../workspace/documents';
+import { Imports } from '../workspace/imports';
+import { Systems } from '../workspace/systems';
+import type { Files, FileResult, Service } from './api';
+import { checkDocument, fileResult, type BlockOutcome, type Project } from './check';
+import { deriveSystems } from './derive';
+import { hoverAt } from './hover';
+import { symbolsOf } from './symbols';
+
+export type * from './api';
+
+/** The service over some files. It keeps what it has read until told of a change. */
+export function createService(files: Files): Service {
+  const documents = new Documents((file) => files.read(file));
+  const imports = new Imports(documents);
+  const systems = new Systems(documents, () => files.declarations(), (d) => imports.reader(d));
+  const project: Project = { documents, systems, imports };
+
+  const load = async (file: string) => {
+    await documents.prepare(file);
+    return documents.get(file);
+  };
+
+  return {
+    update: (file, text) => documents.update(file, text),
+    close: (file) => documents.close(file),
+    invalidate: (file) => documents.invalidate(file),
+    handles: (file) => languageOf(file) !== undefined,
+    prepare: (file) => documents.prepare(file),
+
+    async check(file: string, budget: Budget): Promise<FileResult> {
+      const document = await load(file);
+      if (!document) {
+        return { file, language: languageOf(file)?.id ?? '', systems: [], claims: [], problems: [], dependsOn: [] };
+      }
+      return fileResult(document, await checkDocument(project, document, budget));
+    },
+
+    async hover(file, position, budget) {
+      const document = await load(file);
+      if (!document || document.blocks.length === 0) return undefined;
+      return hoverAt(document, document.lines.offset(position), async (): Promise<BlockOutcome[]> => checkDocument(project, document, budget));
+    },
+
+    async symbols(file) {
+      const document = await load(file);
+      return document ? symbolsOf(document) : [];
+    },
+
+    async derive(file, as, budget) {
+      const document = await load(file);
+      return document ? deriveSystems(project, document, as, budget) : [];
+    },
+  };
+}

@@ -1,0 +1,130 @@
+import { asCodeEnergies, readCodeEnergies } from '../comparison/code-energies';
+import { Spellings } from '../comparison/spellings';
+import { Graph } from '../expression/graph';
+import { buildSystem } from '../mechanics/build';
+import { Derived } from '../mechanics/lagrange';
+import type { DeclarationProblem, System } from '../mechanics/system';
+import type { Block } from '../notation/tree';
+import type { ReadRequest } from '../program/reading';
+import type { Budget } from '../text/budget';
+import type { Document, Documents } from './documents';
+
+/** A resolved system, and where it was declared. */
+export interface SystemEntry {
+  readonly file: string;
+  readonly block: Block;
+  readonly derived: Derived;
+  readonly spellings: Spellings;
+  readonly problems: readonly DeclarationProblem[];
+  /** Files read for it beyond its own. */
+  readonly files: readonly string[];
+}
+
+export type Lookup =
+  | { readonly kind: 'found'; readonly entry: SystemEntry }
+  | { readonly kind: 'none' }
+  | { readonly kind: 'several'; readonly files: readonly string[] };
+
+/** A graph that many edits have filled is thrown away with its system. */
+const MOST_NODES = 60_000;
+const MOST_ENTRIES = 100;
+
+/** Finds and keeps the systems that blocks declare or name. */
+export class Systems {
+  private readonly kept = new Map<string, SystemEntry>();
+
+  constructor(
+    private readonly documents: Documents,
+    private readonly declarations: () => readonly string[],
+    private readonly importFile: (core: Document) => ReadRequest['importFile'],
+  ) {}
+
+  /** The system a block declares or refers to by its name. */
+  async lookup(document: Document, block: Block, budget: Budget): Promise<Lookup> {
+    if (declares(block)) return { kind: 'found', entry: this.entry(document, block, budget) };
+    const here = document.blocks.filter((b) => b.block.name === block.name && declares(b.block));
+    if (here.length === 1) return { kind: 'found', entry: this.entry(document, here[0]!.block, budget) };
+    if (here.length > 1) return { kind: 'several', files: here.map(() => document.file) };
+    const found: { document: Document; block: Block }[] = [];
+    for (const file of this.declarations()) {
+      if (file === document.file) continue;
+      if (!this.documents.text(file)?.includes(block.name)) continue;
+      await this.documents.prepare(file);
+      const other = this.documents.get(file);
+      for (const b of other?.blocks ?? []) {
+        if (b.block.name === block.name && declares(b.block)) found.push({ document: other!, block: b.block });
+      }
+    }
+    if (found.length === 0) return { kind: 'none' };
+    if (found.length > 1) return { kind: 'several', files: found.map((f) => f.document.file) };
+    return { kind: 'found', entry: this.entry(found[0]!.document, found[0]!.block, budget) };
+  }
+
+  private entry(document: Document, block: Block, budget: Budget): SystemEntry {
+    const definers = document.blocks.filter(
+      (b) => b.block.name === block.name && b.block.statements.some((s) => s.kind === 'defines'),
+    );
+    const text = document.text.slice(block.span.start, block.span.end);
+    // Energies in code depend on the whole file; typed ones on their block alone.
+    const key = [document.file, block.name, text, definers.length > 0 ? document.text : ''].join('\u0000');
+    const known = this.kept.get(key);
+    if (known && known.derived.system.graph.nodes.length < MOST_NODES) return moved(known, block);
+    const entry = this.build(document, block, definers, budget);
+    if (this.kept.size >= MOST_ENTRIES) this.kept.delete(this.kept.keys().next().value!);
+    this.kept.delete(key);
+    this.kept.set(key, entry);
+    return entry;
+  }
+
+  private build(document: Document, block: Block, definers: Document['blocks'], budget: Budget): SystemEntry {
+    const graph = new Graph();
+    let system: System = buildSystem(block, graph);
+    const extra: DeclarationProblem[] = [];
+    const files: string[] = [];
+    if (definers.length > 0) {
+      const derived = new Derived(system);
+      const spellings = new Spellings(system);
+      const energies = definers.flatMap((d) =>
+        readCodeEnergies({
+          block: d.block,
+          derived,
+          spellings,
+          file: document.file,
+          program: document.program,
+          library: document.core.library,
+          subject: d.subject,
+          importFile: this.importFile(document),
+          budget,
+        }),
+      );
+      for (const e of energies) if (e.problem) extra.push(e.problem);
+      system = buildSystem(block, graph, asCodeEnergies(energies));
+      if (extra.length > 0 && !system.blocked) {
+        system = { ...system, blocked: { reason: extra[0]!.message, span: extra[0]!.span } };
+      }
+    }
+    return {
+      file: document.file,
+      block,
+      derived: new Derived(system),
+      spellings: new Spellings(system),
+      problems: [...system.problems, ...extra],
+      files,
+    };
+  }
+}
+
+export function declares(block: Block): boolean {
+  return block.statements.some((s) => s.kind === 'coordinates');
+}
+
+/** The same declaration further down or up: its places move with it. */
+function moved(entry: SystemEntry, block: Block): SystemEntry {
+  const by = block.span.start - entry.block.span.start;
+  if (by === 0) return entry;
+  return {
+    ...entry,
+    block,
+    problems: entry.problems.map((p) => ({ ...p, span: { start: p.span.start + by, end: p.span.end + by } })),
+  };
+}
