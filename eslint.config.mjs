@@ -7,7 +7,7 @@ const visviva = { rules: { 'import-directions': importDirections } };
 export default tseslint.config(
   {
     ignores: [
-      '**/node_modules/', 'dist/', '.artifacts/', '.vscode-test/', 'tests/fixtures/', 'tests/**/fixtures/',
+      '**/node_modules/', 'dist/', '.artifacts/', '.vscode-test/', 'tests/fixtures/', 'tests/**/fixtures/', 'tests/editor/workspace/',
       'sample-workspace/',
     ],
   },
