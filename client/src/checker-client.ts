@@ -1,4 +1,4 @@
-import { statusNotification, type FileStatus } from '@visviva/shared';
+import { statusNotification, version, type FileStatus } from '@visviva/shared';
 import * as vscode from 'vscode';
 import {
   CloseAction,
@@ -9,7 +9,7 @@ import {
   type LanguageClientOptions,
   type ServerOptions,
 } from 'vscode-languageclient/node';
-import type { StatusItem } from './status-item';
+import { details, type StatusItem } from './status-item';
 
 const languages = ['typescript', 'javascript', 'typescriptreact', 'javascriptreact', 'html', 'visviva'];
 
@@ -21,6 +21,8 @@ const stopWindow = 3 * 60_000;
 export class CheckerClient {
   private readonly client: LanguageClient;
   private stops: number[] = [];
+  /** What the output says last of each file. */
+  private readonly logged = new Map<string, string>();
 
   constructor(
     context: vscode.ExtensionContext,
@@ -46,7 +48,7 @@ export class CheckerClient {
     };
     this.client = new LanguageClient('visviva', 'Visviva', server, options);
     context.subscriptions.push(
-      this.client.onNotification(statusNotification, (told: FileStatus) => status.update(told)),
+      this.client.onNotification(statusNotification, (told: FileStatus) => this.told(told)),
       this.client.onDidChangeState(({ newState }) => {
         if (newState === State.Starting) status.starting();
         if (newState === State.Running) status.running();
@@ -57,6 +59,7 @@ export class CheckerClient {
   async start(): Promise<void> {
     try {
       await this.client.start();
+      this.output.info(`Visviva ${version} is ready.`);
     } catch (error) {
       this.output.error(`The checker did not start: ${String(error)}`);
       this.status.stopped('The checker did not start. Click for the output, or restart it.');
@@ -77,6 +80,16 @@ export class CheckerClient {
 
   async stop(): Promise<void> {
     await this.client.dispose();
+  }
+
+  private told(status: FileStatus): void {
+    this.status.update(status);
+    const { counts, reason, uri } = status;
+    const line = reason ?? (counts && counts.systems + counts.problems > 0 ? details(counts) : undefined);
+    if (line === this.logged.get(uri)) return;
+    if (line === undefined) this.logged.delete(uri);
+    else this.logged.set(uri, line);
+    if (line !== undefined) this.output.info(`${vscode.workspace.asRelativePath(vscode.Uri.parse(uri))}: ${line}`);
   }
 
   private closed(): { action: CloseAction; message?: string; handled: true } {

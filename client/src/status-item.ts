@@ -75,7 +75,8 @@ function summary(counts: FileCounts): string {
   return `Visviva ${parts.join(' ')}`;
 }
 
-function details(counts: FileCounts, milliseconds: number | undefined): string {
+/** One sentence about a file's claims, for the tooltip and the log. */
+export function details(counts: FileCounts, milliseconds?: number): string {
   const time = milliseconds === undefined ? '' : `\nChecked in ${Math.max(1, Math.round(milliseconds))} ms.`;
   return (
     `${counts.holds} of ${plural(claimsOf(counts), 'claim')} ${counts.holds === 1 ? 'holds' : 'hold'}, ` +

@@ -1,6 +1,5 @@
 /** Starts and ends the editor host, each time with fresh folders of its own. */
-import { spawn } from 'node:child_process';
-import { execFileSync } from 'node:child_process';
+import { execFileSync, spawn } from 'node:child_process';
 import { cpSync, mkdirSync, mkdtempSync, rmSync, writeFileSync } from 'node:fs';
 import { createServer } from 'node:net';
 import { tmpdir } from 'node:os';
@@ -18,9 +17,8 @@ const settings = {
   'files.autoSave': 'off',
   'security.workspace.trust.enabled': false,
   'telemetry.telemetryLevel': 'off',
-  'typescript.tsserver.enabled': false,
-  'typescript.validate.enable': false,
   'update.mode': 'none',
+  'workbench.secondarySideBar.defaultVisibility': 'hidden',
   'workbench.startupEditor': 'none',
   'workbench.tips.enabled': false,
 };

@@ -1,7 +1,7 @@
 /**
  * Installs the editor that the tests run in: VS Code's own server with its web workbench, as the registry carries it. It
  * lives in this folder alone, so that nothing of it can reach the product. No install script is run; a finished install
- * is kept and recognized by its lock file's hash, a broken one is thrown away.
+ * is kept and recognized by its recipe's hash, a broken one is thrown away.
  */
 import { execFileSync } from 'node:child_process';
 import { createHash } from 'node:crypto';
@@ -20,7 +20,10 @@ export const editorHost = {
 };
 
 export function installEditorHost() {
-  const wanted = createHash('sha256').update(readFileSync(join(here, 'package-lock.json'))).digest('hex');
+  const wanted = createHash('sha256')
+    .update(readFileSync(join(here, 'package-lock.json')))
+    .update(readFileSync(fileURLToPath(import.meta.url)))
+    .digest('hex');
   if (existsSync(mark) && readFileSync(mark, 'utf8') === wanted && existsSync(editorHost.server)) return editorHost;
 
   rmSync(modules, { recursive: true, force: true });
@@ -38,6 +41,8 @@ export function installEditorHost() {
   } catch {
     console.warn('The editor host runs without its native log: no compiler here.');
   }
+  // It comes without the compiler that it needs, and says so in a notification; the colours come from elsewhere.
+  rmSync(join(workbench, 'extensions', 'typescript-language-features'), { recursive: true, force: true });
   writeFileSync(mark, wanted);
   return editorHost;
 }
