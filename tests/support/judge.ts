@@ -13,7 +13,7 @@ export interface Judgement {
   readonly worst: number;
 }
 
-const STATES = 10;
+const STATES = 6;
 /** Finite differences are good to about 1e-9; a realistic fault shows far above this. */
 const SAME = 1e-6;
 
@@ -22,6 +22,7 @@ export class Judge {
   private readonly claims: Declared['claims'];
   private readonly states: { instant: Instant; expected: number[] }[] = [];
   private readonly system: Declared;
+  private readonly named: readonly string[];
 
   constructor(
     private readonly fixture: Fixture,
@@ -32,6 +33,7 @@ export class Judge {
     const own = readDeclaration(section.name, block);
     this.system = own.coordinates.length > 0 ? own : this.elsewhere(definitions);
     this.claims = own.claims;
+    this.named = [...own.named.keys()];
     this.draw(own);
   }
 
@@ -52,10 +54,17 @@ export class Judge {
     const mechanics = new Mechanics(this.system);
     const rights = this.claims.map((c) => parseFormula(c.right));
     const pick = (s: Drawn): number => s.low + (s.high - s.low) * next();
-    const speed = (): number => 4 * next() - 2;
+    // Away from zero, where signs and contacts have kinks that no difference quotient survives.
+    const clear = (draw: () => number): number => {
+      for (;;) {
+        const value = draw();
+        if (Math.abs(value) > 0.2) return value;
+      }
+    };
+    const speed = (): number => clear(() => 4 * next() - 2);
     while (this.states.length < STATES) {
       const at = new Map<string, readonly number[]>();
-      for (const c of this.system.coordinates) at.set(c.name, [pick(c), speed(), 0]);
+      for (const c of this.system.coordinates) at.set(c.name, [clear(() => pick(c)), speed(), 0]);
       for (const p of [...this.system.parameters, ...own.parameters.filter((o) => !at.has(o.name))]) at.set(p.name, [pick(p), 0, 0, 0]);
       for (const u of this.system.inputs) at.set(u.name, [pick(u), speed(), speed(), 0]);
       if (!at.has(this.system.time)) at.set(this.system.time, [next(), 1, 0, 0]);
@@ -71,7 +80,7 @@ export class Judge {
   judge(text: string): Judgement[] {
     const first = this.states[0]!.instant;
     const symbols = [...first].flatMap(([name, series]) => series.map((_, k) => name + "'".repeat(k)));
-    const constants = new Set([...this.system.parameters.map((p) => p.name), ...first.keys()]);
+    const constants = new Set([...this.system.parameters.map((p) => p.name), ...this.named]);
     const run = compileRun(this.fixture.file, text, this.section.run, this.claims, symbols, constants);
     const worst = this.claims.map(() => 0);
     for (const { instant, expected } of this.states) {

@@ -3,15 +3,16 @@ import { num, vec, type Evaluate, type Scope, type Value } from './formula';
 
 /**
  * Lagrange's equations by finite differences, with nothing but values of the energies: the tests' judge of what the
- * accelerations are. Every derivative is the central difference of order 8, so that nesting two of them still leaves ten
- * good digits (coefficients: B. Fornberg, "Generation of finite difference formulas on arbitrarily spaced grids",
- * Mathematics of Computation 51 (1988), table 1).
+ * accelerations are. Every derivative is a central difference of order 6 (order 4 along velocities, in which energies are
+ * polynomials of low degree), so that nesting two of them still leaves nine good digits (coefficients: B. Fornberg,
+ * "Generation of finite difference formulas on arbitrarily spaced grids", Mathematics of Computation 51 (1988), table 1).
  */
-const STENCIL = [4 / 5, -1 / 5, 4 / 105, -1 / 280];
+const ORDER_4 = [2 / 3, -1 / 12];
+const ORDER_6 = [3 / 4, -3 / 20, 1 / 60];
 
-function derivative(f: (h: number) => Value, step: number): Value {
+function derivative(f: (h: number) => Value, step: number, stencil: readonly number[] = ORDER_6): Value {
   let total: Value = 0;
-  STENCIL.forEach((weight, i) => {
+  stencil.forEach((weight, i) => {
     const up = f((i + 1) * step);
     const down = f(-(i + 1) * step);
     if (typeof up === 'number') total = (total as number) + (weight * (up - num(down))) / step;
@@ -23,9 +24,9 @@ function derivative(f: (h: number) => Value, step: number): Value {
   return total;
 }
 
-const IN_TIME = 0.02;
-const IN_PLACE = 0.02;
-const IN_VELOCITY = 0.05;
+const IN_TIME = 0.015;
+const IN_PLACE = 0.015;
+const IN_VELOCITY = 0.25;
 
 /** Values of everything at one instant: by name, the value and its time derivatives. */
 export type Instant = ReadonlyMap<string, readonly number[]>;
@@ -118,14 +119,14 @@ export class Mechanics {
   }
 
   momentum(name: string, at: Instant): number {
-    return num(derivative((h) => this.energy('L', changed(at, name, 1, h)), IN_VELOCITY));
+    return num(derivative((h) => this.energy('L', changed(at, name, 1, h)), IN_VELOCITY, ORDER_4));
   }
 
   /** d/dt(dL/dq') - dL/dq + dD/dq' - Q, for one coordinate. */
   residual(name: string, at: Instant): number {
     const inertia = num(derivative((h) => this.momentum(name, later(at, h)), IN_TIME));
     const slope = num(derivative((h) => this.energy('L', changed(at, name, 0, h)), IN_PLACE));
-    const drag = num(derivative((h) => this.energy('D', changed(at, name, 1, h)), IN_VELOCITY));
+    const drag = num(derivative((h) => this.energy('D', changed(at, name, 1, h)), IN_VELOCITY, ORDER_4));
     return inertia - slope + drag - this.applied(name, at);
   }
 
@@ -151,10 +152,9 @@ export class Mechanics {
       return out;
     };
     const rest = set(names.map(() => 0));
-    const bias = names.map((n) => this.residual(n, rest));
-    const rows = names.map((n, i) => [
-      ...names.map((_, j) => this.residual(n, set(names.map((__, k) => (k === j ? 1 : 0)))) - bias[i]!),
-      -bias[i]!,
+    const rows = names.map((n) => [
+      ...names.map((m) => num(derivative((h) => this.momentum(n, changed(rest, m, 1, h)), IN_VELOCITY, ORDER_4))),
+      -this.residual(n, rest),
     ]);
     return set(eliminate(rows));
   }
