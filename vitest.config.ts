@@ -16,16 +16,12 @@ export default defineConfig({
         test: {
           name: 'built',
           include: ['tests/{lsp,cli}/**/*.test.ts'],
-          globalSetup: process.env['NOBUILD'] ? [] : ['tests/lsp/build-first.ts'],
+          globalSetup: ['tests/lsp/build-first.ts'],
         },
       },
       {
         extends: true,
         test: { name: 'property', include: ['tests/{property,fuzz}/**/*.test.ts'], testTimeout: 120_000 },
-      },
-      {
-        extends: true,
-        test: { name: 'bench', include: [], benchmark: { include: ['tests/bench/**/*.bench.ts'] } },
       },
     ],
   },
