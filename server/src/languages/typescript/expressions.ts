@@ -51,16 +51,21 @@ function extend(c: Context, node: Link, left: Expression): Expression {
     const op = BINARY.get(node.operatorToken.kind)!;
     return { kind: 'binary', op, left, right, opSpan: spanOf(c, node.operatorToken), span };
   }
-  const optional = node.questionDotToken ? { optional: true } : {};
+  const made = reach(c, node, left, span);
+  return node.questionDotToken && made.kind !== 'opaque' ? ({ ...made, optional: true } as Expression) : made;
+}
+
+/** A member, item or call of what stands left. */
+function reach(c: Context, node: Exclude<Link, ts.BinaryExpression>, object: Expression, span: Span): Expression {
   if (ts.isPropertyAccessExpression(node)) {
     const name = nameText(node.name.text);
     if (name === '') return opaque('an unfinished expression', span);
-    return { kind: 'member', object: left, name, nameSpan: spanOf(c, node.name), ...optional, span };
+    return { kind: 'member', object, name, nameSpan: spanOf(c, node.name), span };
   }
   if (ts.isElementAccessExpression(node)) {
-    return { kind: 'index', object: left, indices: [c.expression(node.argumentExpression)], ...optional, span };
+    return { kind: 'index', object, indices: [c.expression(node.argumentExpression)], span };
   }
-  return { kind: 'call', callee: left, args: args(c, node.arguments), ...optional, span };
+  return { kind: 'call', callee: object, args: args(c, node.arguments), span };
 }
 
 function args(c: Context, nodes: readonly ts.Expression[] | undefined): Argument[] {

@@ -1,6 +1,7 @@
 import type { LanguageCore } from '../language';
 import { typescriptLibrary } from './library';
 import { TypeScriptParser } from './parser';
+import { resolveImport } from './resolve';
 
 const parser = new TypeScriptParser();
 
@@ -8,4 +9,5 @@ const parser = new TypeScriptParser();
 export const core: LanguageCore = {
   parse: (file, text) => parser.parse(file, text),
   library: typescriptLibrary,
+  resolveImport,
 };

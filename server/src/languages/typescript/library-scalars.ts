@@ -48,11 +48,11 @@ export const SCALARS: ReadonlyMap<string, ScalarFunction> = new Map<string, Scal
   ['Number', one('Number', (_, x) => x)],
   ['parseFloat', one('parseFloat', (_, x) => x)],
   ['Number.parseFloat', one('Number.parseFloat', (_, x) => x)],
-  // States that are not finite have no vote, so these tests always go one way.
-  ['isFinite', one('isFinite', (g) => g.true)],
-  ['Number.isFinite', one('Number.isFinite', (g) => g.true)],
-  ['isNaN', one('isNaN', (g) => g.false)],
-  ['Number.isNaN', one('Number.isNaN', (g) => g.false)],
+  // States that are not finite have no vote, so these tests always go one way (a one is true, a zero false).
+  ['isFinite', one('isFinite', (g) => g.one)],
+  ['Number.isFinite', one('Number.isFinite', (g) => g.one)],
+  ['isNaN', one('isNaN', (g) => g.zero)],
+  ['Number.isNaN', one('Number.isNaN', (g) => g.zero)],
 ]);
 
 /** `Math.PI` and its like, by dotted path. `Infinity` is left out: the graph has no number for it. */

@@ -24,7 +24,6 @@ export const typescriptLibrary: Library = {
     ['Object.preventExtensions', 'identity'],
     ['structuredClone', 'deep-copy'],
     ['Boolean', 'to-condition'],
-    ['require', 'require'],
   ]),
   methods: new Map([
     ...listMethods(),

@@ -1,5 +1,5 @@
 import ts from 'typescript';
-import type { Expression, Pattern, Statement } from '../../program/form';
+import type { Expression, Field, Pattern, Statement } from '../../program/form';
 import type { Span } from '../../text/span';
 import { type Context, bare, nameText, propertyName, spanOf } from './context';
 import { isExportsObject, isModuleExports } from './exports-object';
@@ -16,7 +16,8 @@ type ExportName = ExportStatement['names'][number];
  *    call of `require`, whose value is the module: its `value` where it has one, else the record of its exported names;
  *  - an export of a value without a name declares a variable that no source can spell (`default`, `exports.rates`) and
  *    exports that; only `module.exports = value` and `export = value` carry `value`: the module itself is that value;
- *  - `module.exports = { rates, energy: f }` exports the names one by one;
+ *  - `module.exports = { rates, energy: f }` exports the names too, one by one; a file that assigns to `exports.rates` and
+ *    its like ends with a `value` that is a record of them;
  *  - imports and exports of types only leave nothing.
  */
 
@@ -77,9 +78,7 @@ export function exportDeclaration(node: ts.ExportDeclaration, span: Span): State
   const clause = node.exportClause;
   if (!clause) return from === undefined ? [] : [{ kind: 'export', names: [], from, all: true, span }];
   if (ts.isNamespaceExport(clause)) {
-    const exported = nameText(clause.name.text);
-    const local = `* as ${exported}`;
-    return [{ kind: 'import', from: from!, names: [], namespace: local, span }, exportNames([{ local, exported }], span)];
+    return [{ kind: 'export', names: [{ local: '*', exported: nameText(clause.name.text) }], from, all: true, span }];
   }
   const names = clause.elements
     .filter((e) => !e.isTypeOnly)
@@ -136,7 +135,7 @@ export function exportedValue(
   } else if (whole) {
     made.push(...moduleValue(c, at, span));
     const last = made[made.length - 1];
-    made.value = last?.kind === 'export' && last.value ? last.value : c.expression(at);
+    made.value = last?.kind === 'export' ? last.value : undefined;
   }
   return made;
 }
@@ -177,19 +176,31 @@ function alias(local: string, exported: string, span: Span): Statement[] {
   ];
 }
 
-/** `module.exports = v`: name by name where v is a record of names and values, else the value itself. */
+/** `module.exports = v`: the value itself, and where it is a record also those of its fields that are variables. */
 function moduleValue(c: Context, node: ts.Expression, span: Span): Statement[] {
   const value = bare(node);
-  const plain =
-    ts.isObjectLiteralExpression(value) &&
-    value.properties.every((p) => ts.isShorthandPropertyAssignment(p) || (ts.isPropertyAssignment(p) && ts.isIdentifier(bare(p.initializer)) && propertyName(p.name) !== undefined));
-  if (!plain) return [{ kind: 'export', names: [], value: c.expression(value), span }];
-  const names = (value as ts.ObjectLiteralExpression).properties.map((p): ExportName => {
-    const exported = propertyName(p.name!)!;
-    const local = ts.isPropertyAssignment(p) ? nameText((bare(p.initializer) as ts.Identifier).text) : exported;
-    return { local, exported };
+  const whole: Statement = { kind: 'export', names: [], value: c.expression(value), span };
+  const names = ts.isObjectLiteralExpression(value) ? value.properties.flatMap((p) => variableField(p) ?? []) : [];
+  return names.length > 0 ? [exportNames(names, span), whole] : [whole];
+}
+
+function variableField(node: ts.ObjectLiteralElementLike): ExportName | undefined {
+  if (ts.isShorthandPropertyAssignment(node)) return { local: nameText(node.name.text), exported: nameText(node.name.text) };
+  if (!ts.isPropertyAssignment(node)) return undefined;
+  const value = bare(node.initializer);
+  const exported = propertyName(node.name);
+  return ts.isIdentifier(value) && exported !== undefined ? { local: nameText(value.text), exported } : undefined;
+}
+
+/** `import rig from './rig'` of a file that assigns to `exports.rates` and its like: the module's value is all of them. */
+export function exportsRecord(c: Context, body: readonly Statement[]): Statement[] {
+  if (c.exported.size === 0 || body.some((s) => s.kind === 'export' && s.value)) return [];
+  const span = { start: c.source.end, end: c.source.end };
+  const fields = [...c.exported].map((name): Field => {
+    const value: Expression = { kind: 'name', name: `exports.${nameText(name)}`, span };
+    return { kind: 'field', name: nameText(name), value, span };
   });
-  return [exportNames(names, span)];
+  return [{ kind: 'export', names: [], value: { kind: 'record', fields, span }, span }];
 }
 
 function exportNames(names: readonly ExportName[], span: Span): ExportStatement {

@@ -4,6 +4,7 @@ import { findComments } from './comments';
 import { Converter } from './converter';
 import { exportedNames, topStatements } from './exports-object';
 import { scriptsOnly } from './html';
+import { exportsRecord } from './modules';
 import { languageId, parseSource, syntaxErrors } from './source';
 
 /**
@@ -22,6 +23,7 @@ export function programOf(file: string, text: string, parse: (code: string) => t
     const top = topStatements(source);
     const converter = new Converter(source, exportedNames(top));
     const body = converter.statements(top);
+    body.push(...exportsRecord(converter, body));
     return { language, indexBase: 0, body, comments: findComments(converter), errors: syntaxErrors(source) };
   } catch (error) {
     if (!(error instanceof RangeError)) throw error;
