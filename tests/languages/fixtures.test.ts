@@ -6,7 +6,7 @@ import { Judge } from '../support/judge';
  * The fixtures themselves are checked here, without the product: the code of each is run with random numbers against
  * Lagrange's equations by finite differences. Correct code must be correct, and every fault must be one.
  */
-const { fixtures, declarations } = loadFixtures('typescript');
+const { fixtures, others } = loadFixtures('typescript');
 
 describe.each(fixtures)('$file', (fixture) => {
   for (const section of fixture.sections) {
@@ -19,7 +19,7 @@ describe.each(fixtures)('$file', (fixture) => {
       continue;
     }
     let made: Judge | undefined;
-    const judge = (): Judge => (made ??= new Judge(fixture, section, declarations));
+    const judge = (): Judge => (made ??= new Judge(fixture, section, others));
     test(`${section.name} is correct as it stands`, () => {
       const wrong = new Set(section.expectations.filter((e) => e.verdict === 'differs').map((e) => e.output));
       for (const j of judge().judge(fixture.text)) {

@@ -159,17 +159,20 @@ export function withFault(fixture: Fixture, fault: Fault): string {
   return text;
 }
 
-/** All fixtures of a folder of tests/fixtures, in order of their names; `.visviva` files come apart. */
-export function loadFixtures(folder: string): { fixtures: Fixture[]; declarations: Map<string, string> } {
+/**
+ * All fixtures of a folder of tests/fixtures, in order of their names; `.visviva` files and files without a declaration,
+ * which the others import, come apart.
+ */
+export function loadFixtures(folder: string): { fixtures: Fixture[]; others: Map<string, string> } {
   const root = new URL(`../fixtures/${folder}/`, import.meta.url);
   const fixtures: Fixture[] = [];
-  const declarations = new Map<string, string>();
+  const others = new Map<string, string>();
   const names = readdirSync(root, { recursive: true, encoding: 'utf8' }).map((n) => n.replaceAll('\\', '/'));
   for (const name of names.sort()) {
     if (!/\.\w+$/.test(name)) continue;
     const text = readFileSync(new URL(name, root), 'utf8');
-    if (extension(name) === 'visviva') declarations.set(`${folder}/${name}`, text);
+    if (extension(name) === 'visviva' || !text.includes('@visviva')) others.set(`${folder}/${name}`, text);
     else fixtures.push(parseFixture(`${folder}/${name}`, text));
   }
-  return { fixtures, declarations };
+  return { fixtures, others };
 }

@@ -27,19 +27,19 @@ export class Judge {
   constructor(
     private readonly fixture: Fixture,
     private readonly section: Section,
-    definitions: ReadonlyMap<string, string> = new Map(),
+    private readonly others: ReadonlyMap<string, string> = new Map(),
   ) {
     const block = fixture.text.slice(fixture.text.indexOf(`@visviva`, section.start), section.end);
     const own = readDeclaration(section.name, block);
-    this.system = own.coordinates.length > 0 ? own : this.elsewhere(definitions);
+    this.system = own.coordinates.length > 0 ? own : this.elsewhere();
     this.claims = own.claims;
     this.named = [...own.named.keys()];
     this.draw(own);
   }
 
-  private elsewhere(definitions: ReadonlyMap<string, string>): Declared {
+  private elsewhere(): Declared {
     const name = this.section.name;
-    for (const text of [this.fixture.text, ...definitions.values()]) {
+    for (const text of [this.fixture.text, ...this.others.values()]) {
       for (const match of text.matchAll(/@visviva[ \t]+(\S+)/g)) {
         if (match[1] !== name) continue;
         const found = readDeclaration(name, text.slice(match.index));
@@ -81,7 +81,7 @@ export class Judge {
     const first = this.states[0]!.instant;
     const symbols = [...first].flatMap(([name, series]) => series.map((_, k) => name + "'".repeat(k)));
     const constants = new Set([...this.system.parameters.map((p) => p.name), ...this.named]);
-    const run = compileRun(this.fixture.file, text, this.section.run, this.claims, symbols, constants);
+    const run = compileRun(this.fixture.file, text, this.section.run, this.claims, symbols, constants, this.others);
     const worst = this.claims.map(() => 0);
     for (const { instant, expected } of this.states) {
       const given = new Map([...instant].flatMap(([name, series]) => series.map((v, k) => [name + "'".repeat(k), v] as const)));

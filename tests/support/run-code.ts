@@ -24,6 +24,7 @@ export function compileRun(
   claims: readonly Claimed[],
   symbols: readonly string[],
   constants: ReadonlySet<string>,
+  others: ReadonlyMap<string, string> = new Map(),
 ): Run {
   const source = extension(file) === 'html' ? scriptsOf(text) : text;
   const setup = lines.slice(0, -1).join('\n');
@@ -31,10 +32,7 @@ export function compileRun(
   const declared = new Set([...setup.matchAll(/\b(?:const|let|var)\s+(\w+|\{[^}]*\}|\[[^\]]*\])/g)].flatMap((m) => m[1]!.match(/\w+/g) ?? []));
   const roots = claims.map((c) => rootsOf(c.left)).flat();
   const probes = new Set(roots.filter((name) => name !== 'return' && name !== 'this' && !declared.has(name)));
-  const module = ts.transpileModule(prepare(source, probes, constants), {
-    compilerOptions: { target: ts.ScriptTarget.ES2022, module: ts.ModuleKind.CommonJS, jsx: ts.JsxEmit.React },
-    fileName: file.endsWith('x') ? 'module.tsx' : 'module.ts',
-  }).outputText;
+  const module = toCommonJs(file, prepare(source, probes, constants));
   const left = (code: string): string => {
     const inner = code.replace(/\breturn\b/g, '__result').replace(/\bthis\b/g, 'self');
     return [...probes].reduce((c, p) => c.replace(new RegExp(`(?<![.\\w])${p}\\b`, 'g'), `__get(${JSON.stringify(p)}, () => ${p})`), inner);
@@ -43,7 +41,7 @@ export function compileRun(
   const before = `[${claims.map((c) => (c.op === '=' ? '0' : left(primed(c.left)))).join(', ')}]`;
   const names = symbols.map(primed);
   const body = `
-    const exports = {}, module = { exports }, require = () => ({}), React = { createElement: () => null };
+    const exports = {}, module = { exports }, require = __require, React = { createElement: () => null };
     const __seen = Object.create(null);
     const __get = (name, other) => (name in __seen ? __seen[name] : other());
     ${module}
@@ -54,13 +52,32 @@ export function compileRun(
       __result = (${primed(call)});
       return ${values}.map((v, i) => v - __before[i]);
     })(${names.map((_, i) => `__values[${i}]`).join(', ')});`;
-  let compiled: (values: readonly number[], known: (name: string) => number) => number[];
+  let compiled: (values: readonly number[], known: (name: string) => number, load: (from: string) => unknown) => number[];
   try {
-    compiled = new Function('__values', '__known', body) as typeof compiled;
+    compiled = new Function('__values', '__known', '__require', body) as typeof compiled;
   } catch (error) {
     throw new Error(`${file}: the run lines do not compile: ${String(error)}`, { cause: error });
   }
-  return (given) => compiled(symbols.map((s) => given.get(s)!), (name) => given.get(name)!);
+  return (given) => compiled(symbols.map((s) => given.get(s)!), (name) => given.get(name)!, (from) => load(from, file, others));
+}
+
+function toCommonJs(file: string, source: string): string {
+  return ts.transpileModule(source, {
+    compilerOptions: { target: ts.ScriptTarget.ES2022, module: ts.ModuleKind.CommonJS, jsx: ts.JsxEmit.React },
+    fileName: file.endsWith('x') ? 'module.tsx' : 'module.ts',
+  }).outputText;
+}
+
+/** What an import of a file beside the fixture gives; nothing for packages. */
+function load(from: string, importer: string, others: ReadonlyMap<string, string>): unknown {
+  const path = new URL(from, `file:///${importer}`).pathname.slice(1);
+  const file = ['', '.ts', '.js', '.mjs', '/index.ts'].map((end) => path + end).find((name) => others.has(name));
+  const exports = {};
+  if (!from.startsWith('.') || !file) return exports;
+  const module = { exports };
+  const body = toCommonJs(file, others.get(file)!);
+  new Function('exports', 'module', 'require', body)(exports, module, (next: string) => load(next, file, others));
+  return module.exports;
 }
 
 /** `a[1]` and `2*b - x''`: the names a claim's left side starts its paths with, the declared symbols among them. */
