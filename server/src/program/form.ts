@@ -1,3 +1,4 @@
+import type { Expr } from '../expression/node';
 import type { Rational } from '../expression/rational';
 import type { Span } from '../text/span';
 
@@ -13,6 +14,16 @@ export interface Program {
   readonly language: string;
   /** Index of the first array element: 0 or 1. */
   readonly indexBase: 0 | 1;
+  /** Operators between lists work element by element (MATLAB, Julia); else only those of numeric vectors do. */
+  readonly elementwise?: boolean;
+  /** `+` joins plain lists and `*` repeats them (Python). */
+  readonly listConcat?: boolean;
+  /** Every top-level name can be imported, listed as an export or not. */
+  readonly exportsAll?: boolean;
+  /** Negative indices count from the end (Python). */
+  readonly negativeIndex?: boolean;
+  /** `*` and `/` between lists are the matrix operations (MATLAB, Julia). */
+  readonly matrixProduct?: boolean;
   readonly body: readonly Statement[];
   /** Every comment and docstring, with what it stands before or in. */
   readonly comments: readonly Comment[];
@@ -70,6 +81,8 @@ export type Expression =
   /** `[f(x) for x in xs if c]` */
   | { readonly kind: 'comprehension'; readonly body: Expression; readonly loops: readonly ComprehensionLoop[]; readonly span: Span }
   | { readonly kind: 'sequence'; readonly items: readonly Expression[]; readonly span: Span }
+  /** A value that a caller puts into an output: `x''` in `M11*x'' + h1`. No language makes one. */
+  | { readonly kind: 'symbolic'; readonly expr: Expr; readonly span: Span }
   /** What the executor must not read: the reason, in words that complete "can't read ...". */
   | { readonly kind: 'opaque'; readonly reason: string; readonly span: Span };
 
@@ -150,6 +163,8 @@ export interface Member {
   /** Private names keep their mark: `#m`. */
   readonly name: string;
   readonly isStatic: boolean;
+  /** `readonly`, `final`, `const`: nothing changes it after construction. */
+  readonly isConstant?: boolean;
   readonly value?: Expression;
   readonly node?: FunctionNode;
   readonly span: Span;

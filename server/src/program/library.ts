@@ -14,6 +14,8 @@ export interface Library {
   readonly intrinsics: ReadonlyMap<string, string>;
   /** Methods by the receiver's kind: `list.map` -> `list-map`. */
   readonly methods: ReadonlyMap<string, string>;
+  /** Members that are values, not methods, by the receiver's kind: `list.T` -> `transpose`. */
+  readonly properties?: ReadonlyMap<string, string>;
   /** Modules whose import gives the names of this table: `import { sin } from 'math'` -> prefix `Math.` */
   readonly modules: ReadonlyMap<string, string>;
   /** Calls that can be left out when their value is not used: `console.log`. */

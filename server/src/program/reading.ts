@@ -46,6 +46,8 @@ export interface ReadRequest {
     | { readonly kind: 'function'; readonly node: FunctionNode; readonly owner?: ClassNode }
     /** Nothing is run: outputs call methods (`H(q)`, `rates.return[1]`) on a generic instance. */
     | { readonly kind: 'class'; readonly node: ClassNode }
+    /** No function is run: the outputs call methods of the class. */
+    | { readonly kind: 'class'; readonly node: ClassNode }
     | { readonly kind: 'file' };
   readonly meanings: Meanings;
   /** Conditions of `assume`, in program form, each to be taken as true. */

@@ -1,0 +1,124 @@
+import type { Place } from '../text/span';
+import { evaluate } from './expressions';
+import type { Expression, Pattern } from './form';
+import { clipsVariable } from './limits';
+import type { Machine } from './machine';
+import { readElement, readMember, writeElement, writeMember } from './members';
+import { withEach } from './merging';
+import { binary } from './operators';
+import { bindPattern } from './patterns';
+import type { Scope } from './scope';
+import { sliceTargets } from './slices';
+import { arrivalOf, arrive, declare, readVariable, write } from './variables';
+import { NOTHING, unread, type Value } from './values';
+
+/** `a = v`, `a += v`, `i++`. */
+export function assign(m: Machine, scope: Scope, e: Expression & { kind: 'assign' }, place: Place): Value {
+  const { target } = e;
+  if (target.kind === 'name') return assignName(m, scope, e, target.name, place);
+  if (target.kind === 'place') return assignPlace(m, scope, e, target.target, place);
+  if (e.op) return unread('an operator on several targets', place);
+  const value = evaluate(m, scope, e.value);
+  bindPattern(m, scope, target, value, (s, p, v) => assignTo(m, s, p, v));
+  return value;
+}
+
+function assignName(m: Machine, scope: Scope, e: Expression & { kind: 'assign' }, name: string, place: Place): Value {
+  const known = scope.find(name);
+  const old = e.op ? (known ? readVariable(m, known, place) : unread(`\`${name}\` is used before it has a value`, place)) : NOTHING;
+  const given = evaluate(m, scope, e.value);
+  const variable = known ?? scope.find(name) ?? declare(m, scope.functionScope, name);
+  const at = m.place(scope, e.value.span);
+  let value: Value;
+  if (e.op) value = joined(m, scope, e, old, given, place);
+  else if (m.request.withinLimits && known && clipsVariable(m, readVariable(m, known, place), given)) value = readVariable(m, known, place);
+  else value = arrive(m, name, given, arrivalOf(variable.scope, name, at));
+  write(m, variable, value);
+  return e.yields === 'old' ? old : value;
+}
+
+function joined(m: Machine, scope: Scope, e: Expression & { kind: 'assign' }, old: Value, given: Value, place: Place): Value {
+  const value = binary(m, scope.frame.module, e.op!, old, given, place);
+  if (value.kind === 'scalar') m.note(place, value.expr);
+  return value;
+}
+
+function assignPlace(m: Machine, scope: Scope, e: Expression & { kind: 'assign' }, target: Expression, place: Place): Value {
+  const { module } = scope.frame;
+  if (target.kind === 'member') {
+    const object = evaluate(m, scope, target.object);
+    return through(m, scope, e, object, place, (o) => readMember(m, module, o, target.name, place), (o, v) => writeMember(m, module, o, target.name, v, place));
+  }
+  if (target.kind === 'index') {
+    let object = evaluate(m, scope, target.object);
+    if (target.indices.some((i) => i.kind === 'slice')) return assignSlice(m, scope, e, target, object, place);
+    const keys = target.indices.map((i) => evaluate(m, scope, i));
+    for (const k of keys.slice(0, -1)) object = readElement(m, module, object, k, place);
+    const key = keys[keys.length - 1]!;
+    return through(m, scope, e, object, place, (o) => readElement(m, module, o, key, place), (o, v) => writeElement(m, module, o, key, v, place));
+  }
+  if (target.kind === 'name') return assignName(m, scope, e, target.name, place);
+  evaluate(m, scope, e.value);
+  return unread('an assignment to something that is no variable, member or element', place);
+}
+
+function through(
+  m: Machine,
+  scope: Scope,
+  e: Expression & { kind: 'assign' },
+  object: Value,
+  place: Place,
+  read: (object: Value) => Value,
+  put: (object: Value, value: Value) => void,
+): Value {
+  if (object.kind === 'unread') {
+    evaluate(m, scope, e.value);
+    return object;
+  }
+  return withEach(m, object, place, (o) => {
+    const old = e.op ? read(o) : NOTHING;
+    const given = evaluate(m, scope, e.value);
+    let value = e.op ? joined(m, scope, e, old, given, place) : given;
+    if (!e.op && m.request.withinLimits && given.kind === 'scalar') {
+      const before = read(o);
+      if (clipsVariable(m, before, given)) value = before;
+    }
+    put(o, value);
+    return e.yields === 'old' ? old : value;
+  });
+}
+
+function assignSlice(m: Machine, scope: Scope, e: Expression & { kind: 'assign' }, target: Expression & { kind: 'index' }, object: Value, place: Place): Value {
+  const value = evaluate(m, scope, e.value);
+  const targets = sliceTargets(m, scope, object, target.indices, value, place);
+  if ('kind' in targets) {
+    if (object.kind === 'object') m.breakObject(object.id, targets);
+    return targets;
+  }
+  const { module } = scope.frame;
+  for (const t of targets) {
+    const old = e.op ? readElement(m, module, t.object, t.key, place) : NOTHING;
+    writeElement(m, module, t.object, t.key, e.op ? binary(m, module, e.op, old, t.value, place) : t.value, place);
+  }
+  return value;
+}
+
+/** Assigns to a pattern that is no declaration. */
+export function assignTo(m: Machine, scope: Scope, pattern: Pattern, value: Value): void {
+  if (pattern.kind === 'name') {
+    const variable = scope.find(pattern.name) ?? declare(m, scope.functionScope, pattern.name);
+    const place = m.place(scope, pattern.span);
+    write(m, variable, arrive(m, pattern.name, value, arrivalOf(variable.scope, pattern.name, place)));
+  } else if (pattern.kind === 'place') {
+    const { module } = scope.frame;
+    const place = m.place(scope, pattern.span);
+    const t = pattern.target;
+    if (t.kind === 'member') writeMember(m, module, evaluate(m, scope, t.object), t.name, value, place);
+    else if (t.kind === 'index') {
+      let object = evaluate(m, scope, t.object);
+      const keys = t.indices.map((i) => evaluate(m, scope, i));
+      for (const k of keys.slice(0, -1)) object = readElement(m, module, object, k, place);
+      writeElement(m, module, object, keys[keys.length - 1]!, value, place);
+    }
+  }
+}

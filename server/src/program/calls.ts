@@ -1,0 +1,386 @@
+import type { Place } from '../text/span';
+import { callSuper, construct, findMember } from './classes';
+import { evaluate } from './expressions';
+import type { Argument, Expression, Parameter } from './form';
+import { childOf, genericAt, valueOf } from './generics';
+import { runIntrinsic } from './intrinsics/table';
+import type { Machine } from './machine';
+import { readMember } from './members';
+import { apply, mergeEndings, withEach, type Ending } from './merging';
+import { requireModule } from './modules';
+import { dataOf, describe, itemsOf, numeric } from './numbers';
+import { bindItem } from './patterns';
+import { lastName, pathOf } from './paths';
+import { assignments, hoistedNames } from './scan';
+import { Scope, type Frame, type Module } from './scope';
+import { execute, type Exit } from './statements';
+import { arrivalOf, arrive, declare, readVariable, write } from './variables';
+import { NOTHING, isUnread, unread, type FunctionValue, type LibraryValue, type Unread, type Value } from './values';
+
+/** Calls: of the code's own functions, by running them; of the library, by its table; of anything else, not at all. */
+
+export interface ArgumentValue {
+  readonly value: Value;
+  readonly name?: string;
+}
+
+const DEEPEST_CALLS = 64;
+
+export function evaluateCall(m: Machine, scope: Scope, e: Expression & { kind: 'call' }, place: Place): Value {
+  const text = pathOf(e);
+  if (text !== undefined && m.naming.hasRead(text)) return valueOf(m, m.naming.read([text], place)!, place);
+  const words = pathOf(e.callee);
+  if (words !== undefined && scope.frame.module.library.ignorable.has(words) && !isOwn(scope, e.callee)) return NOTHING;
+  if (e.callee.kind === 'super') {
+    const args = argumentValues(m, scope, e.args, place);
+    if (isProblem(args)) return args;
+    const { self, home } = scope.frame;
+    return self?.kind === 'object' && home ? callSuper(m, home, self, args, place) : unread('`super(...)` outside a class', place);
+  }
+  if (e.callee.kind === 'name' && e.callee.name === 'require' && !scope.find('require')) {
+    const from = e.args[0]?.value;
+    return from?.kind === 'string' ? requireModule(m, scope, from.value, place) : unread('`require` of a name that is not known', place);
+  }
+  let self: Value | undefined;
+  let callee: Value;
+  if (e.callee.kind === 'member' && e.callee.object.kind !== 'super') {
+    const object = evaluate(m, scope, e.callee.object);
+    if (object.kind === 'nothing' && (e.callee.optional || e.optional)) return NOTHING;
+    if (object.kind === 'unread') return consume(m, scope, e, object);
+    const { name } = e.callee;
+    const at = m.place(scope, e.callee.span);
+    return withEach(m, object, place, (o) => {
+      const f = forwarded(o, name) ? o : readMember(m, scope.frame.module, o, name, at);
+      const args = argumentValues(m, scope, e.args, place);
+      if (isProblem(args)) return args;
+      if (f === o) return forward(m, scope, name, o, args, place);
+      return callValue(m, scope, f, o, args, place, wordsOf(e.callee), e.isNew);
+    });
+  }
+  callee = evaluate(m, scope, e.callee);
+  if (callee.kind === 'nothing' && e.optional) return NOTHING;
+  if (callee.kind === 'unread') return consume(m, scope, e, callee);
+  const args = argumentValues(m, scope, e.args, place);
+  if (isProblem(args)) return args;
+  return callValue(m, scope, callee, self, args, place, wordsOf(e.callee), e.isNew);
+}
+
+function isOwn(scope: Scope, callee: Expression): boolean {
+  let e = callee;
+  while (e.kind === 'member') e = e.object;
+  return e.kind === 'name' && scope.find(e.name) !== undefined;
+}
+
+function wordsOf(callee: Expression): string {
+  return pathOf(callee) ?? 'a function';
+}
+
+/** A call of something unread: what it is given may be changed by it. */
+function consume(m: Machine, scope: Scope, e: Expression & { kind: 'call' }, why: Unread): Value {
+  const args = argumentValues(m, scope, e.args, m.place(scope, e.span));
+  if (!isProblem(args)) damage(m, args, why);
+  return why;
+}
+
+export function argumentValues(m: Machine, scope: Scope, args: readonly Argument[], place: Place): ArgumentValue[] | Unread {
+  const values: ArgumentValue[] = [];
+  for (const a of args) {
+    const value = evaluate(m, scope, a.value);
+    if (!a.spread) {
+      values.push({ value, ...(a.name !== undefined ? { name: a.name } : {}) });
+      continue;
+    }
+    const items = itemsOf(m, value);
+    const data = dataOf(m, value);
+    if (items) values.push(...items.map((v) => ({ value: v })));
+    else if (data?.kind === 'record') for (const [name, v] of data.members) values.push({ value: v, name });
+    else return value.kind === 'unread' ? value : unread('arguments spread from a list whose length is not known', place);
+  }
+  return values;
+}
+
+function isProblem(x: ArgumentValue[] | Unread): x is Unread {
+  return !Array.isArray(x);
+}
+
+function forwarded(o: Value, name: string): boolean {
+  return o.kind === 'function' && (name === 'call' || name === 'apply' || name === 'bind');
+}
+
+function forward(m: Machine, scope: Scope, name: string, f: Value, args: readonly ArgumentValue[], place: Place): Value {
+  if (f.kind !== 'function') return unread('a call', place);
+  const [self, ...rest] = args;
+  if (name === 'call') return invoke(m, f, self?.value, rest, place);
+  if (name === 'bind') {
+    if (rest.length > 0) return unread('`bind` with arguments', place);
+    return self ? { ...f, self: self.value } : f;
+  }
+  const items = rest[0] ? itemsOf(m, rest[0].value) : [];
+  void scope;
+  return items ? invoke(m, f, self?.value, items.map((value) => ({ value })), place) : unread('`apply` with a list that is not known', place);
+}
+
+export function callValue(
+  m: Machine,
+  scope: Scope,
+  callee: Value,
+  self: Value | undefined,
+  args: readonly ArgumentValue[],
+  place: Place,
+  words: string,
+  isNew = false,
+): Value {
+  switch (callee.kind) {
+    case 'unread':
+      damage(m, args, callee);
+      return callee;
+    case 'choice':
+      return withEach(m, callee, place, (f) => callValue(m, scope, f, self, args, place, words, isNew));
+    case 'function':
+      return isNew ? constructPlain(m, callee, args, place) : invoke(m, callee, callee.self ?? self, args, place);
+    case 'class':
+      return construct(m, callee.info, args, place);
+    case 'library':
+      return callLibrary(m, callee, args, place);
+    case 'method':
+      return runIntrinsic(m, scope.frame.module, callee.intrinsic, callee.self, args, place);
+    case 'object':
+      return callObject(m, scope, callee, args, place, words);
+    default:
+      return unknownCall(m, args, place, callee.kind === 'nothing' ? words : `${words}\`, a ${describe(callee)}, \`(...)`);
+  }
+}
+
+function callObject(m: Machine, scope: Scope, callee: Value & { kind: 'object' }, args: readonly ArgumentValue[], place: Place, words: string): Value {
+  const data = dataOf(m, callee)!;
+  if (data.kind === 'record' && data.info) {
+    const found = findMember(data.info, '__call__');
+    if (found && found !== 'unknown' && found.member.node) {
+      return invoke(m, { kind: 'function', node: found.member.node, scope: found.info.scope, home: found.info }, callee, args, place);
+    }
+  }
+  // A call is how some languages take an element.
+  if (data.kind === 'list' && scope.frame.module.program.elementwise && args.length > 0) {
+    return runIntrinsic(m, scope.frame.module, 'list-element', callee, args, place);
+  }
+  if (data.kind !== 'generic') return unknownCall(m, args, place, words);
+  const { generic } = data;
+  const known = generic.fallback?.();
+  if (known?.kind === 'function' || known?.kind === 'class') return callValue(m, scope, known, undefined, args, place, words);
+  if (args.length === 0) return getter(m, callee, place);
+  const shown = args.map((a) => argumentWords(m, a.value));
+  if (!shown.includes(undefined)) {
+    const paths = [generic.path, ...generic.aliases].map((p) => `${p}(${shown.join(', ')})`);
+    const read = m.naming.read(paths, place);
+    if (read) return valueOf(m, read, place);
+  }
+  return unknownCall(m, args, place, words);
+}
+
+function getter(m: Machine, callee: Value & { kind: 'object' }, place: Place): Value {
+  const data = m.store.data(callee.id);
+  if (data.kind !== 'generic') return unread('a call', place);
+  const { generic } = data;
+  // Known as a child of its own, so that it is the same thing at each call.
+  const key = '()';
+  const paths = [generic.path, ...generic.aliases].map((p) => `${p}()`);
+  const child = childOf(m, callee.id, { ...generic, path: '', aliases: [] }, key, place);
+  const made = m.store.data(child.id);
+  if (made.kind === 'generic' && made.generic.path !== paths[0]) {
+    const fresh = genericAt(m, paths[0]!, place, { aliases: paths.slice(1) });
+    m.atRoot(() => m.store.set(child.id, m.store.data(fresh.id)));
+  }
+  return child;
+}
+
+function argumentWords(m: Machine, v: Value): string | undefined {
+  if (v.kind === 'string') return JSON.stringify(v.value);
+  if (v.kind === 'scalar' && v.expr.op === 'number') return String(v.expr.data);
+  if (v.kind !== 'object') return undefined;
+  const data = m.store.data(v.id);
+  return data.kind === 'generic' ? data.generic.path : undefined;
+}
+
+function callLibrary(m: Machine, callee: LibraryValue, args: readonly ArgumentValue[], place: Place): Value {
+  const { library } = callee.module;
+  if (library.ignorable.has(callee.path)) return NOTHING;
+  const intrinsic = library.intrinsics.get(callee.path);
+  if (intrinsic) return runIntrinsic(m, callee.module, intrinsic, undefined, args, place);
+  const scalar = library.scalars.get(callee.path);
+  if (scalar) return applyScalar(m, scalar, args.map((a) => a.value), place);
+  const name = lastName(callee.path);
+  return unknownCall(m, args, place, callee.path, name === 'random' ? 'a random number' : undefined);
+}
+
+/** A scalar function; over the items of a numeric vector where it is given one. */
+export function applyScalar(m: Machine, f: NonNullable<ReturnType<LibraryValue['module']['library']['scalars']['get']>>, args: readonly Value[], place: Place): Value {
+  const choice = args.findIndex((a) => a.kind === 'choice');
+  if (choice >= 0) {
+    return withEach(m, args[choice]!, place, (v) => applyScalar(m, f, args.map((a, k) => (k === choice ? v : a)), place));
+  }
+  const lists = args.map((a) => itemsOf(m, a));
+  const length = lists.find((l) => l)?.length;
+  if (length !== undefined) {
+    if (lists.some((l) => l && l.length !== length)) return unread('lists of different length', place);
+    const items = Array.from({ length }, (_, k) => applyScalar(m, f, args.map((a, i) => lists[i]?.[k] ?? a), place));
+    return m.list(items, true);
+  }
+  const exprs = [];
+  for (const a of args) {
+    const n = numeric(m, a, place);
+    if (isUnread(n)) return n;
+    exprs.push(n);
+  }
+  const r = f(m.graph, exprs);
+  return 'unread' in r ? unread(r.unread, place) : m.scalar(r, place);
+}
+
+export function unknownCall(m: Machine, args: readonly ArgumentValue[], place: Place, words: string, why?: string): Unread {
+  const reason = unread(why ?? `can't read the call \`${words}(...)\`: no function of that name is in this project or in the library tables`, place);
+  damage(m, args, reason);
+  return reason;
+}
+
+/** Things made here that an unknown call was given may be changed by it. */
+export function damage(m: Machine, args: readonly ArgumentValue[], why: Unread): void {
+  const seen = new Set<number>();
+  const stack = args.map((a) => a.value);
+  while (stack.length > 0) {
+    const v = stack.pop()!;
+    if (v.kind === 'choice') stack.push(v.whenTrue, v.whenFalse);
+    if (v.kind === 'function') {
+      for (const name of assignments(v.node).assigned) {
+        const variable = v.scope.find(name);
+        if (variable) write(m, variable, why);
+      }
+    }
+    if (v.kind !== 'object' || seen.has(v.id)) continue;
+    seen.add(v.id);
+    const data = m.store.data(v.id);
+    if (data.kind === 'list') stack.push(...data.items);
+    else if (data.kind === 'record') stack.push(...data.members.values());
+    if (data.kind === 'list' || data.kind === 'record') m.breakObject(v.id, why);
+    else if (data.kind === 'generic' && data.members.size > 0) {
+      const own = m.store.writable(v.id);
+      if (own.kind === 'generic') for (const key of [...own.members.keys()]) own.members.set(key, why);
+    }
+  }
+}
+
+/** `new F(...)` of a plain function: JavaScript before classes. */
+function constructPlain(m: Machine, f: FunctionValue, args: readonly ArgumentValue[], place: Place): Value {
+  const prototype = readMember(m, f.scope.frame.module, f, 'prototype', place);
+  const self = m.object({
+    kind: 'record',
+    members: new Map(),
+    ...(prototype.kind === 'object' ? { prototype: prototype.id } : {}),
+  });
+  const result = invoke(m, f, self, args, place);
+  return result.kind === 'unread' || result.kind === 'object' ? result : self;
+}
+
+/** Calls a value that is handed over as a function. */
+export function callFunctionValue(m: Machine, module: Module, f: Value, args: readonly Value[], place: Place): Value {
+  return callValue(m, module.scope, f, undefined, args.map((value) => ({ value })), place, 'a function');
+}
+
+/** Runs a function of the code. */
+export function invoke(m: Machine, f: FunctionValue, self: Value | undefined, args: readonly ArgumentValue[], place: Place): Value {
+  const { node } = f;
+  if (node.opaque !== undefined) {
+    const why = unread(`can't read \`${node.name}\`: it is ${node.opaque}`, place);
+    damage(m, args, why);
+    return why;
+  }
+  if (m.calls >= DEEPEST_CALLS) return unread(`can't read \`${node.name}\`: it calls itself, or calls are nested too deeply (recursion)`, place);
+  m.calls++;
+  const base = m.store;
+  const receiver = node.inheritsSelf ? (f.self ?? f.scope.frame.self) : (f.self ?? self);
+  const home = node.inheritsSelf ? (f.home ?? f.scope.frame.home) : f.home;
+  const names = m.store.add({ kind: 'record', members: new Map() });
+  m.frameNames.add(names);
+  const frame: Frame = {
+    module: f.scope.frame.module,
+    node,
+    names,
+    depth: m.calls,
+    ...(receiver ? { self: receiver } : {}),
+    ...(home ? { home } : {}),
+  };
+  const scope = new Scope(f.scope, frame, true);
+  bindParameters(m, scope, node.parameters, args, node.selfParameter ? receiver : undefined, node.selfParameter === true);
+  const value = runBody(m, scope, base, place);
+  m.calls--;
+  return value;
+}
+
+/** Runs the body of a function whose parameters are bound, and brings its ways out together in `base`. */
+export function runBody(m: Machine, scope: Scope, base: Machine['store'], place: Place): Value {
+  const { node } = scope.frame;
+  if (!node) return NOTHING;
+  for (const name of hoistedNames(node.body)) if (!scope.variables.has(name)) declare(m, scope, name, undefined);
+  for (const r of node.results ?? []) if (!scope.variables.has(r.name)) declare(m, scope, r.name, undefined);
+  const { exits, normal } = execute(m, scope, node.body);
+  const endings: Ending[] = exits.map((x) => endingOf(m, scope, x, base));
+  if (normal || endings.length === 0) {
+    endings.push({ guard: m.graph.true, changes: m.store.changesSince(base), value: resultsOf(m, scope) });
+  }
+  const merged = mergeEndings(m, base, endings, m.place(scope, node.nameSpan));
+  m.store = base;
+  apply(base, merged.changes);
+  void place;
+  return merged.value;
+}
+
+function endingOf(m: Machine, scope: Scope, exit: Exit, base: Machine['store']): Ending {
+  m.store = exit.store;
+  if (exit.kind === 'throw') m.die();
+  const value = exit.kind === 'return' ? (scope.frame.node?.results ? resultsOf(m, scope) : exit.value) : NOTHING;
+  return { guard: exit.guard, changes: m.store.changesSince(base), value };
+}
+
+/** The result variables of a language whose functions name them. */
+function resultsOf(m: Machine, scope: Scope): Value {
+  const results = scope.frame.node?.results;
+  if (!results || results.length === 0) return NOTHING;
+  const values = results.map((r) => {
+    const variable = scope.variables.get(r.name);
+    return variable ? readVariable(m, variable, m.place(scope, r.span)) : NOTHING;
+  });
+  return values.length === 1 ? values[0]! : m.list(values);
+}
+
+function bindParameters(m: Machine, scope: Scope, parameters: readonly Parameter[], args: readonly ArgumentValue[], self: Value | undefined, takesSelf: boolean): void {
+  const positional = args.filter((a) => a.name === undefined).map((a) => a.value);
+  const named = new Map(args.filter((a) => a.name !== undefined).map((a) => [a.name!, a.value]));
+  const list = [...parameters];
+  if (takesSelf) {
+    const first = list.shift();
+    if (first) bindParameter(m, scope, first, self ?? positional.shift() ?? NOTHING);
+  }
+  for (const parameter of list) {
+    if (parameter.restNamed) {
+      bindParameter(m, scope, parameter, m.object({ kind: 'record', members: new Map(named) }));
+    } else if (parameter.rest) {
+      bindParameter(m, scope, parameter, m.list(positional.splice(0)));
+    } else {
+      const name = parameter.pattern.kind === 'name' ? parameter.pattern.name : undefined;
+      let value: Value = NOTHING;
+      if (name !== undefined && named.has(name)) {
+        value = named.get(name)!;
+        named.delete(name);
+      } else if (!parameter.keywordOnly && positional.length > 0) value = positional.shift()!;
+      bindParameter(m, scope, parameter, value);
+    }
+  }
+}
+
+function bindParameter(m: Machine, scope: Scope, parameter: Parameter, value: Value): void {
+  bindItem(m, scope, parameter, value, (s, pattern, v, fromDefault) => {
+    if (pattern.kind !== 'name') return;
+    const place = m.place(s, pattern.span);
+    const settled = fromDefault ? arrive(m, pattern.name, v, arrivalOf(s, pattern.name, place)) : v;
+    declare(m, s, pattern.name, settled);
+    if (parameter.field && s.frame.self?.kind === 'object') m.setMember(s.frame.self, pattern.name, settled);
+  });
+}

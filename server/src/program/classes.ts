@@ -1,0 +1,199 @@
+import type { Place } from '../text/span';
+import { invoke, type ArgumentValue } from './calls';
+import { evaluate } from './expressions';
+import type { ClassNode, Member } from './form';
+import { genericAt, valueOf } from './generics';
+import type { Machine } from './machine';
+import { patternNames } from './scan';
+import { Scope, type ClassInfo, type Frame } from './scope';
+import { declare, settleName } from './variables';
+import { NOTHING, unread, type FunctionValue, type ObjectValue, type Value } from './values';
+
+/** Classes: their members, instances, and the fields of an instance from outside. */
+
+export function classInfo(m: Machine, scope: Scope, node: ClassNode): ClassInfo {
+  const known = m.classes.get(node);
+  if (known && known.scope.parent === scope) return known;
+  const inner = new Scope(scope, scope.frame);
+  let base: ClassInfo | 'unknown' | undefined | null = null;
+  const info: ClassInfo = {
+    node,
+    scope: inner,
+    statics: m.atRoot(() => m.store.add({ kind: 'record', members: new Map() })),
+    base: () => {
+      if (base === null) {
+        base = undefined;
+        const value = node.base ? evaluate(m, scope, node.base) : NOTHING;
+        base = value.kind === 'class' ? value.info : node.base ? 'unknown' : undefined;
+      }
+      return base;
+    },
+  };
+  m.classes.set(node, info);
+  // The class knows itself by name, also where it is an expression.
+  if (node.name !== '' && !scope.variables.has(node.name)) declare(m, inner, node.name, { kind: 'class', info });
+  return info;
+}
+
+type Found = { readonly member: Member; readonly info: ClassInfo };
+
+/** The getter, method or field of instances by this name, the nearest class first. */
+export function findMember(info: ClassInfo, name: string, kind?: Member['kind'], isStatic = false): Found | 'unknown' | undefined {
+  let at: ClassInfo | 'unknown' | undefined = info;
+  for (let k = 0; at && k < 64; k++) {
+    if (at === 'unknown') return 'unknown';
+    const here: ClassInfo = at;
+    const member = here.node.members.find(
+      (x) => x.name === name && x.isStatic === isStatic && (kind ? x.kind === kind : x.kind !== 'setter' && x.kind !== 'constructor'),
+    );
+    if (member) return { member, info: here };
+    at = here.base();
+  }
+  return undefined;
+}
+
+export function staticMember(m: Machine, info: ClassInfo, key: string, place: Place): Value {
+  const written = m.store.data(info.statics);
+  const own = written.kind === 'record' ? written.members.get(key) : undefined;
+  if (own) return own;
+  const found = findMember(info, key, undefined, true);
+  if (found === 'unknown') return unread(`\`.${key}\` of a class whose base is not read`, place);
+  if (!found) return findInstanceMethod(m, info, key, place);
+  const { member } = found;
+  const self: Value = { kind: 'class', info: found.info };
+  if (member.node) {
+    const f: FunctionValue = { kind: 'function', node: member.node, scope: found.info.scope, self, home: found.info };
+    return member.kind === 'getter' ? invoke(m, f, self, [], place) : f;
+  }
+  if (!member.value) return NOTHING;
+  const value = m.atRoot(() => {
+    const v = evaluate(m, bodyScope(m, found.info, self), member.value!);
+    return settleName(m, key, `${info.node.name}.${key}`, v, m.place(found.info.scope, member.span));
+  });
+  m.atRoot(() => {
+    const data = m.store.writable(found.info.statics);
+    if (data.kind === 'record') data.members.set(key, value);
+  });
+  return value;
+}
+
+/** Python's `Base.method(self, ...)`. */
+function findInstanceMethod(m: Machine, info: ClassInfo, key: string, place: Place): Value {
+  if (key === 'prototype') return { kind: 'class', info };
+  const found = findMember(info, key);
+  if (found && found !== 'unknown' && found.member.kind === 'method' && found.member.node) {
+    return { kind: 'function', node: found.member.node, scope: found.info.scope, home: found.info };
+  }
+  void m;
+  return found ? unread(`\`.${key}\` of a class`, place) : NOTHING;
+}
+
+function bodyScope(m: Machine, info: ClassInfo, self: Value): Scope {
+  const outer = info.scope.frame;
+  const names = m.atRoot(() => m.store.add({ kind: 'record', members: new Map() }));
+  const frame: Frame = { ...outer, self, home: info, names };
+  return new Scope(info.scope, frame, true);
+}
+
+export function construct(m: Machine, info: ClassInfo, args: readonly ArgumentValue[], place: Place): Value {
+  const self = m.object({ kind: 'record', members: new Map(), info });
+  const problem = initialise(m, info, self, args, place);
+  return problem ?? self;
+}
+
+/** Runs field initialisers and constructors, the base's first. */
+export function initialise(m: Machine, info: ClassInfo, self: ObjectValue, args: readonly ArgumentValue[], place: Place): Value | undefined {
+  const base = info.base();
+  const constructor = info.node.members.find((x) => x.kind === 'constructor' && x.node);
+  if (base === undefined || base === 'unknown') initialiseFields(m, info, self);
+  else if (!constructor) {
+    const problem = initialise(m, base, self, args, place);
+    initialiseFields(m, info, self);
+    return problem;
+  }
+  if (!constructor) return undefined;
+  const f: FunctionValue = { kind: 'function', node: constructor.node!, scope: info.scope, self, home: info };
+  const result = invoke(m, f, self, args, place);
+  return result.kind === 'unread' ? result : undefined;
+}
+
+/** `super(...)`: the base's part, then this class's own fields. */
+export function callSuper(m: Machine, info: ClassInfo, self: ObjectValue, args: readonly ArgumentValue[], place: Place): Value {
+  const base = info.base();
+  if (base && base !== 'unknown') {
+    const problem = initialise(m, base, self, args, place);
+    initialiseFields(m, info, self);
+    return problem ?? NOTHING;
+  }
+  return NOTHING;
+}
+
+function initialiseFields(m: Machine, info: ClassInfo, self: ObjectValue): void {
+  const scope = bodyScope(m, info, self);
+  for (const member of info.node.members) {
+    if (member.kind !== 'field' || member.isStatic || !member.value) continue;
+    const value = evaluate(m, scope, member.value);
+    const data = m.store.writable(self.id);
+    if (data.kind === 'record') data.members.set(member.name, value);
+  }
+}
+
+/**
+ * What is known of a field of an instance from outside: its initial value, as far as a constructor run on generic
+ * arguments tells, whether that stays its value, and a function it holds.
+ */
+export function instanceField(
+  m: Machine,
+  info: ClassInfo,
+  object: ObjectValue,
+  key: string,
+): { fallback?: () => Value | undefined; constant?: boolean; function?: Value } {
+  const found = findMember(info, key, 'field');
+  const field = found && found !== 'unknown' ? found : undefined;
+  if (field?.member.value?.kind === 'function') {
+    return { function: evaluate(m, bodyScope(m, field.info, object), field.member.value) };
+  }
+  const constant = field?.member.isConstant === true;
+  const fallback = (): Value | undefined => {
+    const data = m.store.data(constructed(m, info).id);
+    return data.kind === 'record' ? data.members.get(key) : undefined;
+  };
+  return { fallback, constant };
+}
+
+/** An instance made by the constructor from generic arguments, once per class. */
+function constructed(m: Machine, info: ClassInfo): ObjectValue {
+  const known = m.instances.get(info.node);
+  if (known) return known;
+  return m.atRoot(() => {
+    const self = m.object({ kind: 'record', members: new Map(), info });
+    m.instances.set(info.node, self);
+    // Its arguments are things of their own: they must not be held against the fields they are stored in.
+    const run = m.naming.run;
+    m.naming.run = -1;
+    const args = genericArguments(m, info);
+    initialise(m, info, self, args, m.place(info.scope, info.node.nameSpan));
+    m.naming.run = run;
+    return self;
+  });
+}
+
+function genericArguments(m: Machine, info: ClassInfo): ArgumentValue[] {
+  let at: ClassInfo | 'unknown' | undefined = info;
+  for (let k = 0; at && at !== 'unknown' && k < 64; k++) {
+    const constructor: Member | undefined = at.node.members.find((x) => x.kind === 'constructor' && x.node);
+    if (constructor) {
+      const parameters = constructor.node!.parameters.slice(constructor.node!.selfParameter ? 1 : 0);
+      return parameters
+        .filter((p) => !p.rest && !p.restNamed)
+        .map((p) => {
+          const name = p.pattern.kind === 'name' ? p.pattern.name : patternNames(p.pattern).length > 0 ? '' : '';
+          const place = m.place(info.scope, p.pattern.span);
+          const meaning = name === '' ? undefined : m.naming.read([name], place);
+          return { value: meaning ? valueOf(m, meaning, place) : genericAt(m, name, place) };
+        });
+    }
+    at = at.base();
+  }
+  return [];
+}

@@ -1,0 +1,102 @@
+import { classInfo } from './classes';
+import { evaluate } from './expressions';
+import type { ClassNode, Expression, FunctionNode, Parameter, Pattern, Program } from './form';
+import { genericAt } from './generics';
+import type { Machine } from './machine';
+import { addTopLevel } from './modules';
+import { nodesOf } from './scan';
+import { Scope, type ClassInfo, type Frame, type Module } from './scope';
+import { declare } from './variables';
+import type { Value } from './values';
+
+/** The state in which a function is entered: generic arguments, a generic receiver, the functions around it. */
+
+export interface Entry {
+  readonly scope: Scope;
+  readonly info?: ClassInfo;
+}
+
+/** A scope for running `node` on generic arguments. */
+export function enter(m: Machine, module: Module, node: FunctionNode, owner?: ClassNode): Entry {
+  const around = surroundings(m, module, node);
+  const info = owner ? classInfo(m, around, owner) : undefined;
+  const self = receiver(m, module, around, node, info);
+  const names = m.store.add({ kind: 'record', members: new Map() });
+  m.frameNames.add(names);
+  const frame: Frame = { module, node, self, names, depth: 0, ...(info ? { home: info } : {}) };
+  const scope = new Scope(info?.scope ?? around, frame, true);
+  const parameters = [...node.parameters];
+  if (node.selfParameter) {
+    const first = parameters.shift();
+    if (first?.pattern.kind === 'name') declare(m, scope, first.pattern.name, self);
+  }
+  for (const p of parameters) enterParameter(m, scope, p);
+  return { scope, ...(info ? { info } : {}) };
+}
+
+function receiver(m: Machine, module: Module, around: Scope, node: FunctionNode, info: ClassInfo | undefined): Value {
+  const known = around.frame.self;
+  if (known && !info) return known;
+  const place = m.place(around, info ? info.node.nameSpan : node.nameSpan);
+  if (info) return genericAt(m, 'this', place, { info });
+  const record = recordAround(module.program, node);
+  return genericAt(m, 'this', place, record ? { fallback: () => evaluate(m, around, record) } : {});
+}
+
+/** The record literal a function is a method of. */
+function recordAround(program: Program, node: FunctionNode): Expression | undefined {
+  for (const n of nodesOf(program.body)) {
+    const e = n as Expression;
+    if (e.kind !== 'record' || !('fields' in e)) continue;
+    if (e.fields.some((f) => f.kind === 'field' && f.value.kind === 'function' && f.value.node === node)) return e;
+  }
+  return undefined;
+}
+
+function enterParameter(m: Machine, scope: Scope, parameter: Parameter): void {
+  const { initial } = parameter;
+  let first: Value | undefined;
+  const fallback = initial ? (): Value => (first ??= evaluate(m, scope, initial)) : undefined;
+  enterPattern(m, scope, parameter.pattern, [], fallback);
+}
+
+/** Each name of a parameter is a thing of its own: of a field that is renamed, by either name. */
+function enterPattern(m: Machine, scope: Scope, pattern: Pattern, others: readonly string[], fallback?: () => Value): void {
+  switch (pattern.kind) {
+    case 'name': {
+      const place = m.place(scope, pattern.span);
+      const aliases = others.filter((o) => o !== pattern.name);
+      declare(m, scope, pattern.name, genericAt(m, pattern.name, place, { aliases, ...(fallback ? { fallback } : {}) }));
+      return;
+    }
+    case 'list':
+      for (const item of pattern.items) if (item) enterPattern(m, scope, item.pattern, []);
+      return;
+    case 'record':
+      for (const field of pattern.fields) enterPattern(m, scope, field.item.pattern, [field.name]);
+      if (pattern.rest) enterPattern(m, scope, pattern.rest, []);
+      return;
+    default:
+      return;
+  }
+}
+
+/** The scopes of the functions around one, with generic arguments of their own. */
+function surroundings(m: Machine, module: Module, node: FunctionNode): Scope {
+  const outer: FunctionNode[] = [];
+  for (const n of nodesOf(module.program.body)) {
+    if (!('bodySpan' in n) || n === node) continue;
+    const f = n as unknown as FunctionNode;
+    if (f.bodySpan.start <= node.span.start && node.span.end <= f.bodySpan.end) outer.push(f);
+  }
+  let scope = module.scope;
+  for (const f of outer.sort((a, b) => a.span.start - b.span.start)) {
+    const names = m.store.add({ kind: 'record', members: new Map() });
+    m.frameNames.add(names);
+    const self = f.inheritsSelf ? scope.frame.self : undefined;
+    scope = new Scope(scope, { module, node: f, names, depth: 0, ...(self ? { self } : {}) }, true);
+    for (const p of f.parameters) enterParameter(m, scope, p);
+    for (const s of f.body) addTopLevel(m, module, scope, s);
+  }
+  return scope;
+}

@@ -1,0 +1,336 @@
+import type { Place } from '../text/span';
+import { assign } from './assignment';
+import { evaluateCall, invoke } from './calls';
+import { classInfo, findMember } from './classes';
+import { comprehend } from './comprehensions';
+import { conditionOf, isOpenFlag, isThing, settle, truthOf } from './conditions';
+import type { Expression, Field } from './form';
+import { clipped } from './limits';
+import type { Machine } from './machine';
+import { readElement, readMember } from './members';
+import { fork } from './merging';
+import { unknownName } from './modules';
+import { dataOf, itemsOf, numeric } from './numbers';
+import { binary, negate } from './operators';
+import { transpose } from './intrinsics/matrices';
+import type { Scope } from './scope';
+import { sliceItems } from './slices';
+import { readVariable } from './variables';
+import { NOTHING, isUnread, unread, type FunctionValue, type Value } from './values';
+
+/** The value of an expression. */
+export function evaluate(m: Machine, scope: Scope, e: Expression): Value {
+  const place = m.place(scope, e.span);
+  const stopped = m.spend(() => place);
+  if (stopped) return stopped;
+  return m.nested(
+    () => place,
+    () => placed(m, e, place, evaluateInside(m, scope, e, place)),
+    (u) => u,
+  );
+}
+
+/** Notes a number's place, and puts in its stead what the caller asked for. */
+function placed(m: Machine, e: Expression, place: Place, value: Value): Value {
+  const { override } = m.request;
+  if (override && override.span.start === e.span.start && override.span.end === e.span.end && override.file === place.file) {
+    const n = value.kind === 'unread' ? value : numeric(m, value, place);
+    if (!isUnread(n)) value = { kind: 'scalar', expr: override.value(n), place };
+  }
+  if (value.kind !== 'scalar') return value;
+  m.note(place, value.expr);
+  if (m.keepPlaces) return value;
+  return { kind: 'scalar', expr: value.expr, place };
+}
+
+function evaluateInside(m: Machine, scope: Scope, e: Expression, place: Place): Value {
+  const { graph } = m;
+  switch (e.kind) {
+    case 'number':
+      return m.scalar(graph.number(e.value), place);
+    case 'string':
+      return { kind: 'string', value: e.value };
+    case 'boolean':
+      return { kind: 'condition', expr: e.value ? graph.true : graph.false, place };
+    case 'nothing':
+      return NOTHING;
+    case 'symbolic':
+      return m.scalar(e.expr, place);
+    case 'name': {
+      const variable = scope.find(e.name);
+      return variable ? readVariable(m, variable, place) : unknownName(m, scope, e.name, place);
+    }
+    case 'self':
+      return scope.frame.self ?? unread('`this` where there is none', place);
+    case 'super':
+      return scope.frame.self ?? unread('`super` where there is none', place);
+    case 'member':
+      return memberValue(m, scope, e, place);
+    case 'index':
+      return indexValue(m, scope, e, place);
+    case 'slice':
+      return unread('a slice by itself', place);
+    case 'call':
+      return evaluateCall(m, scope, e, place);
+    case 'unary':
+      return unary(m, scope, e, place);
+    case 'binary':
+      return binaryChain(m, scope, e);
+    case 'logical':
+      return logical(m, scope, e, place);
+    case 'conditional':
+      return conditional(m, scope, e, place);
+    case 'assign':
+      return assign(m, scope, e, place);
+    case 'function': {
+      const self = e.node.inheritsSelf ? scope.frame.self : undefined;
+      const home = e.node.inheritsSelf ? scope.frame.home : undefined;
+      const f: FunctionValue = { kind: 'function', node: e.node, scope, ...(self ? { self } : {}), ...(home ? { home } : {}) };
+      return f;
+    }
+    case 'class':
+      return { kind: 'class', info: classInfo(m, scope, e.node) };
+    case 'list':
+      return listLiteral(m, scope, e, place);
+    case 'record':
+      return recordLiteral(m, scope, e.fields, place);
+    case 'comprehension':
+      return comprehend(m, scope, e, place);
+    case 'sequence': {
+      let last: Value = NOTHING;
+      for (const item of e.items) last = evaluate(m, scope, item);
+      return last;
+    }
+    case 'opaque':
+      return unread(e.reason, place);
+  }
+}
+
+function memberValue(m: Machine, scope: Scope, e: Expression & { kind: 'member' }, place: Place): Value {
+  if (e.object.kind === 'super') return superMember(m, scope, e.name, place);
+  const object = evaluate(m, scope, e.object);
+  if (object.kind === 'nothing' && e.optional) return NOTHING;
+  return readMember(m, scope.frame.module, object, e.name, place);
+}
+
+function superMember(m: Machine, scope: Scope, name: string, place: Place): Value {
+  const base = scope.frame.home?.base();
+  if (!base || base === 'unknown') return unread(`\`super.${name}\` of a class whose base is not read`, place);
+  const found = findMember(base, name);
+  if (!found || found === 'unknown' || !found.member.node) return unread(`\`super.${name}\`, which is not read`, place);
+  const self = scope.frame.self;
+  const f: FunctionValue = {
+    kind: 'function',
+    node: found.member.node,
+    scope: found.info.scope,
+    home: found.info,
+    ...(self ? { self } : {}),
+  };
+  return found.member.kind === 'getter' ? invoke(m, f, self, [], place) : f;
+}
+
+function indexValue(m: Machine, scope: Scope, e: Expression & { kind: 'index' }, place: Place): Value {
+  const { module } = scope.frame;
+  const object = evaluate(m, scope, e.object);
+  if (object.kind === 'nothing' && e.optional) return NOTHING;
+  return indexWith(m, scope, object, e.indices, place, module.program.indexBase);
+}
+
+function indexWith(m: Machine, scope: Scope, object: Value, indices: readonly Expression[], place: Place, base: number): Value {
+  const [first, ...rest] = indices;
+  if (!first) return object;
+  if (first.kind === 'slice') {
+    const items = sliceItems(m, scope, object, first, place);
+    if (isSlice(items)) {
+      if (rest.length === 0) return m.list(items, true);
+      return m.list(items.map((row) => indexWith(m, scope, row, rest, place, base)), true);
+    }
+    return items;
+  }
+  const key = evaluate(m, scope, first);
+  const list = itemsOf(m, key);
+  if (list) {
+    const picked = list.map((k) => indexWith(m, scope, readElement(m, scope.frame.module, object, k, place), rest, place, base));
+    return m.list(picked, true);
+  }
+  // A single row is indexed by its column where a matrix is a list of rows.
+  const element = readElement(m, scope.frame.module, object, key, place);
+  return indexWith(m, scope, element, rest, place, base);
+}
+
+function isSlice(x: readonly Value[] | Value): x is readonly Value[] {
+  return Array.isArray(x);
+}
+
+function unary(m: Machine, scope: Scope, e: Expression & { kind: 'unary' }, place: Place): Value {
+  if (e.op === 'not') {
+    const c = conditionOf(m, scope, e.operand);
+    return isUnread(c) ? c : { kind: 'condition', expr: m.graph.not(c), place };
+  }
+  const v = evaluate(m, scope, e.operand);
+  if (v.kind === 'unread') return v;
+  switch (e.op) {
+    case '-':
+      return negate(m, v, place);
+    case '+': {
+      if (itemsOf(m, v)) return v;
+      const n = numeric(m, v, place);
+      return isUnread(n) ? n : m.scalar(n, place);
+    }
+    case 'transpose':
+      return transpose(m, v, place);
+    case 'typeof':
+      return typeOf(m, v);
+    case 'bit':
+      return unread('an operation on bits', place);
+  }
+}
+
+function typeOf(m: Machine, v: Value): Value {
+  const text = (value: string): Value => ({ kind: 'string', value });
+  switch (v.kind) {
+    case 'scalar':
+      return text('number');
+    case 'condition':
+      return text('boolean');
+    case 'string':
+      return text('string');
+    case 'nothing':
+      return text('undefined');
+    case 'function':
+    case 'class':
+    case 'method':
+      return text('function');
+    case 'object': {
+      const data = dataOf(m, v);
+      if (data?.kind !== 'generic') return text('object');
+      return text(isThing(m, data.generic) ? 'object' : 'number');
+    }
+    default:
+      return text('object');
+  }
+}
+
+/** Long sums nest deeply to the left: they are taken from the bottom, without recursion. */
+function binaryChain(m: Machine, scope: Scope, top: Expression & { kind: 'binary' }): Value {
+  const chain: (Expression & { kind: 'binary' })[] = [top];
+  for (let e = top.left; e.kind === 'binary'; e = e.left) chain.push(e);
+  let left = evaluate(m, scope, chain[chain.length - 1]!.left);
+  for (let k = chain.length - 1; k >= 0; k--) {
+    const e = chain[k]!;
+    const place = m.place(scope, e.span);
+    const right = evaluate(m, scope, e.right);
+    left = binary(m, scope.frame.module, e.op, left, right, place);
+    if (k > 0) {
+      const stopped = m.spend(() => place);
+      if (stopped) return stopped;
+      left = placed(m, e, place, left);
+    }
+  }
+  return left;
+}
+
+function logical(m: Machine, scope: Scope, e: Expression & { kind: 'logical' }, place: Place): Value {
+  const left = evaluate(m, scope, e.left);
+  if (left.kind === 'unread') return left;
+  const right = (): Value => evaluate(m, scope, e.right);
+  if (left.kind === 'choice' && e.op !== 'and') {
+    return fork(m, left.condition, place, () => or(m, e.op, left.whenTrue, right, place), () => or(m, e.op, left.whenFalse, right, place));
+  }
+  if (e.op !== 'and') return or(m, e.op, left, right, place);
+  const c = truthOf(m, left, place);
+  if (isUnread(c)) return c;
+  return fork(m, settle(m, c), place, right, () => left);
+}
+
+/** `a || b` and `a ?? b`: a number or a thing from outside counts as given, so that a default does not stand in for it. */
+function or(m: Machine, op: 'and' | 'or' | 'coalesce', left: Value, right: () => Value, place: Place): Value {
+  if (left.kind === 'nothing') return right();
+  if (op === 'coalesce' || left.kind === 'unread') return left;
+  if (left.kind === 'scalar') {
+    if (left.expr.op === 'number' && left.expr === m.graph.zero) return right();
+    return left;
+  }
+  if (left.kind === 'object' && !isOpenFlag(m, left)) return left;
+  if (left.kind === 'object') {
+    const other = right();
+    const isDefault = other.kind === 'scalar' || other.kind === 'string' || other.kind === 'object' || other.kind === 'nothing';
+    const isConstant = other.kind === 'condition' && (other.expr === m.graph.false || other.expr === m.graph.true);
+    if ((isDefault && !isOpenFlag(m, other)) || isConstant || other.kind === 'unread') return left;
+    const c = truthOf(m, left, place);
+    const d = truthOf(m, other, place);
+    if (isUnread(c)) return c;
+    return isUnread(d) ? d : { kind: 'condition', expr: m.graph.or(c, d), place };
+  }
+  const c = truthOf(m, left, place);
+  if (isUnread(c)) return c;
+  return fork(m, settle(m, c), place, () => left, right);
+}
+
+function conditional(m: Machine, scope: Scope, e: Expression & { kind: 'conditional' }, place: Place): Value {
+  const c = conditionOf(m, scope, e.condition);
+  if (isUnread(c)) return c;
+  if (c !== m.graph.true && c !== m.graph.false) m.condition(c, m.place(scope, e.condition.span));
+  const value = fork(
+    m,
+    c,
+    place,
+    () => evaluate(m, scope, e.whenTrue),
+    () => evaluate(m, scope, e.whenFalse),
+  );
+  return m.request.withinLimits ? clipped(m, c, value) : value;
+}
+
+function listLiteral(m: Machine, scope: Scope, e: Expression & { kind: 'list' }, place: Place): Value {
+  const items: Value[] = [];
+  for (const item of e.items) {
+    const value = evaluate(m, scope, item.value);
+    if (!item.spread) {
+      items.push(value);
+      continue;
+    }
+    const spread = itemsOf(m, value);
+    if (!spread) return value.kind === 'unread' ? value : unread('a list that is spread out and whose length is not known', place);
+    items.push(...spread);
+  }
+  return m.list(items, scope.frame.module.program.elementwise === true);
+}
+
+function recordLiteral(m: Machine, scope: Scope, fields: readonly Field[], place: Place): Value {
+  const members = new Map<string, Value>();
+  const getters = new Map<string, FunctionValue>();
+  const record = m.object({ kind: 'record', members, getters });
+  for (const field of fields) {
+    if (field.kind === 'field') {
+      members.set(field.name, evaluate(m, scope, field.value));
+    } else if (field.kind === 'computed') {
+      const key = evaluate(m, scope, field.name);
+      const name = key.kind === 'string' ? key.value : key.kind === 'scalar' && key.expr.op === 'number' ? String(key.expr.data) : undefined;
+      if (name === undefined) return unread('a record with a name that is not known', place);
+      members.set(name, evaluate(m, scope, field.value));
+    } else if (field.kind === 'getter') {
+      getters.set(field.name, { kind: 'function', node: field.node, scope });
+    } else if (field.kind === 'spread') {
+      const problem = spreadInto(m, members, evaluate(m, scope, field.value), place);
+      if (problem) return problem;
+    }
+  }
+  const now = m.store.writable(record.id);
+  if (now.kind === 'record' && now.members !== members) for (const [k, v] of members) now.members.set(k, v);
+  return record;
+}
+
+function spreadInto(m: Machine, members: Map<string, Value>, value: Value, place: Place): Value | undefined {
+  if (value.kind === 'nothing') return undefined;
+  if (value.kind === 'unread') return value;
+  const data = dataOf(m, value);
+  if (data?.kind === 'record') {
+    for (const [k, v] of data.members) members.set(k, v);
+    return undefined;
+  }
+  if (data?.kind === 'list') {
+    data.items.forEach((v, k) => members.set(String(k), v));
+    return undefined;
+  }
+  return unread('a thing that is spread out and whose members are not known', place);
+}

@@ -1,0 +1,135 @@
+import type { SymbolData } from '../expression/node';
+import type { Place } from '../text/span';
+import type { Statement } from './form';
+import { genericAt } from './generics';
+import { DEAD, type Machine } from './machine';
+import { memberPath } from './paths';
+import { nodesOf, patternNames, placesOf } from './scan';
+import type { Scope, Variable } from './scope';
+import type { Outcome } from './statements';
+import type { Expression } from './form';
+import { readVariable } from './variables';
+import { isData, type Content, type Value } from './values';
+
+/**
+ * One pass of a loop whose number of passes is not known (or does not matter): what the body writes starts from a generic
+ * value, the one its name means.
+ */
+export function genericPass(m: Machine, scope: Scope, place: Place, run: () => Outcome): Outcome {
+  const base = m.store;
+  const written = dryRun(m, base, run);
+  const variables = variablesByLocation(scope);
+  const names = namesOfObjects(m, variables);
+  for (const location of written.keys()) {
+    const before = base.get(location);
+    if (!before || location === DEAD) continue;
+    if (!isData(before)) {
+      const variable = variables.get(location);
+      if (variable) m.store.set(location, entryValue(m, variable, before, place));
+    } else openMembers(m, location, written.get(location)!, names.get(location), place);
+  }
+  m.inGenericPass++;
+  const outcome = run();
+  m.inGenericPass--;
+  return outcome;
+}
+
+/** What a pass writes, found by a run whose effects are dropped. */
+function dryRun(m: Machine, base: Machine['store'], run: () => Outcome): Map<number, Content> {
+  m.quiet++;
+  m.store = base.child();
+  const outcome = run();
+  const written = new Map(m.store.changesSince(base));
+  for (const x of outcome.exits) for (const [k, v] of x.store.changesSince(base)) if (!written.has(k)) written.set(k, v);
+  m.quiet--;
+  m.store = base;
+  return written;
+}
+
+function variablesByLocation(scope: Scope): Map<number, Variable> {
+  const found = new Map<number, Variable>();
+  for (let s: Scope | undefined = scope; s; s = s.parent) for (const v of s.variables.values()) found.set(v.location, v);
+  return found;
+}
+
+function namesOfObjects(m: Machine, variables: ReadonlyMap<number, Variable>): Map<number, string> {
+  const names = new Map<number, string>();
+  for (const v of variables.values()) {
+    const value = m.store.value(v.location);
+    if (value?.kind === 'object' && !names.has(value.id)) names.set(value.id, v.name);
+  }
+  return names;
+}
+
+/** The generic value of a variable at the start of a pass. */
+function entryValue(m: Machine, variable: Variable, before: Value, place: Place): Value {
+  if (before.kind === 'function' || before.kind === 'class' || before.kind === 'library' || before.kind === 'module') return before;
+  const value = genericAt(m, variable.name, place, before.kind === 'object' ? { fallback: () => before } : {});
+  if (!m.entries.has(variable.name)) m.entries.set(variable.name, value);
+  return value;
+}
+
+function openMembers(m: Machine, id: number, after: Content, name: string | undefined, place: Place): void {
+  const data = m.store.data(id);
+  if (!isData(after)) return;
+  if (data.kind === 'generic' && after.kind === 'generic') {
+    const own = m.store.writable(id);
+    if (own.kind === 'generic') for (const key of after.members.keys()) own.members.delete(key);
+    return;
+  }
+  const base = m.request.program.indexBase;
+  const open = (key: string, before: Value | undefined): Value =>
+    genericAt(m, memberPath(name ?? 'list', key), place, before?.kind === 'object' ? { fallback: () => before } : {});
+  if (data.kind === 'list' && after.kind === 'list') {
+    const read = name === undefined ? undefined : m.naming.read([name], place);
+    const own = m.store.writable(id);
+    if (own.kind !== 'list') return;
+    own.items.forEach((v, k) => {
+      if (after.items[k] === v) return;
+      const meaning = read?.kind === 'list' ? read.items[k] : undefined;
+      own.items[k] = meaning?.kind === 'scalar' ? { kind: 'scalar', expr: meaning.expr, place } : open(String(k + base), v);
+    });
+  } else if (data.kind === 'record' && after.kind === 'record') {
+    if (name === undefined || m.isFrameNames(id)) return;
+    const own = m.store.writable(id);
+    if (own.kind !== 'record') return;
+    for (const [key, v] of after.members) if (own.members.get(key) !== v) own.members.set(key, open(key, own.members.get(key)));
+  }
+}
+
+/**
+ * True for a loop that carries the motion on from numbers: a variable whose name means a coordinate or velocity starts
+ * from a literal and is written in the loop. A claim in it is about one pass from any state.
+ */
+export function startsFromLiteralState(m: Machine, scope: Scope, bodies: readonly (readonly Statement[])[]): boolean {
+  for (const body of bodies) {
+    for (const node of nodesOf(body, false)) {
+      const e = node as Expression;
+      if (e.kind !== 'assign' || !('target' in e)) continue;
+      for (const name of patternNames(e.target)) {
+        if (!meansState(m, name)) continue;
+        const variable = scope.find(name);
+        const value = variable && readVariable(m, variable, undefined);
+        if (value?.kind === 'scalar' && value.expr.op === 'number') return true;
+      }
+      for (const place of placesOf(e.target)) if (literalMember(m, scope, place)) return true;
+    }
+  }
+  return false;
+}
+
+function literalMember(m: Machine, scope: Scope, place: Expression): boolean {
+  if (place.kind !== 'member' || place.object.kind !== 'name' || !meansState(m, place.name)) return false;
+  const variable = scope.find(place.object.name);
+  const object = variable && readVariable(m, variable, undefined);
+  if (object?.kind !== 'object') return false;
+  const data = m.store.data(object.id);
+  const value = data.kind === 'record' ? data.members.get(place.name) : undefined;
+  return value?.kind === 'scalar' && value.expr.op === 'number';
+}
+
+function meansState(m: Machine, name: string): boolean {
+  const meaning = m.naming.byName(name);
+  if (!meaning || 'ambiguous' in meaning || meaning.expr.op !== 'symbol') return m.naming.hasRead(name);
+  return (meaning.expr.data as SymbolData).role === 'coordinate' || m.naming.hasRead(name);
+}

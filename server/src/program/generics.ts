@@ -1,0 +1,163 @@
+import { childNames } from './children';
+import type { Machine } from './machine';
+import { lastName } from './paths';
+import type { Meaning } from './reading';
+import { isUnread, unread, type Generic, type GenericData, type ObjectValue, type Scalar, type Value } from './values';
+import type { Place } from '../text/span';
+
+/** Things from outside the code, and what they mean. */
+
+/** The thing reached by `path`; the same one each time it is asked for. */
+export function genericAt(
+  m: Machine,
+  path: string,
+  place: Place,
+  more: { aliases?: readonly string[]; info?: Generic['info']; fallback?: Generic['fallback']; constant?: boolean } = {},
+): ObjectValue {
+  const { aliases = [], ...rest } = more;
+  const generic: Generic = { path, aliases: [...aliases], place, ...rest };
+  return m.atRoot(() => m.object({ kind: 'generic', generic, members: new Map() }));
+}
+
+const memos = new WeakMap<Machine, { children: Map<string, ObjectValue>; numbers: Map<string, Scalar> }>();
+
+function memo(m: Machine): { children: Map<string, ObjectValue>; numbers: Map<string, Scalar> } {
+  let found = memos.get(m);
+  if (!found) memos.set(m, (found = { children: new Map(), numbers: new Map() }));
+  return found;
+}
+
+/** The member `key` that a generic thing had when the function was entered. */
+export function childOf(m: Machine, id: number, generic: Generic, key: string, place: Place, fallback?: Generic['fallback'], constant = generic.constant): ObjectValue {
+  const children = memo(m).children;
+  const k = `${id} ${key}`;
+  let child = children.get(k);
+  if (!child) {
+    const [path, ...aliases] = childNames(generic, key);
+    const inherited = fallback ?? fallbackMember(m, generic, key);
+    child = genericAt(m, path!, place, { aliases, ...(inherited ? { fallback: inherited } : {}), ...(constant ? { constant } : {}) });
+    children.set(k, child);
+  }
+  return child;
+}
+
+function fallbackMember(m: Machine, generic: Generic, key: string): Generic['fallback'] {
+  if (!generic.fallback) return undefined;
+  const whole = generic.fallback;
+  return () => {
+    const v = whole();
+    if (v?.kind !== 'object') return undefined;
+    const data = m.store.data(v.id);
+    return data.kind === 'record' ? data.members.get(key) : undefined;
+  };
+}
+
+export function addAlias(m: Machine, value: ObjectValue, name: string): void {
+  const data = m.store.data(value.id);
+  if (data.kind !== 'generic') return;
+  const { generic } = data;
+  if (generic.path !== name && !generic.aliases.includes(name)) generic.aliases.push(name);
+}
+
+/** What a generic thing is as a number. */
+export function numberOf(m: Machine, id: number, data: GenericData): Scalar | ReturnType<typeof unread> {
+  const { generic } = data;
+  const key = `${id}`;
+  const numbers = memo(m).numbers;
+  const known = numbers.get(key);
+  if (known) return known;
+  const found = meaningOf(m, generic);
+  if (found && isUnread(found)) return found;
+  if (found) {
+    numbers.set(key, found);
+    return found;
+  }
+  if (m.counting > 0) {
+    const v = generic.fallback?.();
+    if (v?.kind === 'scalar') return v;
+  }
+  return { kind: 'scalar', expr: freeOf(m, generic), place: generic.place };
+}
+
+/** What `reads`, its name or its initial value say a thing is; undefined where nothing does. */
+export function meaningOf(m: Machine, generic: Generic): Scalar | ReturnType<typeof unread> | undefined {
+  const paths = [generic.path, ...generic.aliases];
+  const place = generic.place;
+  const read = m.naming.read(paths, place);
+  if (read?.kind === 'scalar') return { kind: 'scalar', expr: read.expr, place };
+  if (read) return unread(`\`${generic.path}\` is a list by its \`reads\`, and is used as a number`, place);
+  for (const path of paths) {
+    const name = lastName(path);
+    const expr = name === undefined ? undefined : m.naming.agree(name, path, generic.path, place);
+    if (expr) return { kind: 'scalar', expr, place };
+    if (m.naming.isForcedFree(generic.path)) return { kind: 'scalar', expr: freeOf(m, generic), place };
+  }
+  const value = generic.fallback?.();
+  if (value?.kind === 'scalar' && (generic.constant || m.naming.containsDeclared(value.expr))) return { ...value };
+  return undefined;
+}
+
+function freeOf(m: Machine, generic: Generic) {
+  const ambiguous = m.naming.isForcedFree(generic.path);
+  const reason = ambiguous
+    ? `\`${generic.path}\` is ambiguous: another name agrees with the same symbol; say what each means with \`reads\``
+    : `nothing says what \`${generic.path}\` means: declare it, or bind it with \`reads ${generic.path} = ...\``;
+  return m.freeSymbol(generic.path, reason, generic.place);
+}
+
+/** A value for a meaning. */
+export function valueOf(m: Machine, meaning: Meaning, place: Place | undefined): Value {
+  if (meaning.kind === 'scalar') return { kind: 'scalar', expr: meaning.expr, ...(place ? { place } : {}) };
+  return m.list(meaning.items.map((item) => valueOf(m, item, place)));
+}
+
+/**
+ * Turns a generic thing into the list that `reads`, a family of its name or its initial value say it is, at its first use
+ * as a list. It happens at the bottom of the store, the same for all branches.
+ */
+export function structure(m: Machine, id: number, asList: boolean): void {
+  const data = m.store.data(id);
+  if (data.kind !== 'generic' || data.generic.structured || data.members.size > 0) return;
+  const { generic } = data;
+  const paths = [generic.path, ...generic.aliases];
+  const read = m.naming.read(paths, generic.place);
+  const family = read ? undefined : m.naming.family(paths);
+  const items = read?.kind === 'list' ? read.items : family;
+  if (items) {
+    generic.structured = true;
+    m.atRoot(() => {
+      const list = items.map((item) => valueOf(m, item, generic.place));
+      m.store.set(id, { kind: 'list', items: list, array: false });
+    });
+    return;
+  }
+  const value = generic.fallback?.();
+  if (value?.kind === 'object' && value.id !== id) {
+    const initial = m.store.data(value.id);
+    if (initial.kind === 'list' || (initial.kind === 'record' && !asList) || initial.kind === 'record') {
+      generic.structured = true;
+      m.atRoot(() => m.store.set(id, generalise(m, value.id, generic, 0)));
+    }
+  }
+}
+
+/** The same shape, in which numbers that are not built of declared symbols become generic by their path. */
+function generalise(m: Machine, id: number, generic: Generic, depth: number) {
+  const data = m.store.data(id);
+  const base = m.request.program.indexBase;
+  const one = (v: Value, key: string): Value => {
+    if (v.kind === 'scalar' && m.naming.containsDeclared(v.expr)) return v;
+    if (v.kind === 'scalar' || v.kind === 'string' || v.kind === 'condition' || v.kind === 'nothing' || v.kind === 'unread') {
+      return childOf(m, -id, generic, key, generic.place, () => v);
+    }
+    if (v.kind === 'object' && depth < 8) return childOf(m, -id, generic, key, generic.place, () => v);
+    return v;
+  };
+  if (data.kind === 'list') {
+    return { ...data, items: data.items.map((v, k) => one(v, String(k + base))) };
+  }
+  if (data.kind === 'record') {
+    return { ...data, members: new Map([...data.members].map(([k, v]) => [k, one(v, k)])) };
+  }
+  return data;
+}

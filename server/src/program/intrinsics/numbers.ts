@@ -1,0 +1,67 @@
+import type { Expr } from '../../expression/node';
+import { unclip } from '../limits';
+import type { Machine } from '../machine';
+import { itemsOf, numeric } from '../numbers';
+import { isUnread, unread, type Unread, type Value } from '../values';
+import type { Call, IntrinsicTable } from './table';
+
+function numbersIn(m: Machine, call: Call, list: readonly Value[]): Expr[] | Unread {
+  const exprs: Expr[] = [];
+  for (const v of list) {
+    const n = numeric(m, v, call.place);
+    if (isUnread(n)) return n;
+    exprs.push(n);
+  }
+  return exprs;
+}
+
+function isReason(x: Expr[] | Unread): x is Unread {
+  return !Array.isArray(x);
+}
+
+function each(m: Machine, call: Call, f: (args: readonly Value[]) => Value): Value {
+  const lists = call.args.map((a) => itemsOf(m, a));
+  const length = lists.find((l) => l)?.length;
+  if (length === undefined) return f(call.args);
+  return m.list(Array.from({ length }, (_, k) => f(call.args.map((a, i) => lists[i]?.[k] ?? a))), true);
+}
+
+/** min and max of several numbers; a clip within limits passes its argument. */
+function limited(op: 'min' | 'max') {
+  return (m: Machine, call: Call): Value =>
+    each(m, call, (args) => {
+      const exprs = numbersIn(m, call, args);
+      if (isReason(exprs)) return exprs;
+      if (exprs.length === 0) return unread(`the ${op} of nothing`, call.place);
+      const e = m.graph.apply(op, exprs);
+      return m.scalar(m.request.withinLimits ? unclip(e) : e, call.place);
+    });
+}
+
+export const NUMBERS: IntrinsicTable = {
+  'number-min': limited('min'),
+  'number-max': limited('max'),
+  /** `clamp(x, low, high)` */
+  'number-clamp': (m, call) =>
+    each(m, { ...call, args: [...call.args, ...call.named.values()] }, (args) => {
+      const exprs = numbersIn(m, call, args.filter((a) => a.kind !== 'nothing'));
+      if (isReason(exprs)) return exprs;
+      const [x, low, high] = exprs;
+      if (!x || !low || !high) return unread('a clip without two bounds', call.place);
+      if (m.request.withinLimits) return m.scalar(x, call.place);
+      return m.scalar(m.graph.apply('min', [m.graph.apply('max', [x, low]), high]), call.place);
+    }),
+  'number-hypot': (m, call) => {
+    const only = call.args.length === 1 ? itemsOf(m, call.args[0]!) : undefined;
+    const exprs = numbersIn(m, call, only ?? call.args);
+    return isReason(exprs) ? exprs : m.scalar(m.graph.sqrt(m.graph.sum(exprs.map((x) => m.graph.square(x)))), call.place);
+  },
+  /** The number itself: `Number(x)`, `float(x)`. */
+  'number-same': (m, call) => {
+    const v = call.args[0];
+    if (!v) return unread('a number that is not given', call.place);
+    if (itemsOf(m, v)) return v;
+    const n = numeric(m, v, call.place);
+    return isUnread(n) ? n : m.scalar(n, call.place);
+  },
+};

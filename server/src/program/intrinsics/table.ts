@@ -1,0 +1,44 @@
+import type { Place } from '../../text/span';
+import { applyScalar, type ArgumentValue } from '../calls';
+import type { Machine } from '../machine';
+import { withEach } from '../merging';
+import type { Module } from '../scope';
+import { unread, type Value } from '../values';
+import { LISTS } from './lists';
+import { HIGHER_ORDER } from './higher-order';
+import { MATRICES } from './matrices';
+import { NUMBERS } from './numbers';
+import { RECORDS } from './records';
+
+/** What an intrinsic is given: its receiver, or for a plain function its first argument, comes first. */
+export interface Call {
+  readonly module: Module;
+  readonly args: readonly Value[];
+  readonly named: ReadonlyMap<string, Value>;
+  readonly place: Place;
+  /** True where the first argument is the receiver of a method. */
+  readonly isMethod: boolean;
+}
+
+export type Intrinsic = (m: Machine, call: Call) => Value;
+
+export type IntrinsicTable = Readonly<Record<string, Intrinsic>>;
+
+/** Operations on lists, records and matrices that all languages share, by name. */
+export const INTRINSICS: ReadonlyMap<string, Intrinsic> = new Map(
+  [LISTS, HIGHER_ORDER, RECORDS, MATRICES, NUMBERS].flatMap((table) => Object.entries(table)),
+);
+
+export function runIntrinsic(m: Machine, module: Module, name: string, self: Value | undefined, args: readonly ArgumentValue[], place: Place): Value {
+  if (self?.kind === 'choice') return withEach(m, self, place, (v) => runIntrinsic(m, module, name, v, args, place));
+  const values = args.filter((a) => a.name === undefined).map((a) => a.value);
+  const all = self ? [self, ...values] : values;
+  if (name.startsWith('scalar:')) {
+    const f = module.library.scalars.get(name.slice('scalar:'.length));
+    return f ? applyScalar(m, f, all, place) : unread(`\`${name}\``, place);
+  }
+  const intrinsic = INTRINSICS.get(name);
+  if (!intrinsic) return unread(`can't read \`${name}\``, place);
+  const named = new Map(args.filter((a) => a.name !== undefined).map((a) => [a.name!, a.value]));
+  return intrinsic(m, { module, args: all, named, place, isMethod: self !== undefined });
+}

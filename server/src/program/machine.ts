@@ -1,0 +1,204 @@
+import type { Graph } from '../expression/graph';
+import type { Expr } from '../expression/node';
+import type { Place, Span } from '../text/span';
+import type { ClassNode, Expression, FunctionNode } from './form';
+import type { ClassInfo, Module, Scope } from './scope';
+import type { Library } from './library';
+import type { Ambiguity, BindingMade, ReadRequest, TraceEntry } from './reading';
+import { Naming } from './naming';
+import { memberIsAssigned } from './scan';
+import { Store } from './store';
+import { isData, unread, type Data, type FunctionValue, type ObjectValue, type Unread, type Value } from './values';
+
+/** Expressions and statements nested deeper than this are not read, so that the reading never exhausts the stack. */
+const DEEPEST = 900;
+
+/** Location of the condition under which an error was thrown: such points do not vote. */
+export const DEAD = 0;
+
+/** The state of one reading. */
+export class Machine {
+  readonly graph: Graph;
+  store: Store;
+  readonly naming: Naming;
+  readonly modules = new Map<string, Module>();
+  readonly bindings = new Map<string, BindingMade>();
+  readonly ambiguities = new Map<string, Ambiguity>();
+  readonly free = new Map<Expr, { readonly code: string; readonly reason: string; readonly place: Place }>();
+  readonly conditions = new Map<Expr, Place>();
+  readonly assumed: Expr[] = [];
+  /** Conditions of `assume` by their shape, for those whose names are not known at the function's entry. */
+  readonly assumedShapes = new Map<string, boolean>();
+  /** Flags and kinds that `assume` settles, by path. */
+  readonly given = new Map<string, Value>();
+  readonly trace: TraceEntry[] = [];
+  readonly files = new Set<string>();
+  /** Above zero while a loop is only looked over, or an output is read: nothing is recorded and nothing replaced. */
+  quiet = 0;
+  /** Above zero where a count is wanted: fields that hold a literal give it. */
+  counting = 0;
+  /** Runs a function of the file on generic arguments, from the state at the subject's entry. */
+  runSeparately: (f: FunctionValue) => Value = () => unread('a call', undefined);
+  /** Set while an output is read, so that values keep the place that made them. */
+  keepPlaces = false;
+  calls = 0;
+  readonly classes = new Map<ClassNode, ClassInfo>();
+  /** Instances made from generic arguments, by class. */
+  readonly instances = new Map<ClassNode, ObjectValue>();
+  readonly frameNames = new Set<number>();
+  private readonly firstNames = new Map<Library, Set<string>>();
+  private readonly functionMembers = new Map<FunctionNode, number>();
+  /** Above zero inside one pass from a generic state. */
+  inGenericPass = 0;
+  /** Values that locals had at the start of such a pass, for claims about increments. */
+  readonly entries = new Map<string, Value>();
+  /** Things from outside that the code names without declaring. */
+  readonly globals = new Map<string, Value>();
+  /** `X.prototype.f = ...` of a file's top level. */
+  readonly prototypes: { readonly module: Module; readonly target: Expression; readonly value: Expression }[] = [];
+  private depth = 0;
+  private stop: Unread | undefined;
+
+  constructor(
+    readonly request: ReadRequest,
+    forcedFree: ReadonlySet<string>,
+  ) {
+    this.graph = request.graph;
+    this.store = new Store();
+    this.store.set(DEAD, { kind: 'condition', expr: this.graph.false });
+    this.naming = new Naming(this, forcedFree);
+  }
+
+  place(scope: Scope, span: Span): Place {
+    return { file: scope.frame.module.file, span };
+  }
+
+  /** The reason why nothing more is read, once the budget is spent. */
+  get stopped(): Unread | undefined {
+    return this.stop;
+  }
+
+  spend(place: () => Place): Unread | undefined {
+    if (this.stop) return this.stop;
+    if (this.request.budget.spend()) return undefined;
+    const why = this.request.budget.why === 'time' ? 'the time for it ran out' : 'the budget for it is spent';
+    this.stop = unread(`this function is too long to read: ${why} here`, place());
+    return this.stop;
+  }
+
+  /** Runs `body` one level deeper, or gives the reason why not. */
+  nested<T>(place: () => Place, body: () => T, tooDeep: (u: Unread) => T): T {
+    if (this.depth >= DEEPEST) return tooDeep(unread('this is nested too deeply to be read', place()));
+    this.depth++;
+    try {
+      return body();
+    } finally {
+      this.depth--;
+    }
+  }
+
+  note(place: Place, expr: Expr): void {
+    if (!this.quiet && !this.keepPlaces) this.trace.push({ place, expr });
+  }
+
+  object(data: Data): ObjectValue {
+    return { kind: 'object', id: this.store.add(data) };
+  }
+
+  list(items: readonly Value[], array = false): ObjectValue {
+    return this.object({ kind: 'list', items: [...items], array });
+  }
+
+  scalar(expr: Expr, place?: Place): Value {
+    return { kind: 'scalar', expr, place };
+  }
+
+  /** Does something with the bottom layer of the store, which all branches see. */
+  atRoot<T>(body: () => T): T {
+    const before = this.store;
+    this.store = before.root;
+    try {
+      return body();
+    } finally {
+      this.store = before;
+    }
+  }
+
+  /** Marks the rest of this branch as one that ends in an error. */
+  die(): void {
+    this.store.set(DEAD, { kind: 'condition', expr: this.graph.true });
+  }
+
+  get dead(): Expr {
+    const v = this.store.value(DEAD);
+    return v?.kind === 'condition' ? v.expr : this.graph.false;
+  }
+
+  /** Where the members of a function itself are kept (`F.prototype`). */
+  membersOf(node: FunctionNode): number {
+    let id = this.functionMembers.get(node);
+    if (id === undefined) {
+      id = this.atRoot(() => this.store.add({ kind: 'record', members: new Map() }));
+      this.functionMembers.set(node, id);
+    }
+    return id;
+  }
+
+  /** True where a column is a list of rows of one, apart from a plain list. */
+  get columnsMatter(): boolean {
+    return this.request.program.matrixProduct === true;
+  }
+
+  /** The first parts of a library's names: `Math`. */
+  libraryNames(library: Library): ReadonlySet<string> {
+    let names = this.firstNames.get(library);
+    if (!names) {
+      names = new Set();
+      for (const table of [library.scalars, library.constants, library.intrinsics]) {
+        for (const key of table.keys()) names.add(key.split('.')[0]!);
+      }
+      for (const key of library.ignorable) names.add(key.split('.')[0]!);
+      this.firstNames.set(library, names);
+    }
+    return names;
+  }
+
+  /** True for the record that holds a running function's locals by name. */
+  isFrameNames(id: number): boolean {
+    return this.frameNames.has(id);
+  }
+
+  setMember(object: ObjectValue, key: string, value: Value): void {
+    const data = this.store.writable(object.id);
+    if (data.kind === 'record' || data.kind === 'generic') data.members.set(key, value);
+  }
+
+  /** Makes what is stored there unread. */
+  spoilLocation(location: number, why: Unread): void {
+    const content = this.store.get(location);
+    if (content) this.store.set(location, isData(content) ? { kind: 'broken', unread: why } : why);
+  }
+
+  breakObject(id: number, why: Unread): void {
+    this.store.set(id, { kind: 'broken', unread: why });
+  }
+
+  isAssignedMember(name: string): boolean {
+    for (const module of this.modules.values()) if (memberIsAssigned(module.program, name)) return true;
+    return false;
+  }
+
+  condition(expr: Expr, place: Place): void {
+    if (!this.quiet && !this.conditions.has(expr)) this.conditions.set(expr, place);
+  }
+
+  ambiguous(message: string, place: Place): void {
+    if (!this.ambiguities.has(message)) this.ambiguities.set(message, { message, place });
+  }
+
+  freeSymbol(path: string, reason: string, place: Place): Expr {
+    const symbol = this.graph.symbol({ name: path, role: 'free', order: 0 });
+    if (!this.free.has(symbol)) this.free.set(symbol, { code: path, reason, place });
+    return symbol;
+  }
+}

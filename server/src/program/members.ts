@@ -1,0 +1,271 @@
+import type { Place } from '../text/span';
+import { invoke } from './calls';
+import { findMember, instanceField, staticMember } from './classes';
+import { childOf } from './generics';
+import { runIntrinsic } from './intrinsics/table';
+import type { Machine } from './machine';
+import { withEach } from './merging';
+import { exportOf } from './modules';
+import { countOf, dataOf, describe } from './numbers';
+import type { ClassInfo, Module } from './scope';
+import { NOTHING, unread, type FunctionValue, type GenericData, type ListData, type ObjectValue, type RecordData, type Value } from './values';
+
+/** Reading and writing members and elements. */
+
+const LONGEST = 20_000;
+
+export function readMember(m: Machine, module: Module, object: Value, key: string, place: Place): Value {
+  switch (object.kind) {
+    case 'unread':
+      return object;
+    case 'choice':
+      return withEach(m, object, place, (v) => readMember(m, module, v, key, place));
+    case 'library':
+      return libraryMember(m, object.module, `${object.path}.${key}`, place);
+    case 'module':
+      return exportOf(m, object.module, key, place);
+    case 'class':
+      return staticMember(m, object.info, key, place);
+    case 'function':
+      return functionMember(m, object, key) ?? methodOf(m, module, 'function', object, key, place);
+    case 'string':
+      if (key === 'length') return m.scalar(m.graph.number(object.value.length), place);
+      return methodOf(m, module, 'string', object, key, place);
+    case 'scalar':
+    case 'condition':
+      return methodOf(m, module, 'scalar', object, key, place);
+    case 'nothing':
+      return unread(`\`.${key}\` of a variable without a value`, place);
+    case 'method':
+      return unread(`\`.${key}\` of a method`, place);
+    case 'object':
+      break;
+  }
+  const data = dataOf(m, object)!;
+  switch (data.kind) {
+    case 'broken':
+      return data.unread;
+    case 'list':
+      return listMember(m, module, object, data, key, place);
+    case 'record':
+      return recordMember(m, module, object, data, key, place);
+    case 'generic':
+      return genericMember(m, module, object, data, key, place);
+  }
+}
+
+export function libraryMember(m: Machine, module: Module, path: string, place: Place): Value {
+  const constant = module.library.constants.get(path);
+  return constant ? m.scalar(constant(m.graph), place) : { kind: 'library', path, module };
+}
+
+function functionMember(m: Machine, f: FunctionValue, key: string): Value | undefined {
+  if (key === 'return' && m.keepPlaces) return m.runSeparately(f);
+  const members = m.store.get(m.membersOf(f.node));
+  if (members?.kind !== 'record') return undefined;
+  const found = members.members.get(key);
+  if (found || key !== 'prototype') return found;
+  const prototype = m.atRoot(() => m.object({ kind: 'record', members: new Map() }));
+  m.atRoot(() => (m.store.writable(m.membersOf(f.node)) as RecordData).members.set(key, prototype));
+  return prototype;
+}
+
+function methodOf(m: Machine, module: Module, kind: string, self: Value, key: string, place: Place): Value {
+  const property = module.library.properties?.get(`${kind}.${key}`);
+  if (property) return runIntrinsic(m, module, property, self, [], place);
+  const method = module.library.methods.get(`${kind}.${key}`);
+  if (method) return { kind: 'method', intrinsic: method, self };
+  const scalar = kind === 'scalar' ? module.library.scalars.get(`scalar.${key}`) : undefined;
+  if (scalar) return { kind: 'method', intrinsic: `scalar:scalar.${key}`, self };
+  return unread(`\`.${key}\` of a ${kind === 'scalar' ? 'number' : kind}`, place);
+}
+
+function listMember(m: Machine, module: Module, object: ObjectValue, data: ListData, key: string, place: Place): Value {
+  if (key === 'length') return m.scalar(m.graph.number(data.items.length), place);
+  if (/^\d+$/.test(key)) return data.items[Number(key) - module.program.indexBase] ?? NOTHING;
+  return methodOf(m, module, 'list', object, key, place);
+}
+
+function recordMember(m: Machine, module: Module, object: ObjectValue, data: RecordData, key: string, place: Place): Value {
+  const own = data.members.get(key);
+  if (own) return own;
+  const getter = data.getters?.get(key);
+  if (getter) return invoke(m, getter, object, [], place);
+  if (data.info) {
+    const found = fromClass(m, data.info, object, key, place);
+    if (found) return found;
+  }
+  if (data.prototype !== undefined) {
+    const inherited = m.store.data(data.prototype);
+    if (inherited.kind === 'record' && inherited.members.has(key)) return inherited.members.get(key)!;
+  }
+  const method = module.library.methods.get(`record.${key}`);
+  if (method) return { kind: 'method', intrinsic: method, self: object };
+  return NOTHING;
+}
+
+/** A getter's value or a method, from the class of an instance. */
+function fromClass(m: Machine, info: ClassInfo, object: ObjectValue, key: string, place: Place): Value | undefined {
+  const found = findMember(info, key);
+  if (found === 'unknown') return unread(`\`.${key}\` of a class whose base is not read`, place);
+  if (!found?.member.node) return undefined;
+  const f: FunctionValue = { kind: 'function', node: found.member.node, scope: found.info.scope, self: object, home: found.info };
+  if (found.member.kind === 'getter') return invoke(m, f, object, [], place);
+  return found.member.kind === 'method' ? f : undefined;
+}
+
+function genericMember(m: Machine, module: Module, object: ObjectValue, data: GenericData, key: string, place: Place): Value {
+  const written = data.members.get(key);
+  if (written) return written;
+  const { generic } = data;
+  const bound = [generic.path, ...generic.aliases].some((path) => m.naming.hasRead(m.naming.member(path, key)));
+  if (generic.info && !bound) {
+    const found = fromClass(m, generic.info, object, key, place);
+    if (found && found.kind !== 'unread') return found;
+    if (found && findMember(generic.info, key) !== 'unknown') return found;
+    const field = instanceField(m, generic.info, object, key);
+    return field.function ?? childOf(m, object.id, generic, key, place, field.fallback, field.constant);
+  }
+  void module;
+  return childOf(m, object.id, generic, key, place, undefined, generic.constant && !m.isAssignedMember(key));
+}
+
+/** A key that is known: text, or a whole number as the source counts. */
+export function keyOf(m: Machine, key: Value, place: Place): string | number | undefined {
+  if (key.kind === 'string') return key.value;
+  return countOf(m, key, place);
+}
+
+export function readElement(m: Machine, module: Module, object: Value, key: Value, place: Place): Value {
+  if (object.kind === 'unread') return object;
+  if (key.kind === 'unread') return key;
+  if (object.kind === 'choice') return withEach(m, object, place, (v) => readElement(m, module, v, key, place));
+  if (key.kind === 'choice') return withEach(m, key, place, (v) => readElement(m, module, object, v, place));
+  const known = keyOf(m, key, place);
+  if (known === undefined) return unread('an element whose index is not known', place);
+  if (typeof known === 'string') return readMember(m, module, object, known, place);
+  if (object.kind === 'string') {
+    const c = object.value[known - module.program.indexBase];
+    return c === undefined ? NOTHING : { kind: 'string', value: c };
+  }
+  const data = dataOf(m, object, true);
+  if (data?.kind === 'list') return elementAt(m, module, data, known);
+  if (!data) return unread(`an element of a ${describe(object)}`, place);
+  return readMember(m, module, object, String(known), place);
+}
+
+function elementAt(m: Machine, module: Module, data: ListData, index: number): Value {
+  const { indexBase, negativeIndex, elementwise } = module.program;
+  const k = index < 0 && negativeIndex ? data.items.length + index : index - indexBase;
+  const item = data.items[k];
+  if (!item) return NOTHING;
+  // A column is a list of rows of one.
+  if (elementwise && item.kind === 'object') {
+    const row = m.store.data(item.id);
+    if (row.kind === 'list' && row.items.length === 1 && data.items.length > 1) return row.items[0]!;
+    if (row.kind === 'list' && data.items.length === 1) return row.items[index - indexBase] ?? NOTHING;
+  }
+  return item;
+}
+
+/** @returns a reason where the write can't be read; the object is then broken already */
+export function writeMember(m: Machine, module: Module, object: Value, key: string, value: Value, place: Place): void {
+  switch (object.kind) {
+    case 'choice':
+      withEach(m, object, place, (v) => {
+        writeMember(m, module, v, key, value, place);
+        return NOTHING;
+      });
+      return;
+    case 'class': {
+      const statics = m.store.writable(object.info.statics);
+      if (statics.kind === 'record') statics.members.set(key, value);
+      return;
+    }
+    case 'function': {
+      const members = m.store.writable(m.membersOf(object.node));
+      if (members.kind === 'record') members.members.set(key, value);
+      return;
+    }
+    case 'object':
+      break;
+    default:
+      return;
+  }
+  dataOf(m, object);
+  const before = m.store.data(object.id);
+  const info = before.kind === 'record' ? before.info : before.kind === 'generic' ? before.generic.info : undefined;
+  if (info && callSetter(m, info, object, key, value, place)) return;
+  const data = m.store.writable(object.id);
+  if (data.kind === 'record' || data.kind === 'generic') data.members.set(key, value);
+  else if (data.kind === 'list') {
+    if (/^\d+$/.test(key)) setItem(m, object, data, Number(key) - module.program.indexBase, value, place);
+    else if (key === 'length') {
+      const n = countOf(m, value, place);
+      if (n !== undefined && n <= data.items.length) data.items.length = Math.max(0, n);
+      else m.breakObject(object.id, unread('a list whose length is set to a value that is not known', place));
+    }
+  }
+}
+
+function callSetter(m: Machine, info: ClassInfo, object: ObjectValue, key: string, value: Value, place: Place): boolean {
+  const found = findMember(info, key, 'setter');
+  if (!found || found === 'unknown' || !found.member.node) return false;
+  const f: FunctionValue = { kind: 'function', node: found.member.node, scope: found.info.scope, self: object, home: found.info };
+  invoke(m, f, object, [{ value }], place);
+  return true;
+}
+
+function setItem(m: Machine, object: ObjectValue, data: ListData, k: number, value: Value, place: Place): void {
+  if (k < 0 || k > LONGEST) {
+    m.breakObject(object.id, unread('a list written to outside its bounds', place));
+    return;
+  }
+  while (data.items.length < k) data.items.push(NOTHING);
+  data.items[k] = value;
+}
+
+export function writeElement(m: Machine, module: Module, object: Value, key: Value, value: Value, place: Place): void {
+  if (object.kind === 'choice') {
+    withEach(m, object, place, (v) => {
+      writeElement(m, module, v, key, value, place);
+      return NOTHING;
+    });
+    return;
+  }
+  if (key.kind === 'choice') {
+    withEach(m, key, place, (k) => {
+      writeElement(m, module, object, k, value, place);
+      return NOTHING;
+    });
+    return;
+  }
+  const known = key.kind === 'unread' ? undefined : keyOf(m, key, place);
+  if (known === undefined) {
+    if (object.kind === 'object') {
+      const why = key.kind === 'unread' ? key : unread('a list written to at an index that is not known', place);
+      dataOf(m, object);
+      m.breakObject(object.id, why);
+    }
+    return;
+  }
+  if (typeof known === 'number' && object.kind === 'object') {
+    const { negativeIndex, indexBase } = module.program;
+    const data = dataOf(m, object, true);
+    if (data?.kind === 'list') {
+      const list = m.store.writable(object.id) as ListData;
+      const k = known < 0 && negativeIndex ? list.items.length + known : known - indexBase;
+      const item = list.items[k];
+      if (module.program.elementwise && item?.kind === 'object') {
+        const row = m.store.writable(item.id);
+        if (row.kind === 'list' && row.items.length === 1 && value.kind !== 'object') {
+          row.items[0] = value;
+          return;
+        }
+      }
+      setItem(m, object, list, k, value, place);
+      return;
+    }
+  }
+  writeMember(m, module, object, String(known), value, place);
+}

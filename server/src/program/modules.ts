@@ -1,0 +1,250 @@
+import type { Place } from '../text/span';
+import { classInfo } from './classes';
+import { evaluate } from './expressions';
+import type { Expression, Program, Statement } from './form';
+import { genericAt } from './generics';
+import type { Library } from './library';
+import type { Machine } from './machine';
+import { libraryMember, readMember } from './members';
+import { bindPattern } from './patterns';
+import { assignments, nodesOf, patternNames } from './scan';
+import { Scope, type Frame, type Module } from './scope';
+import { enumValue } from './statements';
+import { arrivalOf, arrive, readVariable, type Arrival } from './variables';
+import { unread, type Value } from './values';
+import type { Variable } from './scope';
+
+/** Files: their top-level names, imports and exports. Nothing at the top level runs until something asks for it. */
+
+export function loadModule(m: Machine, file: string, program: Program, library: Library): Module {
+  const known = m.modules.get(file);
+  if (known) return known;
+  const names = m.atRoot(() => m.store.add({ kind: 'record', members: new Map() }));
+  const frame = { names, depth: 0 } as { -readonly [K in keyof Frame]: Frame[K] };
+  const scope = new Scope(undefined, frame, true);
+  const module: Module = { file, program, library, scope, exports: new Map(), everythingOf: [] };
+  frame.module = module;
+  m.modules.set(file, module);
+  for (const s of program.body) addTopLevel(m, module, scope, s);
+  return module;
+}
+
+function lazy(m: Machine, scope: Scope, name: string, value: () => Value): Variable {
+  const variable: Variable = { name, location: m.store.reserve(), scope, lazy: value };
+  scope.variables.set(name, variable);
+  return variable;
+}
+
+/** Makes a statement's names known in `scope`, a file's or that of a function around the one that is read. */
+export function addTopLevel(m: Machine, module: Module, scope: Scope, s: Statement): void {
+  switch (s.kind) {
+    case 'function':
+      lazy(m, scope, s.node.name, () => ({ kind: 'function', node: s.node, scope }));
+      return;
+    case 'class':
+      lazy(m, scope, s.node.name, () => ({ kind: 'class', info: classInfo(m, scope, s.node) }));
+      return;
+    case 'enum':
+      lazy(m, scope, s.name, () => enumValue(m, scope, s));
+      return;
+    case 'declare':
+      addVariables(m, module, scope, s);
+      return;
+    case 'import':
+      addImport(m, module, s);
+      return;
+    case 'export':
+      addExport(m, module, s);
+      return;
+    case 'block':
+      for (const inner of s.body) if (inner.kind === 'declare' && inner.scope === 'function') addVariables(m, module, scope, inner);
+      return;
+    case 'expression':
+      addAssigned(m, module, scope, s.value);
+      return;
+    default:
+      return;
+  }
+}
+
+/** `X.prototype.f = function ...` and `exports.f = ...` at the top level. */
+function addAssigned(m: Machine, module: Module, scope: Scope, e: Expression): void {
+  if (e.kind !== 'assign' || e.op || (e.target.kind !== 'place' && e.target.kind !== 'name')) return;
+  if (e.target.kind === 'name') {
+    // A language without declarations: the first assignment declares.
+    if (scope.variables.has(e.target.name)) return;
+    const { name } = e.target;
+    lazy(m, scope, name, () => topLevelValue(m, module, scope, name, e.value, true));
+    return;
+  }
+  const t = e.target.target;
+  if (t.kind === 'member' && t.object.kind === 'member' && t.object.name === 'prototype') {
+    m.prototypes.push({ module, target: t, value: e.value });
+  }
+}
+
+function addVariables(m: Machine, module: Module, scope: Scope, s: Statement & { kind: 'declare' }): void {
+  if (s.target.kind === 'name') {
+    const { name } = s.target;
+    if (scope.variables.has(name) && !s.value) return;
+    lazy(m, scope, name, () => topLevelValue(m, module, scope, name, s.value, s.mutable, m.place(scope, s.target.span)));
+    return;
+  }
+  // Taken apart when one of its names is first wanted.
+  const values = new Map<string, Value>();
+  let done = false;
+  for (const name of patternNames(s.target)) {
+    lazy(m, scope, name, () => {
+      if (!done && s.value) {
+        done = true;
+        bindPattern(m, scope, s.target, evaluate(m, scope, s.value), (_, p, v) => {
+          if (p.kind === 'name') values.set(p.name, arrive(m, p.name, v, arrival(scope, p.name, m.place(scope, p.span))));
+        });
+      }
+      return values.get(name) ?? unread(`\`${name}\` has no value`, m.place(scope, s.span));
+    });
+  }
+}
+
+function arrival(scope: Scope, name: string, place: Place): Arrival {
+  return { ...arrivalOf(scope, name, place), isAccumulated: false, isLocal: false };
+}
+
+/**
+ * A top-level variable at a function's entry: a constant has its value; one that functions change is state, known by its
+ * name only, of the shape of its first value.
+ */
+function topLevelValue(m: Machine, module: Module, scope: Scope, name: string, value: Expression | undefined, mutable: boolean, at?: Place): Value {
+  const place = value ? m.place(scope, value.span) : (at ?? m.place(scope, { start: 0, end: 0 }));
+  const initial = (): Value | undefined => (value ? evaluate(m, scope, value) : undefined);
+  const changes = mutable && assignments(module.program).assigned.has(name);
+  if (!changes) {
+    const v = initial();
+    if (v && v.kind !== 'object') return arrive(m, name, v, arrival(scope, name, place));
+    if (v?.kind === 'object') {
+      const data = m.store.data(v.id);
+      if (data.kind === 'generic') return arrive(m, name, v, arrival(scope, name, place));
+      if (!isState(module, name) && data.kind !== 'broken') return arrive(m, name, v, arrival(scope, name, place));
+      return genericAt(m, name, place, { fallback: () => v });
+    }
+  }
+  let first: Value | undefined;
+  return genericAt(m, name, place, { fallback: () => (first ??= initial()) });
+}
+
+/** True where members or elements of a top-level thing are written somewhere. */
+function isState(module: Module, name: string): boolean {
+  let known = stateNames.get(module.program);
+  if (!known) {
+    known = new Set();
+    for (const n of nodesOf(module.program.body)) {
+      const e = n as Expression;
+      if (e.kind !== 'assign' || !('target' in e)) continue;
+      const targets = e.target.kind === 'place' ? [e.target.target] : e.target.kind === 'list' ? e.target.items.flatMap((i) => (i?.pattern.kind === 'place' ? [i.pattern.target] : [])) : [];
+      for (let t of targets) {
+        while (t.kind === 'member' || t.kind === 'index') t = t.object;
+        if (t.kind === 'name') known.add(t.name);
+      }
+    }
+    stateNames.set(module.program, known);
+  }
+  return known.has(name);
+}
+
+const stateNames = new WeakMap<Program, Set<string>>();
+
+function addImport(m: Machine, module: Module, s: Statement & { kind: 'import' }): void {
+  const { scope } = module;
+  for (const n of s.names) {
+    lazy(m, scope, n.local, () => imported(m, module, s.from, n.imported, n.local, m.place(scope, n.span)));
+  }
+  if (s.namespace !== undefined) {
+    const { namespace } = s;
+    lazy(m, scope, namespace, () => importedWhole(m, module, s.from, namespace, m.place(scope, s.span)));
+  }
+}
+
+function imported(m: Machine, module: Module, from: string, name: string, local: string, place: Place): Value {
+  const prefix = module.library.modules.get(from);
+  if (prefix !== undefined) {
+    if (name === 'default') return { kind: 'library', path: prefix.replace(/\.$/, ''), module };
+    return libraryMember(m, module, prefix + name, place);
+  }
+  const other = open(m, module, from);
+  return other ? exportOf(m, other, name, place) : genericAt(m, local, place);
+}
+
+function importedWhole(m: Machine, module: Module, from: string, local: string, place: Place): Value {
+  const prefix = module.library.modules.get(from);
+  if (prefix !== undefined) return { kind: 'library', path: prefix.replace(/\.$/, ''), module };
+  const other = open(m, module, from);
+  if (!other) return genericAt(m, local, place);
+  return other.whole ? evaluate(m, other.scope, other.whole) : { kind: 'module', module: other };
+}
+
+export function requireModule(m: Machine, scope: Scope, from: string, place: Place): Value {
+  return importedWhole(m, scope.frame.module, from, from, place);
+}
+
+function open(m: Machine, module: Module, from: string): Module | undefined {
+  const found = m.request.importFile(from, module.file);
+  if (!found) return undefined;
+  m.files.add(found.file);
+  return loadModule(m, found.file, found.program, found.library);
+}
+
+function addExport(m: Machine, module: Module, s: Statement & { kind: 'export' }): void {
+  const place = m.place(module.scope, s.span);
+  if (s.all && s.from !== undefined) {
+    const { from } = s;
+    const [as] = s.names;
+    if (as) module.exports.set(as.exported, () => importedWhole(m, module, from, as.exported, place));
+    else module.everythingOf.push({ from, span: s.span });
+  }
+  for (const n of s.names) {
+    if (s.all) continue;
+    if (s.from !== undefined) {
+      const { from } = s;
+      module.exports.set(n.exported, () => imported(m, module, from, n.local, n.exported, place));
+    } else {
+      module.exports.set(n.exported, () => {
+        const variable = module.scope.find(n.local);
+        return variable ? readVariable(m, variable, place) : unread(`\`${n.local}\` is exported but not there`, place);
+      });
+    }
+  }
+  if (s.value) {
+    const { value } = s;
+    if (s.names.length === 0) module.whole = value;
+    for (const n of s.names) module.exports.set(n.exported, () => evaluate(m, module.scope, value));
+  }
+}
+
+export function exportOf(m: Machine, module: Module, name: string, place: Place, depth = 0): Value {
+  const known = module.exports.get(name);
+  if (known) return known();
+  for (const { from } of module.everythingOf) {
+    if (name === 'default' || depth > 16) break;
+    const other = open(m, module, from);
+    const value = other && exportOf(m, other, name, place, depth + 1);
+    if (value && value.kind !== 'unread' && value.kind !== 'nothing') return value;
+  }
+  if (module.whole) {
+    const whole = evaluate(m, module.scope, module.whole);
+    return name === 'default' ? whole : readMember(m, module, whole, name, place);
+  }
+  if (name === 'default' && module.exports.size > 0 && !/\.m?[jt]sx?$/.test(module.file)) return { kind: 'module', module };
+  // Languages without export lists give every top-level name.
+  const variable = module.program.exportsAll || module.exports.size === 0 ? module.scope.find(name) : undefined;
+  if (variable) return readVariable(m, variable, place);
+  return unread(`\`${name}\` is not exported by ${module.file}`, place);
+}
+
+/** A name that no scope has: of the library, or a thing from outside. */
+export function unknownName(m: Machine, scope: Scope, name: string, place: Place): Value {
+  const { module } = scope.frame;
+  if (m.libraryNames(module.library).has(name)) return libraryMember(m, module, name, place);
+  let found = m.globals.get(name);
+  if (!found) m.globals.set(name, (found = genericAt(m, name, place)));
+  return found;
+}

@@ -1,0 +1,168 @@
+import type { Expr } from '../expression/node';
+import type { Place } from '../text/span';
+import type { Machine } from './machine';
+import { lastName, memberPath, pathOf, spellings } from './paths';
+import type { Meaning, ReadsBinding } from './reading';
+
+/** What a name in the code means: one symbol, or several, between which nobody may guess. */
+export type NameMeaning = { readonly expr: Expr } | { readonly ambiguous: readonly string[] };
+
+/**
+ * The meanings that `reads` and the agreement of names give to places in the code, with a record of the bindings made. Two
+ * paths that agree with one symbol by name alone are told apart: both become free and are reported.
+ */
+export class Naming {
+  private readonly reads = new Map<string, ReadsBinding>();
+  private readonly names = new Map<string, NameMeaning | undefined>();
+  /** symbol -> the different things in the code that mean it by name alone */
+  private readonly origins = new Map<string, { expr: Expr; paths: Map<string, Place> }>();
+  private readonly declared = new Map<number, boolean>();
+  /** Distinguishes the runs of different functions, each of which may have its own `p.m`. */
+  run = 0;
+
+  constructor(
+    private readonly m: Machine,
+    private readonly forcedFree: ReadonlySet<string>,
+  ) {
+    for (const binding of m.request.meanings.reads) {
+      const path = pathOf(binding.target);
+      if (path !== undefined && !this.reads.has(path)) this.reads.set(path, binding);
+    }
+  }
+
+  /** What `reads` says about any of these paths. */
+  read(paths: readonly string[], place: Place): Meaning | undefined {
+    for (const path of paths) {
+      const binding = this.reads.get(path);
+      if (binding) {
+        this.recordMeaning(path, binding.meaning, place);
+        return binding.meaning;
+      }
+    }
+    return undefined;
+  }
+
+  member(path: string, key: string): string {
+    return memberPath(path, key);
+  }
+
+  hasRead(path: string): boolean {
+    return this.reads.has(path);
+  }
+
+  /** True where some binding goes through this path: `reads p.m = ...` for `p`. */
+  hasReadBelow(path: string): boolean {
+    for (const key of this.reads.keys()) if (key.startsWith(`${path}.`) || key.startsWith(`${path}[`)) return true;
+    return false;
+  }
+
+  /** The symbol a bare name agrees with, in any of its spellings. */
+  byName(name: string): NameMeaning | undefined {
+    const known = this.names.get(name);
+    if (known !== undefined || this.names.has(name)) return known;
+    let meaning: NameMeaning | undefined;
+    for (const s of spellings(name.normalize('NFC'))) {
+      const found = this.m.request.meanings.byName(s);
+      if (found.length === 1) meaning = { expr: found[0]!.expr };
+      else if (found.length > 1) meaning = { ambiguous: found.map((f) => f.text) };
+      if (meaning) break;
+    }
+    this.names.set(name, meaning);
+    return meaning;
+  }
+
+  family(paths: readonly string[]): readonly Meaning[] | undefined {
+    for (const path of paths) {
+      const name = lastName(path);
+      const family = name === undefined ? undefined : this.m.request.meanings.familyByName(name);
+      if (family) return family;
+    }
+    return undefined;
+  }
+
+  /**
+   * The symbol that a thing reached by `path` means by its name. `origin` is what tells it from other things of that
+   * name.
+   */
+  agree(name: string, path: string, origin: string, place: Place): Expr | undefined {
+    const meaning = this.byName(name);
+    if (!meaning) return undefined;
+    if ('ambiguous' in meaning) {
+      this.m.ambiguous(
+        `\`${path}\` could mean ${meaning.ambiguous.join(' or ')}; say which with \`reads ${path} = ${meaning.ambiguous[0]}\``,
+        place,
+      );
+      return undefined;
+    }
+    const key = `${this.run} ${origin}`;
+    if (this.forcedFree.has(key)) return undefined;
+    if (!this.m.quiet) {
+      const id = `${this.run} ${meaning.expr.id}`;
+      let entry = this.origins.get(id);
+      if (!entry) this.origins.set(id, (entry = { expr: meaning.expr, paths: new Map() }));
+      if (!entry.paths.has(origin)) entry.paths.set(origin, place);
+      this.record(path, meaning.expr, 'name', place);
+    }
+    return meaning.expr;
+  }
+
+  isForcedFree(origin: string): boolean {
+    return this.forcedFree.has(`${this.run} ${origin}`);
+  }
+
+  /** Different things that agreed with one symbol, to be read again as free. */
+  conflicts(): { keys: string[]; message: string; place: Place }[] {
+    const found: { keys: string[]; message: string; place: Place }[] = [];
+    for (const [id, entry] of this.origins) {
+      if (entry.paths.size < 2) continue;
+      const run = id.split(' ')[0]!;
+      const names = [...entry.paths.keys()];
+      const shown = names.map((n) => `\`${n}\``).join(' and ');
+      found.push({
+        keys: names.map((n) => `${run} ${n}`),
+        message: `${shown} could both mean the same symbol; say what each means with \`reads\``,
+        place: [...entry.paths.values()][1]!,
+      });
+    }
+    return found;
+  }
+
+  /** True for an expression in which a symbol of the declaration occurs. */
+  containsDeclared(expr: Expr): boolean {
+    const known = this.declared.get(expr.id);
+    if (known !== undefined) return known;
+    const stack = [expr];
+    while (stack.length > 0) {
+      const e = stack[stack.length - 1]!;
+      if (this.declared.has(e.id)) {
+        stack.pop();
+        continue;
+      }
+      if (e.op === 'symbol') this.declared.set(e.id, this.m.request.meanings.isDeclared(e));
+      else {
+        const open = e.args.filter((a) => !this.declared.has(a.id));
+        if (open.length > 0) {
+          stack.push(...open);
+          continue;
+        }
+        this.declared.set(e.id, e.args.some((a) => this.declared.get(a.id)!));
+      }
+      stack.pop();
+    }
+    return this.declared.get(expr.id)!;
+  }
+
+  private recordMeaning(path: string, meaning: Meaning, place: Place): void {
+    if (meaning.kind === 'scalar') this.record(path, meaning.expr, 'reads', place);
+    else {
+      const base = this.m.request.program.indexBase;
+      meaning.items.forEach((item, k) => this.recordMeaning(`${path}[${k + base}]`, item, place));
+    }
+  }
+
+  private record(code: string, meaning: Expr, how: 'reads' | 'name', place: Place): void {
+    if (this.m.quiet) return;
+    const key = `${code} ${meaning.id}`;
+    if (!this.m.bindings.has(key)) this.m.bindings.set(key, { code, meaning, how, place });
+  }
+}

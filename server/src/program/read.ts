@@ -1,0 +1,122 @@
+import type { Place } from '../text/span';
+import { assume } from './assumptions';
+import { runBody } from './calls';
+import { classInfo } from './classes';
+import { enter } from './entry';
+import { genericAt } from './generics';
+import { Machine } from './machine';
+import { apply, mergeEndings, type Ending } from './merging';
+import { loadModule } from './modules';
+import { readOutputs, type Ended } from './outputs';
+import type { Ambiguity, OutputValue, ReadRequest, Reading } from './reading';
+import { Scope, type Module } from './scope';
+import { execute } from './statements';
+import { NOTHING, unread, type Value } from './values';
+
+const MOST_ROUNDS = 5;
+
+/**
+ * Reads a function (or the methods of a class, or a file's top level) by symbolic execution: from generic arguments and
+ * state, along every branch, to what the claims ask for. Nothing is run, and nothing throws: what can't be read is
+ * `unread` with its reason and place.
+ */
+export function read(request: ReadRequest): Reading {
+  const forced = new Set<string>();
+  const ambiguities: Ambiguity[] = [];
+  for (let round = 0; ; round++) {
+    const m = new Machine(request, forced);
+    let outputs: readonly OutputValue[];
+    try {
+      outputs = readOnce(m);
+    } catch (error) {
+      const reason = error instanceof RangeError ? 'this is nested too deeply to be read' : `reading it failed: ${String(error)}`;
+      outputs = request.outputs.map(() => ({ kind: 'unread', reason, place: subjectPlace(request) }));
+    }
+    const conflicts = m.naming.conflicts();
+    if (conflicts.length === 0 || round >= MOST_ROUNDS) return finished(m, outputs, ambiguities);
+    for (const c of conflicts) {
+      for (const key of c.keys) forced.add(key);
+      ambiguities.push({ message: c.message, place: c.place });
+    }
+  }
+}
+
+function finished(m: Machine, outputs: readonly OutputValue[], ambiguities: readonly Ambiguity[]): Reading {
+  return {
+    outputs,
+    bindings: [...m.bindings.values()],
+    ambiguities: [...ambiguities, ...m.ambiguities.values()],
+    free: m.free,
+    conditions: [...m.conditions].map(([expr, place]) => ({ expr, place })),
+    assumed: m.assumed,
+    trace: m.trace,
+    files: [...m.files],
+  };
+}
+
+function subjectPlace(request: ReadRequest): Place | undefined {
+  const { subject } = request;
+  return subject.kind === 'file' ? undefined : { file: request.file, span: subject.node.nameSpan };
+}
+
+function readOnce(m: Machine): OutputValue[] {
+  const { request } = m;
+  const module = loadModule(m, request.file, request.program, request.library);
+  const ended = request.subject.kind === 'function' ? runFunction(m, module) : runTop(m, module);
+  return readOutputs(m, request.outputs, ended);
+}
+
+function runFunction(m: Machine, module: Module): Ended {
+  const { subject } = m.request;
+  if (subject.kind !== 'function') return runTop(m, module);
+  const { node, owner } = subject;
+  const entry = enter(m, module, node, owner);
+  const { scope } = entry;
+  for (const a of m.request.assumptions) assume(m, scope, a);
+  const before = m.store;
+  m.store = before.child();
+  const base = m.store;
+  const place = m.place(scope, node.nameSpan);
+  const returned =
+    node.opaque !== undefined ? unread(`can't read \`${node.name}\`: it is ${node.opaque}`, place) : runBody(m, scope, base, place);
+  return {
+    module,
+    outer: scope.parent ?? module.scope,
+    entry,
+    info: entry.info,
+    self: scope.frame.self,
+    before,
+    names: scope.frame.names,
+    returned,
+  };
+}
+
+/** A file's top level as a script, or a class whose methods the outputs call. */
+function runTop(m: Machine, module: Module): Ended {
+  const { subject } = m.request;
+  const info = subject.kind === 'class' ? classInfo(m, module.scope, subject.node) : undefined;
+  const self: Value | undefined = info ? genericAt(m, 'this', m.place(module.scope, info.node.nameSpan), { info }) : undefined;
+  const names = m.store.add({ kind: 'record', members: new Map() });
+  m.frameNames.add(names);
+  const scope = new Scope(info?.scope ?? module.scope, { module, names, depth: 0, ...(self ? { self } : {}) }, true);
+  for (const a of m.request.assumptions) assume(m, scope, a);
+  const before = m.store;
+  m.store = before.child();
+  if (subject.kind === 'file') runScript(m, module, scope);
+  return { module, outer: scope, entry: undefined, info, self, before, names, returned: NOTHING };
+}
+
+function runScript(m: Machine, module: Module, scope: Scope): void {
+  const base = m.store;
+  m.store = base.child();
+  const { exits, normal } = execute(m, scope, module.program.body);
+  const endings: Ending[] = exits.map((x) => {
+    m.store = x.store;
+    if (x.kind === 'throw') m.die();
+    return { guard: x.guard, changes: m.store.changesSince(base), value: NOTHING };
+  });
+  if (normal || endings.length === 0) endings.push({ guard: m.graph.true, changes: m.store.changesSince(base), value: NOTHING });
+  const merged = mergeEndings(m, base, endings, { file: module.file, span: { start: 0, end: 0 } });
+  m.store = base;
+  apply(base, merged.changes);
+}

@@ -1,0 +1,157 @@
+import type { Expression, FunctionNode, Pattern, Program, Statement } from './form';
+
+/** Looks over syntax without running it. Iterative, so that deep nesting does no harm. */
+
+type Node = { readonly kind?: string } & object;
+
+/** Every node below `start`, parents first. Functions inside are entered only where `inner` says so. */
+export function* nodesOf(start: unknown, inner = true): Generator<Node> {
+  const stack: unknown[] = [start];
+  let first = true;
+  while (stack.length > 0) {
+    const x = stack.pop();
+    if (x === null || typeof x !== 'object') continue;
+    if (Array.isArray(x)) {
+      for (let i = x.length - 1; i >= 0; i--) stack.push(x[i]);
+      continue;
+    }
+    const node = x as Node;
+    if (!first && !inner && isFunctionNode(node)) continue;
+    first = false;
+    if (node.kind === 'number') continue;
+    yield node;
+    const values = Object.values(node);
+    for (let i = values.length - 1; i >= 0; i--) if (typeof values[i] === 'object') stack.push(values[i]);
+  }
+}
+
+function isFunctionNode(node: Node): boolean {
+  return 'bodySpan' in node && 'parameters' in node;
+}
+
+/** Names that a pattern declares or assigns. */
+export function patternNames(pattern: Pattern): string[] {
+  const names: string[] = [];
+  const visit = (p: Pattern): void => {
+    if (p.kind === 'name') names.push(p.name);
+    else if (p.kind === 'list') p.items.forEach((i) => i && visit(i.pattern));
+    else if (p.kind === 'record') {
+      p.fields.forEach((f) => visit(f.item.pattern));
+      if (p.rest) visit(p.rest);
+    }
+  };
+  visit(pattern);
+  return names;
+}
+
+/** Names that `var` and the like declare anywhere in a function's body. */
+export function hoistedNames(body: readonly Statement[]): string[] {
+  const names: string[] = [];
+  for (const node of nodesOf(body, false)) {
+    const s = node as Statement;
+    if (s.kind === 'declare' && s.scope === 'function' && 'target' in s) names.push(...patternNames(s.target));
+  }
+  return names;
+}
+
+interface Assignments {
+  /** Names that are re-assigned to something that is more than a constant, or augmented: their first value counts. */
+  readonly computed: ReadonlySet<string>;
+  readonly assigned: ReadonlySet<string>;
+}
+
+const assignmentsOf = new WeakMap<object, Assignments>();
+
+export function assignments(node: FunctionNode | Program): Assignments {
+  const known = assignmentsOf.get(node);
+  if (known) return known;
+  const computed = new Set<string>();
+  const assigned = new Set<string>();
+  for (const n of nodesOf(node.body)) {
+    const e = n as Expression;
+    if (e.kind !== 'assign' || !('target' in e)) continue;
+    for (const name of patternNames(e.target)) {
+      assigned.add(name);
+      if (e.op !== undefined || !isConstantLike(e.value)) computed.add(name);
+    }
+  }
+  const result = { computed, assigned };
+  assignmentsOf.set(node, result);
+  return result;
+}
+
+/** A literal, arithmetic of literals, or something fetched from outside: nothing computed from the function's own names. */
+function isConstantLike(e: Expression): boolean {
+  switch (e.kind) {
+    case 'number':
+    case 'string':
+    case 'boolean':
+    case 'nothing':
+      return true;
+    case 'unary':
+      return isConstantLike(e.operand);
+    case 'binary':
+      return isConstantLike(e.left) && isConstantLike(e.right);
+    case 'member':
+      return true;
+    case 'call':
+      return e.args.length === 0;
+    default:
+      return false;
+  }
+}
+
+const membersOf = new WeakMap<Program, { assigned: Set<string>; used: Set<string> }>();
+
+function memberScan(program: Program): { assigned: Set<string>; used: Set<string> } {
+  let found = membersOf.get(program);
+  if (found) return found;
+  found = { assigned: new Set(), used: new Set() };
+  const constructors = new Set<object>();
+  for (const n of nodesOf(program.body)) {
+    if ((n as { kind?: string }).kind === 'constructor' && 'node' in n) constructors.add(n);
+  }
+  const scan = (start: unknown, inConstructor: boolean): void => {
+    for (const n of nodesOf(start)) {
+      const e = n as Expression;
+      if (e.kind === 'assign' && 'target' in e && !inConstructor) {
+        for (const t of placesOf(e.target)) if (t.kind === 'member') found!.assigned.add(t.name);
+      } else if ((e.kind === 'member' || e.kind === 'index') && 'object' in e && e.object.kind === 'name') {
+        found!.used.add(e.object.name);
+      }
+    }
+  };
+  // What a constructor sets is an initial value, not a change.
+  scan(program.body, false);
+  if (constructors.size > 0) {
+    const elsewhere = new Set<string>();
+    const inside = new Set<object>();
+    for (const c of constructors) for (const n of nodesOf(c)) inside.add(n);
+    for (const n of nodesOf(program.body)) {
+      const e = n as Expression;
+      if (e.kind !== 'assign' || !('target' in e) || inside.has(n)) continue;
+      for (const t of placesOf(e.target)) if (t.kind === 'member') elsewhere.add(t.name);
+    }
+    found.assigned = elsewhere;
+  }
+  membersOf.set(program, found);
+  return found;
+}
+
+/** The member and index expressions that a pattern writes to. */
+export function placesOf(pattern: Pattern): Expression[] {
+  if (pattern.kind === 'place') return [pattern.target];
+  if (pattern.kind === 'list') return pattern.items.flatMap((i) => (i ? placesOf(i.pattern) : []));
+  if (pattern.kind === 'record') return pattern.fields.flatMap((f) => placesOf(f.item.pattern));
+  return [];
+}
+
+/** True where some code outside constructors assigns to a member of this name. */
+export function memberIsAssigned(program: Program, name: string): boolean {
+  return memberScan(program).assigned.has(name);
+}
+
+/** True where a bare name is used as a thing with members or elements. */
+export function isUsedAsThing(program: Program, name: string): boolean {
+  return memberScan(program).used.has(name);
+}

@@ -1,0 +1,350 @@
+import type { Expr } from '../expression/node';
+import type { Place } from '../text/span';
+import { classInfo } from './classes';
+import { conditionOf, compare } from './conditions';
+import { evaluate } from './expressions';
+import type { Pattern, Statement } from './form';
+import { isClipGuard } from './limits';
+import { forEach, loop } from './loops';
+import { DEAD, type Machine } from './machine';
+import { apply, mergeEndings, mergePair, type Ending } from './merging';
+import { bindPattern } from './patterns';
+import { Scope } from './scope';
+import type { Store } from './store';
+import { arrivalOf, arrive, declare, write } from './variables';
+import { NOTHING, isUnread, unread, type Unread, type Value } from './values';
+
+/** Statements. A way out of a block that is taken only under some condition is kept with its guard and its own store. */
+export interface Exit {
+  readonly kind: 'return' | 'break' | 'continue' | 'throw';
+  readonly label?: string;
+  readonly value: Value;
+  readonly store: Store;
+  /** Taken when this holds and no earlier exit was taken. */
+  readonly guard: Expr;
+}
+
+export interface Outcome {
+  readonly exits: readonly Exit[];
+  /** True where control can reach the end; the machine's store is then the one that goes on. */
+  readonly normal: boolean;
+}
+
+const GOES_ON: Outcome = { exits: [], normal: true };
+
+export function execute(m: Machine, scope: Scope, body: readonly Statement[]): Outcome {
+  hoist(m, scope, body);
+  const exits: Exit[] = [];
+  for (const s of body) {
+    const outcome = executeOne(m, scope, s);
+    exits.push(...outcome.exits);
+    if (!outcome.normal) return { exits, normal: false };
+  }
+  return { exits, normal: true };
+}
+
+/** Functions and classes are known before the statements of their block run. */
+export function hoist(m: Machine, scope: Scope, body: readonly Statement[]): void {
+  for (const s of body) {
+    if (s.kind === 'function') {
+      const self = s.node.inheritsSelf ? scope.frame.self : undefined;
+      declare(m, scope, s.node.name, { kind: 'function', node: s.node, scope, ...(self ? { self } : {}) });
+    } else if (s.kind === 'class') {
+      declare(m, scope, s.node.name, { kind: 'class', info: classInfo(m, scope, s.node) });
+    } else if (s.kind === 'declare' && s.scope === 'block') {
+      // A use before the declaration must not find an outer variable of that name.
+      for (const name of namesOf(s.target)) if (!scope.variables.has(name)) declare(m, scope, name);
+    }
+  }
+}
+
+function namesOf(p: Pattern): string[] {
+  return p.kind === 'name' ? [p.name] : [];
+}
+
+function exit(m: Machine, kind: Exit['kind'], value: Value, label?: string): Outcome {
+  const way: Exit = { kind, value, store: m.store, guard: m.graph.true, ...(label !== undefined ? { label } : {}) };
+  return { exits: [way], normal: false };
+}
+
+export function executeOne(m: Machine, scope: Scope, s: Statement): Outcome {
+  const place = m.place(scope, s.span);
+  const stopped = m.spend(() => place);
+  if (stopped) return exit(m, 'return', stopped);
+  return m.nested(
+    () => place,
+    () => run(m, scope, s, place),
+    (u) => exit(m, 'return', u),
+  );
+}
+
+function run(m: Machine, scope: Scope, s: Statement, place: Place): Outcome {
+  switch (s.kind) {
+    case 'declare':
+      executeDeclare(m, scope, s);
+      return GOES_ON;
+    case 'expression':
+      evaluate(m, scope, s.value);
+      return GOES_ON;
+    case 'return':
+      return exit(m, 'return', s.value ? evaluate(m, scope, s.value) : NOTHING);
+    case 'if':
+      return executeIf(m, scope, s, place);
+    case 'loop':
+      return loop(m, scope, s, place);
+    case 'for-each':
+      return forEach(m, scope, s, place);
+    case 'switch':
+      return executeSwitch(m, scope, s);
+    case 'break':
+    case 'continue':
+      return exit(m, s.kind, NOTHING, s.label);
+    case 'labelled':
+      return executeLabelled(m, scope, s, place);
+    case 'throw':
+      if (s.value) evaluate(m, scope, s.value);
+      return exit(m, 'throw', NOTHING);
+    case 'try':
+      return executeTry(m, scope, s, place);
+    case 'block':
+      return execute(m, new Scope(scope, scope.frame), s.body);
+    case 'enum':
+      executeEnum(m, scope, s);
+      return GOES_ON;
+    case 'opaque':
+      return spoil(m, unread(s.reason, place));
+    case 'function':
+    case 'class':
+    case 'import':
+    case 'export':
+    case 'empty':
+      return GOES_ON;
+  }
+}
+
+/** A statement that can't be read may do anything: nothing after it is known. */
+function spoil(m: Machine, why: Unread): Outcome {
+  return exit(m, 'return', why);
+}
+
+function executeDeclare(m: Machine, scope: Scope, s: Statement & { kind: 'declare' }): void {
+  const owner = s.scope === 'function' ? scope.functionScope : scope;
+  if (!s.value) {
+    for (const name of namesOf(s.target)) {
+      const known = owner.variables.get(name);
+      if (!known) declare(m, owner, name, NOTHING);
+      else if (!m.store.value(known.location)) write(m, known, NOTHING);
+    }
+    return;
+  }
+  const value = evaluate(m, scope, s.value);
+  bindPattern(m, scope, s.target, value, (_, pattern, v) => {
+    if (pattern.kind !== 'name') return;
+    const place = s.target.kind === 'name' ? m.place(scope, s.value!.span) : m.place(scope, pattern.span);
+    // A block's own variable may have been looked for before: it keeps its location.
+    const known = owner.variables.get(pattern.name);
+    const variable = known ?? declare(m, owner, pattern.name);
+    write(m, variable, arrive(m, pattern.name, v, arrivalOf(owner, pattern.name, place)));
+  });
+}
+
+function executeIf(m: Machine, scope: Scope, s: Statement & { kind: 'if' }, place: Place): Outcome {
+  const c = conditionOf(m, scope, s.condition);
+  const at = m.place(scope, s.condition.span);
+  if (isUnread(c)) return unknownBranch(m, scope, s, c);
+  if (m.request.withinLimits && isClipGuard(m, s, c)) return GOES_ON;
+  return branch(
+    m,
+    c,
+    at,
+    place,
+    () => execute(m, new Scope(scope, scope.frame), s.whenTrue),
+    () => execute(m, new Scope(scope, scope.frame), s.whenFalse),
+  );
+}
+
+/** Which branch is taken can't be read: what either of them writes is not known. */
+function unknownBranch(m: Machine, scope: Scope, s: Statement & { kind: 'if' }, why: Unread): Outcome {
+  const base = m.store;
+  const touched = new Set<number>();
+  const exits: Exit[] = [];
+  for (const side of [s.whenTrue, s.whenFalse]) {
+    m.store = base.child();
+    const outcome = execute(m, new Scope(scope, scope.frame), side);
+    for (const k of m.store.changesSince(base).keys()) touched.add(k);
+    for (const x of outcome.exits) {
+      for (const k of x.store.changesSince(base).keys()) touched.add(k);
+      if (x.kind !== 'throw') exits.push(x);
+    }
+  }
+  m.store = base;
+  touched.delete(DEAD);
+  for (const k of touched) {
+    const before = base.get(k);
+    if (before) m.spoilLocation(k, why);
+  }
+  // Whether the function goes on at all is not known either.
+  if (exits.length > 0) return exit(m, 'return', why);
+  return GOES_ON;
+}
+
+export function branch(m: Machine, c: Expr, conditionPlace: Place, place: Place, whenTrue: () => Outcome, whenFalse: () => Outcome): Outcome {
+  const g = m.graph;
+  if (c === g.true) return whenTrue();
+  if (c === g.false) return whenFalse();
+  m.condition(c, conditionPlace);
+  const base = m.store;
+  m.store = base.child();
+  const a = whenTrue();
+  const storeA = m.store;
+  m.store = base.child();
+  const b = whenFalse();
+  const storeB = m.store;
+  const exits = [
+    ...a.exits.map((x) => ({ ...x, guard: g.and(c, x.guard) })),
+    ...b.exits.map((x) => ({ ...x, guard: g.and(g.not(c), x.guard) })),
+  ];
+  if (a.normal && b.normal) {
+    const merged = mergePair(
+      m,
+      base,
+      c,
+      { changes: storeA.changesSince(base), value: NOTHING },
+      { changes: storeB.changesSince(base), value: NOTHING },
+      place,
+    );
+    m.store = exits.length > 0 ? base.child() : base;
+    apply(m.store, merged.changes);
+  } else m.store = (a.normal ? storeA : storeB).child();
+  return { exits, normal: a.normal || b.normal };
+}
+
+/** Ends that go on together: those of `taken`, and the current store where `normal`. Others stay outside. */
+export function join(m: Machine, base: Store, taken: readonly Exit[], normal: boolean, keepsBase: boolean, place: Place): boolean {
+  const endings: Ending[] = taken.map((x) => ({ guard: x.guard, changes: x.store.changesSince(base), value: NOTHING }));
+  if (normal) endings.push({ guard: m.graph.true, changes: m.store.changesSince(base), value: NOTHING });
+  if (endings.length === 0) return false;
+  const merged = mergeEndings(m, base, endings, place);
+  m.store = keepsBase ? base.child() : base;
+  apply(m.store, merged.changes);
+  return true;
+}
+
+/** Those of the ways out that end here, and the others, which are taken only where none of the first was before. */
+export function split(m: Machine, exits: readonly Exit[], isMine: (x: Exit) => boolean): { mine: Exit[]; others: Exit[] } {
+  const mine: Exit[] = [];
+  const others: Exit[] = [];
+  let open = m.graph.true;
+  for (const x of exits) {
+    if (isMine(x)) {
+      mine.push(x);
+      open = m.graph.and(open, m.graph.not(x.guard));
+    } else others.push({ ...x, guard: m.graph.and(open, x.guard) });
+  }
+  return { mine, others };
+}
+
+function executeLabelled(m: Machine, scope: Scope, s: Statement & { kind: 'labelled' }, place: Place): Outcome {
+  const base = m.store;
+  m.store = base.child();
+  const inner = s.body.kind === 'loop' ? loop(m, scope, s.body, place, s.label) : s.body.kind === 'for-each' ? forEach(m, scope, s.body, place, s.label) : executeOne(m, scope, s.body);
+  const { mine, others } = split(m, inner.exits, (x) => x.kind === 'break' && x.label === s.label);
+  const normal = join(m, base, mine, inner.normal, others.length > 0, place);
+  return { exits: others, normal };
+}
+
+function executeSwitch(m: Machine, scope: Scope, s: Statement & { kind: 'switch' }): Outcome {
+  const place = m.place(scope, s.span);
+  const value = evaluate(m, scope, s.value);
+  const inner = new Scope(scope, scope.frame);
+  hoist(m, inner, s.cases.flatMap((c) => c.body));
+  const base = m.store;
+  m.store = base.child();
+  const outcome = fromCase(m, inner, s, value, 0);
+  const { mine, others } = split(m, outcome.exits, (x) => x.kind === 'break' && x.label === undefined);
+  const normal = join(m, base, mine, outcome.normal, others.length > 0, place);
+  return { exits: others, normal };
+}
+
+/** Tests the cases from the k-th on, in order; the default is taken where none fits. */
+function fromCase(m: Machine, scope: Scope, s: Statement & { kind: 'switch' }, value: Value, k: number): Outcome {
+  let at = k;
+  while (at < s.cases.length && !s.cases[at]!.test) at++;
+  if (at >= s.cases.length) {
+    const other = s.cases.findIndex((c) => !c.test);
+    return other < 0 ? GOES_ON : bodyFrom(m, scope, s, other);
+  }
+  const test = s.cases[at]!.test!;
+  const place = m.place(scope, test.span);
+  const same = compare(m, '==', value, evaluate(m, scope, test), place);
+  if (same.kind !== 'condition') return exit(m, 'return', same.kind === 'unread' ? same : unread('a case', place));
+  return branch(
+    m,
+    same.expr,
+    place,
+    place,
+    () => bodyFrom(m, scope, s, at),
+    () => fromCase(m, scope, s, value, at + 1),
+  );
+}
+
+function bodyFrom(m: Machine, scope: Scope, s: Statement & { kind: 'switch' }, k: number): Outcome {
+  const body = s.fallsThrough ? s.cases.slice(k).flatMap((c) => c.body) : s.cases[k]!.body;
+  return execute(m, scope, body);
+}
+
+function executeTry(m: Machine, scope: Scope, s: Statement & { kind: 'try' }, place: Place): Outcome {
+  const base = m.store;
+  m.store = base.child();
+  const body = execute(m, new Scope(scope, scope.frame), s.body);
+  const exits: Exit[] = [];
+  let normal = body.normal;
+  const ends: Exit[] = [];
+  const after = m.store;
+  let open = m.graph.true;
+  for (const x of body.exits) {
+    if (x.kind !== 'throw' || !s.handler) {
+      exits.push({ ...x, guard: m.graph.and(open, x.guard) });
+      continue;
+    }
+    const handled = handle(m, scope, s.handler, x, place);
+    exits.push(...handled.exits.map((y) => ({ ...y, guard: m.graph.and(open, m.graph.and(x.guard, y.guard)) })));
+    if (handled.normal) ends.push({ ...x, store: m.store });
+    open = m.graph.and(open, m.graph.not(x.guard));
+  }
+  m.store = after;
+  if (ends.length > 0) normal = join(m, base, ends, body.normal, exits.length > 0, place);
+  if (s.finalizer.length > 0 && normal) {
+    const last = execute(m, new Scope(scope, scope.frame), s.finalizer);
+    return { exits: [...exits, ...last.exits], normal: last.normal };
+  }
+  return { exits, normal };
+}
+
+function handle(m: Machine, scope: Scope, handler: NonNullable<(Statement & { kind: 'try' })['handler']>, x: Exit, place: Place): Outcome {
+  m.store = x.store.child();
+  const inner = new Scope(scope, scope.frame);
+  if (handler.parameter) {
+    bindPattern(m, inner, handler.parameter, unread('an error that was caught', place), (sc, p, v) => {
+      if (p.kind === 'name') declare(m, sc, p.name, v);
+    });
+  }
+  return execute(m, inner, handler.body);
+}
+
+function executeEnum(m: Machine, scope: Scope, s: Statement & { kind: 'enum' }): void {
+  declare(m, scope, s.name, enumValue(m, scope, s));
+}
+
+export function enumValue(m: Machine, scope: Scope, s: Statement & { kind: 'enum' }): Value {
+  const members = new Map<string, Value>();
+  const inner = new Scope(scope, scope.frame);
+  let next: Value = m.scalar(m.graph.zero);
+  for (const member of s.members) {
+    const value = member.value ? evaluate(m, inner, member.value) : next;
+    members.set(member.name, value);
+    declare(m, inner, member.name, value);
+    next = value.kind === 'scalar' ? m.scalar(m.graph.add(value.expr, m.graph.one)) : unread('an enum member after one that is no number', m.place(scope, member.span));
+  }
+  return m.object({ kind: 'record', members });
+}

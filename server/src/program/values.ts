@@ -1,0 +1,137 @@
+import type { Expr } from '../expression/node';
+import type { Place } from '../text/span';
+import type { FunctionNode } from './form';
+import type { ClassInfo, Module, Scope } from './scope';
+
+/**
+ * What an expression of the code can be. Values are immutable; whatever can change (variables, lists, records, generic
+ * things) is a location of the store, and a value only refers to it.
+ */
+export type Value =
+  | Scalar
+  | Condition
+  | { readonly kind: 'string'; readonly value: string }
+  /** `explicit`: null written in the code, against a variable that was never given a value. */
+  | { readonly kind: 'nothing' }
+  /** A list, record, instance or generic thing: its contents are in the store. */
+  | ObjectValue
+  | FunctionValue
+  | ClassValue
+  /** A name of the language's numeric library: `Math`, `Math.sin`. */
+  | LibraryValue
+  /** A method of the library taken from a receiver: `xs.map`. */
+  | { readonly kind: 'method'; readonly intrinsic: string; readonly self: Value }
+  | { readonly kind: 'module'; readonly module: Module }
+  /** Two values of different shape, one of which holds by a condition that is not decided. */
+  | ChoiceValue
+  | Unread;
+
+export interface Scalar {
+  readonly kind: 'scalar';
+  readonly expr: Expr;
+  readonly place?: Place;
+}
+
+export interface Condition {
+  readonly kind: 'condition';
+  readonly expr: Expr;
+  readonly place?: Place;
+}
+
+export interface ObjectValue {
+  readonly kind: 'object';
+  readonly id: number;
+}
+
+export interface FunctionValue {
+  readonly kind: 'function';
+  readonly node: FunctionNode;
+  readonly scope: Scope;
+  /** The receiver of a bound method, or the one an arrow function closes over. */
+  readonly self?: Value;
+  /** The class a method belongs to, for `super`. */
+  readonly home?: ClassInfo;
+}
+
+export interface ClassValue {
+  readonly kind: 'class';
+  readonly info: ClassInfo;
+}
+
+export interface LibraryValue {
+  readonly kind: 'library';
+  readonly path: string;
+  readonly module: Module;
+}
+
+export interface ChoiceValue {
+  readonly kind: 'choice';
+  readonly condition: Expr;
+  readonly whenTrue: Value;
+  readonly whenFalse: Value;
+}
+
+export interface Unread {
+  readonly kind: 'unread';
+  /** In words that complete "can't be read: ...". */
+  readonly reason: string;
+  readonly place: Place | undefined;
+}
+
+/** Contents of an object, in the store. A layer of the store that owns one may change it in place. */
+export type Data = ListData | RecordData | GenericData | { readonly kind: 'broken'; readonly unread: Unread };
+
+export interface ListData {
+  readonly kind: 'list';
+  items: Value[];
+  /** A numeric vector, on which operators work element by element. */
+  readonly array: boolean;
+}
+
+export interface RecordData {
+  readonly kind: 'record';
+  readonly members: Map<string, Value>;
+  readonly getters?: Map<string, FunctionValue>;
+  readonly info?: ClassInfo;
+  /** Where members are looked up that it lacks itself. */
+  readonly prototype?: number;
+}
+
+/** A thing from outside: only the members the code has written are stored. */
+export interface GenericData {
+  readonly kind: 'generic';
+  readonly generic: Generic;
+  readonly members: Map<string, Value>;
+}
+
+/** What is known of a thing from outside, the same on every branch. */
+export interface Generic {
+  readonly path: string;
+  /** Other names the code gave it. */
+  readonly aliases: string[];
+  readonly place: Place;
+  readonly info?: ClassInfo;
+  /** Its value where neither `reads` nor its name gives one: a field's initialiser, say. */
+  readonly fallback?: () => Value | undefined;
+  /** True where nothing changes it, so that a literal initial value is its value. */
+  readonly constant?: boolean;
+  /** True once it was looked at whether it is a list. */
+  structured?: boolean;
+}
+
+export type Content = Value | Data;
+
+export function isData(content: Content): content is Data {
+  const k = content.kind;
+  return k === 'list' || k === 'record' || k === 'generic' || k === 'broken';
+}
+
+export const NOTHING: Value = { kind: 'nothing' };
+
+export function unread(reason: string, place: Place | undefined): Unread {
+  return { kind: 'unread', reason, place };
+}
+
+export function isUnread(x: Expr | Value): x is Unread {
+  return 'kind' in x && x.kind === 'unread';
+}

@@ -1,0 +1,115 @@
+import type { Place } from '../text/span';
+import { addAlias, valueOf } from './generics';
+import type { Machine } from './machine';
+import { memberPath } from './paths';
+import { assignments } from './scan';
+import type { Scope, Variable } from './scope';
+import { unread, type Value } from './values';
+
+/** Variables: declaring, reading, writing, and what an assignment to a name with a meaning means. */
+
+export function declare(m: Machine, scope: Scope, name: string, value?: Value): Variable {
+  const variable: Variable = { name, location: m.store.reserve(), scope };
+  scope.variables.set(name, variable);
+  if (value) write(m, variable, value);
+  return variable;
+}
+
+export function write(m: Machine, variable: Variable, value: Value): void {
+  if (variable.lazy) readVariable(m, variable, undefined);
+  m.store.set(variable.location, value);
+  const names = m.store.writable(variable.scope.frame.names);
+  if (names.kind === 'record') names.members.set(variable.name, value);
+}
+
+export function readVariable(m: Machine, variable: Variable, place: Place | undefined): Value {
+  const value = m.store.value(variable.location);
+  if (value) return value;
+  if (!variable.lazy) return unread(`\`${variable.name}\` is used before it has a value`, place);
+  if (variable.busy) return unread(`\`${variable.name}\` is defined by itself`, place);
+  variable.busy = true;
+  const found = m.atRoot(() => variable.lazy!());
+  variable.busy = false;
+  m.atRoot(() => m.store.set(variable.location, found));
+  return found;
+}
+
+/** How a value comes to a name. */
+export interface Arrival {
+  readonly place: Place;
+  /** The assignments of the function (or module) the name belongs to keep its first literal from standing for a symbol. */
+  readonly isAccumulated: boolean;
+  /** False at a module's top level. */
+  readonly isLocal: boolean;
+}
+
+export function arrivalOf(scope: Scope, name: string, place: Place): Arrival {
+  const owner = scope.frame.node ?? scope.frame.module.program;
+  return { place, isAccumulated: assignments(owner).computed.has(name), isLocal: scope.frame.node !== undefined };
+}
+
+/**
+ * The value a name takes on: the value itself where it is built of declared symbols; else what `reads` or its own name
+ * says the name means; else the value.
+ */
+export function arrive(m: Machine, name: string, value: Value, arrival: Arrival): Value {
+  if (value.kind === 'object') {
+    addAlias(m, value, name);
+    return settleList(m, name, value, arrival);
+  }
+  if (arrival.isAccumulated) return value;
+  return settleName(m, name, name, value, arrival.place);
+}
+
+/** The same for a place with a path: a static field, a member of a constant record. */
+export function settleName(m: Machine, name: string, path: string, value: Value, place: Place): Value {
+  if (value.kind === 'object') return settleMembers(m, path, value, place, 0);
+  if (value.kind !== 'scalar' && value.kind !== 'unread') return value;
+  if (value.kind === 'scalar' && m.naming.containsDeclared(value.expr)) return value;
+  if (value.kind === 'unread' && m.stopped) return value;
+  const read = m.naming.read([path, name], place);
+  if (read) return valueOf(m, read, place);
+  const literal = value.kind === 'scalar' && value.expr.op === 'number';
+  const origin = literal ? `${name} = ${literalText(value)}` : path;
+  const expr = m.naming.agree(name, path, origin, place);
+  return expr ? { kind: 'scalar', expr, place: value.place ?? place } : value;
+}
+
+function literalText(value: Value): string {
+  return value.kind === 'scalar' && value.expr.op === 'number' ? String(value.expr.data) : '';
+}
+
+/** A list of constants whose name is bound by `reads` or is a family's stands for those symbols. */
+function settleList(m: Machine, name: string, value: Value & { kind: 'object' }, arrival: Arrival): Value {
+  const data = m.store.data(value.id);
+  if (data.kind === 'record') {
+    if (!data.info) settleMembers(m, name, value, arrival.place, 0, arrival.isLocal);
+    return value;
+  }
+  if (data.kind !== 'list' || data.items.length === 0) return value;
+  const constant = data.items.every((v) => v.kind === 'scalar' && !m.naming.containsDeclared(v.expr));
+  if (!constant || arrival.isAccumulated) return value;
+  const read = m.naming.read([name], arrival.place);
+  const items = read?.kind === 'list' ? read.items : m.naming.family([name]);
+  if (items?.length !== data.items.length) return value;
+  const list = m.store.writable(value.id);
+  if (list.kind === 'list') list.items = items.map((i) => valueOf(m, i, arrival.place));
+  return value;
+}
+
+/** Constants stored in a record by a name with a meaning stand for it: `{ m: 1.0, l: 0.5 }`. */
+function settleMembers(m: Machine, path: string, value: Value & { kind: 'object' }, place: Place, depth: number, isLocal = false): Value {
+  const data = m.store.data(value.id);
+  if (data.kind !== 'record' || depth > 8) return value;
+  for (const [key, member] of data.members) {
+    const at = memberPath(path, key);
+    // A local record that is summed up into starts from its literals.
+    if (isLocal && m.isAssignedMember(key) && !m.naming.hasRead(at)) continue;
+    const settled = settleName(m, key, at, member, (member.kind === 'scalar' && member.place) || place);
+    if (settled !== member) {
+      const record = m.store.writable(value.id);
+      if (record.kind === 'record') record.members.set(key, settled);
+    }
+  }
+  return value;
+}
