@@ -159,15 +159,15 @@ function conclude(request: DecideRequest, motion: Motion, group: readonly Pair[]
   const { budget, placeOf, derived } = request;
   if (budget.why === 'cancelled') return { verdict: 'unread', reason: 'cancelled' };
   if (!t.agrees && t.best) {
+    const rounded = t.worst < 0.05 ? findRounded(derived.system, motion, group, t.best.state) : undefined;
+    // A literal with so many digits is meant as its exact value; it is named, but nothing is wrong with the physics.
+    if (rounded && t.worst < 1e-9) return { verdict: 'holds', states: t.votes, worst: t.worst, rounded };
     if (t.worst < FAINT) {
       return {
         verdict: 'unread',
         reason: `code and physics differ by ${t.worst.toExponential(0)} of their size: too little to tell from rounding`,
       };
     }
-    const rounded = t.worst < 0.05 ? findRounded(derived.system, motion, group, t.best.state) : undefined;
-    // A literal with so many digits is meant as its exact value; it is named, but nothing is wrong with the physics.
-    if (rounded && t.worst < 1e-9) return { verdict: 'holds', states: t.votes, worst: t.worst, rounded };
     const witness = shrinkWitness(derived.system, motion, group, t.best.state, request.assumed);
     return { verdict: 'differs', states: t.votes, worst: t.worst, witness, ...(rounded ? { rounded } : {}) };
   }

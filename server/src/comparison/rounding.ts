@@ -26,8 +26,11 @@ export function findRounded(
   const candidates: RoundedConstant[] = [];
   for (const node of reachable(group.map((p) => p.found))) {
     if (node.op !== 'number') continue;
-    for (const meant of exactMeanings(node.data as Rational)) {
-      candidates.push({ literal: node, exact: meant.build(graph), exactText: meant.text });
+    // The sign belongs to the formula around the literal.
+    const r = node.data as Rational;
+    for (const meant of exactMeanings(r.sign < 0 ? r.negate() : r)) {
+      const exact = r.sign < 0 ? graph.negate(meant.build(graph)) : meant.build(graph);
+      candidates.push({ literal: node, exact, exactText: meant.text });
     }
   }
   for (const candidate of candidates.slice(0, 24)) {
@@ -56,12 +59,12 @@ interface Meaning {
   build(graph: Graph): Expr;
 }
 
-/** Exact values that a decimal with this many digits would be the rounding of, likeliest first. */
+/** Exact values that a positive decimal with this many digits would be the rounding of, likeliest first. */
 function exactMeanings(r: Rational): Meaning[] {
   const digits = significantDigits(r);
   if (digits === undefined || digits < 2 || r.isZero) return [];
   const x = r.toNumber();
-  const lastPlace = 10 ** (Math.floor(Math.log10(Math.abs(x))) + 1 - digits);
+  const lastPlace = 10 ** (Math.floor(Math.log10(x)) + 1 - digits);
   // Rounded or cut off at its last digit.
   const fits = (y: number): boolean => Math.abs(x - y) <= (digits < 3 ? 0.6 : 1) * lastPlace;
   const out: Meaning[] = [];
@@ -69,7 +72,7 @@ function exactMeanings(r: Rational): Meaning[] {
   const multiples = (base: number, name: string, largest: number, build: (graph: Graph) => Expr): void => {
     for (let q = 1; q <= largest; q++) {
       const p = Math.round((x / base) * q);
-      if (p === 0 || Math.abs(p) > 400 || !fits((p / q) * base)) continue;
+      if (p === 0 || p > 400 || !fits((p / q) * base)) continue;
       const factor = Rational.of(p, q);
       // A decimal that could have been typed in full is not what another one stands for.
       if (name === '' && significantDigits(factor) !== undefined) return;
@@ -103,12 +106,12 @@ function significantDigits(r: Rational): number | undefined {
   const ten = Rational.of(10);
   for (let k = 0; k < 40 && !scaled.isInteger; k++) scaled = scaled.multiply(ten);
   if (!scaled.isInteger) return undefined;
-  return scaled.numerator.toString().replace('-', '').replace(/0+$/, '').length;
+  return scaled.numerator.toString().replace(/0+$/, '').length;
 }
 
 function multipleText(factor: Rational, name: string): string {
   if (name === '') return factor.toString();
   const n = factor.numerator;
-  const top = n === 1n ? name : n === -1n ? `-${name}` : `${n}*${name}`;
+  const top = n === 1n ? name : `${n}*${name}`;
   return factor.denominator === 1n ? top : `${top}/${factor.denominator}`;
 }

@@ -1,16 +1,9 @@
 import type { Expr, SymbolData } from '../expression/node';
 import { symbolText } from '../expression/node';
+import { formatNumber } from '../expression/print/number';
 import type { ClaimResult } from '../comparison/subject';
 import type { WitnessState } from '../comparison/pair';
 import type { Declared, System } from '../mechanics/system';
-
-/** Numbers as a reader wants them: five significant digits at most, no trailing zeros. */
-export function numberText(x: number): string {
-  if (x === 0 || Math.abs(x) < 1e-300) return '0';
-  const rounded = Number(x.toPrecision(5));
-  const size = Math.abs(rounded);
-  return size >= 1e6 || size < 1e-4 ? rounded.toExponential().replace('e+', 'e') : String(rounded);
-}
 
 /** `th = 30°, th' = 1`: what moves first, then parameters; zeros and ones that say nothing are summed up at the end. */
 export function stateText(system: System, witness: WitnessState): string {
@@ -51,7 +44,7 @@ function valueText(system: System, symbol: Expr, value: number): string {
       if (Math.abs(degrees - Math.round(degrees)) < 1e-9) return `${Math.round(degrees)}°`;
     }
   }
-  return numberText(value);
+  return formatNumber(value);
 }
 
 /** ` (th from straight down, counter-clockwise)`: the conventions that the claim rests on. */

@@ -1,10 +1,12 @@
 import type { FindingCode } from '@visviva/shared';
 import type { ClaimResult } from '../comparison/subject';
-import type { System } from '../mechanics/system';
 import type { Expr } from '../expression/node';
 import type { Rational } from '../expression/rational';
 import type { Place } from '../text/span';
-import { conventionText, numberText, stateText } from './describe';
+import { formatPair } from '../expression/print/number';
+import type { Derived } from '../mechanics/lagrange';
+import { conventionText, stateText } from './describe';
+import { findRowPattern } from './rows';
 
 /** A finding about a claim, before it is put into lines and columns. */
 export interface RawFinding {
@@ -15,9 +17,12 @@ export interface RawFinding {
 
 /**
  * Says what is wrong with a claim.
+ * @param claims all claims of the function, for what they tell about each other
  * @param here where to point when nothing better is known: the claim itself
  */
-export function describeClaim(system: System, claim: ClaimResult, here: Place): RawFinding[] {
+export function describeClaim(derived: Derived, claims: readonly ClaimResult[], index: number, here: Place): RawFinding[] {
+  const claim = claims[index]!;
+  const { system } = derived;
   const { decision } = claim;
   switch (decision.verdict) {
     case 'holds': {
@@ -31,23 +36,23 @@ export function describeClaim(system: System, claim: ClaimResult, here: Place): 
     }
     case 'differs': {
       const { witness, rounded } = decision;
-      const what = rounded
-        ? `${claim.quantity}: ${roundedText(rounded)}`
-        : `${claim.quantity}: the code does not compute what the declared energies give`;
       const state = stateText(system, witness);
-      const numbers = `the code gives ${numberText(witness.found)}, the declared energies give ${numberText(witness.expected)}`;
-      const precise =
-        numberText(witness.found) === numberText(witness.expected)
-          ? `the code gives ${witness.found}, the declared energies give ${witness.expected}`
-          : numbers;
-      const message = `${what}. ${state ? `At ${state} ` : ''}${precise}.${conventionText(system, claim)}`;
-      return [{ code: rounded ? 'rounded-constant' : 'differs', message, place: claim.place ?? here }];
+      const [found, expected] = formatPair(witness.found, witness.expected);
+      const numbers = `${state ? `At ${state} the` : 'The'} code gives ${found}, the declared energies give ${expected}.`;
+      const where = claim.place ?? here;
+      const finish = (code: FindingCode, what: string): RawFinding[] => [
+        { code, message: `${claim.quantity}: ${what}. ${numbers}${conventionText(system, claim)}`, place: where },
+      ];
+      if (rounded) return finish('rounded-constant', roundedText(rounded));
+      const pattern = findRowPattern(derived, claims, index);
+      if (pattern) return finish(pattern.code, `the code ${pattern.message}`);
+      return finish('differs', 'the code does not compute what the declared energies give');
     }
   }
 }
 
 function roundedText(rounded: { readonly literal: Expr; readonly exactText: string }): string {
-  const literal = (rounded.literal.data as Rational).toNumber();
+  const literal = Math.abs((rounded.literal.data as Rational).toNumber());
   return `the number ${literal} is ${rounded.exactText} rounded; write ${rounded.exactText}`;
 }
 

@@ -228,7 +228,7 @@ class Check implements Environment {
     for (const { part, dimension } of parts) {
       if (dimension.equals(right!.dimension)) {
         if (!dimension.isNone && !dimension.equals(DIMENSIONS.length)) {
-          this.report(`\`${quote(part)}\` is ${dimension.describe()}, but a position is m`, part.span);
+          this.report(`\`${quote(part)}\` is ${dimension.describe()}, but a position is in m`, part.span);
         }
         continue;
       }

@@ -105,7 +105,7 @@ export function fileResult(document: Document, outcomes: readonly BlockOutcome[]
     }
     if (o.entry && o.entry.file !== file) dependsOn.add(o.entry.file);
     o.result?.reading?.files.forEach((f) => dependsOn.add(f));
-    for (const c of o.result?.claims ?? []) claims.push(reportClaim(document, o, c));
+    o.result?.claims.forEach((_, i) => claims.push(reportClaim(document, o, i)));
   }
   return {
     file,
@@ -121,10 +121,14 @@ export function fileResult(document: Document, outcomes: readonly BlockOutcome[]
   };
 }
 
-function reportClaim(document: Document, outcome: BlockOutcome, claim: ClaimResult): ReportClaim {
+function reportClaim(document: Document, outcome: BlockOutcome, index: number): ReportClaim {
   const { lines, file, program } = document;
-  const system = outcome.entry!.derived.system;
-  const findings = describeClaim(system, claim, { file, span: claim.span }).map((f) => reportFinding(document, f, claim));
+  const { derived } = outcome.entry!;
+  const { system } = derived;
+  const { claims } = outcome.result!;
+  const claim = claims[index]!;
+  const here = { file, span: claim.span };
+  const findings = describeClaim(derived, claims, index, here).map((f) => reportFinding(document, f, claim));
   const { decision } = claim;
   return {
     file,

@@ -1,0 +1,106 @@
+import type { Graph } from '../expression/graph';
+import type { Expr, SymbolData } from '../expression/node';
+import { normalForm, simplify, toExpr } from '../expression/normal-form';
+import { symbolsOf } from '../expression/reach';
+import { Rational } from '../expression/rational';
+import type { Derived } from './lagrange';
+import type { Coordinate } from './system';
+
+/** One of Lagrange's equations for display: everything the energies give on the left, generalized forces on the right. */
+export interface Equation {
+  readonly coordinate: Coordinate;
+  readonly left: Expr;
+  readonly right: Expr;
+}
+
+/** Rows longer than this are shown as they were built. */
+const MOST_TERMS = 120;
+
+/** The equations of motion, one per coordinate: M q'' + Coriolis + gravity + damping = Q. */
+export function equationsOfMotion(derived: Derived): Equation[] {
+  const { system } = derived;
+  const g = system.graph;
+  return system.coordinates.map((coordinate, i) => {
+    const force = system.Q[i]!;
+    const left = g.add(derived.residuals[i]!, force);
+    return { coordinate, left: tidy(g, left), right: tidy(g, force) };
+  });
+}
+
+/**
+ * The accelerations by themselves, where that stays readable: no coupling between them, or two coupled ones.
+ * Undefined otherwise.
+ */
+export function solvedAccelerations(derived: Derived): readonly { coordinate: Coordinate; expr: Expr }[] | undefined {
+  const { coordinates, graph: g } = derived.system;
+  const n = coordinates.length;
+  const M = derived.massMatrix.map((e) => tidy(g, e));
+  const f = derived.rightSides.map((e) => tidy(g, e));
+  const diagonal = coordinates.every((_, i) => coordinates.every((_, j) => i === j || M[i * n + j] === g.zero));
+  if (diagonal) {
+    return coordinates.map((coordinate, i) => ({ coordinate, expr: quotient(g, f[i]!, M[i * n + i]!) }));
+  }
+  if (n !== 2) return undefined;
+  const [a, b, c, d] = M as [Expr, Expr, Expr, Expr];
+  const determinant = tidy(g, g.subtract(g.multiply(a, d), g.multiply(b, c)));
+  const top = [
+    g.subtract(g.multiply(d, f[0]!), g.multiply(b, f[1]!)),
+    g.subtract(g.multiply(a, f[1]!), g.multiply(c, f[0]!)),
+  ];
+  return coordinates.map((coordinate, i) => ({ coordinate, expr: quotient(g, tidy(g, top[i]!), determinant) }));
+}
+
+/** A sum of terms where that is not too long, else the shortest form found. */
+export function tidy(g: Graph, e: Expr): Expr {
+  const form = normalForm(g, e, MOST_TERMS);
+  return form ? toExpr(g, form) : simplify(g, e, MOST_TERMS);
+}
+
+/** Term by term where the divisor is a single product, so that common factors go. */
+function quotient(g: Graph, top: Expr, bottom: Expr): Expr {
+  const whole = g.divide(top, bottom);
+  if (bottom.op !== 'sum') return tidy(g, whole);
+  const common = commonFactors(g, top, bottom);
+  return common ? g.divide(tidy(g, g.divide(top, common)), tidy(g, g.divide(bottom, common))) : whole;
+}
+
+/** The largest product of symbols that divides every term of both. */
+function commonFactors(g: Graph, a: Expr, b: Expr): Expr | undefined {
+  const forms = [normalForm(g, a, MOST_TERMS), normalForm(g, b, MOST_TERMS)];
+  if (!forms[0] || !forms[1]) return undefined;
+  const terms = [...forms[0].terms, ...forms[1].terms];
+  if (terms.length === 0) return undefined;
+  let common: Map<Expr, Rational> | undefined;
+  for (const t of terms) {
+    const powers = new Map(t.factors.filter((f) => f.base.op === 'symbol').map((f) => [f.base, f.exponent]));
+    if (!common) {
+      common = powers;
+      continue;
+    }
+    for (const [base, exponent] of common) {
+      const here = powers.get(base);
+      if (!here) common.delete(base);
+      else if (here.compare(exponent) < 0) common.set(base, here);
+    }
+  }
+  const factors = [...(common ?? [])].filter(([, e]) => e.sign > 0);
+  if (factors.length === 0) return undefined;
+  return g.product(factors.map(([base, e]) => g.power(base, g.number(e))));
+}
+
+/** What stays constant along every motion, as far as it can be read off the energies. */
+export function conserved(derived: Derived): { readonly name: string; readonly expr: Expr; readonly why: string }[] {
+  const { system } = derived;
+  const g = system.graph;
+  const out: { name: string; expr: Expr; why: string }[] = [];
+  const free = system.coordinates.map((_, i) => derived.damping[i] === g.zero && system.Q[i] === g.zero);
+  system.coordinates.forEach((c, i) => {
+    if (!free[i] || tidy(g, derived.coordinateForces[i]!) !== g.zero) return;
+    out.push({ name: `p[${c.name}]`, expr: tidy(g, derived.momenta[i]!), why: `${c.name} does not appear in the energies` });
+  });
+  const moving = symbolsOf(system.L).some((s) => ['time', 'input'].includes((s.data as SymbolData).role));
+  if (!moving && free.every(Boolean)) {
+    out.push({ name: 'E', expr: tidy(g, derived.energy), why: 'nothing depends on time, and no force takes energy out or puts it in' });
+  }
+  return out;
+}

@@ -1,0 +1,116 @@
+import type { ClaimResult } from '../comparison/subject';
+import { symbolText, type SymbolData } from '../expression/node';
+import { formatNumber, formatPair } from '../expression/print/number';
+import { equationText, text } from '../expression/print/text';
+import { conserved, equationsOfMotion } from '../mechanics/equations';
+import { stateText } from '../diagnosis/describe';
+import { contains, type Span } from '../text/span';
+import type { Document } from '../workspace/documents';
+import type { Hover } from './api';
+import { subjectName, type BlockOutcome } from './check';
+
+/** Longer equations say nothing in a pop-up. */
+const LONGEST = 600;
+
+/**
+ * What there is to tell about a place: on a declaration its equations and verdicts, on a claimed function the same and the
+ * bindings made, on a name in it what it was taken to mean.
+ */
+export async function hoverAt(
+  document: Document,
+  offset: number,
+  check: () => Promise<readonly BlockOutcome[]>,
+): Promise<Hover | undefined> {
+  const near = document.blocks.some((b) => contains(b.block.span, offset) || contains(subjectSpan(b) ?? b.block.span, offset));
+  if (!near) return undefined;
+  const outcomes = await check();
+  for (const o of outcomes) {
+    const binding = o.result?.reading?.bindings.find((b) => b.place.file === document.file && contains(b.place.span, offset));
+    if (binding) {
+      const how = binding.how === 'reads' ? 'by `reads`' : 'by its name';
+      const meaning = text(binding.meaning);
+      return {
+        markdown: `\`${binding.code}\` is **${meaning}** of \`${o.placed.block.name}\`, ${how}.${symbolNote(o, binding.meaning.data)}`,
+        range: document.lines.range(binding.place.span),
+      };
+    }
+  }
+  for (const o of outcomes) {
+    const name = nameSpan(o);
+    const onBlock = contains(o.placed.block.span, offset);
+    if (!onBlock && !(name && contains(name, offset))) continue;
+    return {
+      markdown: describeOutcome(o),
+      range: document.lines.range(onBlock ? o.placed.block.nameSpan : name!),
+    };
+  }
+  return undefined;
+}
+
+function subjectSpan(b: { readonly subject: BlockOutcome['placed']['subject'] }): Span | undefined {
+  return b.subject.kind === 'file' ? undefined : b.subject.node.span;
+}
+
+function nameSpan(o: BlockOutcome): Span | undefined {
+  return o.placed.subject.kind === 'file' ? undefined : o.placed.subject.node.nameSpan;
+}
+
+function symbolNote(o: BlockOutcome, data: unknown): string {
+  const name = data !== null && typeof data === 'object' && 'role' in data ? (data as SymbolData).name : undefined;
+  const system = o.entry?.derived.system;
+  const declared = system && [...system.coordinates, ...system.parameters, ...system.inputs].find((d) => d.name === name);
+  if (!declared) return '';
+  const parts = [declared.unit ? `[${declared.unit}]` : '', declared.remark ?? ''].filter((p) => p !== '');
+  return parts.length > 0 ? ` ${parts.join(' ')}` : '';
+}
+
+function describeOutcome(o: BlockOutcome): string {
+  const { block, subject } = o.placed;
+  const lines: string[] = [`**${block.name}**${subject.kind === 'file' ? '' : ` · \`${subjectName(subject)}\``}`, ''];
+  const derived = o.entry?.derived;
+  if (!derived) return `${lines[0]}\n\n${o.problems[0]?.message ?? 'not resolved'}`;
+  const { system } = derived;
+  if (system.blocked) lines.push(system.blocked.reason, '');
+  else {
+    lines.push('Equations of motion', '', '```text');
+    for (const e of equationsOfMotion(derived)) {
+      const equation = equationText(e.left, e.right, { limit: LONGEST });
+      lines.push(equation.length > 2 * LONGEST ? `(the equation for ${e.coordinate.name} is too long to show here)` : equation);
+    }
+    lines.push('```', '');
+    const constant = conserved(derived).map((c) => `${c.name} = ${text(c.expr)} (${c.why})`);
+    if (constant.length > 0) lines.push('Constant along the motion', '', '```text', ...constant, '```', '');
+  }
+  const claims = o.result?.claims ?? [];
+  if (claims.length > 0) lines.push('Claims', '', ...claims.map((c) => `- ${claimLine(o, c)}`), '');
+  const bindings = bindingLines(o);
+  if (bindings.length > 0) lines.push('Read as', '', ...bindings.map((b) => `- ${b}`), '');
+  const remarks = system.coordinates.filter((c) => c.remark).map((c) => c.remark!);
+  if (remarks.length > 0) lines.push(`Convention: ${[...new Set(remarks)].join('; ')}`, '');
+  return lines.join('\n').trim();
+}
+
+function claimLine(o: BlockOutcome, claim: ClaimResult): string {
+  const { decision } = claim;
+  const head = `\`${claim.output}\` = \`${claim.quantity}\``;
+  switch (decision.verdict) {
+    case 'holds':
+      return `${head} holds: ${decision.states} states, worst relative difference ${formatNumber(decision.worst, 1)}`;
+    case 'unread':
+      return `${head} is not checked: ${decision.reason}`;
+    case 'differs': {
+      const [found, expected] = formatPair(decision.witness.found, decision.witness.expected);
+      return `${head} differs: at ${stateText(o.entry!.derived.system, decision.witness)} code ${found}, energies ${expected}`;
+    }
+  }
+}
+
+function bindingLines(o: BlockOutcome): string[] {
+  const seen = new Map<string, string>();
+  for (const b of o.result?.reading?.bindings ?? []) {
+    const data = b.meaning.data as SymbolData | null;
+    const meaning = b.meaning.op === 'symbol' ? symbolText(data as SymbolData) : text(b.meaning);
+    if (b.code !== meaning) seen.set(b.code, `\`${b.code}\` is ${meaning}${b.how === 'reads' ? ' (reads)' : ''}`);
+  }
+  return [...seen.values()];
+}
