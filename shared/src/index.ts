@@ -1,3 +1,4 @@
+export * from './mark';
 export * from './messages';
 export * from './report';
 export * from './settings';

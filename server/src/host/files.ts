@@ -1,3 +1,4 @@
+import { declarationMark } from '@visviva/shared';
 import type { Files } from '../service/api';
 import { readTextFile } from './text-file';
 import { walk } from './walk';
@@ -10,8 +11,6 @@ export interface DiskFiles extends Files {
   reset(): void;
 }
 
-/** The word that every declaration begins with. */
-const mark = '@visviva';
 /** A project with more source files than this is not searched further for declarations. */
 const searchLimit = 20_000;
 
@@ -21,7 +20,7 @@ export function createDiskFiles(folders: () => readonly string[], handles: (file
   const declares = (file: string): boolean => {
     if (file.endsWith('.visviva')) return true;
     const read = readTextFile(file);
-    return 'text' in read && read.text.includes(mark);
+    return 'text' in read && read.text.includes(declarationMark);
   };
 
   return {

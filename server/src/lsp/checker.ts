@@ -1,4 +1,4 @@
-import { statusNotification, type FileCounts, type FileStatus, type Settings } from '@visviva/shared';
+import { declarationMark, statusNotification, type FileCounts, type FileStatus, type Settings } from '@visviva/shared';
 import { DiagnosticSeverity, type Connection, type Diagnostic } from 'vscode-languageserver';
 import type { Clock } from '../host/clock';
 import { sizeLimit } from '../host/text-file';
@@ -57,6 +57,13 @@ export class Checker {
       this.tell({ uri: run.key, version, reason });
       return;
     }
+    // Most files declare nothing; they cost nothing, not even the loading of a parser.
+    if (!document.getText().includes(declarationMark)) {
+      open.dependsOn = [];
+      this.publish(open, version, []);
+      this.tell({ uri: run.key, version, counts: nothing });
+      return;
+    }
     const start = clock();
     const budget = new Budget({ milliseconds: settings().timeLimit }, clock, stale);
     try {
@@ -97,6 +104,8 @@ export class Checker {
     void this.context.connection.sendNotification(statusNotification, status);
   }
 }
+
+const nothing: FileCounts = { systems: 0, holds: 0, differs: 0, unread: 0, problems: 0 };
 
 function count(result: FileResult): FileCounts {
   const of = (verdict: string): number => result.claims.filter((claim) => claim.verdict === verdict).length;

@@ -39,13 +39,16 @@ export function toDiagnostics(result: FileResult, context: DiagnosticContext): D
   };
 
   for (const problem of result.problems) {
-    if (problem.file !== result.file) continue;
+    const elsewhere = problem.file !== result.file;
     add({
-      range: toRange(problem.range),
+      range: elsewhere ? firstLine : toRange(problem.range),
       severity: problem.severity === 'error' ? DiagnosticSeverity.Error : DiagnosticSeverity.Warning,
       code: problem.code,
       source: 'visviva',
       message: problem.message,
+      relatedInformation: elsewhere
+        ? [{ location: { uri: context.uriOf(problem.file), range: toRange(problem.range) }, message: 'the place' }]
+        : undefined,
     });
   }
   for (const claim of result.claims) {
@@ -54,6 +57,8 @@ export function toDiagnostics(result: FileResult, context: DiagnosticContext): D
   }
   return [...shown.values()].sort(byPlace);
 }
+
+const firstLine: Range = { start: { line: 0, character: 0 }, end: { line: 0, character: 0 } };
 
 function ofFinding(file: string, claim: ReportClaim, finding: Finding, context: DiagnosticContext): Diagnostic {
   const elsewhere = finding.file !== undefined && finding.file !== file;

@@ -3,8 +3,8 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { pathToFileURL } from 'node:url';
 import { afterEach, beforeEach, expect, test } from 'vitest';
-import { inProcess, type TestClient } from './support/client';
-import { ScriptedService } from './support/scripted-service';
+import { inProcess, type TestClient } from '../../lsp/support/client';
+import { ScriptedService } from './scripted-service';
 
 const uri = 'file:///yard/crane.ts';
 let client: TestClient;
@@ -15,9 +15,18 @@ beforeEach(() => {
 });
 afterEach(() => client.stop());
 
+/** Opens a document that declares something: others are not checked. */
+function open(address: string, text: string, languageId?: string): void {
+  client.open(address, `${text}\n@visviva`, languageId);
+}
+
+function change(address: string, version: number, text: string, range?: object): void {
+  client.change(address, version, range ? text : `${text}\n@visviva`, range);
+}
+
 test('a finding becomes a diagnostic that leads to its claim', async () => {
   await client.initialize();
-  client.open(uri, '  // @visviva crane\n  a = sign;');
+  open(uri, '  // @visviva crane\n  a = sign;');
   const { diagnostics, version } = await client.diagnostics(uri);
   expect(version).toBe(1);
   expect(diagnostics).toEqual([
@@ -39,47 +48,47 @@ test('a finding becomes a diagnostic that leads to its claim', async () => {
 
 test('unread is information', async () => {
   await client.initialize();
-  client.open(uri, 'unread');
+  open(uri, 'unread');
   expect((await client.diagnostics(uri)).diagnostics[0]!.severity).toBe(3);
 });
 
 test('edits are applied one by one, in ranges', async () => {
   await client.initialize();
-  client.open(uri, 'a = si;\nb = 1;');
+  open(uri, 'a = si;\nb = 1;');
   const at = (line: number, from: number, to = from): object => ({
     start: { line, character: from },
     end: { line, character: to },
   });
-  client.change(uri, 2, 'gn', at(0, 6));
+  change(uri, 2, 'gn', at(0, 6));
   expect((await client.diagnostics(uri, 2)).diagnostics).toHaveLength(1);
-  client.change(uri, 3, '', at(0, 4, 8));
+  change(uri, 3, '', at(0, 4, 8));
   expect((await client.diagnostics(uri, 3)).diagnostics).toEqual([]);
-  expect(service.texts.get('/yard/crane.ts')).toBe('a = ;\nb = 1;');
+  expect(service.texts.get('/yard/crane.ts')).toBe('a = ;\nb = 1;\n@visviva');
 });
 
 test('what did not change is not published again', async () => {
   await client.initialize();
-  client.open(uri, 'sign');
+  open(uri, 'sign');
   await client.status(uri, 1);
-  client.change(uri, 2, 'sign ');
+  change(uri, 2, 'sign ');
   await client.status(uri, 2);
   expect(client.published).toHaveLength(1);
 });
 
 test('an editor that tracks versions hears of each one', async () => {
   await client.initialize({ textDocument: { publishDiagnostics: { versionSupport: true } } });
-  client.open(uri, 'sign');
+  open(uri, 'sign');
   await client.status(uri, 1);
-  client.change(uri, 2, 'sign ');
+  change(uri, 2, 'sign ');
   await client.status(uri, 2);
   expect(client.published.map((p) => p.version)).toEqual([1, 2]);
 });
 
 test('closing clears, also while a check is running', async () => {
   await client.initialize();
-  client.open(uri, 'sign');
+  open(uri, 'sign');
   await client.status(uri, 1);
-  client.change(uri, 2, 'sign slow');
+  change(uri, 2, 'sign slow');
   await client.until(() => service.checked.includes('sign slow') || undefined, 'the slow check');
   client.close(uri);
   await client.until(() => (client.shown(uri)?.diagnostics.length === 0 ? true : undefined), 'the clearing');
@@ -90,9 +99,9 @@ test('closing clears, also while a check is running', async () => {
 
 test('a result that an edit overtook is dropped, and its check stopped', async () => {
   await client.initialize();
-  client.open(uri, 'slow sign sign');
+  open(uri, 'slow sign sign');
   await client.until(() => service.checked.length > 0 || undefined, 'the first check');
-  client.change(uri, 2, 'sign');
+  change(uri, 2, 'sign');
   expect((await client.diagnostics(uri, 2)).diagnostics).toHaveLength(1);
   expect(client.published.map((p) => p.version)).toEqual([2]);
   expect(service.stopped).toEqual(['slow sign sign']);
@@ -100,28 +109,20 @@ test('a result that an edit overtook is dropped, and its check stopped', async (
 
 test('keystrokes of a slow file are gathered, those of a quick one are not', async () => {
   await client.initialize();
-  client.open(uri, 'slow');
+  open(uri, 'slow');
   await client.status(uri, 1);
-  for (let version = 2; version <= 6; version++) client.change(uri, version, `slow ${version}`);
+  for (let version = 2; version <= 6; version++) change(uri, version, `slow ${version}`);
   await client.status(uri, 6);
   expect(service.checked).toEqual(['slow', 'slow 6']);
-});
-
-test('one fault under several claims is shown once', async () => {
-  await client.initialize();
-  client.open(uri, 'sign\nneeds:/yard/crane.ts'); // reads itself: the same word is found at two places
-  await client.status(uri, 1);
-  const { diagnostics } = await client.diagnostics(uri);
-  expect(diagnostics.map((d) => d.range.start.line)).toEqual([0, 2]);
 });
 
 test('a change in one file checks the open files that need it', async () => {
   const part = 'file:///yard/part.ts';
   await client.initialize();
-  client.open(part, 'fine');
-  client.open(uri, 'needs:/yard/part.ts');
+  open(part, 'fine');
+  open(uri, 'needs:/yard/part.ts');
   await client.status(uri, 1);
-  client.change(part, 2, 'sign');
+  change(part, 2, 'sign');
   await client.until(() => (client.shown(uri)?.diagnostics.length === 1 ? true : undefined), 'the dependent');
   client.close(part);
   await client.until(() => (client.shown(uri)?.diagnostics.length === 0 ? true : undefined), 'the dependent again');
@@ -134,7 +135,7 @@ test('a change on disk checks the open files that need it', async () => {
   await client.initialize({ workspace: { didChangeWatchedFiles: { dynamicRegistration: true } } });
   await client.until(() => client.registered[0], 'the registration');
   expect(client.registered).toEqual(['workspace/didChangeWatchedFiles']);
-  client.open(uri, `needs:${part}`);
+  open(uri, `needs:${part}`);
   await client.status(uri, 1);
   writeFileSync(part, 'sign');
   client.notify('workspace/didChangeWatchedFiles', { changes: [{ uri: pathToFileURL(part).href, type: 2 }] });
@@ -144,17 +145,17 @@ test('a change on disk checks the open files that need it', async () => {
 
 test('a check that fails is logged and shown, and the next one works', async () => {
   await client.initialize();
-  client.open(uri, 'throw');
+  open(uri, 'throw');
   const { diagnostics } = await client.diagnostics(uri);
   expect(diagnostics).toMatchObject([{ severity: 3, code: 'unread', message: /could not be checked/ }]);
   expect(client.logged.join()).toMatch(/scripted failure/);
-  client.change(uri, 2, 'sign');
+  change(uri, 2, 'sign');
   expect((await client.diagnostics(uri, 2)).diagnostics).toMatchObject([{ code: 'sign' }]);
 });
 
 test('a request that fails is logged and answered', async () => {
   await client.initialize();
-  client.open(uri, 'throw');
+  open(uri, 'throw');
   const answer = await client.request('textDocument/hover', {
     textDocument: { uri },
     position: { line: 0, character: 0 },
@@ -165,7 +166,7 @@ test('a request that fails is logged and answered', async () => {
 
 test('hover in markdown or plain text, as the editor can', async () => {
   await client.initialize({ textDocument: { hover: { contentFormat: ['plaintext'] } } });
-  client.open(uri, 'abc');
+  open(uri, 'abc');
   const hover = await client.request('textDocument/hover', { textDocument: { uri }, position: { line: 0, character: 0 } });
   expect(hover).toEqual({
     contents: { kind: 'plaintext', value: "crane has th''" },
@@ -175,7 +176,7 @@ test('hover in markdown or plain text, as the editor can', async () => {
 
 test('symbols nested or flat, as the editor can', async () => {
   await client.initialize();
-  client.open(uri, 'abc');
+  open(uri, 'abc');
   const flat = await client.request('textDocument/documentSymbol', { textDocument: { uri } });
   expect(flat).toMatchObject([{ name: 'crane' }, { name: 'th', containerName: 'crane' }]);
 });
@@ -183,7 +184,7 @@ test('symbols nested or flat, as the editor can', async () => {
 test('settings: switched off means nothing is shown', async () => {
   client.settings = { enable: false };
   await client.initialize({ workspace: { configuration: true } });
-  client.open(uri, 'sign');
+  open(uri, 'sign');
   await client.until(() => client.statuses.find((s) => s.reason?.includes('switched off')), 'the reason');
   await client.until(() => (client.shown(uri)?.diagnostics.length === 0 ? true : undefined), 'the clearing');
   client.settings = { enable: true };
@@ -193,13 +194,22 @@ test('settings: switched off means nothing is shown', async () => {
 
 test('a document without a file is known by its language', async () => {
   await client.initialize();
-  client.open('untitled:Untitled-1', 'sign', 'javascript');
+  open('untitled:Untitled-1', 'sign', 'javascript');
   expect((await client.diagnostics('untitled:Untitled-1')).diagnostics).toHaveLength(1);
+});
+
+test('a document that declares nothing is not even read', async () => {
+  await client.initialize();
+  client.open(uri, 'sign');
+  expect((await client.status(uri, 1)).counts).toMatchObject({ differs: 0 });
+  expect(service.checked).toEqual([]);
+  change(uri, 2, 'sign');
+  expect((await client.diagnostics(uri, 2)).diagnostics).toHaveLength(1);
 });
 
 test('a document that is not read says so in its status', async () => {
   await client.initialize();
-  client.open('file:///yard/notes.txt', 'sign', 'plaintext');
+  open('file:///yard/notes.txt', 'sign', 'plaintext');
   expect(await client.status('file:///yard/notes.txt', 1)).toMatchObject({ reason: 'Files of this kind are not read.' });
 });
 
@@ -218,6 +228,6 @@ test.each([
   await client.initialize();
   client.notify(method, params);
   await client.request(method, params).catch(() => undefined);
-  client.open(uri, 'sign');
+  open(uri, 'sign');
   expect((await client.diagnostics(uri)).diagnostics).toHaveLength(1);
 });

@@ -1,0 +1,2 @@
+/** The word that every declaration begins with: a file without it declares and claims nothing. */
+export const declarationMark = '@visviva';
