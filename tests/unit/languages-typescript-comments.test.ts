@@ -77,6 +77,12 @@ describe('what a comment stands before', () => {
     ['const f = $ () => 1', 'function f'],
     ['function f($ s: State) {}', 'function f'],
     ['function $ f() {}', 'function f'],
+    ['$ function A() {} A.prototype.f = function () {}', 'class A'],
+    ['function A() {} $ A.prototype.f = function () {}', 'function A.f of A'],
+    ['function A() {} A.prototype = { $ f: function () {} }', 'function A.f of A'],
+    ['function A() {} A.prototype.f = function () { $ return this.m }', 'function A.f of A'],
+    ['function A() { $ this.m = 1 } A.prototype.f = function () {}', 'function A of A'],
+    ['function A() { $ this.f = () => this.m } A.prototype.g = function () {}', 'function A.f of A'],
   ])('%s', (text, expected) => expect(subject(text)).toBe(expected));
 });
 

@@ -43,7 +43,8 @@ describe('expressions', () => {
     ['{ f: (t) => t, async g() {}, *h() {} }', '{f: => f(t) {return t;}, g: ‹an async function› g() {}, h: ‹a generator function› h() {}}'],
     ['(a, b, c)', '(a, b, c)'],
     ['`text`', '"text"'],
-    ['`a${b}`', '‹a template string with parts to fill in›'],
+    ['`a${b}c${d}`', '((("a" + b) + "c") + d)'],
+    ['`${a}`', '("" + a)'],
     ['tag`a`', '‹a tagged template string›'],
     ['/a+/g', '‹a regular expression›'],
     ['10n', '‹a big integer (its division drops the remainder)›'],
@@ -169,6 +170,43 @@ describe('classes', () => {
         'method load: ‹an async function› load() {}; method [Symbol.iterator]: [Symbol.iterator]() {}; ' +
         'field rates = => rates(s) {return s;}; static field  = => <anonymous>() {(#self.k = 2);}()}',
     );
+  });
+});
+
+describe('classes written with prototypes', () => {
+  test('assignments, one by one', () => {
+    const text = `function Rig(m) { this.m = m }
+      Rig.prototype.step = function (dt) { this.v += dt };
+      Rig.prototype.g = 9.81;
+      Rig.prototype.constructor = Rig;
+      Rig.of = function () { return new Rig(1) };
+      Object.defineProperty(Rig.prototype, 'e', { get: function () { return 1 }, enumerable: true });
+      const r = new Rig(2)`;
+    expect(form(text, 'a.js')).toBe(
+      'class Rig {constructor constructor: Rig(m) {(#self.m = m);}; method step: step(dt) {(#self.v += dt);}; ' +
+        'field g = 981/100; static method of: of() {return new Rig(1);}; getter e: e() {return 1;}} const r = new Rig(2);',
+    );
+  });
+
+  test('a whole prototype, inheritance and calls of the base', () => {
+    const text = `var Crane = function (m) { Rig.call(this, m); };
+      Crane.prototype = Object.create(Rig.prototype);
+      Object.assign(Crane.prototype, { step(dt) { Rig.prototype.step.call(this, dt) }, get e() { return 1 } });`;
+    expect(form(text, 'a.js')).toBe(
+      'class Crane of Rig {constructor constructor: Crane(m) {#super(m);}; method step: step(dt) {#super.step(dt);}; getter e: e() {return 1;}}',
+    );
+    expect(form('function A() {} A.prototype = { f: function () {}, g: 1 }', 'a.js')).toBe(
+      'class A {constructor constructor: A() {}; method f: f() {}; field g = 1}',
+    );
+    expect(form('(function () { function A() {} A.prototype.f = function () {}; return A })()', 'a.js')).toBe(
+      '<anonymous>() {class A {constructor constructor: A() {}; method f: f() {}} return A;}();',
+    );
+  });
+
+  test('a function that is called without new stays one', () => {
+    expect(form('function A() {} A.prototype.f = function () {}; A()', 'a.js')).toBe('A() {} (A.prototype.f = f() {}); A();');
+    expect(form('function A() {} A.g = 1; A.f = () => 1', 'a.js')).toBe('A() {} (A.g = 1); (A.f = => f() {return 1;});');
+    expect(form('B.prototype.f = function () {}', 'a.js')).toBe('(B.prototype.f = f() {});');
   });
 });
 

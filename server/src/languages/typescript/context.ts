@@ -11,6 +11,10 @@ export interface Context {
   /** The form made of each function-like node, for whoever starts from the syntax (comments). */
   readonly functions: WeakMap<ts.Node, FunctionNode>;
   readonly classes: WeakMap<ts.Node, ClassNode>;
+  /** The class that a function outside a `class` body is a method of (`F.prototype.step = function ...`). */
+  readonly owners: WeakMap<ts.Node, ClassNode>;
+  /** The base of the class written with prototypes whose functions are being converted. */
+  base: string | undefined;
   /** Names under `exports.` or `module.exports.` that the file assigns at its top. */
   readonly exported: Set<string>;
 

@@ -14,6 +14,8 @@ export class Converter implements Context {
     readonly exported: Set<string>,
     readonly functions = new WeakMap<ts.Node, FunctionNode>(),
     readonly classes = new WeakMap<ts.Node, ClassNode>(),
+    readonly owners = new WeakMap<ts.Node, ClassNode>(),
+    public base: string | undefined = undefined,
   ) {}
 
   expression(node: ts.Expression): Expression {

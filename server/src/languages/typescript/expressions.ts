@@ -7,6 +7,7 @@ import { type Context, bare, nameText, opaque, spanOf } from './context';
 import { exportedName } from './exports-object';
 import { literalValue } from './numbers';
 import { BINARY, LOGICAL } from './operators';
+import { superCall } from './prototype-classes';
 import { record } from './records';
 
 const K = ts.SyntaxKind;
@@ -65,6 +66,8 @@ function reach(c: Context, node: Exclude<Link, ts.BinaryExpression>, object: Exp
   if (ts.isElementAccessExpression(node)) {
     return { kind: 'index', object, indices: [c.expression(node.argumentExpression)], span };
   }
+  const above = superCall(c, node);
+  if (above) return { kind: 'call', callee: above.callee, args: args(c, above.args), span };
   return { kind: 'call', callee: object, args: args(c, node.arguments), span };
 }
 
@@ -102,6 +105,7 @@ function leaf(c: Context, node: ts.Expression): Expression {
     return { kind: 'call', callee: c.expression(node.expression), args: args(c, node.arguments), isNew: true, span };
   }
   if (ts.isTypeOfExpression(node)) return { kind: 'unary', op: 'typeof', operand: c.expression(node.expression), span };
+  if (ts.isTemplateExpression(node)) return template(c, node, span);
   if (ts.isVoidExpression(node)) return voided(c, node, span);
   return simple(node, span);
 }
@@ -127,7 +131,6 @@ function simple(node: ts.Expression, span: Span): Expression {
 
 const OPAQUE = new Map<ts.SyntaxKind, string>([
   [K.BigIntLiteral, 'a big integer (its division drops the remainder)'],
-  [K.TemplateExpression, 'a template string with parts to fill in'],
   [K.TaggedTemplateExpression, 'a tagged template string'],
   [K.RegularExpressionLiteral, 'a regular expression'],
   [K.AwaitExpression, 'a value that is awaited'],
@@ -197,6 +200,19 @@ function tilde(c: Context, node: ts.PrefixUnaryExpression, span: Span): Expressi
   const opSpan = { start: span.start, end: span.start + 1 };
   const zero: Expression = { kind: 'number', value: Rational.ZERO, text: '0', integer: false, span: opSpan };
   return { kind: 'binary', op: 'bit', left: c.expression(inner.operand), right: zero, opSpan, span };
+}
+
+/** `a${b}c` is `'a' + b + 'c'`: names of fields are put together like that. */
+function template(c: Context, node: ts.TemplateExpression, span: Span): Expression {
+  let value: Expression = { kind: 'string', value: node.head.text, span: spanOf(c, node.head) };
+  const join = (right: Expression): void => {
+    value = { kind: 'binary', op: '+', left: value, right, opSpan: { start: right.span.start, end: right.span.start }, span };
+  };
+  for (const part of node.templateSpans) {
+    join(c.expression(part.expression));
+    if (part.literal.text !== '') join({ kind: 'string', value: part.literal.text, span: spanOf(c, part.literal) });
+  }
+  return value;
 }
 
 function voided(c: Context, node: ts.VoidExpression, span: Span): Expression {

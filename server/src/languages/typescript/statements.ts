@@ -6,13 +6,19 @@ import { enumeration } from './enums';
 import { exportAssignment, exportDeclaration, exportList, exportedValue, importDeclaration, importEquals } from './modules';
 import { namespaceValue } from './namespaces';
 import { valueNamed } from './naming';
+import { prototypeClasses } from './prototype-classes';
 
 const K = ts.SyntaxKind;
 
 /** The statements of a block or file. Types, signatures and `declare`d names leave nothing at run time and are left out. */
 export function statements(c: Context, nodes: readonly ts.Statement[]): Statement[] {
   const made: Statement[] = [];
-  for (const node of nodes) statement(c, node, nodes, made);
+  const classes = prototypeClasses(c, nodes);
+  for (const node of nodes) {
+    const gathered = classes.get(node);
+    if (gathered) made.push(...gathered);
+    else statement(c, node, nodes, made);
+  }
   return made;
 }
 

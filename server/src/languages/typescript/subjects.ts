@@ -20,7 +20,7 @@ export function subjectAt(c: Context, chain: readonly ts.Node[], comment: Span):
   const next = chain[around.length] ?? childAfter(around[around.length - 1]!, comment.end);
   if (next) {
     const inner = functionChain(implementation(next, around[around.length - 1]!));
-    if (inner) return named(c, [...around, ...inner]);
+    if (inner) return named(c, [...around, ...inner], true);
   }
   for (let depth = around.length; depth > 0; depth--) {
     const node = around[depth - 1]!;
@@ -100,10 +100,12 @@ function calledWith(node: ts.CallExpression | ts.NewExpression): ts.Node[] | und
   return undefined;
 }
 
-function named(c: Context, chain: readonly ts.Node[]): Subject {
+/** `before`: the comment stands before it, so that a constructor function means its class. */
+function named(c: Context, chain: readonly ts.Node[], before = false): Subject {
   const node = chain[chain.length - 1]!;
   const path = pathOf(chain);
-  if (ts.isClassLike(node)) return { kind: 'class', path, node: c.classes.get(node) ?? c.classNode(node) };
+  const known = before || ts.isClassLike(node) ? c.classes.get(node) : undefined;
+  if (known || ts.isClassLike(node)) return { kind: 'class', path, node: known ?? c.classNode(node as ts.ClassLikeDeclaration) };
   const made = c.functions.get(node) ?? c.functionNode(node as FunctionSyntax);
   const owner = ownerOf(c, chain);
   return { kind: 'function', path, node: made, ...(owner ? { owner } : {}) };
@@ -112,9 +114,13 @@ function named(c: Context, chain: readonly ts.Node[]): Subject {
 /** The class whose instance is `this` in the function. */
 function ownerOf(c: Context, chain: readonly ts.Node[]): ClassNode | undefined {
   const node = chain[chain.length - 1]!;
+  const own = c.owners.get(node);
+  if (own) return own;
   let lexical = ts.isArrowFunction(node);
   for (let i = chain.length - 2; i >= 0; i--) {
     const at = chain[i]!;
+    const known = c.owners.get(at);
+    if (known && lexical) return known;
     if (ts.isClassLike(at)) return c.classes.get(at) ?? c.classNode(at);
     if (isFunctionSyntax(at) && !ts.isArrowFunction(at) && !lexical) return undefined;
     if (ts.isBinaryExpression(at) && isThisMember(at.left)) lexical = true;
