@@ -1,6 +1,7 @@
-import { equationText, text } from '../expression/print/text';
-import { equationTex, tex } from '../expression/print/tex';
-import { typescriptFunction } from '../expression/print/code';
+import { symbolText, type SymbolData } from '../expression/node';
+import { code, equationText, tex, texAll, text, typescript, type CodeStyle } from '../expression/print';
+import type { Expr } from '../expression/node';
+import { symbolsOf } from '../expression/reach';
 import { conserved, equationsOfMotion, solvedAccelerations } from '../mechanics/equations';
 import type { Derived } from '../mechanics/lagrange';
 import type { Budget } from '../text/budget';
@@ -35,9 +36,7 @@ export async function deriveSystems(
 }
 
 function asText(derived: Derived): string {
-  const lines: string[] = [];
-  const { coordinates } = derived.system;
-  lines.push('equations of motion');
+  const lines: string[] = ['equations of motion'];
   for (const e of equationsOfMotion(derived)) lines.push(`  ${equationText(e.left, e.right)}`);
   const solved = solvedAccelerations(derived);
   if (solved) {
@@ -49,29 +48,53 @@ function asText(derived: Derived): string {
     lines.push('constant along the motion');
     for (const c of constant) lines.push(`  ${c.name} = ${text(c.expr)}    ${c.why}`);
   }
-  const n = coordinates.length;
+  const n = derived.system.coordinates.length;
   lines.push(n === 1 ? '1 degree of freedom' : `${n} degrees of freedom`);
   return lines.join('\n');
 }
 
 function asTex(derived: Derived): string {
-  const rows = equationsOfMotion(derived).map((e) => equationTex(e.left, e.right));
+  const equations = equationsOfMotion(derived);
   const solved = solvedAccelerations(derived) ?? [];
-  const solutions = solved.map(({ coordinate, expr }) => `${tex(coordinate.acceleration)} &= ${tex(expr)}`);
-  const blocks = [['\\begin{align*}', rows.map((r) => `  ${r}`).join(' \\\\\n'), '\\end{align*}']];
-  if (solutions.length > 0) blocks.push(['\\begin{align*}', solutions.map((r) => `  ${r}`).join(' \\\\\n'), '\\end{align*}']);
-  return blocks.map((b) => b.join('\n')).join('\n\n');
+  const rows = (pairs: readonly (readonly [string, string])[]) =>
+    ['\\begin{align*}', pairs.map(([l, r]) => `  ${l} &= ${r}`).join(' \\\\\n'), '\\end{align*}'].join('\n');
+  const left = texAll(equations.flatMap((e) => [e.left, e.right]));
+  const pairs = equations.map((_, i) => [left.values[2 * i]!, left.values[2 * i + 1]!] as const);
+  const parts = left.where.map((w) => [w.name, w.text] as const);
+  const blocks = [rows([...pairs, ...parts])];
+  if (solved.length > 0) blocks.push(rows(solved.map((s) => [tex(s.coordinate.acceleration), tex(s.expr)] as const)));
+  return blocks.join('\n\n');
 }
 
-/** A function that returns the accelerations, in names of the declaration. */
+/** A function from coordinates, velocities, parameters and inputs to the accelerations. */
 function asTypescript(derived: Derived): string {
-  const solved = solvedAccelerations(derived);
+  return accelerationFunction(derived, typescript);
+}
+
+function accelerationFunction(derived: Derived, style: CodeStyle): string {
   const { coordinates, parameters, inputs, name } = derived.system;
-  const exprs = solved ? solved.map((s) => s.expr) : derived.accelerations;
-  return typescriptFunction({
-    name,
-    states: coordinates.map((c) => ({ symbol: c.symbol, rate: c.velocity })),
-    parameters: [...parameters, ...inputs].map((p) => p.symbol),
-    results: exprs,
-  });
+  const solved = solvedAccelerations(derived);
+  const values = solved ? solved.map((s) => s.expr) : derived.accelerations;
+  const used = new Set(symbolsOf(...values));
+  const identifier = (e: Expr) => {
+    const data = e.data as SymbolData;
+    return style.identifier(data.name, data.order);
+  };
+  const state = [...coordinates.map((c) => c.symbol), ...coordinates.map((c) => c.velocity)];
+  const rest = [...parameters, ...inputs].map((p) => p.symbol);
+  const extra = [...used].filter((s) => !state.includes(s) && !rest.includes(s));
+  const args = [...rest, ...extra].filter((s) => used.has(s)).map((s) => `${identifier(s)}: number`);
+  const printed = code(style, values);
+  const title = name.replace(/[^A-Za-z0-9]+(.)?/g, (_, c: string | undefined) => (c ? c.toUpperCase() : ''));
+  return [
+    ...printed.helpers,
+    ...(printed.helpers.length > 0 ? [''] : []),
+    `/** ${coordinates.map((c) => symbolText(c.acceleration.data as SymbolData)).join(', ')} of ${name}. */`,
+    `export function ${title}Accelerations(state: number[], p: { ${args.join('; ')} }): number[] {`,
+    `  const [${state.map(identifier).join(', ')}] = state;`,
+    ...(args.length > 0 ? [`  const { ${args.map((a) => a.split(':')[0]).join(', ')} } = p;`] : []),
+    ...printed.statements.map((s) => `  ${s}`),
+    `  return [${printed.values.join(', ')}];`,
+    '}',
+  ].join('\n');
 }
