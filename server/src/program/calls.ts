@@ -4,6 +4,7 @@ import { evaluate } from './expressions';
 import type { Argument, Expression, Parameter } from './form';
 import { childOf, genericAt, valueOf } from './generics';
 import { runIntrinsic } from './intrinsics/table';
+import { unclip } from './limits';
 import type { Machine } from './machine';
 import { readMember } from './members';
 import { apply, mergeEndings, withEach, type Ending } from './merging';
@@ -232,7 +233,8 @@ export function applyScalar(m: Machine, f: NonNullable<ReturnType<LibraryValue['
     exprs.push(n);
   }
   const r = f(m.graph, exprs);
-  return 'unread' in r ? unread(r.unread, place) : m.scalar(r, place);
+  if ('unread' in r) return unread(r.unread, place);
+  return m.scalar(m.request.withinLimits ? unclip(r) : r, place);
 }
 
 export function unknownCall(m: Machine, args: readonly ArgumentValue[], place: Place, words: string, why?: string): Unread {

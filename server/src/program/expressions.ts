@@ -278,7 +278,7 @@ function conditional(m: Machine, scope: Scope, e: Expression & { kind: 'conditio
     () => evaluate(m, scope, e.whenTrue),
     () => evaluate(m, scope, e.whenFalse),
   );
-  return m.request.withinLimits ? clipped(m, c, value) : value;
+  return m.request.withinLimits ? clipped(c, value) : value;
 }
 
 function listLiteral(m: Machine, scope: Scope, e: Expression & { kind: 'list' }, place: Place): Value {

@@ -38,7 +38,7 @@ export function unclip(e: Expr): Expr {
 }
 
 /** The value that passes where a conditional expression clips: `x > hi ? hi : x`. */
-export function clipped(m: Machine, condition: Expr, value: Value): Value {
+export function clipped(condition: Expr, value: Value): Value {
   if (value.kind !== 'scalar' || value.expr.op !== 'select') return value;
   const c = condition.op === 'not' ? condition.args[0]! : condition;
   if (c.op !== 'less' && c.op !== 'lessEqual') return value;

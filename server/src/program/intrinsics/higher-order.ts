@@ -83,15 +83,18 @@ export const HIGHER_ORDER: IntrinsicTable = {
     }
     return m.list(kept);
   },
-  'list-find': (m, call) => {
+  'list-find': (m, call) => find(m, call, false, (v) => v, { kind: 'nothing' }),
+  'list-find-last': (m, call) => find(m, call, true, (v) => v, { kind: 'nothing' }),
+  'list-find-index': (m, call) => find(m, call, false, (_, k) => index(m, call, k), m.scalar(m.graph.minusOne, call.place)),
+  'list-find-last-index': (m, call) => find(m, call, true, (_, k) => index(m, call, k), m.scalar(m.graph.minusOne, call.place)),
+  'list-reduce-right': (m, call) => {
     const items = itemsIn(m, call, 0);
     if (!isItems(items)) return items;
-    for (const [k, v] of items.entries()) {
-      const found = decided(m, call, apply(m, call, call.args[1], [v, index(m, call, k)]));
-      if (typeof found === 'object') return found;
-      if (found) return v;
-    }
-    return { kind: 'nothing' };
+    const started = call.args.length > 2;
+    let total = started ? call.args[2]! : items[items.length - 1];
+    if (!total) return unread('the reduction of an empty list', call.place);
+    for (let k = items.length - (started ? 1 : 2); k >= 0; k--) total = apply(m, call, call.args[1], [total, items[k]!, index(m, call, k)]);
+    return total;
   },
   'list-some': (m, call) => some(m, call, false),
   'list-every': (m, call) => some(m, call, true),
@@ -115,6 +118,18 @@ export const HIGHER_ORDER: IntrinsicTable = {
     return m.list(Array.from({ length: n }, (_, k) => apply(m, call, call.args[0], [index(m, call, k)])));
   },
 };
+
+function find(m: Machine, call: Call, last: boolean, answer: (v: Value, k: number) => Value, none: Value): Value {
+  const items = itemsIn(m, call, 0);
+  if (!isItems(items)) return items;
+  const order = [...items.entries()];
+  for (const [k, v] of last ? order.reverse() : order) {
+    const found = decided(m, call, apply(m, call, call.args[1], [v, index(m, call, k)]));
+    if (typeof found === 'object') return found;
+    if (found) return answer(v, k);
+  }
+  return none;
+}
 
 function some(m: Machine, call: Call, all: boolean): Value {
   const items = itemsIn(m, call, 0);

@@ -54,6 +54,15 @@ function shapeIn(m: Machine, call: Call, from: number): number[] | undefined {
   return shape.includes(undefined) ? undefined : (shape as number[]);
 }
 
+function ofLength(m: Machine, call: Call, value: Value): Value {
+  const [first] = call.args;
+  if (!first) return m.list([]);
+  if (itemsOf(m, first)) return m.list([first]);
+  const n = countOf(m, first, call.place);
+  if (n === undefined || n < 0 || n > 20_000) return unread('a list whose length is not known', call.place);
+  return m.list(Array.from({ length: n }, () => value));
+}
+
 function constantList(value: (m: Machine) => Value) {
   return (m: Machine, call: Call): Value => {
     const shape = shapeIn(m, call, 0);
@@ -105,16 +114,12 @@ export const LISTS: IntrinsicTable = {
   },
   'list-zeros': constantList((m) => m.scalar(m.graph.zero)),
   'list-ones': constantList((m) => m.scalar(m.graph.one)),
-  /** `new Array(n)`, `new Float64Array(n)`, `new Float64Array([..])`: a count gives that many zeros. */
-  'list-new': (m, call) => {
-    const [first] = call.args;
-    if (!first) return m.list([]);
-    const items = itemsOf(m, first);
-    if (items) return m.list(items);
-    if (call.args.length > 1) return m.list(call.args);
-    const n = countOf(m, first, call.place);
-    if (n === undefined || n < 0 || n > 20_000) return unread('a list whose length is not known', call.place);
-    return m.list(Array.from({ length: n }, () => m.scalar(m.graph.zero, call.place)));
+  /** `new Array(n)` has n elements without a value; of several arguments it is the list. */
+  'list-new': (m, call) => (call.args.length > 1 ? m.list(call.args) : ofLength(m, call, NOTHING)),
+  /** `new Float64Array(n)` is n zeros, `new Float64Array(list)` a copy. */
+  'numbers-new': (m, call) => {
+    const items = call.args[0] && itemsOf(m, call.args[0]);
+    return items ? m.list(items) : ofLength(m, call, m.scalar(m.graph.zero, call.place));
   },
   'list-range': (m, call) => {
     const bounds = call.args.map((v) => countOf(m, v, call.place));
@@ -151,7 +156,7 @@ export const LISTS: IntrinsicTable = {
     return m.list(joined, listIsArray(m, call.args[0]));
   },
   /** numpy's: the lists to join come as one list. */
-  'list-join': (m, call) => {
+  'lists-joined': (m, call) => {
     const parts = itemsIn(m, call, 0);
     if (!isItems(parts)) return parts;
     const joined: Value[] = [];
@@ -193,7 +198,7 @@ export const LISTS: IntrinsicTable = {
     return call.args[0]!;
   },
   /** Copies a list's items into another: `out.set(list, offset)`. */
-  'list-set': (m, call) => {
+  'list-set-from': (m, call) => {
     const list = writableList(m, call.args[0]);
     const items = itemsIn(m, call, 1);
     const offset = count(m, call, 2, 0);
@@ -249,17 +254,41 @@ export const LISTS: IntrinsicTable = {
     const n = Math.min(...known.map((l) => l.length));
     return m.list(Array.from({ length: known.length > 0 ? n : 0 }, (_, k) => m.list(known.map((l) => l[k]!))));
   },
-  'list-index-of': (m, call) => {
-    const items = itemsIn(m, call, 0);
-    const wanted = call.args[1];
-    if (!isItems(items)) return items;
-    for (const [k, v] of items.entries()) {
-      const same = sameConstant(v, wanted);
-      if (same === undefined) return unread('the position of a value that is not known', call.place);
-      if (same) return m.scalar(m.graph.number(k + call.module.program.indexBase), call.place);
+  'list-index-of': (m, call) => position(m, call, false),
+  'list-last-index-of': (m, call) => position(m, call, true),
+  'list-splice': (m, call) => {
+    const list = writableList(m, call.args[0]);
+    const from = count(m, call, 1, 0);
+    const removed = count(m, call, 2, list?.items.length ?? 0);
+    if (!list || from === undefined || removed === undefined) {
+      breakIt(m, call);
+      return unread('a part of a list that is not known', call.place);
     }
-    return m.scalar(m.graph.minusOne, call.place);
+    return m.list(list.items.splice(clamp(from, list.items.length), Math.max(0, removed), ...call.args.slice(3)));
   },
+  'list-with': (m, call) => {
+    const items = itemsIn(m, call, 0);
+    const k = count(m, call, 1, 0);
+    if (!isItems(items)) return items;
+    if (k === undefined) return unread('an element whose index is not known', call.place);
+    return m.list(items.map((v, i) => (i === (k < 0 ? items.length + k : k) ? (call.args[2] ?? NOTHING) : v)));
+  },
+  'list-reversed': (m, call) => {
+    const items = itemsIn(m, call, 0);
+    return isItems(items) ? m.list([...items].reverse(), listIsArray(m, call.args[0])) : items;
+  },
+  'list-sort': (m, call) => {
+    breakIt(m, call);
+    return unread('the order of a sorted list', call.place);
+  },
+  'list-sorted': (_, call) => unread('the order of a sorted list', call.place),
+  'list-join': (_, call) => unread('a text that is put together from values', call.place),
+  'list-copy-within': (m, call) => {
+    breakIt(m, call);
+    return unread('a list whose parts are moved', call.place);
+  },
+  /** A view shares its numbers with the list: reading it is a copy, and writing to either is not followed. */
+  'list-view': (_, call) => unread('a view of a part of a list', call.place),
   'list-includes': (m, call) => {
     const items = itemsIn(m, call, 0);
     if (!isItems(items)) return items;
@@ -270,7 +299,7 @@ export const LISTS: IntrinsicTable = {
     }
     return { kind: 'condition', expr: m.graph.false, place: call.place };
   },
-  'list-is-list': (m, call) => {
+  'is-list': (m, call) => {
     const v = call.args[0] ?? NOTHING;
     if (v.kind === 'unread') return v;
     const data = dataOf(m, v, true);
@@ -291,6 +320,18 @@ export const LISTS: IntrinsicTable = {
   'list-min': extreme('min'),
   'list-max': extreme('max'),
 };
+
+function position(m: Machine, call: Call, last: boolean): Value {
+  const items = itemsIn(m, call, 0);
+  if (!isItems(items)) return items;
+  const order = [...items.entries()];
+  for (const [k, v] of last ? order.reverse() : order) {
+    const same = sameConstant(v, call.args[1]);
+    if (same === undefined) return unread('the position of a value that is not known', call.place);
+    if (same) return m.scalar(m.graph.number(k + call.module.program.indexBase), call.place);
+  }
+  return m.scalar(m.graph.minusOne, call.place);
+}
 
 function sameConstant(a: Value, b: Value | undefined): boolean | undefined {
   if (!b) return false;

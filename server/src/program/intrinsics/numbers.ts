@@ -1,8 +1,9 @@
 import type { Expr } from '../../expression/node';
+import { truthOf } from '../conditions';
 import { unclip } from '../limits';
 import type { Machine } from '../machine';
 import { itemsOf, numeric } from '../numbers';
-import { isUnread, unread, type Unread, type Value } from '../values';
+import { NOTHING, isUnread, unread, type Unread, type Value } from '../values';
 import type { Call, IntrinsicTable } from './table';
 
 function numbersIn(m: Machine, call: Call, list: readonly Value[]): Expr[] | Unread {
@@ -55,6 +56,11 @@ export const NUMBERS: IntrinsicTable = {
     const only = call.args.length === 1 ? itemsOf(m, call.args[0]!) : undefined;
     const exprs = numbersIn(m, call, only ?? call.args);
     return isReason(exprs) ? exprs : m.scalar(m.graph.sqrt(m.graph.sum(exprs.map((x) => m.graph.square(x)))), call.place);
+  },
+  'to-condition': (m, call) => {
+    const v = call.args[0] ?? NOTHING;
+    const t = truthOf(m, v, call.place);
+    return isUnread(t) ? t : { kind: 'condition', expr: t, place: call.place };
   },
   /** The number itself: `Number(x)`, `float(x)`. */
   'number-same': (m, call) => {

@@ -60,9 +60,9 @@ export const RECORDS: IntrinsicTable = {
     return target;
   },
   /** `Object.freeze(x)` and the like: the thing itself. */
-  'record-same': (_, call) => call.args[0] ?? unread('a thing that is not given', call.place),
+  identity: (_, call) => call.args[0] ?? unread('a thing that is not given', call.place),
   /** A copy with copies of everything in it. */
-  'record-clone': (m, call) => (call.args[0] ? clone(m, call.args[0], 0) : unread('a thing that is not given', call.place)),
+  'deep-copy': (m, call) => (call.args[0] ? clone(m, call.args[0], 0) : unread('a thing that is not given', call.place)),
   'record-has': (m, call) => {
     const [v, key] = call.args;
     const data = v && dataOf(m, v);
