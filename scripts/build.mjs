@@ -54,17 +54,22 @@ export async function buildAll({ production = false, outdir = join(root, 'dist')
       format: 'esm',
       splitting: true,
       chunkNames: 'chunks/[name]-[hash]',
-      banner: { js: requireForCommonJs },
+      banner: { js: namesForCommonJs },
     }),
   ]);
   const command = join(outdir, 'visviva.mjs');
   if (existsSync(command)) await chmod(command, 0o755);
 }
 
-/** CommonJS packages inside an ES module bundle still ask for Node's own modules by `require`. */
-const requireForCommonJs =
-  "import { createRequire as visvivaCreateRequire } from 'node:module';" +
-  'const require = visvivaCreateRequire(import.meta.url);';
+/** CommonJS packages inside an ES module bundle still use the names that Node gives to every CommonJS module. */
+const namesForCommonJs = [
+  "import { createRequire as visvivaRequire } from 'node:module';",
+  "import { dirname as visvivaDirname } from 'node:path';",
+  "import { fileURLToPath as visvivaPath } from 'node:url';",
+  'const require = visvivaRequire(import.meta.url);',
+  'const __filename = visvivaPath(import.meta.url);',
+  'const __dirname = visvivaDirname(__filename);',
+].join('');
 
 if (process.argv[1] === fileURLToPath(import.meta.url)) {
   await buildAll({ production: process.argv.includes('--production') });

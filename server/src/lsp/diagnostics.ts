@@ -101,11 +101,11 @@ function toClaim(file: string, claim: ReportClaim, context: DiagnosticContext): 
   };
 }
 
-/** The claim's line without the blanks around it; the line's start where its text is in another document. */
+/** The claim's line without the comment's marks and the blanks around it; the line's start where its text is in another document. */
 function claimRange(file: string, claim: ReportClaim, context: DiagnosticContext): Range {
   const text = claim.file === file ? context.line(claim.line) : '';
   const line = Math.max(0, claim.line - 1);
-  const from = text.length - text.trimStart().length;
+  const from = /^[\s*/#%!]*/.exec(text)![0].length;
   return { start: { line, character: from }, end: { line, character: Math.max(from, text.trimEnd().length) } };
 }
 

@@ -29,7 +29,7 @@ test('one fault under several claims is shown once, with each claim', () => {
     severity: 1,
     range: { start: { line: 2, character: 0 }, end: { line: 2, character: 4 } },
     relatedInformation: [
-      { message: "claimed here: a = th'' (crane)", location: { range: { start: { line: 1, character: 0 }, end: { line: 1, character: 25 } } } },
+      { message: "claimed here: a = th'' (crane)", location: { range: { start: { line: 1, character: 5 }, end: { line: 1, character: 25 } } } },
       { message: "claimed here: b = th'' (crane)" },
     ],
   });

@@ -38,7 +38,7 @@ test('a finding becomes a diagnostic that leads to its claim', async () => {
       message: 'scripted sign',
       relatedInformation: [
         {
-          location: { uri, range: { start: { line: 0, character: 2 }, end: { line: 0, character: 19 } } },
+          location: { uri, range: { start: { line: 0, character: 5 }, end: { line: 0, character: 19 } } },
           message: "claimed here: return[3] = th'' (crane)",
         },
       ],
