@@ -103,8 +103,13 @@ export class Cursor {
     return this.lexer.lineEnd(offset);
   }
 
+  /** No further error will be taken. */
+  get full(): boolean {
+    return this.errors.length >= MOST_ERRORS;
+  }
+
   error(message: string, span: Span): void {
-    if (this.errors.length >= MOST_ERRORS) return;
+    if (this.full) return;
     if (this.errors.some((e) => e.span.start === span.start && e.span.end === span.end)) return;
     this.errors.push({ code: 'syntax', message, span });
   }

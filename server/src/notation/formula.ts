@@ -1,12 +1,12 @@
 import { Rational } from '../expression/rational';
 import { cover, type Span } from '../text/span';
-import type { Cursor } from './cursor';
+import type { Cursor, Mode } from './cursor';
 import { parsePhrase } from './phrases';
 import { parseFamilies } from './family';
 import type { BinaryOperator, Formula } from './tree';
 
 /** Brackets, signs and powers may nest this deep; the trees may grow no higher than this, so that walking them is safe. */
-const MOST_DEPTH = 1000;
+export const MOST_DEPTH = 600;
 const MOST_HEIGHT = 1500;
 
 export const LEVEL = { or: 1, and: 2, not: 3, comparison: 4, sum: 5, product: 6, sign: 7, power: 8, postfix: 9 } as const;
@@ -72,8 +72,9 @@ export function parseExpression(c: Cursor, level: number = LEVEL.or): Formula {
       continue;
     }
     if (level > LEVEL.product || !juxtaposed(c)) return left;
+    if (c.full) return overflow(c);
     const token = c.peek();
-    const words = c.text.slice(left.span.start, left.span.end);
+    const words = c.text.slice(Math.max(left.span.start, left.span.end - 40), left.span.end);
     c.error(
       left.kind === 'binary' && left.op === '^' && isFunctionName(left.left) && token.text === '('
         ? `a power of a function is written after its argument: \`${words.split(/[\^*²³]/)[0]}(...)^n\``
@@ -157,9 +158,9 @@ function parsePrefix(c: Cursor): Formula {
   return grow(c, { kind: 'unary', op, operand, span: cover(token.span, operand.span) }, operand);
 }
 
-function overflow(c: Cursor): Formula {
+export function overflow(c: Cursor): Formula {
   const place = c.peek().span;
-  if (!c.tooDeep) c.error(`brackets and signs nest deeper than ${MOST_DEPTH}`, place);
+  if (!c.tooDeep && !c.full) c.error(`brackets and signs nest deeper than ${MOST_DEPTH}: split it with \`where\``, place);
   c.tooDeep = true;
   // Nothing sensible can follow: give up the rest of the statement.
   while (!c.atEnd) c.take();
@@ -246,22 +247,32 @@ function parsePrimary(c: Cursor): Formula {
   return hole(c, `a formula is expected here, but there is ${c.describeNext()}`);
 }
 
-/** Brackets set the statement's own words aside: inside them only their own punctuation ends a formula. */
-function inside<T>(c: Cursor, stops: readonly string[], read: () => T): T {
+const NO_STOPS: ReadonlySet<string> = new Set();
+const SUM_STOPS: ReadonlySet<string> = new Set(['over', 'for']);
+
+/**
+ * Brackets set the statement's own words aside: inside them only their own punctuation ends a formula. Returns the mode to go
+ * back to. (No callback: every frame counts where brackets nest deep.)
+ */
+function enter(c: Cursor, stops: ReadonlySet<string>): Mode {
   const outer = c.mode;
-  c.mode = { ...outer, stops: new Set(stops), logic: outer.logic === 'never' ? 'close' : outer.logic };
+  if (outer.stops !== stops) c.mode = { ...outer, stops };
   c.depth++;
-  const result = read();
+  return outer;
+}
+
+function leave(c: Cursor, outer: Mode): void {
   c.depth--;
   c.mode = outer;
-  return result;
 }
 
 function parseBracket(c: Cursor): Formula {
   if (c.depth >= MOST_DEPTH) return overflow(c);
   const open = c.take();
   const close = open.text === '(' ? ')' : ']';
-  const { items, rows, comma } = inside(c, [], () => parseItems(c, close, open.span));
+  const outer = enter(c, NO_STOPS);
+  const { items, rows, comma } = parseItems(c, close, open.span);
+  leave(c, outer);
   const span = c.from(open.span.start);
   if (close === ']') {
     if (rows.length < 2) return grow(c, { kind: 'list', items, span }, ...items);
@@ -340,7 +351,9 @@ function parseIndexItem(c: Cursor): Formula {
 function parseIndex(c: Cursor, object: Formula): Formula {
   if (c.depth >= MOST_DEPTH) return overflow(c);
   const open = c.take();
-  const { items } = inside(c, [], () => parseItems(c, ']', open.span, true));
+  const outer = enter(c, NO_STOPS);
+  const { items } = parseItems(c, ']', open.span, true);
+  leave(c, outer);
   const span = c.from(object.span.start);
   if (items.length === 0) c.error('an index is expected between these brackets', { start: open.span.start, end: span.end });
   if (object.kind === 'quantity' && object.args.length === 0) return grow(c, { ...object, args: items, span }, ...items);
@@ -351,12 +364,16 @@ function parseCall(c: Cursor, callee: Formula): Formula {
   if (c.depth >= MOST_DEPTH) return overflow(c);
   const open = c.take();
   if (callee.kind === 'name' && callee.name === 'sum' && !c.mode.code) {
-    const sum = inside(c, ['over', 'for'], () => parseSum(c, callee.span, open.span));
+    const outer = enter(c, SUM_STOPS);
+    const sum = parseSum(c, callee.span, open.span);
+    leave(c, outer);
     if (sum.kind === 'sum') return sum;
     return grow(c, { kind: 'call', callee, args: sum.args, span: c.from(callee.span.start) }, callee, ...sum.args);
   }
   // `y(1:2)` is MATLAB's slice.
-  const { items } = inside(c, [], () => parseItems(c, ')', open.span, c.mode.code));
+  const outer = enter(c, NO_STOPS);
+  const { items } = parseItems(c, ')', open.span, c.mode.code);
+  leave(c, outer);
   return grow(c, { kind: 'call', callee, args: items, span: c.from(callee.span.start) }, callee, ...items);
 }
 

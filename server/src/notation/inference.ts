@@ -136,17 +136,19 @@ function agreeOn(
   const wrong = voters.filter((v) => !v.dimension.equals(best.dimension));
   for (const v of wrong.slice(0, 5)) {
     const part = component === undefined ? '' : `component ${component} of `;
-    const text = `${part}\`${quote(v.formula)}\` is in ${v.dimension.describe()}, but ${part}\`${quote(best.formula)}\`, which it is ${how}, in ${best.dimension.describe()}`;
+    const text = `${part}\`${quote(v.formula)}\` is ${v.dimension.describe()}, but ${part}\`${quote(best.formula)}\`, which it is ${how}, ${best.dimension.describe()}`;
     env.report(how === 'added to' ? `the term ${text}` : text, v.formula.span);
   }
-  return wrong.length ? UNKNOWN : known(best.dimension);
+  // In a draw nobody knows which side is wrong, and more reports would only follow from this one.
+  const drawn = wrong.some((v) => votes(v.dimension) === votes(best.dimension));
+  return drawn ? UNKNOWN : known(best.dimension);
 }
 
 function powerDimension(f: Formula & { kind: 'binary' }, env: Environment): Dim {
   const base = uniform(dimensionOf(f.left, env));
   const exponent = dimensionOf(f.right, env);
   if (exponent.kind === 'is' && !exponent.dimension.isNone) {
-    env.report(`the exponent \`${quote(f.right)}\` is in ${exponent.dimension.describe()}: an exponent has no unit`, f.right.span);
+    env.report(`the exponent \`${quote(f.right)}\` is ${exponent.dimension.describe()}: an exponent has no unit`, f.right.span);
     return UNKNOWN;
   }
   const value = literal(f.right);
@@ -182,7 +184,7 @@ function callDimension(f: Formula & { kind: 'call' }, env: Environment): Dim {
   if (OF_NUMBERS.has(name)) {
     const entry = first.kind === 'vector' ? UNKNOWN : first;
     if (entry.kind === 'is' && !entry.dimension.isNone) {
-      env.report(`the argument of ${name}, \`${quote(f.args[0]!)}\`, is in ${entry.dimension.describe()}: it must have no unit`, f.args[0]!.span);
+      env.report(`the argument of ${name}, \`${quote(f.args[0]!)}\`, is ${entry.dimension.describe()}: it must have no unit`, f.args[0]!.span);
     }
     return PLAIN;
   }

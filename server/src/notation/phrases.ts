@@ -1,6 +1,6 @@
 import { cover } from '../text/span';
 import type { Cursor } from './cursor';
-import { grow, hole, LEVEL, parseExpression } from './formula';
+import { grow, hole, LEVEL, MOST_DEPTH, overflow, parseExpression } from './formula';
 import type { Formula, QuantityPhrase } from './tree';
 
 /** Phrases of two words; the second word decides. Proper names may be capitalised. */
@@ -48,11 +48,14 @@ export function parsePhrase(c: Cursor): Formula | undefined {
 
 /** `jacobian of X by Y` */
 function parseJacobian(c: Cursor): Formula {
+  if (c.depth >= MOST_DEPTH) return overflow(c);
   const start = c.take().span.start;
   c.take();
   const outer = c.mode;
   c.mode = { ...outer, stops: new Set([...outer.stops, 'by']) };
+  c.depth++;
   const of = parseExpression(c, LEVEL.sum);
+  c.depth--;
   c.mode = outer;
   const by = c.eatWord('by')
     ? parseExpression(c, LEVEL.power)

@@ -62,11 +62,11 @@ export class Dimension {
     return `${top}/${below.length > 1 ? `(${below.join(' ')})` : below[0]}`;
   }
 
-  /** With the usual name before it where there is one: `J (kg m^2/s^2)`. */
+  /** For messages, with the usual name where there is one: `in J (kg m^2/s^2)`, `without a unit`. */
   describe(): string {
-    if (this.isNone) return 'no unit (1)';
+    if (this.isNone) return 'without a unit';
     const named = NAMED.find(([, dimension]) => dimension.equals(this));
-    return named ? `${named[0]} (${this})` : this.toString();
+    return named ? `in ${named[0]} (${this})` : `in ${this}`;
   }
 }
 
@@ -89,6 +89,8 @@ const NAMED: readonly (readonly [string, Dimension])[] = [
   ['J', joule],
   ['N', DIMENSIONS.force],
   ['W', DIMENSIONS.power],
+  ['N/m', Dimension.of({ kg: 1, s: -2 })],
+  ['N s/m', Dimension.of({ kg: 1, s: -1 })],
   ['V', Dimension.of({ kg: 1, m: 2, s: -3, A: -1 })],
   ['C', Dimension.of({ A: 1, s: 1 })],
   ['T', Dimension.of({ kg: 1, s: -2, A: -1 })],
