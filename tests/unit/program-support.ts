@@ -247,6 +247,23 @@ export function outputText(o: OutputValue): string {
   return exprText(o.expr);
 }
 
+function flat(e: Expr, op: 'sum' | 'product'): Expr[] {
+  return e.args.flatMap((a) => (a.op === op ? flat(a, op) : [a]));
+}
+
+/** Terms that cancel are left out. */
+function sumText(terms: readonly Expr[]): string {
+  const texts = terms.map(exprText);
+  for (const t of [...texts]) {
+    const against = texts.indexOf(`-1*${t}`);
+    if (against < 0 || !texts.includes(t)) continue;
+    texts.splice(against, 1);
+    texts.splice(texts.indexOf(t), 1);
+  }
+  if (texts.length === 1) return texts[0]!;
+  return texts.length === 0 ? '0' : `(${texts.sort().join(' + ')})`;
+}
+
 /** A plain text of an expression, arguments in a fixed order. */
 export function exprText(e: Expr): string {
   switch (e.op) {
@@ -257,9 +274,9 @@ export function exprText(e: Expr): string {
       return (s.role === 'free' ? '?' : '') + s.name + "'".repeat(s.order);
     }
     case 'sum':
-      return `(${e.args.map(exprText).sort().join(' + ')})`;
+      return sumText(flat(e, 'sum'));
     case 'product':
-      return e.args.map(exprText).sort().join('*');
+      return flat(e, 'product').map(exprText).sort().join('*');
     case 'power':
       return `${exprText(e.args[0]!)}^${exprText(e.args[1]!)}`;
     case 'pi':

@@ -98,10 +98,12 @@ function openMembers(m: Machine, id: number, after: Content, name: string | unde
 }
 
 /**
- * True for a loop that carries the motion on from numbers: a variable whose name means a coordinate or velocity starts
- * from a literal and is written in the loop. A claim in it is about one pass from any state.
+ * True for a loop that carries the motion on from numbers: variables whose names mean coordinates or velocities start
+ * from literals, are written in the loop, and are computed from each other. A claim in it is about one pass from any
+ * state. (A sum over links that happens to be called `x` is not computed from what the loop carries.)
  */
 export function startsFromLiteralState(m: Machine, scope: Scope, bodies: readonly (readonly Statement[])[]): boolean {
+  const carried: { readonly name: string; readonly root: string; readonly e: Expression & { kind: 'assign' } }[] = [];
   for (const body of bodies) {
     for (const node of nodesOf(body, false)) {
       const e = node as Expression;
@@ -110,12 +112,24 @@ export function startsFromLiteralState(m: Machine, scope: Scope, bodies: readonl
         if (!meansState(m, name)) continue;
         const variable = scope.find(name);
         const value = variable && readVariable(m, variable, undefined);
-        if (value?.kind === 'scalar' && value.expr.op === 'number') return true;
+        if (value?.kind === 'scalar' && value.expr.op === 'number') carried.push({ name, root: name, e });
       }
-      for (const place of placesOf(e.target)) if (literalMember(m, scope, place)) return true;
+      for (const place of placesOf(e.target)) {
+        if (place.kind === 'member' && place.object.kind === 'name' && literalMember(m, scope, place)) {
+          carried.push({ name: place.name, root: place.object.name, e });
+        }
+      }
     }
   }
-  return false;
+  const names = new Set(carried.flatMap((c) => [c.name, c.root]));
+  return carried.some(({ name, e }) => {
+    for (const node of nodesOf(e.value)) {
+      const x = node as Expression;
+      const mentioned = x.kind === 'name' || x.kind === 'member' ? x.name : undefined;
+      if (mentioned !== undefined && names.has(mentioned) && !(e.op && mentioned === name)) return true;
+    }
+    return false;
+  });
 }
 
 function literalMember(m: Machine, scope: Scope, place: Expression): boolean {

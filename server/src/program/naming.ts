@@ -116,12 +116,13 @@ export class Naming {
     for (const [id, entry] of this.origins) {
       if (entry.paths.size < 2) continue;
       const run = id.split(' ')[0]!;
-      const names = [...entry.paths.keys()];
+      const inOrder = [...entry.paths].sort(([, a], [, b]) => a.span.start - b.span.start);
+      const names = inOrder.map(([name]) => name);
       const shown = names.map((n) => `\`${n}\``).join(' and ');
       found.push({
         keys: names.map((n) => `${run} ${n}`),
         message: `${shown} could both mean the same symbol; say what each means with \`reads\``,
-        place: [...entry.paths.values()][1]!,
+        place: inOrder[1]![1],
       });
     }
     return found;

@@ -1,3 +1,4 @@
+import type { Expr } from '../expression/node';
 import type { Place } from '../text/span';
 import { runBody } from './calls';
 import { enter, type Entry } from './entry';
@@ -121,6 +122,7 @@ function toOutput(m: Machine, value: Value, place: Place | undefined, isComputed
   const lost = (reason: string): OutputValue => ({ kind: 'unread', reason, place });
   if (depth > 12) return lost('a value nested too deeply');
   if (m.stopped) return { kind: 'unread', reason: m.stopped.reason, place: m.stopped.place };
+  if (m.dead === m.graph.true && value.kind !== 'unread') return lost('every way through this function ends in an error');
   switch (value.kind) {
     case 'unread':
       return { kind: 'unread', reason: value.reason, place: value.place };
@@ -131,7 +133,6 @@ function toOutput(m: Machine, value: Value, place: Place | undefined, isComputed
     case 'choice': {
       const n = numeric(m, value, place ?? NOWHERE);
       if (isUnread(n)) return { kind: 'unread', reason: n.reason, place: n.place };
-      if (m.dead === m.graph.true) return lost('every way through this function ends in an error');
       const at = isComputed || value.kind === 'choice' ? undefined : value.place;
       return { kind: 'scalar', expr: m.graph.select(m.dead, m.graph.nan, n), place: at };
     }
@@ -182,11 +183,17 @@ function writtenItems(m: Machine, id: number, data: GenericData): Value[] {
   });
 }
 
+/** `a - b`, where `a` is a sum that starts from `b`, without the rounding that taking it away again would bring in. */
+function less(m: Machine, a: Expr, b: Expr): Expr {
+  if (a.op === 'sum' && a.args.includes(b)) return m.graph.sum(a.args.filter((x) => x !== b));
+  return m.graph.subtract(a, b);
+}
+
 function difference(m: Machine, end: OutputValue, start: OutputValue): OutputValue {
   if (end.kind === 'unread') return end;
   if (start.kind === 'unread') return { ...start, reason: `its value at the function's entry is not known: ${start.reason}` };
   if (end.kind === 'scalar' && start.kind === 'scalar') {
-    return { kind: 'scalar', expr: m.graph.subtract(end.expr, start.expr), place: end.place };
+    return { kind: 'scalar', expr: less(m, end.expr, start.expr), place: end.place };
   }
   if (end.kind === 'list' && start.kind === 'list' && end.items.length === start.items.length) {
     return { ...end, items: end.items.map((e, k) => difference(m, e, start.items[k]!)) };
