@@ -2,6 +2,7 @@ import { describe, expect, test } from 'vitest';
 import { Graph } from '../../server/src/expression/graph';
 import type { Expr } from '../../server/src/expression/node';
 import { Rational } from '../../server/src/expression/rational';
+import { INTRINSICS } from '../../server/src/program/intrinsics/table';
 import { typescriptLibrary as library } from '../../server/src/languages/typescript/library';
 
 /** The value of a node whose symbols have the values given; enough for the table's own functions. */
@@ -40,7 +41,7 @@ function apply(path: string, ...args: number[]): number {
   return evaluate(made, new Map(names.map((name, i) => [name, args[i]!])));
 }
 
-const functions = Object.getOwnPropertyNames(Math).filter((n) => typeof Math[n as 'sin'] === 'function');
+const functions: string[] = Object.getOwnPropertyNames(Math).filter((n) => typeof Math[n as 'sin'] === 'function');
 const bits = ['imul', 'clz32', 'f16round', 'sumPrecise', 'fround', 'random'];
 
 describe('Math', () => {
@@ -77,4 +78,16 @@ describe('Math', () => {
 
 test('conversions pass numbers through', () => {
   for (const name of ['Number', 'parseFloat', 'Number.parseFloat', 'Math.fround']) expect(apply(name, -2.5)).toBe(-2.5);
+});
+
+test('every intrinsic it names is there', () => {
+  for (const [path, name] of [...library.intrinsics, ...library.methods]) expect(INTRINSICS.has(name), path).toBe(true);
+});
+
+test('packages give their names with a prefix', () => {
+  expect(library.modules.get('mathjs')).toBe('math.');
+  expect(apply('math.log', 8, 2)).toBeCloseTo(3, 12);
+  expect(apply('math.add', 1, 2, 3)).toBe(6);
+  expect(apply('numeric.sub', 1, 2.5)).toBe(-1.5);
+  expect(apply('math.cube', -2)).toBe(-8);
 });

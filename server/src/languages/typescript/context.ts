@@ -13,6 +13,8 @@ export interface Context {
   readonly classes: WeakMap<ts.Node, ClassNode>;
   /** The class that a function outside a `class` body is a method of (`F.prototype.step = function ...`). */
   readonly owners: WeakMap<ts.Node, ClassNode>;
+  /** False where the text has no `.prototype`, which spares a search. */
+  readonly hasPrototypes: boolean;
   /** The base of the class written with prototypes whose functions are being converted. */
   base: string | undefined;
   /** Names under `exports.` or `module.exports.` that the file assigns at its top. */

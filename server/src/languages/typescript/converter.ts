@@ -1,4 +1,4 @@
-import ts from 'typescript';
+import type ts from 'typescript';
 import type { ClassNode, Expression, FunctionNode, Pattern, Statement } from '../../program/form';
 import { classNode } from './classes';
 import type { Context, FunctionSyntax, Name } from './context';
@@ -9,14 +9,18 @@ import { branch, statements } from './statements';
 
 /** Ties the converting functions together; see `Context`. */
 export class Converter implements Context {
+  readonly functions = new WeakMap<ts.Node, FunctionNode>();
+  readonly classes = new WeakMap<ts.Node, ClassNode>();
+  readonly owners = new WeakMap<ts.Node, ClassNode>();
+  readonly hasPrototypes: boolean;
+  base: string | undefined = undefined;
+
   constructor(
     readonly source: ts.SourceFile,
     readonly exported: Set<string>,
-    readonly functions = new WeakMap<ts.Node, FunctionNode>(),
-    readonly classes = new WeakMap<ts.Node, ClassNode>(),
-    readonly owners = new WeakMap<ts.Node, ClassNode>(),
-    public base: string | undefined = undefined,
-  ) {}
+  ) {
+    this.hasPrototypes = source.text.includes('.prototype');
+  }
 
   expression(node: ts.Expression): Expression {
     return expression(this, node);

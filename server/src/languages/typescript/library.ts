@@ -1,4 +1,5 @@
 import type { Library } from '../../program/library';
+import { PACKAGE_CONSTANTS, PACKAGE_INTRINSICS, PACKAGE_MODULES, PACKAGE_SCALARS } from './library-packages';
 import { CONSTANTS, SCALARS } from './library-scalars';
 
 /**
@@ -6,8 +7,8 @@ import { CONSTANTS, SCALARS } from './library-scalars';
  * `const { sin } = Math`, `const M = Math` and `const s = Math.sin` all come back to these entries.
  */
 export const typescriptLibrary: Library = {
-  scalars: SCALARS,
-  constants: CONSTANTS,
+  scalars: new Map([...SCALARS, ...PACKAGE_SCALARS]),
+  constants: new Map([...CONSTANTS, ...PACKAGE_CONSTANTS]),
   intrinsics: new Map([
     ['Array', 'list-new'],
     ['Array.from', 'list-from'],
@@ -23,16 +24,19 @@ export const typescriptLibrary: Library = {
     ['Object.seal', 'identity'],
     ['Object.preventExtensions', 'identity'],
     ['structuredClone', 'deep-copy'],
+    ['Object.hasOwn', 'record-has'],
     ['Boolean', 'to-condition'],
+    // Beside their meaning as functions of numbers: `assume within limits` takes clips out.
+    ['Math.min', 'number-min'],
+    ['Math.max', 'number-max'],
+    ...PACKAGE_INTRINSICS,
   ]),
   methods: new Map([
     ...listMethods(),
-    ['function.call', 'function-call'],
-    ['function.apply', 'function-apply'],
-    ['function.bind', 'function-bind'],
+    ['record.hasOwnProperty', 'record-has'],
     ['scalar.valueOf', 'identity'],
   ]),
-  modules: new Map(),
+  modules: new Map(PACKAGE_MODULES),
   ignorable: new Set([
     ...'log info warn error debug trace assert table group groupEnd time timeEnd timeLog count'.split(' ').map((n) => `console.${n}`),
     'alert',
@@ -54,10 +58,11 @@ function numericArrays(): [string, string][] {
 function listMethods(): [string, string][] {
   const plain =
     'map forEach reduce reduceRight filter slice splice concat push pop shift unshift fill indexOf lastIndexOf includes every ' +
-    'some find findIndex findLast findLastIndex flat flatMap reverse at keys values entries with sort join';
+    'some find findIndex findLast findLastIndex flat flatMap reverse at keys entries with sort join';
   const named: [string, string][] = plain.split(' ').map((n) => [`list.${n}`, `list-${kebab(n)}`]);
   return [
     ...named,
+    ['list.values', 'list-copy'],
     ['list.set', 'list-set-from'],
     ['list.subarray', 'list-view'],
     ['list.toReversed', 'list-reversed'],

@@ -32,24 +32,24 @@ interface Part {
  */
 export function prototypeClasses(c: Context, nodes: readonly ts.Statement[]): ReadonlyMap<ts.Statement, Statement[]> {
   const made = new Map<ts.Statement, Statement[]>();
-  if (!c.source.text.includes('.prototype')) return made;
-  const candidates = constructors(c, nodes);
+  if (!c.hasPrototypes) return made;
+  const candidates = constructors(nodes);
   if (candidates.size === 0) return made;
   const taken = new Map<ts.Statement, Gathered>();
   for (const node of nodes) {
     const owner = ts.isExpressionStatement(node) ? gather(c, bare(node.expression), candidates, spanOf(c, node)) : undefined;
     if (owner) taken.set(node, owner);
   }
-  for (const owner of candidates.values()) {
-    if (![...taken].some(([node, o]) => o === owner && node !== owner.home)) continue;
+  for (const owner of new Set(taken.values())) {
     if (!owner.parts.some((p) => p.kind !== 'static') && !owner.base) continue;
+    if (isCalledPlainly(c.source.text, owner.name.text)) continue;
     made.set(owner.home, [{ kind: 'class', node: classOf(c, owner), span: spanOf(c, owner.home) }]);
     for (const [node, o] of taken) if (o === owner) made.set(node, []);
   }
   return made;
 }
 
-function constructors(c: Context, nodes: readonly ts.Statement[]): Map<string, Gathered> {
+function constructors(nodes: readonly ts.Statement[]): Map<string, Gathered> {
   const found = new Map<string, Gathered>();
   for (const home of nodes) {
     let name: ts.Identifier | undefined;
@@ -61,7 +61,7 @@ function constructors(c: Context, nodes: readonly ts.Statement[]): Map<string, G
     }
     if (!name || !node || !(ts.isFunctionDeclaration(node) || ts.isFunctionExpression(node))) continue;
     if (ts.canHaveModifiers(home) && ts.getModifiers(home)?.length) continue;
-    if (!isCalledPlainly(c.source.text, name.text)) found.set(name.text, { name, node, home, parts: [] });
+    found.set(name.text, { name, node, home, parts: [] });
   }
   return found;
 }
