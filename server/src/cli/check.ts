@@ -1,0 +1,142 @@
+import { declarationMark, version, type Problem, type Report, type ReportClaim } from '@visviva/shared';
+import { createDiskFiles } from '../host/files';
+import { shown } from '../host/paths';
+import { readTextFile } from '../host/text-file';
+import type { FileResult, Service } from '../service/api';
+import { createService } from '../service/index';
+import { Budget } from '../text/budget';
+import { byPath, findInputs, type Skipped } from './inputs';
+import { UsageError, type Io, type Status } from './io';
+
+export interface CheckOptions {
+  readonly requireClaims?: boolean;
+  readonly function?: string;
+  readonly system?: string;
+}
+
+export interface Outcome {
+  readonly report: Report;
+  readonly status: Status;
+}
+
+/** Far more than any file should need; a result must not depend on how busy the machine is. */
+const MILLISECONDS_PER_FILE = 120_000;
+
+/** Checks the files that the paths name. Paths in the report are relative to the folder the command runs in. */
+export async function check(paths: readonly string[], options: CheckOptions, io: Io): Promise<Outcome> {
+  const { service, inputs } = openService(paths, io);
+  const skipped: Skipped[] = [...inputs.skipped];
+  const results: FileResult[] = [];
+  let read = 0;
+  let failed = false;
+  for (const file of inputs.files) {
+    const text = readTextFile(file);
+    if ('skipped' in text) {
+      skipped.push({ file, reason: text.skipped });
+      continue;
+    }
+    read++;
+    if (!text.text.includes(declarationMark) && !file.endsWith('.visviva')) continue;
+    try {
+      results.push(await service.check(file, new Budget({ milliseconds: MILLISECONDS_PER_FILE })));
+    } catch (error) {
+      failed = true;
+      io.log(`Internal failure while checking ${shown(file, io.folder)}: ${describe(error)}`);
+    }
+  }
+  const report = assemble(results, skipped, read, options, io.folder);
+  return { report, status: failed ? 2 : statusOf(report, options) };
+}
+
+export function openService(paths: readonly string[], io: Io): { service: Service; inputs: ReturnType<typeof findInputs> } {
+  let projects: readonly string[] = [];
+  const service: Service = createService(createDiskFiles(() => projects, (file) => service.handles(file)));
+  const inputs = findInputs(paths, io.folder, (file) => service.handles(file));
+  projects = inputs.projects;
+  return { service, inputs };
+}
+
+function assemble(
+  results: readonly FileResult[],
+  skipped: readonly Skipped[],
+  files: number,
+  options: CheckOptions,
+  folder: string,
+): Report {
+  const chosen = results.map((r) => choose(r, options));
+  if (options.system !== undefined && !results.some((r) => r.systems.some((s) => s.name === options.system) || r.claims.some((c) => c.system === options.system))) {
+    throw new UsageError(`No system "${options.system}" is declared in the given paths.${offer(results.flatMap((r) => r.systems.map((s) => s.name)))}`);
+  }
+  if (options.function !== undefined && !chosen.some((r) => r.claims.length > 0)) {
+    throw new UsageError(`No claim about a function "${options.function}" is made in the given paths.${offer(results.flatMap((r) => r.claims.map((c) => c.function)))}`);
+  }
+  const show = (file: string) => shown(file, folder);
+  const claims = chosen.flatMap((r) => byLine(r.claims)).map((c) => shownClaim(c, show));
+  const problems = chosen.flatMap((r) => r.problems).map((p) => ({ ...p, file: show(p.file) }));
+  const count = (verdict: string) => claims.filter((c) => c.verdict === verdict).length;
+  return {
+    schema: 1,
+    tool: { name: 'visviva', version },
+    summary: {
+      files,
+      systems: chosen.reduce((n, r) => n + r.systems.length, 0),
+      claims: claims.length,
+      holds: count('holds'),
+      differs: count('differs'),
+      unread: count('unread'),
+      problems: problems.length,
+    },
+    claims,
+    problems,
+    skipped: [...skipped].map((s) => ({ file: show(s.file), reason: s.reason })).sort((a, b) => byPath(a.file, b.file)),
+  };
+}
+
+function choose(r: FileResult, options: CheckOptions): FileResult {
+  const { system, function: name } = options;
+  if (system === undefined && name === undefined) return r;
+  const claims = r.claims.filter(
+    (c) => (system === undefined || c.system === system) && (name === undefined || isNamed(c.function, name)),
+  );
+  const wanted = system ?? new Set(claims.map((c) => c.system));
+  const systems = r.systems.filter((s) => (typeof wanted === 'string' ? s.name === wanted : wanted.has(s.name)));
+  const problems = r.problems.filter((p) => systems.some((s) => isInside(p, s.range)));
+  return { ...r, claims, systems, problems };
+}
+
+/** `rates` names the function rates and the method Crane.rates. */
+function isNamed(path: string, name: string): boolean {
+  return path === name || path.endsWith(`.${name}`);
+}
+
+function isInside(p: Problem, range: Problem['range']): boolean {
+  return p.range.start.line >= range.start.line && p.range.start.line <= range.end.line;
+}
+
+function byLine(claims: readonly ReportClaim[]): ReportClaim[] {
+  return [...claims].sort((a, b) => a.line - b.line);
+}
+
+function shownClaim(c: ReportClaim, show: (file: string) => string): ReportClaim {
+  return {
+    ...c,
+    file: show(c.file),
+    findings: c.findings.map((f) => (f.file === undefined ? f : { ...f, file: show(f.file) })),
+  };
+}
+
+function statusOf(report: Report, options: CheckOptions): Status {
+  const { claims, differs, unread } = report.summary;
+  if (differs > 0 || unread > 0 || report.problems.some((p) => p.severity === 'error')) return 1;
+  return claims === 0 && options.requireClaims ? 1 : 0;
+}
+
+function offer(names: readonly string[]): string {
+  const known = [...new Set(names)].filter((n) => n !== '').sort(byPath);
+  if (known.length === 0) return '';
+  return ` Known: ${known.slice(0, 12).join(', ')}${known.length > 12 ? ', ...' : ''}.`;
+}
+
+export function describe(error: unknown): string {
+  return error instanceof Error ? (error.stack ?? error.message) : String(error);
+}

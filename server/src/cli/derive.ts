@@ -1,0 +1,36 @@
+import type { DerivedSystem } from '../service/api';
+import { Budget } from '../text/budget';
+import { openService } from './check';
+import { UsageError, type Io, type Status } from './io';
+import { harmless } from './report/width';
+
+export const DERIVE_FORMS = ['text', 'tex', 'typescript'] as const;
+export type DeriveForm = (typeof DERIVE_FORMS)[number];
+
+/** Prints the derived equations of what a file declares. */
+export async function derive(file: string, form: DeriveForm, system: string | undefined, io: Io): Promise<Status> {
+  const { service, inputs } = openService([file], io);
+  const path = inputs.files[0];
+  if (path === undefined || inputs.files.length > 1) {
+    const why = inputs.files.length > 1 ? 'is a folder; name one file' : (inputs.skipped[0]?.reason ?? 'holds no source file');
+    throw new UsageError(`"${file}": ${why}.`);
+  }
+  const all = await service.derive(path, form, new Budget({ milliseconds: 120_000 }));
+  const wanted = system === undefined ? all : all.filter((d) => d.system === system);
+  if (wanted.length === 0) {
+    const known = all.map((d) => d.system).join(', ');
+    io.log(
+      all.length === 0
+        ? `${file} declares no system.`
+        : `${file} declares no system "${system!}", but ${known}.`,
+    );
+    return all.length === 0 ? 1 : 2;
+  }
+  io.out(wanted.map((d) => section(d, form)).join('\n'));
+  return 0;
+}
+
+function section(d: DerivedSystem, form: DeriveForm): string {
+  const title = { text: d.system, tex: `% ${d.system}`, typescript: `// ${d.system}` }[form];
+  return `${harmless(title)}\n${d.text.replace(/\n*$/, '')}\n`;
+}

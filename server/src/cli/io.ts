@@ -1,0 +1,15 @@
+/** What a command may touch: two streams, the folder it was started in, and how far colour is welcome. */
+export interface Io {
+  /** The report. */
+  out(text: string): void;
+  /** Everything that is not the report. */
+  log(text: string): void;
+  readonly folder: string;
+  readonly colour: boolean;
+}
+
+/** 0: every claim holds. 1: something differs, is unread or wrongly declared. 2: usage, configuration, internal failure. */
+export type Status = 0 | 1 | 2;
+
+/** A mistake of the caller, told in one line; the command ends with status 2. */
+export class UsageError extends Error {}
