@@ -21,6 +21,9 @@ export const PHYSICS: Mode = { code: false, quantities: false, logic: 'close', s
 export const CODE: Mode = { ...PHYSICS, code: true };
 export const CLAIMED: Mode = { ...PHYSICS, quantities: true };
 
+/** Words that follow a name with meaning: the two words then are no remark. */
+const AFTER_NAME = new Set('in over at on with order between and or rest matrix vector side A B of'.split(' '));
+
 /** The tokens of one statement, with what is said about them: errors and remarks. */
 export class Cursor {
   private readonly lexer: Lexer;
@@ -138,6 +141,14 @@ export class Cursor {
     if (token.kind !== 'name') return token.kind !== 'prime' && token.kind !== 'superscript';
     if (this.mode.stops.has(token.text)) return false;
     return !(this.mode.logic === 'always' && (token.text === 'and' || token.text === 'or'));
+  }
+
+  /** After a comma: true where two spaces and a run of plain words end the line, as in `x [m],   the cart`. */
+  atRemarkAfterComma(): boolean {
+    const first = this.peek();
+    if (first.newline || first.gap < 2 || first.kind !== 'name') return false;
+    const second = this.peek(1);
+    return second.kind === 'name' && !second.newline && second.gap === 1 && !AFTER_NAME.has(second.text);
   }
 
   /** Takes a remark, if one begins here, to the end of its line. */

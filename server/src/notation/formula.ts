@@ -303,7 +303,6 @@ function parseItems(c: Cursor, close: string, open: Span, slices = false): Items
   const rows: Formula[][] = [[]];
   let comma = false;
   for (;;) {
-    c.skipRemark();
     if (c.eat(close)) break;
     const token = c.peek();
     if (token.kind === 'end') {
@@ -322,8 +321,10 @@ function parseItems(c: Cursor, close: string, open: Span, slices = false): Items
       rows.at(-1)!.push(slices ? parseIndexItem(c) : parseExpression(c));
       c.skipRemark();
     }
-    if (c.eat(',')) comma = true;
-    else if (c.eat(';')) rows.push([]);
+    if (c.eat(',')) {
+      comma = true;
+      if (c.atRemarkAfterComma()) c.takeRemark();
+    } else if (c.eat(';')) rows.push([]);
     else if (!c.is(close) && !c.atEnd && !c.is(')') && !c.is(']') && !c.is('}')) {
       const odd = c.take();
       c.error(odd.problem ?? `a comma or \`${close}\` is expected before \`${shorten(c.text.slice(odd.span.start, odd.span.end))}\``, odd.span);

@@ -238,7 +238,7 @@ function parseEquations(c: Cursor, word: string, left: Mode, right: Mode): (Equa
     items.push({ left: target, op, right: value, span: c.from(start) });
     if (headAt(c, 1) && word === 'where' && c.is(',')) return items;
     if (c.eat(',')) {
-      if (commentAfterComma(c)) c.takeRemark();
+      if (c.atRemarkAfterComma()) c.takeRemark();
       continue;
     }
     if (c.is(';')) {
@@ -264,12 +264,6 @@ function toNextEquation(c: Cursor): boolean {
     if (token.kind === 'operator' && ')]}'.includes(token.text)) depth--;
     c.take();
   }
-}
-
-function commentAfterComma(c: Cursor): boolean {
-  const token = c.peek();
-  const second = c.peek(1);
-  return !token.newline && token.gap >= 2 && token.kind === 'name' && second.kind === 'name' && second.gap === 1 && !second.newline;
 }
 
 /** True where the line at the cursor has the form `CODE = ...`. */

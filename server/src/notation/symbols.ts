@@ -34,7 +34,7 @@ export function parseSymbols(c: Cursor, what: string): SymbolItem[] {
     c.skipRemark();
     if (c.remarks.length > remarks) items.at(-1)!.remark = c.remarks.at(-1)!.text;
     if (c.eat(',') || c.eat(';')) {
-      if (c.lastSpan.end > 0 && remarkAfterComma(c)) {
+      if (c.atRemarkAfterComma()) {
         c.takeRemark();
         items.at(-1)!.remark = c.remarks.at(-1)?.text;
       }
@@ -69,14 +69,6 @@ function indexNames(c: Cursor): Set<string> {
     if (c.isWord('in', k + 2) && c.peek(k + 1).kind === 'name' && (c.isWord('over', k) || (names.size && c.is(',', k)))) names.add(c.peek(k + 1).text);
   }
   return names;
-}
-
-/** `, <two spaces> words of prose` at a line's end: the remark on what stands before the comma. */
-function remarkAfterComma(c: Cursor): boolean {
-  const first = c.peek();
-  if (first.newline || first.gap < 2 || first.kind !== 'name') return false;
-  const second = c.peek(1);
-  return second.kind === 'name' && !second.newline && second.gap === 1 && second.text !== 'in' && second.text !== 'over';
 }
 
 function skipToComma(c: Cursor): boolean {
