@@ -28,7 +28,7 @@ export class LuffingBoom {
    * inputs       torque [N m]
    * where C = (L/2*cos(be), L/2*sin(be)), H = (L*cos(be), L*sin(be))
    * T = 1/2*mb*dot(C', C') + 1/24*mb*L^2*be'^2 + 1/2*mh*dot(H', H')
-   * V = mb*g*C[1] + mh*g*H[1]
+   * V = mb*g*C.y + mh*g*H.y
    * D = 1/2*c*be'^2
    * Q[be] = torque
    * reads  this.angle = be, this.speed = be'

@@ -10,7 +10,7 @@ published(
  * inputs      F [N]
  * where G = (x + l*sin(th), l*cos(th))
  * T = 1/2*mc*x'^2 + 1/2*m*dot(G', G') + 1/2*(m*l^2/3)*th'^2
- * V = m*g*G[1]
+ * V = m*g*G.y
  * Q[x] = F - muc*sign(x')
  * Q[th] = -mup*th'
  * checks return = [x'', th'']
@@ -43,16 +43,16 @@ published('R. V. Florian, "Correct equations for the dynamics of the cart-pole s
  * Q[x] = F
  * checks thAcc = th'', xAcc = x''
  */
-function florian(th, w, F, mc, mp, l, g) {
+function florian(th, thDot, F, mc, mp, l, g) {
   const sin = Math.sin(th);
   const cos = Math.cos(th);
-  const thAcc = (g * sin + (cos * (-F - mp * l * w * w * sin)) / (mc + mp)) / (l * (4 / 3 - (mp * cos * cos) / (mc + mp)));
-  const xAcc = (F + mp * l * (w * w * sin - thAcc * cos)) / (mc + mp);
+  const thAcc = (g * sin + (cos * (-F - mp * l * thDot * thDot * sin)) / (mc + mp)) / (l * (4 / 3 - (mp * cos * cos) / (mc + mp)));
+  const xAcc = (F + mp * l * (thDot * thDot * sin - thAcc * cos)) / (mc + mp);
   return { thAcc, xAcc };
 }
 //= florian(th, th', F, mc, mp, l, g)
 //~ sign-of-force: (-F - mp -> (F - mp
-//~ lost-square: mp * l * w * w * sin)) / (mc -> mp * l * w * sin)) / (mc
+//~ lost-square: mp * l * thDot * thDot * sin)) / (mc -> mp * l * thDot * sin)) / (mc
 //~ wrong-mass: (F + mp * l -> (F + mc * l
 //~ four-thirds: 4 / 3 -> 3 / 4
 `);
@@ -66,7 +66,7 @@ published('M. W. Spong, S. Hutchinson, M. Vidyasagar, "Robot Modeling and Contro
  * where C1 = (lc1*cos(q1), lc1*sin(q1))
  * where C2 = (l1*cos(q1) + lc2*cos(q1 + q2), l1*sin(q1) + lc2*sin(q1 + q2))
  * T = 1/2*m1*dot(C1', C1') + 1/2*I1*q1'^2 + 1/2*m2*dot(C2', C2') + 1/2*I2*(q1' + q2')^2
- * V = g*(m1*C1[1] + m2*C2[1])
+ * V = g*(m1*C1.y + m2*C2.y)
  * torque tau1 on q1
  * torque tau2 on q2
  * reads   q1d = q1', q2d = q2'
@@ -101,7 +101,7 @@ published('R. S. Sutton, A. G. Barto, "Reinforcement Learning: An Introduction" 
  * where C1 = (lc1*sin(th1), -lc1*cos(th1))
  * where C2 = (l1*sin(th1) + lc2*sin(th1 + th2), -l1*cos(th1) - lc2*cos(th1 + th2))
  * T = 1/2*m1*dot(C1', C1') + 1/2*I1*th1'^2 + 1/2*m2*dot(C2', C2') + 1/2*I2*(th1' + th2')^2
- * V = g*(m1*C1[1] + m2*C2[1])
+ * V = g*(m1*C1.y + m2*C2.y)
  * torque tau on th2
  * checks ddth1 = th1'', ddth2 = th2''
  */
@@ -136,7 +136,7 @@ published('J. Hauser, S. Sastry, P. Kokotovic, "Nonlinear control via approximat
  * inputs      tau [N m]
  * where P = (r*cos(th), r*sin(th))
  * T = 1/2*M*dot(P', P') + 1/2*Jb*(r'/R)^2 + 1/2*(J + Jb)*th'^2
- * V = M*G*P[1]
+ * V = M*G*P.y
  * torque tau on th
  * checks return[0] = r'', return[1] = th''
  */

@@ -52,7 +52,7 @@ type Token = { kind: 'number' | 'name' | 'mark' | 'end'; text: string; at: numbe
 
 function tokenize(text: string): Token[] {
   const tokens: Token[] = [];
-  const pattern = /\s*(?:(\d+\.?\d*(?:e[+-]?\d+)?|\.\d+)|([\p{L}_][\p{L}\p{N}_]*)|(\*\*|'|[-+*/^(),[\]]))/uy;
+  const pattern = /\s*(?:(\d+\.?\d*(?:e[+-]?\d+)?|\.\d+)|([\p{L}_][\p{L}\p{N}_]*)|(\*\*|'|[-+*/^(),.[\]]))/uy;
   while (pattern.lastIndex < text.trimEnd().length) {
     const at = pattern.lastIndex;
     const m = pattern.exec(text);
@@ -128,7 +128,10 @@ export function parseFormula(text: string): Evaluate {
       else if (accept('[')) {
         const at = sum();
         need(']');
-        value = (s) => vec(inner(s))[num(at(s))] ?? NaN;
+        value = (s) => vec(inner(s))[num(at(s)) - 1] ?? NaN;
+      } else if (accept('.')) {
+        const axis = 'xyz'.indexOf(tokens[i++]!.text);
+        value = (s) => vec(inner(s))[axis] ?? NaN;
       } else return value;
     }
   };
