@@ -2,7 +2,7 @@ import type { Place } from '../text/span';
 import { callSuper, construct, findMember } from './classes';
 import { evaluate } from './expressions';
 import type { Argument, Expression, Parameter } from './form';
-import { childOf, genericAt, valueOf } from './generics';
+import { childOf, fallbackOf, genericAt, valueOf } from './generics';
 import { runIntrinsic } from './intrinsics/table';
 import { unclip } from './limits';
 import type { Machine } from './machine';
@@ -166,7 +166,7 @@ function callObject(m: Machine, scope: Scope, callee: Value & { kind: 'object' }
   }
   if (data.kind !== 'generic') return unknownCall(m, args, place, words);
   const { generic } = data;
-  const known = generic.fallback?.();
+  const known = fallbackOf(m, generic);
   if (known?.kind === 'function' || known?.kind === 'class') return callValue(m, scope, known, undefined, args, place, words);
   if (args.length === 0) return getter(m, callee, place);
   const shown = args.map((a) => argumentWords(m, a.value));

@@ -40,7 +40,7 @@ function receiver(m: Machine, module: Module, around: Scope, node: FunctionNode,
   const place = m.place(around, info ? info.node.nameSpan : node.nameSpan);
   if (info) return genericAt(m, 'this', place, { info });
   const record = recordAround(module.program, node);
-  return genericAt(m, 'this', place, record ? { fallback: () => evaluate(m, around, record) } : {});
+  return genericAt(m, 'this', place, record ? { fallback: () => evaluate(m, around, record), constant: true } : {});
 }
 
 /** The record literal a function is a method of. */

@@ -40,7 +40,8 @@ function placed(m: Machine, e: Expression, place: Place, value: Value): Value {
   if (value.kind !== 'scalar') return value;
   m.note(place, value.expr);
   if (m.keepPlaces) return value;
-  return { kind: 'scalar', expr: value.expr, place };
+  const { tag } = m.request;
+  return { kind: 'scalar', expr: tag && !m.quiet ? tag(place, e, value.expr) : value.expr, place };
 }
 
 function evaluateInside(m: Machine, scope: Scope, e: Expression, place: Place): Value {

@@ -59,6 +59,11 @@ export function addAlias(m: Machine, value: ObjectValue, name: string): void {
   if (generic.path !== name && !generic.aliases.includes(name)) generic.aliases.push(name);
 }
 
+/** The initial value of a thing, worked out at the bottom of the store, the same for all branches. */
+export function fallbackOf(m: Machine, generic: Generic): Value | undefined {
+  return generic.fallback && m.atRoot(() => generic.fallback!());
+}
+
 /** What a generic thing is as a number. */
 export function numberOf(m: Machine, id: number, data: GenericData): Scalar | ReturnType<typeof unread> {
   const { generic } = data;
@@ -73,7 +78,7 @@ export function numberOf(m: Machine, id: number, data: GenericData): Scalar | Re
     return found;
   }
   if (m.counting > 0) {
-    const v = generic.fallback?.();
+    const v = fallbackOf(m, generic);
     if (v?.kind === 'scalar') return v;
   }
   return { kind: 'scalar', expr: freeOf(m, generic), place: generic.place };
@@ -92,7 +97,7 @@ export function meaningOf(m: Machine, generic: Generic): Scalar | ReturnType<typ
     if (expr) return { kind: 'scalar', expr, place };
     if (m.naming.isForcedFree(generic.path)) return { kind: 'scalar', expr: freeOf(m, generic), place };
   }
-  const value = generic.fallback?.();
+  const value = fallbackOf(m, generic);
   if (value?.kind === 'scalar' && (generic.constant || m.naming.containsDeclared(value.expr))) return { ...value };
   return undefined;
 }
@@ -115,7 +120,7 @@ export function valueOf(m: Machine, meaning: Meaning, place: Place | undefined):
  * Turns a generic thing into the list that `reads`, a family of its name or its initial value say it is, at its first use
  * as a list. It happens at the bottom of the store, the same for all branches.
  */
-export function structure(m: Machine, id: number, asList: boolean): void {
+export function structure(m: Machine, id: number): void {
   const data = m.store.data(id);
   if (data.kind !== 'generic' || data.generic.structured || data.members.size > 0) return;
   const { generic } = data;
@@ -131,12 +136,13 @@ export function structure(m: Machine, id: number, asList: boolean): void {
     });
     return;
   }
-  const value = generic.fallback?.();
+  const value = fallbackOf(m, generic);
   if (value?.kind === 'object' && value.id !== id) {
     const initial = m.store.data(value.id);
-    if (initial.kind === 'list' || (initial.kind === 'record' && !asList) || initial.kind === 'record') {
+    if (initial.kind === 'list' || initial.kind === 'record') {
       generic.structured = true;
-      m.atRoot(() => m.store.set(id, generalise(m, value.id, generic, 0)));
+      const shape = generalise(m, value.id, generic, 0);
+      m.atRoot(() => m.store.set(id, shape));
     }
   }
 }
@@ -147,11 +153,10 @@ function generalise(m: Machine, id: number, generic: Generic, depth: number) {
   const base = m.request.program.indexBase;
   const one = (v: Value, key: string): Value => {
     if (v.kind === 'scalar' && m.naming.containsDeclared(v.expr)) return v;
-    if (v.kind === 'scalar' || v.kind === 'string' || v.kind === 'condition' || v.kind === 'nothing' || v.kind === 'unread') {
-      return childOf(m, -id, generic, key, generic.place, () => v);
-    }
-    if (v.kind === 'object' && depth < 8) return childOf(m, -id, generic, key, generic.place, () => v);
-    return v;
+    const isCode = v.kind === 'function' || v.kind === 'class' || v.kind === 'library' || v.kind === 'method' || v.kind === 'module';
+    if (isCode || depth > 8) return v;
+    const constant = generic.constant && data.kind === 'record' && !m.isAssignedMember(key);
+    return childOf(m, -id, generic, key, generic.place, () => v, constant);
   };
   if (data.kind === 'list') {
     return { ...data, items: data.items.map((v, k) => one(v, String(k + base))) };

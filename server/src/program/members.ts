@@ -148,7 +148,7 @@ export function readElement(m: Machine, module: Module, object: Value, key: Valu
     const c = object.value[known - module.program.indexBase];
     return c === undefined ? NOTHING : { kind: 'string', value: c };
   }
-  const data = dataOf(m, object, true);
+  const data = dataOf(m, object);
   if (data?.kind === 'list') return elementAt(m, module, data, known);
   if (!data) return unread(`an element of a ${describe(object)}`, place);
   return readMember(m, module, object, String(known), place);
@@ -251,7 +251,7 @@ export function writeElement(m: Machine, module: Module, object: Value, key: Val
   }
   if (typeof known === 'number' && object.kind === 'object') {
     const { negativeIndex, indexBase } = module.program;
-    const data = dataOf(m, object, true);
+    const data = dataOf(m, object);
     if (data?.kind === 'list') {
       const list = m.store.writable(object.id) as ListData;
       const k = known < 0 && negativeIndex ? list.items.length + known : known - indexBase;

@@ -125,7 +125,7 @@ function topLevelValue(m: Machine, module: Module, scope: Scope, name: string, v
       const data = m.store.data(v.id);
       if (data.kind === 'generic') return arrive(m, name, v, arrival(scope, name, place));
       if (!isState(module, name) && data.kind !== 'broken') return arrive(m, name, v, arrival(scope, name, place));
-      return genericAt(m, name, place, { fallback: () => v });
+      return genericAt(m, name, place, { fallback: () => v, constant: true });
     }
   }
   let first: Value | undefined;

@@ -56,15 +56,15 @@ export function describe(value: Value): string {
 }
 
 /** The contents of a value that is a list or record, after a look at what `reads` says it is. */
-export function dataOf(m: Machine, value: Value, asList = false): Data | undefined {
+export function dataOf(m: Machine, value: Value): Data | undefined {
   if (value.kind !== 'object') return undefined;
-  structure(m, value.id, asList);
+  structure(m, value.id);
   return m.store.data(value.id);
 }
 
 /** The items of a known list. */
 export function itemsOf(m: Machine, value: Value): readonly Value[] | undefined {
-  const data = dataOf(m, value, true);
+  const data = dataOf(m, value);
   return data?.kind === 'list' ? data.items : undefined;
 }
 

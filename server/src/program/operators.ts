@@ -51,7 +51,7 @@ export function binary(m: Machine, module: Module, op: BinaryOperator, a: Value,
 }
 
 function listOf(m: Machine, v: Value): ListData | undefined {
-  const data = dataOf(m, v, true);
+  const data = dataOf(m, v);
   return data?.kind === 'list' ? data : undefined;
 }
 

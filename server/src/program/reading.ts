@@ -61,6 +61,8 @@ export interface ReadRequest {
   readonly budget: Budget;
   /** Replaces the value of one source sub-expression wherever it is evaluated: used to ask what value there would be right. */
   readonly override?: { readonly file: string; readonly span: Span; readonly value: (read: Expr) => Expr };
+  /** Asked at every number that is noted in the trace: what goes on in its stead. For a search over all places at once. */
+  readonly tag?: (place: Place, source: Expression, read: Expr) => Expr;
 }
 
 /**

@@ -302,7 +302,7 @@ export const LISTS: IntrinsicTable = {
   'is-list': (m, call) => {
     const v = call.args[0] ?? NOTHING;
     if (v.kind === 'unread') return v;
-    const data = dataOf(m, v, true);
+    const data = dataOf(m, v);
     const t = data?.kind === 'list' ? m.graph.true : data?.kind === 'generic' ? truthOf(m, v, call.place) : m.graph.false;
     return isUnread(t) ? t : { kind: 'condition', expr: t, place: call.place };
   },
