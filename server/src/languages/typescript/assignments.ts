@@ -18,14 +18,9 @@ export function assignment(c: Context, node: ts.BinaryExpression, span: Span): E
   if (op) return { kind: 'assign', target: c.target(node.left), op, value: c.expression(node.right), yields: 'new', span };
   const logical = LOGICAL_ASSIGNMENT.get(token);
   if (!logical) return opaque('an operator of this kind', span);
-  if (!isStill(node.left)) return opaque('a logical assignment whose place is computed with a side effect', span);
-  const value: Expression = {
-    kind: 'logical',
-    op: logical,
-    left: c.expression(node.left),
-    right: c.expression(node.right),
-    span,
-  };
+  const value: Expression = isStill(node.left)
+    ? { kind: 'logical', op: logical, left: c.expression(node.left), right: c.expression(node.right), span }
+    : opaque('a logical assignment whose place is computed with a side effect', span);
   return { kind: 'assign', target: c.target(node.left), value, yields: 'new', span };
 }
 

@@ -106,6 +106,9 @@ function leaf(c: Context, node: ts.Expression): Expression {
   }
   if (ts.isTypeOfExpression(node)) return { kind: 'unary', op: 'typeof', operand: c.expression(node.expression), span };
   if (ts.isTemplateExpression(node)) return template(c, node, span);
+  if (ts.isAwaitExpression(node) || ts.isYieldExpression(node)) return waiting(c, node, span);
+  if (ts.isTaggedTemplateExpression(node)) return tagged(c, node, span);
+  if (ts.isDeleteExpression(node)) return deletion(c, node, span);
   if (ts.isVoidExpression(node)) return voided(c, node, span);
   return simple(node, span);
 }
@@ -131,11 +134,7 @@ function simple(node: ts.Expression, span: Span): Expression {
 
 const OPAQUE = new Map<ts.SyntaxKind, string>([
   [K.BigIntLiteral, 'a big integer (its division drops the remainder)'],
-  [K.TaggedTemplateExpression, 'a tagged template string'],
   [K.RegularExpressionLiteral, 'a regular expression'],
-  [K.AwaitExpression, 'a value that is awaited'],
-  [K.YieldExpression, 'a yield'],
-  [K.DeleteExpression, 'the deletion of a property'],
   [K.MetaProperty, 'a property of the running program'],
   [K.JsxElement, 'JSX markup'],
   [K.JsxSelfClosingElement, 'JSX markup'],
@@ -213,6 +212,30 @@ function template(c: Context, node: ts.TemplateExpression, span: Span): Expressi
     if (part.literal.text !== '') join({ kind: 'string', value: part.literal.text, span: spanOf(c, part.literal) });
   }
   return value;
+}
+
+/** What is awaited or yielded is evaluated, and may change things; what comes back is not known. */
+function waiting(c: Context, node: ts.AwaitExpression | ts.YieldExpression, span: Span): Expression {
+  const result = opaque(ts.isAwaitExpression(node) ? 'a value that is awaited' : 'a yield', span);
+  return node.expression ? { kind: 'sequence', items: [c.expression(node.expression), result], span } : result;
+}
+
+/** A call of the tag; what it makes of the text is not known. */
+function tagged(c: Context, node: ts.TaggedTemplateExpression, span: Span): Expression {
+  const parts = ts.isTemplateExpression(node.template) ? node.template.templateSpans : [];
+  const call: Expression = {
+    kind: 'call',
+    callee: c.expression(node.tag),
+    args: parts.map((p) => ({ value: c.expression(p.expression) })),
+    span,
+  };
+  return { kind: 'sequence', items: [call, opaque('a tagged template string', span)], span };
+}
+
+/** The place holds nothing that may be read after. */
+function deletion(c: Context, node: ts.DeleteExpression, span: Span): Expression {
+  const value = opaque('a property that was deleted', span);
+  return { kind: 'assign', target: c.target(node.expression), value, yields: 'new', span };
 }
 
 function voided(c: Context, node: ts.VoidExpression, span: Span): Expression {

@@ -2,6 +2,7 @@ import ts from 'typescript';
 import type { Expression, Field, Pattern, Statement } from '../../program/form';
 import type { Span } from '../../text/span';
 import { type Context, bare, nameText, propertyName, spanOf } from './context';
+import { boundNames } from './patterns';
 import { isExportsObject, isModuleExports } from './exports-object';
 import { valueNamed } from './naming';
 
@@ -96,13 +97,7 @@ export function exportAssignment(c: Context, node: ts.ExportAssignment, span: Sp
 
 /** `export const a = 1, { b } = c`: all names that the patterns bind. */
 export function exportList(nodes: readonly ts.BindingName[], span: Span): Statement {
-  const names: ExportName[] = [];
-  const queue = [...nodes];
-  for (let node = queue.shift(); node; node = queue.shift()) {
-    if (ts.isIdentifier(node)) names.push({ local: nameText(node.text), exported: nameText(node.text) });
-    else queue.unshift(...node.elements.flatMap((e) => (ts.isOmittedExpression(e) ? [] : [e.name])));
-  }
-  return exportNames(names, span);
+  return exportNames(boundNames(nodes).map(({ text }) => ({ local: nameText(text), exported: nameText(text) })), span);
 }
 
 /**

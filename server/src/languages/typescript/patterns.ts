@@ -44,6 +44,17 @@ function labelOf(pattern: Pattern): { text: string; span: Pattern['span'] } | un
   return pattern.kind === 'name' ? { text: pattern.name, span: pattern.span } : undefined;
 }
 
+/** All names that the patterns bind, in order. */
+export function boundNames(nodes: readonly ts.BindingName[]): ts.Identifier[] {
+  const names: ts.Identifier[] = [];
+  const queue = [...nodes];
+  for (let node = queue.shift(); node; node = queue.shift()) {
+    if (ts.isIdentifier(node)) names.push(node);
+    else queue.unshift(...node.elements.flatMap((e) => (ts.isOmittedExpression(e) ? [] : [e.name])));
+  }
+  return names;
+}
+
 /** What stands left of an assignment: a name, a place, or a literal that takes a value apart. */
 export function target(c: Context, node: ts.Expression): Pattern {
   const at = bare(node);

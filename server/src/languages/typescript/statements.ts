@@ -1,11 +1,12 @@
 import ts from 'typescript';
 import type { Pattern, Statement } from '../../program/form';
 import type { Span } from '../../text/span';
-import { type Context, hasModifier, nameOf, spanOf } from './context';
+import { type Context, hasModifier, nameOf, nameText, opaque, spanOf } from './context';
 import { enumeration } from './enums';
 import { exportAssignment, exportDeclaration, exportList, exportedValue, importDeclaration, importEquals } from './modules';
 import { namespaceValue } from './namespaces';
 import { valueNamed } from './naming';
+import { boundNames } from './patterns';
 import { prototypeClasses } from './prototype-classes';
 
 const K = ts.SyntaxKind;
@@ -83,14 +84,16 @@ export function declarations(c: Context, node: ts.VariableDeclarationList, span:
     const label = ts.isIdentifier(d.name) ? nameOf(c, d.name) : undefined;
     const exported = d.initializer ? exportedValue(c, d.initializer, own) : undefined;
     const value = d.initializer ? { value: exported?.value ?? valueNamed(c, d.initializer, label) } : {};
-    const made: Statement = {
-      kind: 'declare',
-      mutable,
-      scope: scoped ? 'block' : 'function',
-      target: c.binding(d.name),
-      ...value,
-      span: own,
-    };
+    const target = c.binding(d.name);
+    const scope = scoped ? 'block' : 'function';
+    if (target.kind === 'opaque') {
+      // The names are there, and hide others of the same name; only what they hold is not known.
+      return boundNames([d.name]).map((n) => {
+        const name: Pattern = { kind: 'name', name: nameText(n.text), span: spanOf(c, n) };
+        return { kind: 'declare', mutable, scope, target: name, value: opaque(target.reason, target.span), span: own };
+      });
+    }
+    const made: Statement = { kind: 'declare', mutable, scope, target, ...value, span: own };
     return exported ? [...exported, made] : [made];
   });
 }
