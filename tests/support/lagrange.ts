@@ -47,7 +47,11 @@ function changed(at: Instant, name: string, order: number, by: number): Instant 
 }
 
 export class Mechanics {
-  constructor(private readonly system: Declared) {}
+  /** @param finer divides every step: where two values of it disagree, a kink is near */
+  constructor(
+    private readonly system: Declared,
+    private readonly finer = 1,
+  ) {}
 
   scope(at: Instant): Scope {
     const { where } = this.system;
@@ -72,7 +76,7 @@ export class Mechanics {
   }
 
   private rate(at: Instant, of: Evaluate): Value {
-    return derivative((h) => of(this.scope(later(at, h))), IN_TIME);
+    return derivative((h) => of(this.scope(later(at, h))), IN_TIME / this.finer);
   }
 
   energy(which: string, at: Instant): number {
@@ -119,14 +123,14 @@ export class Mechanics {
   }
 
   momentum(name: string, at: Instant): number {
-    return num(derivative((h) => this.energy('L', changed(at, name, 1, h)), IN_VELOCITY, ORDER_4));
+    return num(derivative((h) => this.energy('L', changed(at, name, 1, h)), IN_VELOCITY / this.finer, ORDER_4));
   }
 
   /** d/dt(dL/dq') - dL/dq + dD/dq' - Q, for one coordinate. */
   residual(name: string, at: Instant): number {
-    const inertia = num(derivative((h) => this.momentum(name, later(at, h)), IN_TIME));
-    const slope = num(derivative((h) => this.energy('L', changed(at, name, 0, h)), IN_PLACE));
-    const drag = num(derivative((h) => this.energy('D', changed(at, name, 1, h)), IN_VELOCITY, ORDER_4));
+    const inertia = num(derivative((h) => this.momentum(name, later(at, h)), IN_TIME / this.finer));
+    const slope = num(derivative((h) => this.energy('L', changed(at, name, 0, h)), IN_PLACE / this.finer));
+    const drag = num(derivative((h) => this.energy('D', changed(at, name, 1, h)), IN_VELOCITY / this.finer, ORDER_4));
     return inertia - slope + drag - this.applied(name, at);
   }
 
@@ -134,7 +138,7 @@ export class Mechanics {
     const s = this.scope(at);
     let sum = 0;
     for (const q of this.system.along) if (q.coordinate === name) sum += num(q.value(s));
-    const along = (of: Evaluate): Value => derivative((h) => of(this.scope(changed(at, name, 0, h))), IN_PLACE);
+    const along = (of: Evaluate): Value => derivative((h) => of(this.scope(changed(at, name, 0, h))), IN_PLACE / this.finer);
     for (const f of this.system.forces) {
       const lever = vec(along(f.at));
       sum += vec(f.value(s)).reduce((a, c, i) => a + c * lever[i]!, 0);
@@ -153,7 +157,7 @@ export class Mechanics {
     };
     const rest = set(names.map(() => 0));
     const rows = names.map((n) => [
-      ...names.map((m) => num(derivative((h) => this.momentum(n, changed(rest, m, 1, h)), IN_VELOCITY, ORDER_4))),
+      ...names.map((m) => num(derivative((h) => this.momentum(n, changed(rest, m, 1, h)), IN_VELOCITY / this.finer, ORDER_4))),
       -this.residual(n, rest),
     ]);
     return set(eliminate(rows));

@@ -35,7 +35,7 @@ export function compileRun(
   const module = toCommonJs(file, prepare(source, probes, constants));
   const left = (code: string): string => {
     const inner = code.replace(/\breturn\b/g, '__result').replace(/\bthis\b/g, 'self');
-    return [...probes].reduce((c, p) => c.replace(new RegExp(`(?<![.\\w])${p}\\b`, 'g'), `__get(${JSON.stringify(p)}, () => ${p})`), inner);
+    return [...probes].reduce((c, p) => c.replace(new RegExp(`(?<![.\\p{L}\\p{N}_])${p}(?![\\p{L}\\p{N}_])`, 'gu'), `__get(${JSON.stringify(p)}, () => ${p})`), inner);
   };
   const values = `[${claims.map((c) => left(primed(c.left))).join(', ')}]`;
   const before = `[${claims.map((c) => (c.op === '=' ? '0' : left(primed(c.left)))).join(', ')}]`;
@@ -82,7 +82,7 @@ function load(from: string, importer: string, others: ReadonlyMap<string, string
 
 /** `a[1]` and `2*b - x''`: the names a claim's left side starts its paths with, the declared symbols among them. */
 function rootsOf(left: string): string[] {
-  return [...left.matchAll(/(?<![.\w])([A-Za-z_$][\w$]*)(?!['\w(])/g)].map((m) => m[1]!);
+  return [...left.matchAll(/(?<![.\p{L}\p{N}_])([\p{L}_$][\p{L}\p{N}_$]*)(?!['\p{L}\p{N}_(])/gu)].map((m) => m[1]!);
 }
 
 function scriptsOf(html: string): string {
@@ -118,7 +118,7 @@ function insideFunction(node: ts.Node): boolean {
 function assigned(node: ts.Node, tree: ts.SourceFile): string[] {
   if (ts.isVariableStatement(node)) {
     return node.declarationList.declarations.flatMap((d) =>
-      d.initializer ? (d.name.getText(tree).match(/[A-Za-z_$][\w$]*/g) ?? []) : [],
+      d.initializer ? (d.name.getText(tree).match(/[\p{L}_$][\p{L}\p{N}_$]*/gu) ?? []) : [],
     );
   }
   if (ts.isExpressionStatement(node) && ts.isBinaryExpression(node.expression) && ts.isBlock(node.parent)) {
