@@ -4,8 +4,7 @@
  * parser) stays a chunk of its own that is loaded at the first file that needs it.
  */
 import { build } from 'esbuild';
-import { chmod, mkdir, rm } from 'node:fs/promises';
-import { existsSync } from 'node:fs';
+import { chmod, mkdir, rename, rm } from 'node:fs/promises';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 
@@ -15,9 +14,19 @@ const root = fileURLToPath(new URL('..', import.meta.url));
  * @param {{ production?: boolean, outdir?: string }} [options] production: smaller, without source maps.
  */
 export async function buildAll({ production = false, outdir = join(root, 'dist') } = {}) {
-  await rm(outdir, { recursive: true, force: true });
-  await mkdir(outdir, { recursive: true });
+  // Built beside the old one and then put in its place: a build that fails leaves what runs alone.
+  const next = `${outdir.replace(/[\\/]+$/, '')}.next-${process.pid}`;
+  try {
+    await bundle(next, production);
+    await rm(outdir, { recursive: true, force: true });
+    await rename(next, outdir);
+  } finally {
+    await rm(next, { recursive: true, force: true });
+  }
+}
 
+async function bundle(outdir, production) {
+  await mkdir(outdir, { recursive: true });
   /** @type {import('esbuild').BuildOptions} */
   const common = {
     absWorkingDir: root,
@@ -44,11 +53,7 @@ export async function buildAll({ production = false, outdir = join(root, 'dist')
     }),
     build({
       ...common,
-      entryPoints: Object.fromEntries(
-        Object.entries({ server: 'server/src/lsp/main.ts', visviva: 'server/src/cli/main.ts' }).filter(([, file]) =>
-          existsSync(join(root, file)),
-        ),
-      ),
+      entryPoints: { server: 'server/src/lsp/main.ts', visviva: 'server/src/cli/main.ts' },
       outdir,
       outExtension: { '.js': '.mjs' },
       format: 'esm',
@@ -57,8 +62,7 @@ export async function buildAll({ production = false, outdir = join(root, 'dist')
       banner: { js: namesForCommonJs },
     }),
   ]);
-  const command = join(outdir, 'visviva.mjs');
-  if (existsSync(command)) await chmod(command, 0o755);
+  await chmod(join(outdir, 'visviva.mjs'), 0o755);
 }
 
 /** CommonJS packages inside an ES module bundle still use the names that Node gives to every CommonJS module. */

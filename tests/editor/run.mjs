@@ -9,11 +9,15 @@ import { runOnScreen } from './on-screen.mjs';
 import { Results } from './results.mjs';
 
 const wanted = process.argv[2];
-installEditorHost();
 const results = new Results();
-if (wanted !== 'screen') {
-  await buildAll();
-  await runInEditor(results);
+try {
+  installEditorHost();
+  if (wanted !== 'screen') {
+    await buildAll();
+    await runInEditor(results);
+  }
+  if (wanted !== 'suite') await runOnScreen(results);
+} catch (error) {
+  results.fail('the editor', error instanceof Error ? (error.stack ?? error.message) : String(error));
 }
-if (wanted !== 'suite') await runOnScreen(results);
 results.finish();
