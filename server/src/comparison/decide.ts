@@ -50,7 +50,7 @@ export function decide(request: DecideRequest): Decision[] {
 function decideTogether(request: DecideRequest, motion: Motion, decisions: (Decision | undefined)[]): void {
   const { derived, pairs, assumed } = request;
   const { system } = derived;
-  if (system.near) return;
+  if (system.near || motion.isConstrained) return;
   const claims = system.coordinates.map((c) => pairs.findIndex((p) => p.expected === c.acceleration));
   if (claims.length === 0 || claims.includes(-1)) return;
   const found = claims.map((i) => pairs[i]!.found);
@@ -127,8 +127,7 @@ function decideEach(request: DecideRequest, motion: Motion, groups: readonly (re
     const open = tallies.filter((t) => t.votes < STATES || t.visits.missing.length > 0);
     if (open.length === 0 || (wide && tallies.every((t) => t.votes >= FEWEST && t.visits.missing.length === 0))) break;
     if (!budget.look()) break;
-    const columns = sampler.draw(symbols, STATES, wide);
-    const registers = prober.run(columns, STATES);
+    const { registers, columns } = prober.run(sampler.draw(symbols, STATES, wide), STATES);
     tried += STATES;
     for (let s = 0; s < STATES; s++) {
       const allowed = assumed.every((a) => registers.value(a, s) === 1 && registers.error(a, s) === 0);

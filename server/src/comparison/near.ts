@@ -16,10 +16,10 @@ export const MOST_ORDERS = 5;
  * @returns for each pair, one pair per order
  */
 export function expand(derived: Derived, pairs: readonly Pair[]): Pair[][] {
-  const { graph, near, coordinates } = derived.system;
+  const { graph, near } = derived.system;
   if (!near) return pairs.map((p) => [p]);
   const eps = graph.symbol({ name: 'eps', role: 'auxiliary', order: 0 });
-  const motion = new Map<Expr, Expr>(coordinates.map((c, i) => [c.acceleration, derived.accelerations[i]!]));
+  const motion = new Map<Expr, Expr>(derived.unknowns.map((u, i) => [u, derived.solution[i]!]));
   const flat = substitute(graph, pairs.flatMap((p) => [p.found, p.expected]), motion);
   const moved = new Map<Expr, Expr>();
   for (const s of symbolsOf(...flat)) {

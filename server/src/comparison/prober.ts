@@ -31,18 +31,20 @@ export class Prober {
     readonly extra: readonly Expr[] = [],
   ) {
     this.tape = new Tape([...claims.flatMap((c) => c.flatMap((p) => [p.found, p.expected])), ...extra]);
-    this.needsMotion = this.tape.symbols.some(isAcceleration);
+    this.needsMotion = this.tape.symbols.some(isUnknown);
   }
 
   /** All symbols that need a value. */
   get symbols(): readonly Expr[] {
-    const own = this.tape.symbols.filter((s) => !isAcceleration(s));
-    return this.needsMotion ? [...new Set([...own, ...this.motion.symbols])] : own;
+    const own = this.tape.symbols.filter((s) => !isUnknown(s));
+    return this.needsMotion || this.motion.isConstrained ? [...new Set([...own, ...this.motion.symbols])] : own;
   }
 
-  run(columns: ReadonlyMap<Expr, Column>, n: number): Registers {
-    const solution = this.needsMotion ? this.motion.solve(columns, n) : undefined;
-    return this.tape.run((s) => columns.get(s) ?? solution?.get(s), n);
+  /** Runs at these states, moved onto the constraints where there are any; `columns` of the answer are the states taken. */
+  run(columns: ReadonlyMap<Expr, Column>, n: number): { registers: Registers; columns: ReadonlyMap<Expr, Column> } {
+    const at = this.motion.onConstraints(columns, n);
+    const solution = this.needsMotion ? this.motion.solve(at, n) : undefined;
+    return { registers: this.tape.run((s) => at.get(s) ?? solution?.get(s), n), columns: at };
   }
 
   compare(registers: Registers, claim: number, sample: number): Comparison {
@@ -72,7 +74,8 @@ export class Prober {
   }
 }
 
-function isAcceleration(symbol: Expr): boolean {
+/** Accelerations and multipliers are solved for, not drawn. */
+function isUnknown(symbol: Expr): boolean {
   const { role, order } = symbol.data as SymbolData;
-  return role === 'coordinate' && order === 2;
+  return role === 'multiplier' || (role === 'coordinate' && order === 2);
 }

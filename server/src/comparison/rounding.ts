@@ -40,7 +40,7 @@ export function findRounded(
     const n = TRIED_STATES;
     const columns = new Map<Expr, Column>(new Sampler(system).draw(prober.symbols, n));
     for (const [s, c] of columns) c.values[0] = state.get(s) ?? c.values[0]!;
-    const registers = prober.run(columns, n);
+    const { registers } = prober.run(columns, n);
     let votes = 0;
     let agrees = true;
     for (let s = 0; s < n; s++) {

@@ -29,6 +29,9 @@ export interface SubjectRequest {
   readonly subject: Subject;
   readonly importFile: ReadRequest['importFile'];
   readonly budget: Budget;
+  readonly tag?: ReadRequest['tag'];
+  /** Outputs to read beside those of the claims; their values come last in the reading. */
+  readonly extra?: readonly OutputRequest[];
 }
 
 export interface ClaimResult {
@@ -52,16 +55,34 @@ export interface SubjectResult {
   readonly reading: Reading | undefined;
 }
 
+/** Claims read but not decided: `pending` tells which results wait for a verdict. */
+export interface SubjectReading extends SubjectResult {
+  readonly pending: readonly { readonly at: number; readonly found: Expr; readonly expected: Expr }[];
+}
+
 /** Reads what a block is about and decides all its claims. */
 export function checkSubject(request: SubjectRequest): SubjectResult {
-  const { block, derived, program, file, budget } = request;
+  const { derived, budget } = request;
+  const { claims, problems, ambiguities, reading, pending } = readClaims(request);
+  if (!reading || pending.length === 0) return { claims, problems, ambiguities, reading };
+  const places = new Map(reading.conditions.map((c) => [c.expr, c.place]));
+  const assumed = reading.assumed.filter((a) => !freeSymbol(a));
+  const decisions = decide({ derived, pairs: pending, assumed, budget, placeOf: (c) => places.get(c) });
+  const decided = [...claims];
+  pending.forEach((p, i) => (decided[p.at] = { ...claims[p.at]!, decision: decisions[i]! }));
+  return { claims: decided, problems, ambiguities, reading };
+}
+
+/** Reads what a block is about, and puts every claim beside what it must equal. */
+export function readClaims(request: SubjectRequest): SubjectReading {
+  const { block, derived, program, file } = request;
   const { system } = derived;
   const errors: FormulaError[] = [];
   const outputs: OutputRequest[] = [];
   const prepared = prepareClaims(block, derived, outputs, errors);
   const reads = readsBindings(block, system.scope, errors);
   const problems = errors.map((e): DeclarationProblem => ({ ...e, severity: 'error' }));
-  const whole = (reason: string, span: Span): SubjectResult => ({
+  const whole = (reason: string, span: Span): SubjectReading => ({
     claims: prepared.flatMap((p) =>
       (p.target ? pairUp({ kind: 'unread', reason, place: undefined }, p.target, p.outputText, program.indexBase) : [
         { output: p.outputText, quantity: printFormula(p.claim.right), found: undefined, expected: undefined },
@@ -78,11 +99,12 @@ export function checkSubject(request: SubjectRequest): SubjectResult {
     problems,
     ambiguities: [],
     reading: undefined,
+    pending: [],
   });
   if (system.blocked) return whole(system.blocked.reason, block.nameSpan);
-  if (prepared.length === 0) return { claims: [], problems, ambiguities: [], reading: undefined };
+  if (prepared.length === 0) return { claims: [], problems, ambiguities: [], reading: undefined, pending: [] };
 
-  const reading = readSubject(request, reads, outputs);
+  const reading = readSubject(request, reads, [...outputs, ...(request.extra ?? [])]);
   const results: ClaimResult[] = [];
   const pending: { at: number; found: Expr; expected: Expr }[] = [];
   for (const p of prepared) {
@@ -114,13 +136,7 @@ export function checkSubject(request: SubjectRequest): SubjectResult {
       results.push({ ...base, decision: unread('not decided', found.place), found: found.expr, expected });
     }
   }
-  if (pending.length > 0) {
-    const places = new Map(reading.conditions.map((c) => [c.expr, c.place]));
-    const assumed = reading.assumed.filter((a) => !freeSymbol(a));
-    const decisions = decide({ derived, pairs: pending, assumed, budget, placeOf: (c) => places.get(c) });
-    pending.forEach((p, i) => (results[p.at] = { ...results[p.at]!, decision: decisions[i]! }));
-  }
-  return { claims: results, problems, ambiguities: reading.ambiguities, reading };
+  return { claims: results, problems, ambiguities: reading.ambiguities, reading, pending };
 }
 
 /** Reads the subject of a block; also used for energies that the code defines. */
@@ -164,6 +180,7 @@ export function readSubject(request: SubjectRequest, reads: readonly ReadsBindin
     outputs,
     importFile: request.importFile,
     budget: request.budget,
+    ...(request.tag ? { tag: request.tag } : {}),
   });
 }
 

@@ -37,7 +37,10 @@ export function shrinkWitness(
   }
   const last = probe(prober, state, symbols[0], [symbols[0] ? state.get(symbols[0])! : 0], assumed)[0]!;
   const used = last.differs ? { state, result: last } : { state: new Map(start), result: first };
-  return { values: used.state, expected: used.result.expected, found: used.result.found };
+  // Moved onto the constraints, a state is less round, but it is the one that was compared.
+  const columns = motion.onConstraints(asColumns(used.state, 1), 1);
+  const values = new Map([...used.state.keys()].map((s) => [s, columns.get(s)!.values[0]!]));
+  return { values, expected: used.result.expected, found: used.result.found };
 }
 
 /** Velocities and coordinates first, so that they become zero where they can; then inputs, time and parameters. */
@@ -69,6 +72,10 @@ function candidatesFor(system: System, symbol: Expr, now: number): number[] {
   });
 }
 
+function asColumns(state: ReadonlyMap<Expr, number>, n: number): Map<Expr, Column> {
+  return new Map([...state].map(([s, x]) => [s, { values: new Float64Array(n).fill(x) }]));
+}
+
 interface Probe {
   readonly differs: boolean;
   readonly relative: number;
@@ -84,10 +91,9 @@ function probe(
   assumed: readonly Expr[],
 ): Probe[] {
   const n = values.length;
-  const columns = new Map<Expr, Column>();
-  for (const [s, x] of state) columns.set(s, { values: new Float64Array(n).fill(x) });
+  const columns = asColumns(state, n);
   if (symbol) columns.set(symbol, { values: Float64Array.from(values) });
-  const registers = prober.run(columns, n);
+  const { registers } = prober.run(columns, n);
   return values.map((_, k) => {
     const c = prober.compare(registers, 0, k);
     const allowed = assumed.every((a) => registers.value(a, k) === 1);

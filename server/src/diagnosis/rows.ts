@@ -34,8 +34,8 @@ export function findRowPattern(derived: Derived, claims: readonly ClaimResult[],
     new Motion(derived),
     known.map((c) => [{ found: c.found!, expected: c.expected! }]),
   );
-  const columns = new Sampler(system).draw([...new Set([...prober.symbols, ...system.parameters.map((p) => p.symbol)])], STATES);
-  const registers = prober.run(columns, STATES);
+  const drawn = new Sampler(system).draw([...new Set([...prober.symbols, ...system.parameters.map((p) => p.symbol)])], STATES);
+  const { registers, columns } = prober.run(drawn, STATES);
   const values = known.map((_, k) => Array.from({ length: STATES }, (_, s) => prober.compare(registers, k, s)));
   const votes = values[0]!.map((_, s) => s).filter((s) => values[0]![s]!.votes);
   if (votes.length < FEWEST) return undefined;

@@ -45,6 +45,8 @@ export type Role =
   | 'parameter'
   | 'input'
   | 'time'
+  /** Force of a constraint, solved for together with the accelerations. */
+  | 'multiplier'
   /** Something the code reads that no declaration gives a meaning; a claim that depends on one is unread. */
   | 'free'
   /** Internal variables of an analysis (expansion parameter, unknown of a search). */

@@ -4,6 +4,7 @@ import { symbolsOf } from '../expression/reach';
 import type { Block, Statement } from '../notation/tree';
 import { constantValue, declareSymbols, type Declarations } from './declare';
 import { evaluateScalar, forEachMember, type FormulaContext } from './formula';
+import { gatherConstraints } from './constraints';
 import { gatherGeometry } from './geometry';
 import { canonicalName } from './names';
 import { Scope, type FormulaError } from './scope';
@@ -12,11 +13,6 @@ import { scalar } from './value';
 
 /** Energies that the code itself defines (`defines T`), read by the caller. */
 export type CodeEnergies = ReadonlyMap<'T' | 'V' | 'L' | 'D', Expr>;
-
-const UNSUPPORTED: ReadonlyMap<Statement['kind'], string> = new Map([
-  ['constraint', 'constraints are not supported yet'],
-  ['body', 'bodies are not supported yet: use `point` statements or typed energies'],
-] as const);
 
 /** Resolves the declaration of a system. Always gives one back; what is wrong with it is among its problems. */
 export function buildSystem(block: Block, graph: Graph, energies: CodeEnergies = new Map()): System {
@@ -34,6 +30,7 @@ export function buildSystem(block: Block, graph: Graph, energies: CodeEnergies =
   const geometry = gatherGeometry(statements, declared.coordinates, context, problems, points);
   const energy = gatherEnergies(statements, context, geometry, energies);
   const Q = geometry.Q.map((terms) => graph.sum(terms));
+  const constraints = gatherConstraints(statements, declared.coordinates, context);
   gatherRanges(statements, context, declared);
   const near = gatherNear(statements, context);
 
@@ -50,6 +47,7 @@ export function buildSystem(block: Block, graph: Graph, energies: CodeEnergies =
     time: declared.time,
     ...energy,
     Q,
+    constraints,
     domains: declared.domains,
     near,
     withinLimits: statements.some((s) => s.kind === 'assume' && s.withinLimits),
@@ -64,10 +62,6 @@ export function buildSystem(block: Block, graph: Graph, energies: CodeEnergies =
 function blocker(block: Block, problems: readonly DeclarationProblem[], declared: Declarations): System['blocked'] {
   const error = problems.find((p) => p.severity === 'error');
   if (error) return { reason: `the declaration has an error: ${error.message}`, span: error.span };
-  for (const s of block.statements) {
-    const reason = UNSUPPORTED.get(s.kind);
-    if (reason) return { reason, span: s.span };
-  }
   if (declared.coordinates.length === 0) return { reason: 'no coordinates are declared', span: block.nameSpan };
   return undefined;
 }

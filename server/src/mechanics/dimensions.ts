@@ -1,4 +1,5 @@
 import { Rational } from '../expression/rational';
+import { childrenOf, FUNCTION_NAMES } from '../notation/formula';
 import { agree, dimensionOf, known, quote, uniform, UNKNOWN, type Dim, type Environment } from '../notation/inference';
 import type { Block, Formula, Statement } from '../notation/tree';
 import { Dimension, DIMENSIONS, parseUnit } from '../notation/units';
@@ -33,6 +34,8 @@ class Check implements Environment {
   private readonly declared = new Set<string>();
   private silent = false;
   timed = false;
+  /** Some declared unit has mass in it. Where none has, no energy can be in joule: the system is scaled. */
+  private massive = false;
   private energy: Dimension = DIMENSIONS.energy;
 
   constructor(private readonly block: Block) {}
@@ -63,9 +66,11 @@ class Check implements Environment {
       if (s.kind !== 'coordinates' && s.kind !== 'parameters' && s.kind !== 'inputs') continue;
       for (const item of s.items) {
         const unit = item.unit && parseUnit(item.unit.text);
-        this.names.set(item.name, unit && 'dimension' in unit ? known(unit.dimension) : UNKNOWN);
-        if (unit && 'dimension' in unit && unit.dimension.hasTime) this.timed = true;
         this.declared.add(item.name);
+        this.names.set(item.name, unit && 'dimension' in unit ? known(unit.dimension) : UNKNOWN);
+        if (!unit || !('dimension' in unit)) continue;
+        if (unit.dimension.involves('s')) this.timed = true;
+        if (unit.dimension.involves('kg')) this.massive = true;
       }
     }
     if (!this.names.has(time)) this.names.set(time, this.timed ? known(DIMENSIONS.time) : UNKNOWN);
@@ -106,7 +111,7 @@ class Check implements Environment {
     }
     const first = typed[0];
     if (!first || typed.some((d) => d.equals(DIMENSIONS.energy))) return DIMENSIONS.energy;
-    return (typed.length > 1 || whole) && typed.every((d) => d.equals(first)) ? first : DIMENSIONS.energy;
+    return (typed.length > 1 || whole || !this.massive) && typed.every((d) => d.equals(first)) ? first : DIMENSIONS.energy;
   }
 
   private statement(s: Statement): void {
@@ -121,7 +126,7 @@ class Check implements Environment {
       case 'energy':
         return s.which === 'D'
           ? this.expect(s.value, this.energy.divide(DIMENSIONS.time), 'D is half the power lost,')
-          : this.expect(s.value, this.energy, `${s.which} is an energy,`);
+          : this.expectEnergy(s);
       case 'generalized-force':
         return this.perCoordinate(s.value, s.coordinate, `Q[${quote(s.coordinate)}] is energy per ${quote(s.coordinate)},`);
       case 'torque':
@@ -176,6 +181,22 @@ class Check implements Environment {
     const dim = dimensionOf(value, this);
     if (isNumeric(value) || dim.kind !== 'is' || own.kind !== 'is' || own.dimension.equals(dim.dimension)) return;
     this.report(`\`${quote(value)}\` is ${dim.dimension.describe()}, but \`${name}\` ${own.dimension.describe()}`, value.span);
+  }
+
+  /** An energy is judged as a whole only where all of it is known; its terms are compared with one another in any case. */
+  private expectEnergy(s: Of<'energy'>): void {
+    if (this.isKnown(s.value)) this.expect(s.value, this.energy, `${s.which} is an energy,`);
+    else dimensionOf(s.value, this, this.energy);
+  }
+
+  private isKnown(f: Formula): boolean {
+    if (f.kind === 'name') {
+      const dim = this.lookup(f.name) ?? UNKNOWN;
+      return dim.kind !== 'unknown' || f.name === 'pi' || f.name === 'π' || FUNCTION_NAMES.has(f.name);
+    }
+    if (f.kind === 'index') return this.isKnown(f.object);
+    if (f.kind === 'sum') return this.isKnown(f.body);
+    return childrenOf(f).every((part) => this.isKnown(part));
   }
 
   /** Reports where a formula, or a component of it, is known and has another dimension. */

@@ -5,6 +5,7 @@ import type { Rational } from '../expression/rational';
 import type { Family, Formula } from '../notation/tree';
 import type { Span } from '../text/span';
 import { canonicalName } from './names';
+import { ROTATION_FUNCTIONS, rotationFunction } from './rotation';
 import type { FormulaError, Scope } from './scope';
 import {
   addQuantities, components, cross, determinant, dot, flatten, isMisfit, map, matrix, multiplyQuantities, rowsOf, scalar,
@@ -14,7 +15,9 @@ import {
 const FUNCTIONS: ReadonlyMap<string, FunctionName> = new Map(
   (['sin', 'cos', 'tan', 'asin', 'acos', 'atan', 'sinh', 'cosh', 'tanh', 'exp', 'log', 'abs', 'sign'] as const).map((n) => [n, n]),
 );
-const OTHER_FUNCTIONS = new Set(['sqrt', 'atan2', 'min', 'max', 'dot', 'cross', 'norm', 'transpose', 'det', 'sum']);
+const OTHER_FUNCTIONS = new Set<string>([
+  ...ROTATION_FUNCTIONS,
+  'sqrt', 'atan2', 'min', 'max', 'dot', 'cross', 'norm', 'transpose', 'det', 'sum']);
 
 export function isFunctionName(name: string): boolean {
   return FUNCTIONS.has(name) || OTHER_FUNCTIONS.has(name);
@@ -263,6 +266,10 @@ function evaluateCall(f: Formula & { kind: 'call' }, context: FormulaContext): Q
     args.push(q);
   }
   const [a, b] = args;
+  if ((ROTATION_FUNCTIONS as readonly string[]).includes(name)) {
+    const value = args.length > 0 ? rotationFunction(g, name, args) : { misfit: `\`${name}\` takes an argument` };
+    return isMisfit(value) ? fail(value.misfit) : value;
+  }
   const arity = ['atan2', 'dot', 'cross'].includes(name) ? 2 : name === 'min' || name === 'max' ? undefined : 1;
   if (!a || (arity !== undefined && args.length !== arity)) {
     return fail(`\`${name}\` takes ${arity === 2 ? 'two arguments' : 'one argument'}, not ${args.length}`);

@@ -2,6 +2,7 @@ import { gradient, timeDerivatives } from '../expression/differentiate';
 import type { Expr } from '../expression/node';
 import { Rational } from '../expression/rational';
 import type { Formula, Statement } from '../notation/tree';
+import { addBody } from './bodies';
 import { evaluate, evaluateScalar, forEachMember, type FormulaContext } from './formula';
 import type { Coordinate, DeclarationProblem } from './system';
 import { canonicalName } from './names';
@@ -16,7 +17,7 @@ export interface Contributions {
   readonly Q: Expr[][];
 }
 
-/** Points first: their names may be used as ends of springs and dampers. */
+/** Points and bodies first: their names may be used as ends of springs and dampers. */
 export function gatherGeometry(
   statements: readonly Statement[],
   coordinates: readonly Coordinate[],
@@ -31,7 +32,10 @@ export function gatherGeometry(
     if (s.kind === 'point') forEachMember(s.over ?? [], context, (c) => addPoint(s, c, field, out, problems, points));
   }
   for (const s of statements) {
-    if (s.kind === 'point') continue;
+    if (s.kind === 'body') forEachMember(s.over ?? [], context, (c) => addBody(s, c, field, out, points));
+  }
+  for (const s of statements) {
+    if (s.kind === 'point' || s.kind === 'body') continue;
     forEachMember(s.over ?? [], context, (c) => addElement(s, c, coordinates, out));
   }
   return out;

@@ -58,6 +58,36 @@ export class Derived {
     });
   }
 
+  /** What the equations are solved for: the accelerations, then the multipliers of the constraints. */
+  get unknowns(): readonly Expr[] {
+    const { coordinates, constraints } = this.system;
+    return [...coordinates.map((c) => c.acceleration), ...constraints.map((c) => c.multiplier)];
+  }
+
+  /**
+   * One equation per unknown, zero along the motion and linear in the unknowns: Lagrange's equations with the forces of the
+   * constraints, then the constraints differentiated until they hold accelerations.
+   */
+  get rows(): readonly Expr[] {
+    const { graph, constraints } = this.system;
+    if (constraints.length === 0) return this.residuals;
+    return this.once('rows', () => {
+      const forced = this.residuals.map((r, i) =>
+        graph.sum([r, ...constraints.map((c) => graph.negate(graph.multiply(c.multiplier, c.gradient[i]!)))]),
+      );
+      return [...forced, ...timeDerivatives(graph, this.velocityConstraints)];
+    });
+  }
+
+  /** The constraints as conditions on velocities. */
+  get velocityConstraints(): readonly Expr[] {
+    const { graph, constraints } = this.system;
+    return this.once('velocity constraints', () => {
+      const rates = timeDerivatives(graph, constraints.map((c) => c.expr));
+      return constraints.map((c, i) => (c.kind === 'velocity' ? c.expr : rates[i]!));
+    });
+  }
+
   /** Entries of the mass matrix d2L/dq'dq', by rows. */
   get massMatrix(): readonly Expr[] {
     const { graph, coordinates } = this.system;
@@ -78,10 +108,29 @@ export class Derived {
     return this.once('right side', () => this.atRest(this.residuals).map((e) => graph.negate(e)));
   }
 
-  /** The accelerations, by one solve node. */
+  /** The accelerations, then the multipliers, by one solve node of the bordered system. */
+  get solution(): readonly Expr[] {
+    const { graph, coordinates, constraints } = this.system;
+    return this.once('solution', () => {
+      const n = coordinates.length;
+      const k = constraints.length;
+      if (k === 0) return graph.solve(this.massMatrix, this.rightSides);
+      const matrix: Expr[] = [];
+      for (let i = 0; i < n; i++) {
+        for (let j = 0; j < n; j++) matrix.push(this.massMatrix[i * n + j]!);
+        for (const c of constraints) matrix.push(graph.negate(c.gradient[i]!));
+      }
+      for (const c of constraints) {
+        matrix.push(...c.gradient);
+        for (let j = 0; j < k; j++) matrix.push(graph.zero);
+      }
+      const rest = this.atRest(timeDerivatives(graph, this.velocityConstraints));
+      return graph.solve(matrix, [...this.rightSides, ...rest.map((e) => graph.negate(e))]);
+    });
+  }
+
   get accelerations(): readonly Expr[] {
-    const { graph } = this.system;
-    return this.once('accelerations', () => graph.solve(this.massMatrix, this.rightSides));
+    return this.solution.slice(0, this.system.coordinates.length);
   }
 
   /** dV/dq; undefined where no potential energy is declared apart from L. */

@@ -1,5 +1,6 @@
 import { derivative, timeDerivatives } from '../expression/differentiate';
 import type { Expr } from '../expression/node';
+import { printFormula } from '../notation';
 import type { Formula } from '../notation/tree';
 import type { FormulaContext } from './formula';
 import { evaluateScalar } from './formula';
@@ -53,8 +54,10 @@ function named(derived: Derived, f: Formula): Quantity | undefined {
       return vector(derived.momenta);
     case 'q':
       return vector(system.coordinates.map((c) => c.symbol));
-    default:
-      return undefined;
+    default: {
+      const constraint = system.constraints.find((c) => c.multiplierName === f.name);
+      return constraint && scalar(constraint.multiplier);
+    }
   }
 }
 
@@ -81,6 +84,13 @@ function phrase(
 ): Quantity | Misfit {
   const { system } = derived;
   const n = system.coordinates.length;
+  if (f.name === 'multiplier') {
+    const name = f.args[0] ? printFormula(f.args[0]) : undefined;
+    const found = system.constraints.filter((c) => name === undefined || c.multiplierName === name);
+    if (found.length === 1) return scalar(found[0]!.multiplier);
+    const known = system.constraints.map((c) => c.multiplierName).join(', ') || 'none';
+    return { misfit: `there is no multiplier \`${name ?? ''}\`: the constraints have ${known}` };
+  }
   const at = f.args.map((a) => coordinateIndex(derived, a, context));
   if (at.includes(undefined)) return { misfit: `\`${f.name}\` takes coordinates in its brackets` };
   const i = at[0];

@@ -33,6 +33,20 @@ export interface Coordinate extends Declared {
 }
 
 /**
+ * A constraint a = 0, of coordinates and time, or linear in the velocities. Its force enters Lagrange's equations as
+ * multiplier times da/dq (da/dq' for one of velocities).
+ */
+export interface Constraint {
+  readonly expr: Expr;
+  readonly kind: 'holonomic' | 'velocity';
+  /** da/dq or da/dq', one entry per coordinate. */
+  readonly gradient: readonly Expr[];
+  readonly multiplier: Expr;
+  readonly multiplierName: string;
+  readonly span: Span;
+}
+
+/**
  * A declaration, resolved: symbols, energies and forces as expressions. Immutable once built; all expressions are nodes of
  * `graph`, into which code is read too.
  */
@@ -53,6 +67,7 @@ export interface System {
   readonly D: Expr;
   /** Generalized forces beyond V and D, one per coordinate. */
   readonly Q: readonly Expr[];
+  readonly constraints: readonly Constraint[];
   readonly domains: ReadonlyMap<Expr, Domain>;
   /** `near q = q0, order n`: the expansion point of each coordinate named. */
   readonly near: { readonly point: ReadonlyMap<Expr, Expr>; readonly order: number } | undefined;
