@@ -2,6 +2,7 @@ import { existsSync, lstatSync, statSync } from 'node:fs';
 import { dirname } from 'node:path';
 import { absolute, shown, toSlashes } from '../host/paths';
 import { walk } from '../host/walk';
+import { ignoredAbove } from './ignored';
 import { UsageError } from './io';
 
 export interface Inputs {
@@ -37,7 +38,8 @@ export function findInputs(paths: readonly string[], base: string, handles: (fil
     if (isFolder(full)) {
       projects.add(full);
       const found = walk(full, handles);
-      for (const f of found.files) if (!isHidden(f, full) && !BUILT.test(below(f, full))) files.add(f);
+      const ignored = ignoredAbove(full);
+      for (const f of found.files) if (!isHidden(f, full) && !BUILT.test(below(f, full)) && !ignored(f)) files.add(f);
       for (const s of found.skipped) if (!isHidden(s.file, full)) skipped.set(s.file, s.reason);
     } else {
       const file = toSlashes(full);

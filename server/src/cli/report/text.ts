@@ -1,6 +1,6 @@
 import type { Finding, Problem, Report, ReportClaim, ReportRange, Witness } from '@visviva/shared';
 import pc from 'picocolors';
-import { formatNumber, formatPair } from '../../expression/print/number';
+import { formatNumber, formatPair } from '../../text/number';
 import { excerpt } from './excerpt';
 import { harmless, textWidth } from './width';
 

@@ -1,6 +1,6 @@
 import type { Graph } from '../graph';
 import type { Expr, FunctionName } from '../node';
-import { Rational } from '../rational';
+import type { Rational } from '../rational';
 import { reachable } from '../reach';
 import { shortenByIdentities } from './identities';
 import {

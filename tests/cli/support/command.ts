@@ -1,0 +1,66 @@
+import { spawnSync } from 'node:child_process';
+import { mkdirSync, mkdtempSync, realpathSync, rmSync, writeFileSync } from 'node:fs';
+import { tmpdir } from 'node:os';
+import { dirname, join } from 'node:path';
+import { fileURLToPath } from 'node:url';
+
+const command = fileURLToPath(new URL('../../../dist/visviva.mjs', import.meta.url));
+
+export interface Result {
+  readonly status: number | null;
+  readonly out: string;
+  readonly log: string;
+}
+
+/** Runs the built command as a process of its own. */
+export function visviva(folder: string, ...args: string[]): Result {
+  const r = spawnSync(process.execPath, [command, ...args], {
+    cwd: folder,
+    encoding: 'utf8',
+    env: { ...process.env, NO_COLOR: '1' },
+    maxBuffer: 1 << 26,
+  });
+  return { status: r.status, out: r.stdout, log: r.stderr };
+}
+
+/** A folder with these files, gone when the test is over. */
+export class Folder {
+  readonly path = realpathSync(mkdtempSync(join(tmpdir(), 'visviva-')));
+
+  constructor(files: Readonly<Record<string, string | Uint8Array>> = {}) {
+    for (const [name, text] of Object.entries(files)) this.write(name, text);
+  }
+
+  write(name: string, text: string | Uint8Array): void {
+    const file = join(this.path, name);
+    mkdirSync(dirname(file), { recursive: true });
+    writeFileSync(file, text);
+  }
+
+  run(...args: string[]): Result {
+    return visviva(this.path, ...args);
+  }
+
+  [Symbol.dispose](): void {
+    rmSync(this.path, { recursive: true, force: true });
+  }
+}
+
+/** A weight on a rope; `force` is what the code computes for th''. */
+export function rope(force: string, name = 'rope-weight'): string {
+  return `/**
+ * @visviva ${name}
+ * coordinates  th [rad]              from straight down, counter-clockwise
+ * parameters   m [kg] > 0, l [m] > 0, g [m/s^2] > 0
+ * point weight: mass m at (l*sin(th), -l*cos(th))
+ * gravity (0, -g)
+ * checks return = [th', th'']
+ */
+export function rates(th: number, thd: number, l: number, g: number) {
+  return [thd, ${force}];
+}
+`;
+}
+
+export const RIGHT = '-(g / l) * Math.sin(th)';
+export const WRONG = '(g / l) * Math.sin(th)';
