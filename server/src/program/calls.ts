@@ -55,6 +55,8 @@ export function evaluateCall(m: Machine, scope: Scope, e: Expression & { kind: '
       const args = argumentValues(m, scope, e.args, place);
       if (isProblem(args)) return args;
       if (f === o) return forward(m, scope, name, o, args, place);
+      const copy = args.length === 0 ? copyOf(m, o, name) : undefined;
+      if (copy) return copy;
       return callValue(m, scope, f, o, args, place, wordsOf(e.callee), e.isNew);
     });
   }
@@ -176,6 +178,14 @@ function callObject(m: Machine, scope: Scope, callee: Value & { kind: 'object' }
     if (read) return valueOf(m, read, place);
   }
   return unknownCall(m, args, place, words);
+}
+
+/** `state.clone()`: a thing of its own, with the same members to begin with. */
+function copyOf(m: Machine, object: Value, name: string): Value | undefined {
+  if (object.kind !== 'object' || (name !== 'clone' && name !== 'copy')) return undefined;
+  const data = dataOf(m, object);
+  if (data?.kind !== 'generic' || data.generic.info) return undefined;
+  return m.object({ ...data, members: new Map(data.members) });
 }
 
 function getter(m: Machine, callee: Value & { kind: 'object' }, place: Place): Value {

@@ -47,9 +47,10 @@ export function conditionOf(m: Machine, scope: Scope, e: Expression): Expr | Unr
 export function settle(m: Machine, c: Expr): Expr {
   const g = m.graph;
   if (c === g.true || c === g.false) return c;
-  for (const a of m.assumed) {
+  const negated = g.not(c);
+  for (const a of [...m.assumed, ...m.facts]) {
     if (a === c) return g.true;
-    if (g.not(a) === c || a === g.not(c)) return g.false;
+    if (a === negated) return g.false;
     const against = opposite(m, a);
     if (against === c) return g.false;
     if (against && g.not(against) === c) return g.true;
@@ -166,9 +167,29 @@ export function compare(m: Machine, op: BinaryOperator, a: Value, b: Value, plac
   const y = numeric(m, b, place);
   if (isUnread(y)) return y;
   if (x.op === 'nan' || y.op === 'nan') return result(g.false);
+  const split = splitSelect(m, x, y, (p, q) => compare(m, op, { kind: 'scalar', expr: p }, { kind: 'scalar', expr: q }, place));
+  if (split) return result(split);
   const order = constantOrder(x, y);
   if (order !== undefined) return result(op === '<' ? (order < 0 ? g.true : g.false) : order <= 0 ? g.true : g.false);
   return result(op === '<' ? g.less(x, y) : g.lessEqual(x, y));
+}
+
+/** A comparison of constants that a condition chooses between is said by the condition itself. */
+function splitSelect(m: Machine, x: Expr, y: Expr, one: (a: Expr, b: Expr) => Value): Expr | undefined {
+  const g = m.graph;
+  const [choice, other] = x.op === 'select' ? [x, y] : [y, x];
+  if (choice.op !== 'select' || other.op !== 'number' || !isChoiceOfNumbers(choice, 0)) return undefined;
+  const [c, a, b] = choice.args;
+  const p = choice === x ? one(a!, other) : one(other, a!);
+  const q = choice === x ? one(b!, other) : one(other, b!);
+  if (p.kind !== 'condition' || q.kind !== 'condition') return undefined;
+  return g.or(g.and(c!, p.expr), g.and(g.not(c!), q.expr));
+}
+
+/** True for `select` between numbers, nested a little. */
+export function isChoiceOfNumbers(e: Expr, depth: number): boolean {
+  if (e.op === 'number') return true;
+  return e.op === 'select' && depth < 8 && isChoiceOfNumbers(e.args[1]!, depth + 1) && isChoiceOfNumbers(e.args[2]!, depth + 1);
 }
 
 /** The order of constants that the graph leaves as they are, such as pi against 3. */
@@ -222,7 +243,8 @@ function equality(m: Machine, a: Value, b: Value, place: Place): Expr | Unread {
   const q = numeric(m, y, place);
   if (isUnread(q)) return q;
   if (p.op === 'nan' || q.op === 'nan') return g.false;
-  return g.equal(p, q);
+  const split = splitSelect(m, p, q, (r, s) => ({ kind: 'condition', expr: g.equal(r, s) }));
+  return split ?? g.equal(p, q);
 }
 
 function textEquality(m: Machine, text: string, thing: Value, place: Place): Expr | Unread {

@@ -1,4 +1,3 @@
-import type { SymbolData } from '../expression/node';
 import type { Place } from '../text/span';
 import type { Statement } from './form';
 import { genericAt } from './generics';
@@ -143,7 +142,5 @@ function literalMember(m: Machine, scope: Scope, place: Expression): boolean {
 }
 
 function meansState(m: Machine, name: string): boolean {
-  const meaning = m.naming.byName(name);
-  if (!meaning || 'ambiguous' in meaning || meaning.expr.op !== 'symbol') return m.naming.hasRead(name);
-  return (meaning.expr.data as SymbolData).role === 'coordinate' || m.naming.hasRead(name);
+  return m.naming.isState(name) || m.naming.hasRead(name);
 }

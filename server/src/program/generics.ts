@@ -3,6 +3,7 @@ import type { Machine } from './machine';
 import { lastName } from './paths';
 import type { Meaning } from './reading';
 import { isUnread, unread, type Generic, type GenericData, type ObjectValue, type Scalar, type Value } from './values';
+import type { Expr } from '../expression/node';
 import type { Place } from '../text/span';
 
 /** Things from outside the code, and what they mean. */
@@ -92,7 +93,9 @@ export function meaningOf(m: Machine, generic: Generic): Scalar | ReturnType<typ
   if (read?.kind === 'scalar') return { kind: 'scalar', expr: read.expr, place };
   if (read) return unread(`\`${generic.path}\` is a list by its \`reads\`, and is used as a number`, place);
   for (const path of paths) {
-    const name = lastName(path);
+    const item = familyItem(m, path);
+    if (item) return { kind: 'scalar', expr: item, place };
+    const name = throughGetters(path) ? lastName(path) : undefined;
     const expr = name === undefined ? undefined : m.naming.agree(name, path, generic.path, place);
     if (expr) return { kind: 'scalar', expr, place };
     if (m.naming.isForcedFree(generic.path)) return { kind: 'scalar', expr: freeOf(m, generic), place };
@@ -100,6 +103,24 @@ export function meaningOf(m: Machine, generic: Generic): Scalar | ReturnType<typ
   const value = fallbackOf(m, generic);
   if (value?.kind === 'scalar' && (generic.constant || m.naming.containsDeclared(value.expr))) return { ...value };
   return undefined;
+}
+
+/** `bodies[1].m`, where `m` names a family: its item of that index. */
+function familyItem(m: Machine, path: string): Expr | undefined {
+  const found = /\[(\d+)\]\.([^.[\]()]+)$/.exec(path);
+  const family = found && m.request.meanings.familyByName(found[2]!);
+  const item = family?.[Number(found![1]) - m.request.program.indexBase];
+  return item?.kind === 'scalar' ? item.expr : undefined;
+}
+
+/** A name says nothing about what a computation gave: `pos.normalized().x` is not the x of `pos`. */
+function throughGetters(path: string): boolean {
+  const calls = path.slice(0, -1).matchAll(/([\p{L}\p{N}_$#]*)\(/gu);
+  const last = path.endsWith('()') ? path.slice(0, -2) : path;
+  for (const c of calls) {
+    if (c.index + c[1]!.length < last.length && !/^get/i.test(c[1]!)) return false;
+  }
+  return true;
 }
 
 function freeOf(m: Machine, generic: Generic) {

@@ -27,6 +27,10 @@ export class Machine {
   readonly free = new Map<Expr, { readonly code: string; readonly reason: string; readonly place: Place }>();
   readonly conditions = new Map<Expr, Place>();
   readonly assumed: Expr[] = [];
+  /** Conditions that hold on the branch that is being read. */
+  readonly facts: Expr[] = [];
+  /** Why reading stopped before a function's end. */
+  cut: Unread | undefined;
   /** Conditions of `assume` by their shape, for those whose names are not known at the function's entry. */
   readonly assumedShapes = new Map<string, boolean>();
   /** Flags and kinds that `assume` settles, by path. */
@@ -186,6 +190,14 @@ export class Machine {
   isAssignedMember(name: string): boolean {
     for (const module of this.modules.values()) if (memberIsAssigned(module.program, name)) return true;
     return false;
+  }
+
+  /** Does something on a branch on which a condition holds. */
+  onBranch<T>(fact: Expr, body: () => T): T {
+    this.facts.push(fact);
+    const result = body();
+    this.facts.pop();
+    return result;
   }
 
   condition(expr: Expr, place: Place): void {

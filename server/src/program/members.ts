@@ -1,12 +1,13 @@
 import type { Place } from '../text/span';
 import { invoke } from './calls';
+import { isChoiceOfNumbers } from './conditions';
 import { findMember, instanceField, staticMember } from './classes';
 import { childOf } from './generics';
 import { runIntrinsic } from './intrinsics/table';
 import type { Machine } from './machine';
 import { withEach } from './merging';
 import { exportOf } from './modules';
-import { countOf, dataOf, describe } from './numbers';
+import { countOf, dataOf, describe, scalarOf } from './numbers';
 import type { ClassInfo, Module } from './scope';
 import { NOTHING, unread, type FunctionValue, type GenericData, type ListData, type ObjectValue, type RecordData, type Value } from './values';
 
@@ -50,7 +51,7 @@ export function readMember(m: Machine, module: Module, object: Value, key: strin
     case 'record':
       return recordMember(m, module, object, data, key, place);
     case 'generic':
-      return genericMember(m, module, object, data, key, place);
+      return genericMember(m, object, data, key, place);
   }
 }
 
@@ -114,7 +115,7 @@ function fromClass(m: Machine, info: ClassInfo, object: ObjectValue, key: string
   return found.member.kind === 'method' ? f : undefined;
 }
 
-function genericMember(m: Machine, module: Module, object: ObjectValue, data: GenericData, key: string, place: Place): Value {
+function genericMember(m: Machine, object: ObjectValue, data: GenericData, key: string, place: Place): Value {
   const written = data.members.get(key);
   if (written) return written;
   const { generic } = data;
@@ -126,7 +127,6 @@ function genericMember(m: Machine, module: Module, object: ObjectValue, data: Ge
     const field = instanceField(m, generic.info, object, key);
     return field.function ?? childOf(m, object.id, generic, key, place, field.fallback, field.constant);
   }
-  void module;
   return childOf(m, object.id, generic, key, place, undefined, generic.constant && !m.isAssignedMember(key));
 }
 
@@ -136,7 +136,21 @@ export function keyOf(m: Machine, key: Value, place: Place): string | number | u
   return countOf(m, key, place);
 }
 
-export function readElement(m: Machine, module: Module, object: Value, key: Value, place: Place): Value {
+/** An index that a condition chooses is two indices, each on its own branch. */
+function chosen(m: Machine, key: Value): Value {
+  const expr = scalarOf(m, key);
+  if (!expr || expr.op !== 'select' || !isChoiceOfNumbers(expr, 0)) return key;
+  const [condition, a, b] = expr.args;
+  return {
+    kind: 'choice',
+    condition: condition!,
+    whenTrue: chosen(m, { kind: 'scalar', expr: a! }),
+    whenFalse: chosen(m, { kind: 'scalar', expr: b! }),
+  };
+}
+
+export function readElement(m: Machine, module: Module, object: Value, given: Value, place: Place): Value {
+  const key = chosen(m, given);
   if (object.kind === 'unread') return object;
   if (key.kind === 'unread') return key;
   if (object.kind === 'choice') return withEach(m, object, place, (v) => readElement(m, module, v, key, place));
@@ -225,7 +239,8 @@ function setItem(m: Machine, object: ObjectValue, data: ListData, k: number, val
   data.items[k] = value;
 }
 
-export function writeElement(m: Machine, module: Module, object: Value, key: Value, value: Value, place: Place): void {
+export function writeElement(m: Machine, module: Module, object: Value, given: Value, value: Value, place: Place): void {
+  const key = chosen(m, given);
   if (object.kind === 'choice') {
     withEach(m, object, place, (v) => {
       writeElement(m, module, v, key, value, place);

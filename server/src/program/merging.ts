@@ -1,6 +1,7 @@
 import type { Expr } from '../expression/node';
 import type { Place } from '../text/span';
 import { childOf, numberOf } from './generics';
+import { settle } from './conditions';
 import { DEAD, type Machine } from './machine';
 import type { Store } from './store';
 import { NOTHING, isData, isUnread, unread, type Content, type Data, type Value } from './values';
@@ -157,10 +158,10 @@ export function fork(m: Machine, condition: Expr, place: Place, whenTrue: () => 
   if (condition === m.graph.false) return whenFalse();
   const base = m.store;
   m.store = base.child();
-  const a = whenTrue();
+  const a = m.onBranch(condition, whenTrue);
   const changesA = m.store.changesSince(base);
   m.store = base.child();
-  const b = whenFalse();
+  const b = m.onBranch(m.graph.not(condition), whenFalse);
   const changesB = m.store.changesSince(base);
   m.store = base;
   const merged = mergePair(m, base, condition, { changes: changesA, value: a }, { changes: changesB, value: b }, place);
@@ -172,7 +173,8 @@ export function fork(m: Machine, condition: Expr, place: Place, whenTrue: () => 
 export function withEach(m: Machine, value: Value, place: Place, use: (v: Value) => Value): Value {
   if (value.kind === 'unread') return value;
   if (value.kind !== 'choice') return use(value);
-  const { condition, whenTrue, whenFalse } = value;
+  const { whenTrue, whenFalse } = value;
+  const condition = settle(m, value.condition);
   return fork(
     m,
     condition,

@@ -1,4 +1,4 @@
-import type { Expr } from '../expression/node';
+import type { Expr, SymbolData } from '../expression/node';
 import type { Place } from '../text/span';
 import type { Machine } from './machine';
 import { lastName, memberPath, pathOf, spellings } from './paths';
@@ -69,6 +69,13 @@ export class Naming {
     }
     this.names.set(name, meaning);
     return meaning;
+  }
+
+  /** True for a name that agrees with a coordinate or a velocity. */
+  isState(name: string): boolean {
+    const meaning = this.byName(name);
+    if (!meaning || 'ambiguous' in meaning || meaning.expr.op !== 'symbol') return false;
+    return (meaning.expr.data as SymbolData).role === 'coordinate';
   }
 
   family(paths: readonly string[]): readonly Meaning[] | undefined {

@@ -109,6 +109,7 @@ function outputOf(m: Machine, scope: Scope, e: Expression): OutputValue {
   const place = m.place(scope, e.span);
   if (e.kind === 'name' && !scope.find(e.name) && !m.libraryNames(scope.frame.module.library).has(e.name)) {
     if (!m.naming.hasRead(e.name) && !m.naming.byName(e.name)) {
+      if (m.cut) return { kind: 'unread', reason: m.cut.reason, place: m.cut.place };
       const words = `there is no variable, parameter or function \`${e.name}\` here`;
       return { kind: 'unread', reason: words, place: undefined };
     }

@@ -1,7 +1,7 @@
 import type { Expr } from '../expression/node';
 import type { Place } from '../text/span';
 import { classInfo } from './classes';
-import { conditionOf, compare } from './conditions';
+import { compare, conditionOf, settle } from './conditions';
 import { evaluate } from './expressions';
 import type { Pattern, Statement } from './form';
 import { isClipGuard } from './limits';
@@ -124,6 +124,7 @@ function run(m: Machine, scope: Scope, s: Statement, place: Place): Outcome {
 
 /** A statement that can't be read may do anything: nothing after it is known. */
 function spoil(m: Machine, why: Unread): Outcome {
+  m.cut ??= why;
   return exit(m, 'return', why);
 }
 
@@ -184,7 +185,7 @@ function unknownBranch(m: Machine, scope: Scope, s: Statement & { kind: 'if' }, 
     if (before) m.spoilLocation(k, why);
   }
   // Whether the function goes on at all is not known either.
-  if (exits.length > 0) return exit(m, 'return', why);
+  if (exits.length > 0) return spoil(m, why);
   return GOES_ON;
 }
 
@@ -195,10 +196,10 @@ export function branch(m: Machine, c: Expr, conditionPlace: Place, place: Place,
   m.condition(c, conditionPlace);
   const base = m.store;
   m.store = base.child();
-  const a = whenTrue();
+  const a = m.onBranch(c, whenTrue);
   const storeA = m.store;
   m.store = base.child();
-  const b = whenFalse();
+  const b = m.onBranch(g.not(c), whenFalse);
   const storeB = m.store;
   const exits = [
     ...a.exits.map((x) => ({ ...x, guard: g.and(c, x.guard) })),
@@ -277,10 +278,10 @@ function fromCase(m: Machine, scope: Scope, s: Statement & { kind: 'switch' }, v
   const test = s.cases[at]!.test!;
   const place = m.place(scope, test.span);
   const same = compare(m, '==', value, evaluate(m, scope, test), place);
-  if (same.kind !== 'condition') return exit(m, 'return', same.kind === 'unread' ? same : unread('a case', place));
+  if (same.kind !== 'condition') return spoil(m, same.kind === 'unread' ? same : unread('a case', place));
   return branch(
     m,
-    same.expr,
+    settle(m, same.expr),
     place,
     place,
     () => bodyFrom(m, scope, s, at),

@@ -105,6 +105,8 @@ function settleMembers(m: Machine, path: string, value: Value & { kind: 'object'
     const at = memberPath(path, key);
     // A local record that is summed up into starts from its literals.
     if (isLocal && m.isAssignedMember(key) && !m.naming.hasRead(at)) continue;
+    // A local record of numbers by the names of coordinates is more likely a result than the state.
+    if (isLocal && m.naming.isState(key) && !m.naming.hasRead(at)) continue;
     const settled = settleName(m, key, at, member, (member.kind === 'scalar' && member.place) || place);
     if (settled !== member) {
       const record = m.store.writable(value.id);
