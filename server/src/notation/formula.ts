@@ -11,7 +11,7 @@ const MOST_HEIGHT = 1500;
 
 export const LEVEL = { or: 1, and: 2, not: 3, comparison: 4, sum: 5, product: 6, sign: 7, power: 8, postfix: 9 } as const;
 
-const FUNCTIONS = new Set(
+export const FUNCTION_NAMES: ReadonlySet<string> = new Set(
   ('sin cos tan asin acos atan atan2 sinh cosh tanh exp log sqrt abs sign min max dot cross norm transpose det sum floor').split(' '),
 );
 
@@ -210,7 +210,7 @@ function isCallable(node: Formula): boolean {
 }
 
 function isFunctionName(node: Formula): boolean {
-  return node.kind === 'name' && FUNCTIONS.has(node.name);
+  return node.kind === 'name' && FUNCTION_NAMES.has(node.name);
 }
 
 function isIndexable(node: Formula): boolean {

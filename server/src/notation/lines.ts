@@ -36,8 +36,10 @@ export function commentLines(text: string, comment: CommentText): CommentLine[] 
   }
   const marks = comment.lineMarks.filter((mark) => mark !== '' && (mark !== '*' || mostlyStarred(text, pieces)));
   let column = columnOf(text, start);
+  let final = pieces.length - 1;
+  while (final > 0 && text.slice(pieces[final]!.start, pieces[final]!.end).trim() === '') final--;
   return pieces.map((piece, i) => {
-    const line = strip(text, piece, i === 0, i === pieces.length - 1, marks, column);
+    const line = strip(text, piece, i === 0, i === final, marks, column);
     column = 0;
     return line;
   });

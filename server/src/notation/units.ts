@@ -38,8 +38,8 @@ export class Dimension {
     return this.exponents.every((e, i) => e.equals(o.exponents[i]!));
   }
 
-  get hasTime(): boolean {
-    return !this.exponents[BASES.indexOf('s')]!.isZero;
+  involves(base: (typeof BASES)[number]): boolean {
+    return !this.exponents[BASES.indexOf(base)]!.isZero;
   }
 
   get isNone(): boolean {
