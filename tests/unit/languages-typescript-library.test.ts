@@ -1,7 +1,7 @@
 import { describe, expect, test } from 'vitest';
 import { Graph } from '../../server/src/expression/graph';
 import type { Expr } from '../../server/src/expression/node';
-import { Rational } from '../../server/src/expression/rational';
+import type { Rational } from '../../server/src/expression/rational';
 import { INTRINSICS } from '../../server/src/program/intrinsics/table';
 import { typescriptLibrary as library } from '../../server/src/languages/typescript/library';
 

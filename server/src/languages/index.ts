@@ -22,10 +22,14 @@ export function languageOf(file: string): Language | undefined {
 }
 
 const MARK = '@visviva';
-const MARK_BYTES = Buffer.from(MARK);
 
 /** True where a text, or the bytes of a UTF-8 file, may hold a declaration: a scan that needs no parser. */
 export function mayDeclare(text: string | Uint8Array): boolean {
   if (typeof text === 'string') return text.includes(MARK);
-  return Buffer.from(text.buffer, text.byteOffset, text.byteLength).includes(MARK_BYTES);
+  for (let at = text.indexOf(MARK.charCodeAt(0)); at >= 0; at = text.indexOf(MARK.charCodeAt(0), at + 1)) {
+    let k = 1;
+    while (k < MARK.length && text[at + k] === MARK.charCodeAt(k)) k++;
+    if (k === MARK.length) return true;
+  }
+  return false;
 }
