@@ -1,10 +1,11 @@
+import { timeDerivatives } from '../expression/differentiate';
 import type { Expr, SymbolData } from '../expression/node';
 import { Rational } from '../expression/rational';
 import { symbolsOf } from '../expression/reach';
 import { evaluate, isFunctionName } from '../mechanics/formula';
 import type { Derived } from '../mechanics/lagrange';
 import { canonicalName } from '../mechanics/names';
-import { quantityContext } from '../mechanics/quantities';
+import { quantityContext, type QuantityContext } from '../mechanics/quantities';
 import type { FormulaError, Scope } from '../mechanics/scope';
 import { scalar, type Quantity } from '../mechanics/value';
 import { printFormula } from '../notation';
@@ -29,6 +30,8 @@ export interface PreparedClaim {
   /** Parts of the left side that are code, with where their request stands among the outputs. */
   readonly leaves: ReadonlyMap<Formula, number>;
   readonly increment: 1 | -1 | undefined;
+  readonly mode: QuantityContext['mode'];
+  readonly mustVanish: readonly Expr[];
 }
 
 /** Splits the claims of a block and gathers the outputs to ask the executor for. */
@@ -66,7 +69,7 @@ function prepareOne(
     return;
   }
   const before = errors.length;
-  const { target, unsupported } = readTarget(right, derived, errors);
+  const { target, unsupported, mode, mustVanish } = readTarget(right, derived, errors);
   const leaves = new Map<Formula, number>();
   const increment = claim.op === '=' ? undefined : claim.op === '+=' ? 1 : -1;
   collectLeaves(left, (leaf) => {
@@ -74,7 +77,7 @@ function prepareOne(
     outputs.push({ expression: codeExpression(leaf), ...(increment ? { increment: true } : {}) });
   });
   const outputText = printFormula(left);
-  const base = { claim, left, outputText, leaves, increment } as const;
+  const base = { claim, left, outputText, leaves, increment, mode, mustVanish } as const;
   const error = errors[before];
   if (unsupported) {
     errors.length = before;
@@ -95,28 +98,38 @@ function isListing(f: Formula): f is Formula & { kind: 'list' | 'tuple' } {
   return f.kind === 'list' || f.kind === 'tuple';
 }
 
+interface ReadTarget {
+  readonly target: Target | undefined;
+  readonly unsupported: string | undefined;
+  readonly mode: QuantityContext['mode'];
+  readonly mustVanish: readonly Expr[];
+}
+
 /** Reads the right side; a list literal is read item by item, so that every claim has its own words. */
-function readTarget(
-  f: Formula,
-  derived: Derived,
-  errors: FormulaError[],
-): { target: Target | undefined; unsupported: string | undefined } {
+function readTarget(f: Formula, derived: Derived, errors: FormulaError[]): ReadTarget {
   const { scope, coordinates } = derived.system;
   if (isListing(f)) {
     const items: Target[] = [];
+    const mustVanish: Expr[] = [];
     for (const item of f.items) {
-      const { target, unsupported } = readTarget(item, derived, errors);
-      if (!target) return { target: undefined, unsupported };
-      if (target.kind === 'many' && isFamilyName(item, scope)) items.push(...target.items);
-      else items.push(target);
+      const read = readTarget(item, derived, errors);
+      if (!read.target) return read;
+      if (read.mode !== 'value') {
+        errors.push({ code: 'syntax', message: `\`${printFormula(item)}\` is claimed by itself, not in a list`, span: item.span });
+        return { ...read, target: undefined };
+      }
+      mustVanish.push(...read.mustVanish);
+      if (read.target.kind === 'many' && isFamilyName(item, scope)) items.push(...read.target.items);
+      else items.push(read.target);
     }
-    return { target: { kind: 'many', text: printFormula(f), items }, unsupported: undefined };
+    return { target: { kind: 'many', text: printFormula(f), items }, unsupported: undefined, mode: 'value', mustVanish };
   }
   const context = quantityContext(derived, errors);
   const q = evaluate(f, context);
-  if (!q) return { target: undefined, unsupported: context.unsupported };
+  const { unsupported, mode, mustVanish } = context;
+  if (!q) return { target: undefined, unsupported, mode, mustVanish };
   const labels = f.kind === 'quantity' ? coordinates.map((c) => c.name) : undefined;
-  return { target: targetOf(q, printFormula(f), labels), unsupported: undefined };
+  return { target: targetOf(q, printFormula(f), labels), unsupported: undefined, mode, mustVanish };
 }
 
 function targetOf(q: Quantity, text: string, labels: readonly string[] | undefined): Target {
@@ -171,6 +184,12 @@ export function evaluateLeft(
   derived: Derived,
   outputs: readonly OutputValue[],
 ): OutputValue {
+  const value = leftValue(prepared, derived, outputs);
+  if (prepared.mode === 'constant') return mapOutput(value, (e) => timeDerivatives(derived.system.graph, [e])[0]!);
+  return prepared.mode === 'times velocities' ? timesVelocities(value, derived) : value;
+}
+
+function leftValue(prepared: PreparedClaim, derived: Derived, outputs: readonly OutputValue[]): OutputValue {
   const { left, leaves } = prepared;
   const single = leaves.get(left);
   if (single !== undefined) return outputs[single]!;
@@ -191,6 +210,29 @@ export function evaluateLeft(
   const place = [...leaves.values()].map((i) => outputs[i]!.place).find((p) => p !== undefined);
   if (!value) return { kind: 'unread', reason: errors[0]?.message ?? 'the left side of the claim makes no sense', place };
   return outputOf(value, place);
+}
+
+function mapOutput(o: OutputValue, f: (e: Expr) => Expr): OutputValue {
+  if (o.kind === 'scalar') return { ...o, expr: f(o.expr) };
+  return o.kind === 'list' ? { ...o, items: o.items.map((i) => mapOutput(i, f)) } : o;
+}
+
+/** C q' of a matrix the code makes; a Coriolis matrix is right when this is. */
+function timesVelocities(o: OutputValue, derived: Derived): OutputValue {
+  const problem = firstUnread(o);
+  if (problem) return problem;
+  const { graph: g, coordinates } = derived.system;
+  const unread = (reason: string): OutputValue => ({ kind: 'unread', reason, place: o.place });
+  const n = coordinates.length;
+  if (o.kind !== 'list' || o.items.length !== n) return unread(`a ${n} by ${n} matrix is needed`);
+  const items: OutputValue[] = [];
+  for (const row of o.items) {
+    const entries = row.kind === 'list' ? row.items : [row];
+    if (entries.length !== n) return unread(`a ${n} by ${n} matrix is needed`);
+    const terms = entries.map((e, j) => g.multiply((e as { expr: Expr }).expr, coordinates[j]!.velocity));
+    items.push({ kind: 'scalar', expr: g.sum(terms), place: row.place });
+  }
+  return { kind: 'list', items, place: o.place };
 }
 
 function firstUnread(o: OutputValue): (OutputValue & { kind: 'unread' }) | undefined {

@@ -33,7 +33,7 @@ export function readCodeEnergies(request: SubjectRequest): CodeEnergy[] {
       continue;
     }
     const errors: FormulaError[] = [];
-    const reads = readsBindings(block, derived.system.scope, errors);
+    const reads = readsBindings(block, derived, errors);
     const span = s.what.span;
     const reading = readSubject(request, reads, [{ expression: { kind: 'name', name: 'return', span } }]);
     const value = reading.outputs[0]!;

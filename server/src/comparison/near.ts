@@ -4,6 +4,7 @@ import { Rational } from '../expression/rational';
 import { symbolsOf } from '../expression/reach';
 import { substitute } from '../expression/substitute';
 import type { Derived } from '../mechanics/lagrange';
+import { solutionMap } from '../mechanics/quantities';
 import type { Pair } from './pair';
 
 /** Higher orders of a solved system grow fast and nobody types them. */
@@ -19,7 +20,7 @@ export function expand(derived: Derived, pairs: readonly Pair[]): Pair[][] {
   const { graph, near } = derived.system;
   if (!near) return pairs.map((p) => [p]);
   const eps = graph.symbol({ name: 'eps', role: 'auxiliary', order: 0 });
-  const motion = new Map<Expr, Expr>(derived.unknowns.map((u, i) => [u, derived.solution[i]!]));
+  const motion = solutionMap(derived);
   const flat = substitute(graph, pairs.flatMap((p) => [p.found, p.expected]), motion);
   const moved = new Map<Expr, Expr>();
   for (const s of symbolsOf(...flat)) {

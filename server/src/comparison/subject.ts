@@ -1,7 +1,8 @@
 import type { Expr } from '../expression/node';
 import { evaluate, type FormulaContext } from '../mechanics/formula';
 import type { Derived } from '../mechanics/lagrange';
-import type { FormulaError, Scope } from '../mechanics/scope';
+import { quantityContext } from '../mechanics/quantities';
+import type { FormulaError } from '../mechanics/scope';
 import type { DeclarationProblem } from '../mechanics/system';
 import type { Quantity } from '../mechanics/value';
 import { printFormula } from '../notation';
@@ -80,7 +81,7 @@ export function readClaims(request: SubjectRequest): SubjectReading {
   const errors: FormulaError[] = [];
   const outputs: OutputRequest[] = [];
   const prepared = prepareClaims(block, derived, outputs, errors);
-  const reads = readsBindings(block, system.scope, errors);
+  const reads = readsBindings(block, derived, errors);
   const problems = errors.map((e): DeclarationProblem => ({ ...e, severity: 'error' }));
   const whole = (reason: string, span: Span): SubjectReading => ({
     claims: prepared.flatMap((p) =>
@@ -115,6 +116,12 @@ export function readClaims(request: SubjectRequest): SubjectReading {
       results.push({ output: p.outputText, quantity, span: p.claim.span, decision, place: undefined, found: undefined, expected: undefined });
       continue;
     }
+    if (!isEquilibrium(request, p.mustVanish)) {
+      const reason = 'the point that `near` gives is not an equilibrium: the accelerations there are not zero';
+      const output = { output: p.outputText, quantity: printFormula(p.claim.right), span: p.claim.span };
+      results.push({ ...output, decision: unread(reason, { file, span: p.claim.span }), place: undefined, found: undefined, expected: undefined });
+      continue;
+    }
     const value = evaluateLeft(p, derived, reading.outputs);
     for (const single of pairUp(value, p.target, p.outputText, program.indexBase)) {
       const { found, output, quantity } = single;
@@ -137,6 +144,13 @@ export function readClaims(request: SubjectRequest): SubjectReading {
     }
   }
   return { claims: results, problems, ambiguities: reading.ambiguities, reading, pending };
+}
+
+function isEquilibrium(request: SubjectRequest, mustVanish: readonly Expr[]): boolean {
+  if (mustVanish.length === 0) return true;
+  const { derived, budget } = request;
+  const pairs = mustVanish.map((found) => ({ found, expected: derived.system.graph.zero }));
+  return decide({ derived, pairs, assumed: [], budget, placeOf: () => undefined }).every((d) => d.verdict === 'holds');
 }
 
 /** Reads the subject of a block; also used for energies that the code defines. */
@@ -185,7 +199,7 @@ export function readSubject(request: SubjectRequest, reads: readonly ReadsBindin
 }
 
 /** `reads CODE = FORMULA` of a block, the right sides evaluated. */
-export function readsBindings(block: Block, scope: Scope, errors: FormulaError[]): ReadsBinding[] {
+export function readsBindings(block: Block, derived: Derived, errors: FormulaError[]): ReadsBinding[] {
   const out: ReadsBinding[] = [];
   const bind = (left: Formula, right: Formula): void => {
     if ((left.kind === 'list' || left.kind === 'tuple') && (right.kind === 'list' || right.kind === 'tuple')) {
@@ -200,7 +214,7 @@ export function readsBindings(block: Block, scope: Scope, errors: FormulaError[]
       left.items.forEach((item, i) => bind(item, right.items[i]!));
       return;
     }
-    const meaning = meaningOf(right, { scope, indices: new Map(), errors });
+    const meaning = meaningOf(right, quantityContext(derived, errors));
     if (!meaning) return;
     if (left.kind === 'list' || left.kind === 'tuple') {
       if (meaning.kind === 'list' && meaning.items.length === left.items.length) {
