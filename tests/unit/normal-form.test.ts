@@ -2,7 +2,8 @@ import * as fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { Graph } from '../../server/src/expression/graph';
 import type { Expr } from '../../server/src/expression/node';
-import { normalForm, simplify, Sizes, toExpr } from '../../server/src/expression/normal-form';
+import { collected, normalForm, simplify, Sizes, toExpr } from '../../server/src/expression/normal-form';
+import { text } from '../../server/src/expression/print';
 import { build, evaluate, pointOf, recipes, Symbols } from '../support/expressions';
 
 const g = new Graph();
@@ -65,6 +66,15 @@ describe('the normal form', () => {
     same(g.divide(sum, g.subtract(g.add(M, m), g.multiply(m, g.square(cos(th))))), g.one);
     const scaled = g.add(g.multiply(g.number(2), m, l), g.multiply(g.number(2), M, l));
     same(g.divide(l, scaled), g.divide(g.number(0.5), g.add(m, M)));
+  });
+
+  it('takes terms with equal moving parts together', () => {
+    const xdd = s.coordinate("x''");
+    const mu = s.parameter('mu');
+    const e = g.add(g.multiply(M, xdd), g.multiply(m, xdd), g.multiply(mu, thd), g.multiply(m, l, sin(th)));
+    expect(text(collected(g, normalForm(g, e)!.terms))).toBe("(m + M)*x'' + mu*th' + m*l*sin(th)");
+    const quotient = g.divide(m, g.add(g.multiply(M, l), g.multiply(m, l, g.square(sin(th)))));
+    expect(text(simplify(g, quotient))).toBe('m/(l*(M + m*sin(th)^2))');
   });
 
   it('gives up on forms that would be long, and quickly', () => {

@@ -2,10 +2,12 @@ import type { Graph } from './graph';
 import type { Expr } from './node';
 import { Rational } from './rational';
 import { reachable } from './reach';
+import { collected, factored } from './normal-form/collect';
 import { Expander, polynomialExpr } from './normal-form/expand';
 import { sorted, type Monomial } from './normal-form/polynomial';
 
 export type { Factor, Monomial } from './normal-form/polynomial';
+export { collected } from './normal-form/collect';
 export { monomialExpr } from './normal-form/expand';
 
 /**
@@ -41,14 +43,21 @@ export function simplify(graph: Graph, expr: Expr, mostTerms = DEFAULT_TERMS): E
   expander.expand(expr);
   const sizes = new Sizes();
   const best = new Map<Expr, Expr>();
+  const inQuotient = new Set<Expr>();
+  for (const node of reachable([expr])) if (node.op === 'power' || node.op === 'product') node.args.forEach((a) => inQuotient.add(a));
   for (const node of reachable([expr])) {
     const rebuilt = node.args.length === 0 ? node : graph.rebuild(node, node.args.map((a) => best.get(a)!));
     if (node.op === 'solve') {
       best.set(node, rebuilt);
       continue;
     }
-    const expanded = expander.shortest(node);
-    best.set(node, sizes.of(expanded) <= sizes.of(rebuilt) ? expanded : rebuilt);
+    const candidates = [expander.shortest(node), rebuilt];
+    const form = node.op === 'sum' ? expander.polynomial(node) : undefined;
+    if (form) {
+      const terms = sorted(expander.shorten(form));
+      candidates.push(inQuotient.has(node) ? factored(graph, terms) : collected(graph, terms));
+    }
+    best.set(node, candidates.reduce((a, b) => (sizes.of(b) < sizes.of(a) ? b : a)));
   }
   return best.get(expr)!;
 }

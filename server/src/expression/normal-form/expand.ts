@@ -56,6 +56,11 @@ export class Expander {
     return this.values.get(expr);
   }
 
+  /** What a node below an expanded one came to. */
+  polynomial(node: Expr): Polynomial | undefined {
+    return this.values.get(node);
+  }
+
   /** The shortened expression of a node that was expanded; the node itself where it had too many terms. */
   shortest(node: Expr): Expr {
     let e = this.short.get(node);

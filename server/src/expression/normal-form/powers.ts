@@ -1,7 +1,19 @@
 import type { Expr, SymbolData } from '../node';
 import { Rational } from '../rational';
 import type { Expander } from './expand';
-import { atom, constant, mergeFactors, negate, sorted, type Factor, type Monomial, type Polynomial } from './polynomial';
+import { takeContent } from './content';
+import {
+  atom,
+  constant,
+  inverse,
+  mergeFactors,
+  negate,
+  sorted,
+  timesMonomial,
+  type Factor,
+  type Monomial,
+  type Polynomial,
+} from './polynomial';
 
 /**
  * A rational power of a polynomial. Whole positive powers are multiplied out where that stays short; of others, what all
@@ -18,7 +30,7 @@ export function raise(x: Expander, p: Polynomial, e: Rational): Polynomial {
   }
   const short = x.shorten(p);
   if (short.length < 2) return raise(x, short, e);
-  const { content, rest } = takeContent(x, sorted(short), e);
+  const { content, rest } = splitContent(x, sorted(short), e);
   const core = x.expression(rest);
   const outside = raiseMonomial(x, content, e);
   return outside.length === 1 ? [withFactor(outside[0]!, { base: core, exponent: e })] : outside;
@@ -66,31 +78,13 @@ function foldedPower(x: Expander, c: Rational, e: Rational): Rational | undefine
 }
 
 /** What all terms have in common and may leave a power e, and the terms without it; the first of them gets a plus. */
-function takeContent(x: Expander, p: readonly Monomial[], e: Rational): { content: Monomial; rest: Polynomial } {
-  let c = p.map((m) => m.coefficient).reduce(commonDivisor);
-  if (c.sign < 0) c = c.negate();
+function splitContent(x: Expander, p: readonly Monomial[], e: Rational): { content: Monomial; rest: Polynomial } {
+  const taken = takeContent(p, (f) => e.isInteger || isNonNegative(f.base));
+  let c = taken.coefficient;
   if (e.isInteger && p[0]!.coefficient.sign < 0) c = c.negate();
   if (!foldedPower(x, c, e)) c = Rational.ONE;
-  let shared: Factor[] = p[0]!.factors.filter((f) => e.isInteger || isNonNegative(f.base));
-  for (const m of p) {
-    shared = shared.flatMap((f) => {
-      const other = m.factors.find((g) => g.base === f.base)?.exponent ?? Rational.ZERO;
-      const exponent = other.compare(f.exponent) < 0 ? other : f.exponent;
-      return exponent.sign > 0 ? [{ base: f.base, exponent }] : [];
-    });
-  }
-  const out = shared.map((f) => ({ base: f.base, exponent: f.exponent.negate() }));
-  const rest = p.map((m) => ({ coefficient: m.coefficient.divide(c), factors: mergeFactors(m.factors, out) }));
-  return { content: { coefficient: c, factors: shared }, rest };
-}
-
-function commonDivisor(a: Rational, b: Rational): Rational {
-  return Rational.of(gcd(a.numerator, b.numerator), (a.denominator / gcd(a.denominator, b.denominator)) * b.denominator);
-}
-
-function gcd(a: bigint, b: bigint): bigint {
-  while (b !== 0n) [a, b] = [b, a % b];
-  return a < 0n ? -a : a;
+  const content = { coefficient: c, factors: taken.factors };
+  return { content, rest: p.map((m) => timesMonomial(m, inverse(content))) };
 }
 
 /** Never negative where it is defined, as far as a look at the top tells. */
