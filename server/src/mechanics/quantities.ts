@@ -8,7 +8,7 @@ import type { FormulaContext } from './formula';
 import { evaluate, evaluateScalar } from './formula';
 import type { Derived } from './lagrange';
 import type { FormulaError } from './scope';
-import { components, matrix, scalar, vector, type Misfit, type Quantity } from './value';
+import { components, map, matrix, scalar, vector, type Misfit, type Quantity } from './value';
 
 /** The right side of a claim may use what follows from the system, beside its symbols. */
 export interface QuantityContext extends FormulaContext {
@@ -80,6 +80,10 @@ function named(derived: Derived, f: Formula): Quantity | undefined {
 function canonicalDerivative(derived: Derived, top: Formula, bottom: Formula): Quantity | undefined {
   const { system } = derived;
   const g = system.graph;
+  if (top.kind === 'unary' && top.op === '-') {
+    const value = canonicalDerivative(derived, top.operand, bottom);
+    return value && map(value, (e) => g.negate(e));
+  }
   if (top.kind !== 'name' || top.name !== 'dH' || system.scope.has('dH')) return undefined;
   const { coordinates } = system;
   const velocities = coordinates.map((c) => c.velocity);
