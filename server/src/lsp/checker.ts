@@ -9,6 +9,10 @@ import { CheckQueue, type Run } from './check-queue';
 import { toDiagnostics } from './diagnostics';
 import { contentOf, lineOf, type OpenFile, type OpenFiles } from './open-files';
 
+/** A check that ran out of time is repeated once, after a pause, with so many times the time. */
+const patience = 3;
+const pause = 500;
+
 export interface CheckerContext {
   readonly connection: Connection;
   readonly service: Service;
@@ -64,11 +68,17 @@ export class Checker {
       this.tell({ uri: run.key, version, counts: nothing });
       return;
     }
-    const start = clock();
-    const budget = new Budget({ milliseconds: settings().timeLimit }, clock, stale);
+    const again = open.ranOutAt === version;
     try {
+      await service.prepare(file); // loading a parser is not the file's fault
+      const start = clock();
+      const budget = new Budget({ milliseconds: settings().timeLimit * (again ? patience : 1) }, clock, stale);
       const result = await service.check(file, budget);
       if (stale()) return;
+      if (budget.why === 'time' && !again) {
+        open.ranOutAt = version;
+        this.request(open, pause);
+      }
       open.dependsOn = result.dependsOn;
       const diagnostics = toDiagnostics(result, {
         uriOf: (name) => this.context.addresses.uriOf(name),

@@ -7,6 +7,8 @@ export interface OpenFile {
   readonly document: TextDocument;
   /** Other files that its last result was made from. */
   dependsOn: readonly string[];
+  /** The version whose check ran out of time. */
+  ranOutAt: number | undefined;
   /** What the editor shows of it now; undefined before the first result. */
   published: { readonly version: number; readonly content: string } | undefined;
 }
@@ -15,7 +17,7 @@ export class OpenFiles {
   private readonly byUri = new Map<string, OpenFile>();
 
   set(file: string, document: TextDocument): OpenFile {
-    const open: OpenFile = { file, document, dependsOn: [], published: undefined };
+    const open: OpenFile = { file, document, dependsOn: [], ranOutAt: undefined, published: undefined };
     this.byUri.set(document.uri, open);
     return open;
   }

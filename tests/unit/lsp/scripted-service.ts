@@ -5,7 +5,7 @@ import type { Budget } from '../../../server/src/text/budget';
 /**
  * A service that finds what the text tells it to, so that the wiring can be tested by itself. Words in the text: `sign`
  * is a differing claim's finding at that word, `unread` an unread one, `throw` makes the check fail, `slow` makes it take
- * 60 ms, `needs:FILE` makes the result depend on another file.
+ * 60 ms, `heavy` makes it use up 70 ms of its budget and be unread if that is too much, `needs:FILE` makes the result depend on another file.
  */
 export class ScriptedService implements Service {
   readonly texts = new Map<string, string>();
@@ -38,6 +38,11 @@ export class ScriptedService implements Service {
           break;
         }
       }
+    }
+    if (text.includes('heavy')) {
+      const start = performance.now();
+      while (performance.now() - start < 70 && budget.look());
+      if (budget.why) return { ...empty(file), claims: [claim(file, 'unread', rangeAt(text, 0, 5))] };
     }
     if (text.includes('throw')) throw new Error('the scripted failure');
     const dependsOn = [...text.matchAll(/needs:(\S+)/g)].map((match) => match[1]!);
@@ -73,6 +78,10 @@ export class ScriptedService implements Service {
   private textOf(file: string): string {
     return this.texts.get(file) ?? this.files.read(file) ?? '';
   }
+}
+
+function empty(file: string): FileResult {
+  return { file, language: 'typescript', systems: [], claims: [], problems: [], dependsOn: [] };
 }
 
 function claim(file: string, verdict: 'differs' | 'unread', range: ReportRange): ReportClaim {

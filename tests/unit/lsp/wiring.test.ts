@@ -116,6 +116,14 @@ test('keystrokes of a slow file are gathered, those of a quick one are not', asy
   expect(service.checked).toEqual(['slow', 'slow 6']);
 });
 
+test('a check that ran out of time is repeated once, with more of it', async () => {
+  await client.initialize({}, { initializationOptions: { timeLimit: 50 } });
+  open(uri, 'heavy');
+  expect((await client.diagnostics(uri)).diagnostics).toMatchObject([{ code: 'unread' }]);
+  await client.until(() => (client.shown(uri)?.diagnostics.length === 0 ? true : undefined), 'the second check');
+  expect(service.checked).toEqual(['heavy', 'heavy']);
+});
+
 test('a change in one file checks the open files that need it', async () => {
   const part = 'file:///yard/part.ts';
   await client.initialize();
