@@ -19,6 +19,6 @@ export async function openBrowser() {
     viewport: { width: 1280, height: 800 },
     args: ['--no-sandbox', '--disable-dev-shm-usage', '--host-resolver-rules=MAP * ~NOTFOUND, EXCLUDE 127.0.0.1'],
   });
-  context.setDefaultTimeout(30_000);
+  context.setDefaultTimeout(60_000);
   return { page: context.pages()[0] ?? (await context.newPage()), close: () => context.close() };
 }

@@ -10,7 +10,7 @@ import { startHost } from './host-server.mjs';
 const root = fileURLToPath(new URL('../..', import.meta.url));
 const artifacts = join(root, '.artifacts', 'editor');
 const log = join(artifacts, 'in-editor.log');
-const limit = 180_000;
+const limit = 300_000;
 
 /** @param {import('./results.mjs').Results} results */
 export async function runInEditor(results) {

@@ -160,6 +160,7 @@ export function serve(connection: Connection, createService: (files: Files) => S
     guarded('hover', null, async ({ textDocument, position }, token) => {
       const open = files.get(textDocument.uri);
       if (!open || !settings.enable || !service.handles(open.file)) return null;
+      await service.prepare(open.file);
       const hover = await service.hover(open.file, fromPosition(position), budgetFor(token));
       if (!hover) return null;
       const formats = capabilities.textDocument?.hover?.contentFormat;

@@ -151,7 +151,7 @@ async function shownBy(document: vscode.TextDocument, wanted: (text: string) => 
   }, 'the hover');
 }
 
-async function until<T>(look: () => T | Promise<T>, what: string, limit = 15_000): Promise<NonNullable<T>> {
+async function until<T>(look: () => T | Promise<T>, what: string, limit = 40_000): Promise<NonNullable<T>> {
   const end = Date.now() + limit;
   for (;;) {
     const found = await look();
