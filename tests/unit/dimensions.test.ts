@@ -74,6 +74,11 @@ describe('right', () => {
   test('no units at all', () => expect(raw('coordinates x, th', "T = x'^2 + th'", 'V = sin(x) + x^2')).toEqual([]));
 });
 
+describe('hostile', () => {
+  test('a shorthand in terms of itself', () => expect(raw('coordinates x [m]', `where ${Array(60).fill('a = [a, a]').join(', ')}`)).toEqual([]));
+  test('one level in another', () => expect(raw('coordinates x [m]', `where ${Array(5000).fill('a = [a]').join(', ')}`)).toEqual([]));
+});
+
 describe('wrong', () => {
   test.each([
     ["T = 1/2*m*x'^2 + 1/2*m*l*th'^2", "1/2*m*l*th'^2: the term `1/2*m*l*th'^2` is in N (kg m/s^2), but `1/2*m*x'^2`, which it is added to, in J (kg m^2/s^2)"],

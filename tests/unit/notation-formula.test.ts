@@ -22,6 +22,7 @@ describe('precedence', () => {
     ['(a + b)*c', '(* (+ a b) c)'],
     ['a < b and not c > d or e', '(or (and (< a b) (not (> c d))) e)'],
     ['0 < x < 2', '(and (< 0 x) (< x 2))'],
+    ['a < b < c < d', '(and (and (< a b) (< b c)) (< c d))'],
     ['a == b', '(= a b)'],
     ['a ≠ b', '(!= a b)'],
     ['a ≤ b', '(<= a b)'],

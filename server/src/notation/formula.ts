@@ -102,7 +102,8 @@ function binary(c: Cursor, op: BinaryOperator, left: Formula, right: Formula): F
   const make = (by: BinaryOperator, a: Formula, b: Formula): Formula =>
     grow(c, { kind: 'binary', op: by, left: a, right: b, span: cover(a.span, b.span) }, a, b);
   // `a < b < c` means a < b and b < c.
-  if (isOrder(op) && left.kind === 'binary' && isOrder(left.op)) return make('and', left, make(op, left.right, right));
+  const last = left.kind === 'binary' && left.op === 'and' && isOrder(op) ? left.right : left;
+  if (isOrder(op) && last.kind === 'binary' && isOrder(last.op)) return make('and', left, make(op, last.right, right));
   return make(op, left, right);
 }
 

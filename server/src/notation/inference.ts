@@ -23,6 +23,17 @@ export function known(dimension: Dimension): Dim {
   return { kind: 'is', dimension };
 }
 
+/** Vectors of more entries or levels than a model has are given up: a shorthand in terms of itself would grow without end. */
+const MOST_ENTRIES = 1000;
+const MOST_LEVELS = 4;
+
+function vector(items: readonly Dim[]): Dim {
+  const level = (d: Dim): number => (d.kind === 'vector' ? 1 + Math.max(0, ...d.items.map(level)) : 0);
+  const entries = (d: Dim): number => (d.kind === 'vector' ? d.items.reduce((n, item) => n + entries(item), 0) : 1);
+  const result: Dim = { kind: 'vector', items };
+  return items.length > MOST_ENTRIES || level(result) > MOST_LEVELS || entries(result) > MOST_ENTRIES ? UNKNOWN : result;
+}
+
 export interface Environment {
   /** False where no declared unit has time in it: time may then be scaled, and nothing is known of derivatives. */
   readonly timed: boolean;
@@ -53,7 +64,7 @@ export function dimensionOf(f: Formula, env: Environment, expected?: Dimension):
       return indexDimension(f, env);
     case 'tuple':
     case 'list':
-      return { kind: 'vector', items: f.items.map((item) => dimensionOf(item, env)) };
+      return vector(f.items.map((item) => dimensionOf(item, env)));
     case 'sum':
       return dimensionOf(f.body, env, expected);
     case 'quantity':
@@ -196,7 +207,7 @@ function callDimension(f: Formula & { kind: 'call' }, env: Environment): Dim {
   if (name === 'cross') {
     const product = multiply(uniform(first), uniform(second), (a, b) => a.multiply(b));
     const three = first.kind === 'vector' && first.items.length === 3;
-    return three ? { kind: 'vector', items: [product, product, product] } : product;
+    return three ? vector([product, product, product]) : product;
   }
   return UNKNOWN;
 }
@@ -237,8 +248,8 @@ function map(d: Dim, change: (dimension: Dimension) => Dimension): Dim {
 
 function multiply(a: Dim, b: Dim, by: (a: Dimension, b: Dimension) => Dimension): Dim {
   if (a.kind === 'vector' && b.kind === 'vector') return multiply(uniform(a), uniform(b), by);
-  if (a.kind === 'vector') return { kind: 'vector', items: a.items.map((item) => multiply(item, b, by)) };
-  if (b.kind === 'vector') return { kind: 'vector', items: b.items.map((item) => multiply(a, item, by)) };
+  if (a.kind === 'vector') return vector(a.items.map((item) => multiply(item, b, by)));
+  if (b.kind === 'vector') return vector(b.items.map((item) => multiply(a, item, by)));
   if (a.kind === 'any' || b.kind === 'any') return ANY;
   if (a.kind === 'unknown' || b.kind === 'unknown') return UNKNOWN;
   return known(by(a.dimension, b.dimension));

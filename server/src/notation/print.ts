@@ -59,7 +59,9 @@ function printBinary(op: BinaryOperator, left: Formula, right: Formula): [string
 }
 
 export function printFamilies(over: readonly Family[]): string {
-  return `over ${over.map((o) => `${o.index} in ${print(o.from, 5)}..${print(o.to, 5)}`).join(', ')}`;
+  // `...5` would read as three dots.
+  const range = (from: string, to: string): string => `${from}..${to.startsWith('.') ? ' ' : ''}${to}`;
+  return `over ${over.map((o) => `${o.index} in ${range(print(o.from, 5), print(o.to, 5))}`).join(', ')}`;
 }
 
 function printQuantity(f: Formula & { kind: 'quantity' }): [string, number] {
