@@ -23,7 +23,8 @@ export function equationsOfMotion(derived: Derived): Equation[] {
   return system.coordinates.map((coordinate, i) => {
     const force = system.Q[i]!;
     const left = g.add(derived.residuals[i]!, force);
-    return { coordinate, left: tidy(g, left), right: tidy(g, force) };
+    const ties = system.constraints.map((c) => g.multiply(c.multiplier, c.gradient[i]!));
+    return { coordinate, left: tidy(g, left), right: tidy(g, g.sum([force, ...ties])) };
   });
 }
 
@@ -34,6 +35,7 @@ export function equationsOfMotion(derived: Derived): Equation[] {
 export function solvedAccelerations(derived: Derived): readonly { coordinate: Coordinate; expr: Expr }[] | undefined {
   const { coordinates, graph: g } = derived.system;
   const n = coordinates.length;
+  if (derived.system.constraints.length > 0) return undefined;
   const M = derived.massMatrix.map((e) => tidy(g, e));
   const f = derived.rightSides.map((e) => tidy(g, e));
   const diagonal = coordinates.every((_, i) => coordinates.every((_, j) => i === j || M[i * n + j] === g.zero));
@@ -93,14 +95,22 @@ export function conserved(derived: Derived): { readonly name: string; readonly e
   const { system } = derived;
   const g = system.graph;
   const out: { name: string; expr: Expr; why: string }[] = [];
-  const free = system.coordinates.map((_, i) => derived.damping[i] === g.zero && system.Q[i] === g.zero);
+  const free = system.coordinates.map(
+    (_, i) => derived.damping[i] === g.zero && system.Q[i] === g.zero && system.constraints.every((c) => c.gradient[i] === g.zero),
+  );
+  // Constraints at rest do no work: they bind momenta, not the energy.
+  const idle = system.coordinates.every((_, i) => derived.damping[i] === g.zero && system.Q[i] === g.zero);
+  const scleronomic = symbolsOf(...system.constraints.map((c) => c.expr)).every((s) => !isMoving(s));
   system.coordinates.forEach((c, i) => {
     if (!free[i] || tidy(g, derived.coordinateForces[i]!) !== g.zero) return;
     out.push({ name: `p[${c.name}]`, expr: tidy(g, derived.momenta[i]!), why: `${c.name} does not appear in the energies` });
   });
-  const moving = symbolsOf(system.L).some((s) => ['time', 'input'].includes((s.data as SymbolData).role));
-  if (!moving && free.every(Boolean)) {
+  if (idle && scleronomic && !symbolsOf(system.L).some(isMoving)) {
     out.push({ name: 'E', expr: tidy(g, derived.energy), why: 'nothing depends on time, and no force takes energy out or puts it in' });
   }
   return out;
+}
+
+function isMoving(symbol: Expr): boolean {
+  return ['time', 'input'].includes((symbol.data as SymbolData).role);
 }

@@ -18,15 +18,5 @@ export function findUnused(system: System): DeclarationProblem[] {
       severity: 'warning',
     });
   }
-  const velocities = new Set(symbolsOf(system.L).filter((s) => (s.data as SymbolData).order === 1));
-  for (const c of system.coordinates) {
-    if (velocities.has(c.velocity)) continue;
-    out.push({
-      code: 'singular',
-      message: `no kinetic energy goes with \`${c.name}\`: its acceleration can't be determined from these energies`,
-      span: c.span,
-      severity: 'error',
-    });
-  }
   return out;
 }

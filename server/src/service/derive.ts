@@ -2,7 +2,8 @@ import { symbolText, type SymbolData } from '../expression/node';
 import { code, equationText, tex, texAll, text, typescript, type CodeStyle } from '../expression/print';
 import type { Expr } from '../expression/node';
 import { symbolsOf } from '../expression/reach';
-import { conserved, equationsOfMotion, solvedAccelerations } from '../mechanics/equations';
+import { findEquilibria, type Equilibrium } from '../comparison/equilibria';
+import { conserved, equationsOfMotion, solvedAccelerations, tidy } from '../mechanics/equations';
 import type { Derived } from '../mechanics/lagrange';
 import type { Budget } from '../text/budget';
 import type { Document } from '../workspace/documents';
@@ -48,9 +49,27 @@ function asText(derived: Derived): string {
     lines.push('constant along the motion');
     for (const c of constant) lines.push(`  ${c.name} = ${text(c.expr)}    ${c.why}`);
   }
-  const n = derived.system.coordinates.length;
-  lines.push(n === 1 ? '1 degree of freedom' : `${n} degrees of freedom`);
+  const equilibria = findEquilibria(derived);
+  if (equilibria.length > 0) {
+    lines.push('equilibria at rest');
+    for (const e of equilibria) lines.push(`  ${equilibriumText(derived, e)}`);
+  }
+  const { coordinates, constraints } = derived.system;
+  const n = coordinates.length - constraints.length;
+  const bound = constraints.length > 0 ? ` (${coordinates.length} coordinates, ${constraints.length} constraints)` : '';
+  lines.push(`${n === 1 ? '1 degree' : `${n} degrees`} of freedom${bound}`);
   return lines.join('\n');
+}
+
+/** `th = 0: stable, small oscillations with omega^2 = g/l` */
+export function equilibriumText(derived: Derived, e: Equilibrium): string {
+  const g = derived.system.graph;
+  const at = derived.system.coordinates.map((c, i) => `${c.name} = ${text(e.point[i]!)}`).join(', ');
+  const head = `${at}: ${e.stability}`;
+  if (!e.squaredFrequency) return head;
+  if (e.stability === 'stable') return `${head}, small oscillations with omega^2 = ${text(e.squaredFrequency)}`;
+  if (e.stability === 'unstable') return `${head}, leaves with rate^2 = ${text(tidy(g, g.negate(e.squaredFrequency)))}`;
+  return `${head}, omega^2 = ${text(e.squaredFrequency)}`;
 }
 
 function asTex(derived: Derived): string {

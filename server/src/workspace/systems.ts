@@ -1,4 +1,5 @@
 import { asCodeEnergies, readCodeEnergies } from '../comparison/code-energies';
+import { checkDeclaration } from '../comparison/declaration';
 import { Spellings } from '../comparison/spellings';
 import { Graph } from '../expression/graph';
 import { buildSystem } from '../mechanics/build';
@@ -103,12 +104,13 @@ export class Systems {
         system = { ...system, blocked: { reason: extra[0]!.message, span: extra[0]!.span } };
       }
     }
+    const derived = new Derived(system);
     return {
       file: document.file,
       block,
-      derived: new Derived(system),
+      derived,
       spellings: new Spellings(system),
-      problems: [...system.problems, ...extra],
+      problems: [...system.problems, ...extra, ...checkDeclaration(derived)],
       files,
     };
   }

@@ -1,0 +1,52 @@
+import { describe, expect, test } from 'vitest';
+import { checkDeclaration } from '../../server/src/comparison/declaration';
+import { findEquilibria } from '../../server/src/comparison/equilibria';
+import { text } from '../../server/src/expression/print';
+import { conserved } from '../../server/src/mechanics/equations';
+import { Derived } from '../../server/src/mechanics/lagrange';
+import { systemOf } from '../support/decide-formulas';
+
+const codes = (declaration: string) => checkDeclaration(new Derived(systemOf(declaration))).map((p) => p.code);
+const PENDULUM = `coordinates th [rad]
+parameters m, l, g > 0
+point bob: mass m at (l*sin(th), -l*cos(th))
+gravity (0, -g)`;
+
+describe('a declaration by itself', () => {
+  test.each([
+    [PENDULUM, []],
+    ["coordinates x, y\nparameters m > 0\nT = 1/2*m*x'^2", ['singular']],
+    ["coordinates x, y\nparameters m > 0\nT = 1/2*m*(x' + y')^2", ['singular']],
+    ["coordinates x\nparameters m > 0\nT = -1/2*m*x'^2", ['not-quadratic']],
+    ["coordinates x\nparameters m > 0\nT = 1/2*m*x'^3", ['not-quadratic']],
+    ["coordinates x\nparameters m > 0\nT = 1/2*m*x'", ['singular', 'not-quadratic']],
+    ["coordinates x\ninputs u\nparameters m > 0\nT = 1/2*m*(x' + u')^2", []],
+    ["coordinates x, y\nparameters m > 0, l > 0\nT = 1/2*m*(x'^2 + y'^2)\nconstraint x^2 + y^2 = l^2\nconstraint 2*x^2 + 2*y^2 = 2*l^2", ['singular']],
+    ["coordinates x, y\nparameters m > 0, l > 0\nT = 1/2*m*(x'^2 + y'^2)\nconstraint x^2 + y^2 = -l^2", ['inconsistent']],
+  ])('%s: %j', (declaration, expected) => expect(codes(declaration)).toEqual(expected));
+});
+
+describe('what follows from a declaration', () => {
+  const equilibria = (declaration: string) =>
+    findEquilibria(new Derived(systemOf(declaration))).map((e) => `${e.point.map((p) => text(p)).join(',')} ${e.stability} ${e.squaredFrequency ? text(e.squaredFrequency) : ''}`.trim());
+
+  test('equilibria of a pendulum', () => {
+    expect(equilibria(PENDULUM)).toEqual(['0 stable g/l', 'pi unstable -g/l']);
+  });
+
+  test('a bead on a turning hoop: which of its equilibria is stable depends on the rate', () => {
+    // L. N. Hand, J. D. Finch, Analytical Mechanics, chapter 3 (bead on a rotating hoop), from memory.
+    const hoop = `coordinates th [rad]
+parameters m, R, g, w > 0
+T = 1/2*m*R^2*(th'^2 + w^2*sin(th)^2)
+V = -m*g*R*cos(th)`;
+    expect(equilibria(hoop)[0]).toMatch(/^0 depends on the parameters/);
+    expect(equilibria(hoop)[1]).toMatch(/^pi unstable/);
+  });
+
+  test('conserved quantities', () => {
+    const kepler = "coordinates r > 0, phi [rad]\nparameters m, k > 0\nT = 1/2*m*(r'^2 + r^2*phi'^2)\nV = -k/r";
+    expect(conserved(new Derived(systemOf(kepler))).map((c) => c.name)).toEqual(['p[phi]', 'E']);
+    expect(conserved(new Derived(systemOf(`${kepler}\nD = 1/2*m*r'^2`))).map((c) => c.name)).toEqual(['p[phi]']);
+  });
+});
