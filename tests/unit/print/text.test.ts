@@ -5,7 +5,8 @@ import type { Expr } from '../../../server/src/expression/node';
 import { Rational } from '../../../server/src/expression/rational';
 import { equationText, text, texts } from '../../../server/src/expression/print/text';
 import { formatNumber, formatPair, formatQuantity } from '../../../server/src/expression/print/number';
-import { Symbols } from '../../support/expressions';
+import { build, evaluate, pointOf, recipes, Symbols } from '../../support/expressions';
+import { num, parseFormula } from '../../support/formula';
 
 const g = new Graph();
 const s = new Symbols(g);
@@ -98,6 +99,29 @@ describe('numbers for people', () => {
         const [p, q] = formatPair(a, b);
         if (a !== b) expect(p).not.toBe(q);
       }),
+    );
+  });
+});
+
+describe('what is printed', () => {
+  it('means the same when it is read again', () => {
+    fc.assert(
+      fc.property(recipes, fc.integer(), (recipe, seed) => {
+        const graph = new Graph();
+        const expr = build(graph, recipe);
+        const printed = text(expr, { limit: Infinity });
+        if (/ if |solve|undefined|infinity/.test(printed)) return;
+        const at = pointOf(seed);
+        const expected = evaluate(expr, at);
+        if (!Number.isFinite(expected) || Math.abs(expected) > 1e12) return;
+        const scope = { lookup: (name: string, order: number) => (name === 'pi' ? Math.PI : at(name + "'".repeat(order))), rate: () => NaN };
+        const found = num(parseFormula(printed)(scope));
+        const moved = evaluate(expr, (x) => at(x) * (1 + 1e-12));
+        if (Math.abs(found - expected) > 1e-6 * (1 + Math.abs(expected)) + 1e3 * Math.abs(moved - expected)) {
+          expect(`${printed} = ${found}`).toBe(expected);
+        }
+      }),
+      { numRuns: 1500 },
     );
   });
 });
