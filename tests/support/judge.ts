@@ -1,4 +1,4 @@
-import { readDeclaration, type Declared, type Drawn } from './declaration';
+import { readDeclaration, statements, type Declared, type Drawn } from './declaration';
 import type { Fixture, Section } from './fixtures';
 import { num, parseFormula } from './formula';
 import { Mechanics, type Instant } from './lagrange';
@@ -14,6 +14,8 @@ export interface Judgement {
 }
 
 const STATES = 6;
+/** With kinks there are branches, and each must be met. */
+const STATES_WITH_KINKS = 24;
 /** Finite differences are good to about 1e-9; a realistic fault shows far above this. */
 const SAME = 1e-6;
 
@@ -23,6 +25,7 @@ export class Judge {
   private readonly states: { instant: Instant; expected: number[] }[] = [];
   private readonly system: Declared;
   private readonly named: readonly string[];
+  private physics: string;
 
   constructor(
     private readonly fixture: Fixture,
@@ -31,6 +34,7 @@ export class Judge {
   ) {
     const block = fixture.text.slice(fixture.text.indexOf(`@visviva`, section.start), section.end);
     const own = readDeclaration(section.name, block);
+    this.physics = statements(block).join('\n');
     this.system = own.coordinates.length > 0 ? own : this.elsewhere();
     this.claims = own.claims;
     this.named = [...own.named.keys()];
@@ -43,7 +47,9 @@ export class Judge {
       for (const match of text.matchAll(/@visviva[ \t]+(\S+)/g)) {
         if (match[1] !== name) continue;
         const found = readDeclaration(name, text.slice(match.index));
-        if (found.coordinates.length > 0) return found;
+        if (found.coordinates.length === 0) continue;
+        this.physics += statements(text.slice(match.index)).join('\n');
+        return found;
       }
     }
     throw new Error(`${this.fixture.file}: no declaration of ${name} with coordinates`);
@@ -52,7 +58,7 @@ export class Judge {
   private draw(own: Declared): void {
     const next = random(20240517);
     const mechanics = new Mechanics(this.system);
-    const kinked = /\b(abs|sign|min|max)\(/.test(this.fixture.text) ? new Mechanics(this.system, 3) : undefined;
+    const kinked = /\b(abs|sign|min|max)\(/.test(this.physics) ? new Mechanics(this.system, 3) : undefined;
     const rights = this.claims.map((c) => parseFormula(c.right));
     const pick = (s: Drawn): number => s.low + (s.high - s.low) * next();
     // Away from zero, where signs and contacts have kinks that no difference quotient survives.
@@ -63,7 +69,7 @@ export class Judge {
       }
     };
     const speed = (): number => clear(() => 4 * next() - 2);
-    while (this.states.length < STATES) {
+    while (this.states.length < (kinked ? STATES_WITH_KINKS : STATES)) {
       const at = new Map<string, readonly number[]>();
       for (const c of this.system.coordinates) at.set(c.name, [clear(() => pick(c)), speed(), 0]);
       for (const p of [...this.system.parameters, ...own.parameters.filter((o) => !at.has(o.name))]) at.set(p.name, [pick(p), 0, 0, 0]);

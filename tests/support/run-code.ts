@@ -1,3 +1,4 @@
+import { transformSync } from 'esbuild';
 import ts from 'typescript';
 import { extension } from './source-text';
 import { splitOutside } from './formula';
@@ -62,10 +63,7 @@ export function compileRun(
 }
 
 function toCommonJs(file: string, source: string): string {
-  return ts.transpileModule(source, {
-    compilerOptions: { target: ts.ScriptTarget.ES2022, module: ts.ModuleKind.CommonJS, jsx: ts.JsxEmit.React },
-    fileName: file.endsWith('x') ? 'module.tsx' : 'module.ts',
-  }).outputText;
+  return transformSync(source, { loader: file.endsWith('x') ? 'tsx' : 'ts', format: 'cjs', target: 'es2022' }).code;
 }
 
 /** What an import of a file beside the fixture gives; nothing for packages. */
