@@ -280,6 +280,13 @@ describe('bad input', () => {
     expect(program.errors[0]!.span.start).toBe(26);
   });
 
+  test('functions with an error in them are opaque, others are not', () => {
+    const text = 'function f(s) { return s. }\nfunction g(s) { return s }\nconst o = { h() { return ) }, k: (s) => s };\nfunction last() { return 1';
+    const broken = (t: string) => [...showAll(parseTypeScript('a.ts', t).body).matchAll(/‹a function with a syntax error in it› (?:=> )?(\w+)/g)].map((m) => m[1]);
+    expect(broken(text)).toEqual(['f', 'h', 'last']);
+    expect(broken('class C { f() { if (a) { return 1 } g() { return 2 } }')).toContain('f');
+  });
+
   test.each(['', '{', ')))', 'class', 'class {', '`${', 'x = <', '/*', '"', '@', 'enum', 'import', 'export {', 'a?.', '\u0000\u0001', 'for(', 'const {a', '...', 'namespace', 'new', '#', 'export default', 'switch(a){case'])(
     'never throws: %s',
     (text) => {

@@ -102,6 +102,7 @@ describe('statements', () => {
 
   test.each([
     ['async function f(m) { return m }'],
+    ['function f(m) { return m * }'],
     ['function* f(m) { return m }'],
     ['function f(m) { return m | 0 }'],
     ['function f(m) { return /a/.test(m) }'],

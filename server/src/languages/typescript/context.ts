@@ -17,6 +17,8 @@ export interface Context {
   readonly hasPrototypes: boolean;
   /** The base of the class written with prototypes whose functions are being converted. */
   base: string | undefined;
+  /** Where the syntax errors are, in ascending order. */
+  readonly errorsAt: readonly number[];
   /** Names under `exports.` or `module.exports.` that the file assigns at its top. */
   readonly exported: Set<string>;
 

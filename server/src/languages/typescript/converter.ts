@@ -18,6 +18,7 @@ export class Converter implements Context {
   constructor(
     readonly source: ts.SourceFile,
     readonly exported: Set<string>,
+    readonly errorsAt: readonly number[],
   ) {
     this.hasPrototypes = source.text.includes('.prototype');
   }

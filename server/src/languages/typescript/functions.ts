@@ -10,7 +10,7 @@ export const ANONYMOUS = '<anonymous>';
 /** A function, method or accessor; `name` is used where its syntax has none of its own. */
 export function functionNode(c: Context, node: FunctionSyntax, name?: Name): FunctionNode {
   const label = ownName(c, node) ?? name ?? anonymous(c, node);
-  const opaque = whyOpaque(node);
+  const opaque = whyOpaque(node) ?? brokenBy(c, node);
   const made: FunctionNode = {
     name: label.text,
     nameSpan: label.span,
@@ -48,6 +48,12 @@ function whyOpaque(node: FunctionSyntax): string | undefined {
   const isGenerator = 'asteriskToken' in node && node.asteriskToken !== undefined;
   if (isAsync) return isGenerator ? 'an async generator function' : 'an async function';
   return isGenerator ? 'a generator function' : undefined;
+}
+
+/** What the parser made of wrong syntax is a guess, and a guess must not be read. */
+function brokenBy(c: Context, node: FunctionSyntax): string | undefined {
+  const at = c.errorsAt.find((e) => e >= node.pos);
+  return at !== undefined && at <= node.end ? 'a function with a syntax error in it' : undefined;
 }
 
 function body(c: Context, node: FunctionSyntax): readonly Statement[] {

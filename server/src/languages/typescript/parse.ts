@@ -21,10 +21,11 @@ export function programOf(file: string, text: string, parse: (code: string) => t
   try {
     const source = parse(language === 'html' ? scriptsOnly(text) : text);
     const top = topStatements(source);
-    const converter = new Converter(source, exportedNames(top));
+    const errors = syntaxErrors(source);
+    const converter = new Converter(source, exportedNames(top), errors.map((e) => e.span.start));
     const body = converter.statements(top);
     body.push(...exportsRecord(converter, body));
-    return { language, indexBase: 0, body, comments: findComments(converter), errors: syntaxErrors(source) };
+    return { language, indexBase: 0, body, comments: findComments(converter), errors };
   } catch (error) {
     if (!(error instanceof RangeError)) throw error;
     const message = 'Brackets or blocks nest too deeply here to be read; split the expression into named parts.';

@@ -80,6 +80,8 @@ function gather(c: Context, node: ts.Expression, all: ReadonlyMap<string, Gather
   const left = bare(node.left);
   if (!ts.isPropertyAccessExpression(left)) return undefined;
   const value = bare(node.right);
+  // `F.prototype.a = F.prototype.b = ...` stays what it is, and the function with it.
+  if (ts.isBinaryExpression(value) && value.operatorToken.kind === K.EqualsToken) return undefined;
   const onPrototype = prototypeOwner(left.expression, all);
   if (onPrototype) {
     if (left.name.text === 'constructor') return onPrototype;

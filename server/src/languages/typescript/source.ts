@@ -37,11 +37,13 @@ export function parseSource(file: string, text: string): ts.SourceFile {
   return ts.createSourceFile(name, text, options, false, kind);
 }
 
-/** Syntax errors in the parser's words. */
+/** Syntax errors in the parser's words, in order of place. */
 export function syntaxErrors(source: ts.SourceFile): Program['errors'] {
   const found = (source as { readonly parseDiagnostics?: readonly ts.DiagnosticWithLocation[] }).parseDiagnostics ?? [];
-  return found.map((d) => ({
-    message: ts.flattenDiagnosticMessageText(d.messageText, ' '),
-    span: { start: d.start, end: d.start + d.length },
-  }));
+  return found
+    .map((d) => ({
+      message: ts.flattenDiagnosticMessageText(d.messageText, ' '),
+      span: { start: d.start, end: d.start + d.length },
+    }))
+    .sort((a, b) => a.span.start - b.span.start);
 }
