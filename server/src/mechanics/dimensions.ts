@@ -1,8 +1,9 @@
 import { Rational } from '../expression/rational';
-import { childrenOf, FUNCTION_NAMES } from '../notation/formula';
+import { childrenOf } from '../notation/building';
+import { FUNCTION_NAMES } from '../notation/formula';
 import { agree, dimensionOf, known, quote, uniform, UNKNOWN, type Dim, type Environment } from '../notation/inference';
 import type { Block, Formula, Statement } from '../notation/tree';
-import { Dimension, DIMENSIONS, parseUnit } from '../notation/units';
+import { type Dimension, DIMENSIONS, parseUnit } from '../notation/units';
 import type { Span } from '../text/span';
 
 export interface DimensionProblem {

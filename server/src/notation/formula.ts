@@ -1,15 +1,10 @@
 import { Rational } from '../expression/rational';
 import { cover, type Span } from '../text/span';
 import type { Cursor, Mode } from './cursor';
+import { childrenOf, grow, hole, LEVEL, MOST_DEPTH, overflow } from './building';
 import { parsePhrase } from './phrases';
 import { parseFamilies } from './family';
 import type { BinaryOperator, Formula } from './tree';
-
-/** Brackets, signs and powers may nest this deep; the trees may grow no higher than this, so that walking them is safe. */
-export const MOST_DEPTH = 600;
-const MOST_HEIGHT = 1500;
-
-export const LEVEL = { or: 1, and: 2, not: 3, comparison: 4, sum: 5, product: 6, sign: 7, power: 8, postfix: 9 } as const;
 
 export const FUNCTION_NAMES: ReadonlySet<string> = new Set(
   ('sin cos tan asin acos atan atan2 sinh cosh tanh exp log sqrt abs sign min max dot cross norm transpose det sum floor').split(' '),
@@ -38,21 +33,6 @@ const INFIX: Readonly<Record<string, Infix>> = {
   '/': { op: '/', level: LEVEL.product },
   '^': { op: '^', level: LEVEL.power },
 };
-
-const heights = new WeakMap<Formula, number>();
-
-/** Registers a node above its parts; where the tree grows too high, it is cut off with an error. */
-export function grow(c: Cursor, node: Formula, ...parts: readonly Formula[]): Formula {
-  let height = 1;
-  for (const part of parts) height = Math.max(height, 1 + (heights.get(part) ?? 1));
-  if (height > MOST_HEIGHT) {
-    if (!c.tooDeep) c.error(`this formula has more than ${MOST_HEIGHT} operations in a row: split it with \`where\``, node.span);
-    c.tooDeep = true;
-    return { kind: 'hole', span: node.span };
-  }
-  heights.set(node, height);
-  return node;
-}
 
 /** Reads a formula of this level or tighter. Where there is none it says so, and a hole stands in its place. */
 export function parseExpression(c: Cursor, level: number = LEVEL.or): Formula {
@@ -88,14 +68,6 @@ export function parseExpression(c: Cursor, level: number = LEVEL.or): Formula {
 function parseOperand(c: Cursor, level: number, after: string): Formula {
   if (startsOperand(c)) return parseExpression(c, level);
   return hole(c, `a formula is expected after \`${after}\`, before ${c.describeNext()}`);
-}
-
-/** A hole at the cursor, with its error. */
-export function hole(c: Cursor, message: string): Formula {
-  const at = c.peek();
-  c.error(message, at.kind === 'end' ? c.lastSpan : at.span);
-  const place = at.kind === 'end' ? c.lastSpan.end : at.span.start;
-  return { kind: 'hole', span: { start: place, end: place } };
 }
 
 function binary(c: Cursor, op: BinaryOperator, left: Formula, right: Formula): Formula {
@@ -159,17 +131,8 @@ function parsePrefix(c: Cursor): Formula {
   return grow(c, { kind: 'unary', op, operand, span: cover(token.span, operand.span) }, operand);
 }
 
-export function overflow(c: Cursor): Formula {
-  const place = c.peek().span;
-  if (!c.tooDeep && !c.full) c.error(`brackets and signs nest deeper than ${MOST_DEPTH}: split it with \`where\``, place);
-  c.tooDeep = true;
-  // Nothing sensible can follow: give up the rest of the statement.
-  while (!c.atEnd) c.take();
-  return { kind: 'hole', span: place };
-}
-
 function parsePostfix(c: Cursor): Formula {
-  const phrase = parsePhrase(c);
+  const phrase = parsePhrase(c, parseExpression);
   let node = phrase ?? parsePrimary(c);
   for (;;) {
     const token = c.peek();
@@ -386,7 +349,7 @@ function parseSum(c: Cursor, word: Span, open: Span): (Formula & { kind: 'sum' }
   }
   const body = parseExpression(c);
   if (c.isWord('over') || c.isWord('for')) {
-    const over = parseFamilies(c);
+    const over = parseFamilies(c, parseExpression);
     if (!c.eat(')')) {
       if (c.atEnd) c.error('this bracket is not closed: `)` is missing', open);
       else {
@@ -401,33 +364,6 @@ function parseSum(c: Cursor, word: Span, open: Span): (Formula & { kind: 'sum' }
   c.eat(',');
   const rest = parseItems(c, ')', open);
   return { kind: 'args', args: [body, ...rest.items] };
-}
-
-export function childrenOf(f: Formula): readonly Formula[] {
-  switch (f.kind) {
-    case 'prime':
-    case 'unary':
-      return [f.operand];
-    case 'binary':
-      return [f.left, f.right];
-    case 'call':
-      return [f.callee, ...f.args];
-    case 'member':
-      return [f.object];
-    case 'index':
-      return [f.object, ...f.indices];
-    case 'slice':
-      return [f.from, f.to].filter((x) => x !== undefined);
-    case 'tuple':
-    case 'list':
-      return f.items;
-    case 'sum':
-      return [f.body, ...f.over.flatMap((o) => [o.from, o.to])];
-    case 'quantity':
-      return f.args;
-    default:
-      return [];
-  }
 }
 
 function shorten(text: string): string {

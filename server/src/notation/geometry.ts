@@ -1,6 +1,6 @@
 import { PHYSICS, type Cursor } from './cursor';
-import { hole } from './formula';
-import { type Content, reading, skipLabel, withStops } from './statements';
+import { hole } from './building';
+import { type Content, reading, skipLabel, withStops } from './content';
 import type { Formula } from './tree';
 
 const BODY_PARTS: Readonly<Record<string, 'mass' | 'inertia' | 'centre' | 'angle' | 'rotation'>> = {

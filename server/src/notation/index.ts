@@ -1,5 +1,6 @@
 import { CLAIMED, CODE, Cursor, type Mode } from './cursor';
-import { hole, parseExpression } from './formula';
+import { hole } from './building';
+import { parseExpression } from './formula';
 import { findBlocks } from './scan';
 import type { Block, CommentText, Formula, NotationError } from './tree';
 

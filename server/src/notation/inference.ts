@@ -3,7 +3,7 @@ import type { Span } from '../text/span';
 import { printFormula } from './print';
 import { clip } from './tokens';
 import type { Formula } from './tree';
-import { Dimension, DIMENSIONS } from './units';
+import { type Dimension, DIMENSIONS } from './units';
 
 /**
  * What is known of a formula's dimension. `any` is a literal zero; `vector` has one entry per component; `unknown` is whatever

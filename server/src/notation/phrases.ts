@@ -1,6 +1,6 @@
 import { cover } from '../text/span';
 import type { Cursor } from './cursor';
-import { grow, hole, LEVEL, MOST_DEPTH, overflow, parseExpression } from './formula';
+import { grow, hole, LEVEL, MOST_DEPTH, overflow } from './building';
 import type { Formula, QuantityPhrase } from './tree';
 
 /** Phrases of two words; the second word decides. Proper names may be capitalised. */
@@ -18,7 +18,7 @@ const PHRASES: Readonly<Record<string, Readonly<Record<string, QuantityPhrase>>>
 const WORDS: Readonly<Record<string, QuantityPhrase>> = { bias: 'bias', residual: 'residual', constant: 'constant' };
 
 /** A quantity whose name is a phrase, if one stands at the cursor. */
-export function parsePhrase(c: Cursor): Formula | undefined {
+export function parsePhrase(c: Cursor, parse: (c: Cursor, level: number) => Formula): Formula | undefined {
   const first = c.peek();
   if (c.mode.code || first.kind !== 'name' || first.order > 0) return undefined;
   const lower = first.text.toLowerCase();
@@ -38,7 +38,7 @@ export function parsePhrase(c: Cursor): Formula | undefined {
     const arg: Formula = { kind: 'name', name: second.text, span: second.span };
     return grow(c, { kind: 'quantity', name: 'multiplier', args: [arg], span: cover(first.span, second.span) }, arg);
   }
-  if (joined && lower === 'jacobian' && second.text === 'of') return parseJacobian(c);
+  if (joined && lower === 'jacobian' && second.text === 'of') return parseJacobian(c, parse);
   if (c.mode.quantities && Object.hasOwn(WORDS, first.text)) {
     c.take();
     return { kind: 'quantity', name: WORDS[first.text]!, args: [], span: first.span };
@@ -47,18 +47,18 @@ export function parsePhrase(c: Cursor): Formula | undefined {
 }
 
 /** `jacobian of X by Y` */
-function parseJacobian(c: Cursor): Formula {
+function parseJacobian(c: Cursor, parse: (c: Cursor, level: number) => Formula): Formula {
   if (c.depth >= MOST_DEPTH) return overflow(c);
   const start = c.take().span.start;
   c.take();
   const outer = c.mode;
   c.mode = { ...outer, stops: new Set([...outer.stops, 'by']) };
   c.depth++;
-  const of = parseExpression(c, LEVEL.sum);
+  const of = parse(c, LEVEL.sum);
   c.depth--;
   c.mode = outer;
   const by = c.eatWord('by')
-    ? parseExpression(c, LEVEL.power)
+    ? parse(c, LEVEL.power)
     : hole(c, '`by` and the variables are expected here: `jacobian of X by Y`');
   return grow(c, { kind: 'quantity', name: 'jacobian', args: [of, by], span: c.from(start) }, of, by);
 }

@@ -1,27 +1,12 @@
-import { CLAIMED, CODE, Cursor, PHYSICS, type Mode } from './cursor';
+import { CLAIMED, CODE, type Cursor, PHYSICS, type Mode } from './cursor';
 import { parseFamilies } from './family';
-import { LEVEL, hole, parseExpression } from './formula';
+import { LEVEL, hole } from './building';
+import { type Content, reading, skipLabel, withStops } from './content';
+import { parseExpression } from './formula';
 import { parseBody, parseDamper, parsePoint, parseSpring } from './geometry';
 import { parseInterval, parseSymbols } from './symbols';
 import type { Claim, Equation, Formula, Statement } from './tree';
 import { ENERGY_WORDS, LONG_WORDS } from './words';
-
-type Distribute<S> = S extends unknown ? Omit<S, 'span' | 'wordSpan' | 'remark' | 'over'> : never;
-export type Content = Distribute<Statement>;
-
-export function withStops(mode: Mode, ...stops: string[]): Mode {
-  return { ...mode, stops: new Set(['over', ...stops]) };
-}
-
-/** Reads a formula in another mode, then returns to the mode before. */
-export function reading(c: Cursor, mode: Mode, level: number = LEVEL.sum): Formula {
-  const outer = c.mode;
-  c.mode = mode;
-  const formula = parseExpression(c, level);
-  c.skipRemark();
-  c.mode = outer;
-  return formula;
-}
 
 /** The statements of one group of lines: mostly one; several where commas join them (`T = ..., V = ...`). */
 export function parseStatements(c: Cursor, word?: string): Statement[] {
@@ -29,7 +14,7 @@ export function parseStatements(c: Cursor, word?: string): Statement[] {
   for (;;) {
     const first = c.take();
     const contents = parseContent(c, result.length ? first.text : (word ?? first.text));
-    const over = c.isWord('over') || c.isWord('for') ? parseFamilies(c) : undefined;
+    const over = c.isWord('over') || c.isWord('for') ? parseFamilies(c, parseExpression) : undefined;
     c.skipRemark();
     const joined = c.is(',') && headAt(c, 1);
     if (!joined) reportRest(c);
@@ -173,14 +158,6 @@ function parseGeneralizedForce(c: Cursor): Content {
     if (!c.eat(']')) c.error(`\`]\` is expected after the coordinate, not ${c.describeNext()}`, c.peek().kind === 'end' ? c.lastSpan : c.peek().span);
   } else coordinate = hole(c, 'the coordinate is expected in brackets: `Q[x] = F`');
   return { kind: 'generalized-force', coordinate, value: afterEquals(c, 'Q[...]', PHYSICS) };
-}
-
-/** `NAME:` before the parts of a force, spring or damper: allowed, and only a help to the reader. */
-export function skipLabel(c: Cursor): void {
-  if (c.peek().kind === 'name' && c.is(':', 1)) {
-    c.take();
-    c.take();
-  }
 }
 
 function parseForce(c: Cursor, word: 'force' | 'torque'): Content {

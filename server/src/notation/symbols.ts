@@ -1,5 +1,6 @@
 import type { Cursor } from './cursor';
-import { LEVEL, parseExpression } from './formula';
+import { LEVEL } from './building';
+import { parseExpression } from './formula';
 import { parseUnit } from './units';
 import type { Bound, Formula, SymbolItem, UnitText } from './tree';
 
