@@ -9,6 +9,7 @@ export const languages: readonly Language[] = [
   { id: 'typescript', extensions: ['.ts', '.mts', '.cts', '.tsx'], lineMarks: ['//'], load: typescript },
   { id: 'javascript', extensions: ['.js', '.mjs', '.cjs', '.jsx'], lineMarks: ['//'], load: typescript },
   { id: 'html', extensions: ['.html', '.htm'], lineMarks: ['//'], load: typescript },
+  { id: 'python', extensions: ['.py'], lineMarks: ['#'], load: async () => (await import('./python/language')).load() },
   { id: 'visviva', extensions: ['.visviva'], lineMarks: [], load: async () => (await import('./declarations')).core },
 ];
 

@@ -64,8 +64,8 @@ export type Expression =
   | { readonly kind: 'super'; readonly span: Span }
   | { readonly kind: 'member'; readonly object: Expression; readonly name: string; readonly nameSpan: Span; readonly optional?: boolean; readonly span: Span }
   | { readonly kind: 'index'; readonly object: Expression; readonly indices: readonly Expression[]; readonly optional?: boolean; readonly span: Span }
-  /** Only as an index. */
-  | { readonly kind: 'slice'; readonly from?: Expression; readonly to?: Expression; readonly step?: Expression; readonly span: Span }
+  /** Only as an index. `rest`: as many whole ranges as the other indices leave (Python's `...`). */
+  | { readonly kind: 'slice'; readonly from?: Expression; readonly to?: Expression; readonly step?: Expression; readonly rest?: boolean; readonly span: Span }
   | { readonly kind: 'call'; readonly callee: Expression; readonly args: readonly Argument[]; readonly isNew?: boolean; readonly optional?: boolean; readonly span: Span }
   | { readonly kind: 'unary'; readonly op: '-' | '+' | 'not' | 'bit' | 'transpose' | 'typeof'; readonly operand: Expression; readonly span: Span }
   | { readonly kind: 'binary'; readonly op: BinaryOperator; readonly left: Expression; readonly right: Expression; readonly opSpan: Span; readonly span: Span }
@@ -130,6 +130,8 @@ export interface Parameter extends PatternItem {
   readonly keywordOnly?: boolean;
   /** Python's `**kw`. */
   readonly restNamed?: boolean;
+  /** The class its type names, where the source says one. */
+  readonly type?: Expression;
 }
 
 export interface FunctionNode {
@@ -140,6 +142,8 @@ export interface FunctionNode {
   readonly body: readonly Statement[];
   /** What keeps a call from being read: `an async function`, `a generator`. */
   readonly opaque?: string;
+  /** What makes calls by its name something else than the body says: a decorator that is not known. */
+  readonly wrapped?: string;
   /** Arrow functions and nested functions of most languages see the `this` around them. */
   readonly inheritsSelf: boolean;
   /** The first parameter is the receiver (Python methods, Rust `&self`). */
@@ -189,7 +193,8 @@ export type Statement =
   | { readonly kind: 'throw'; readonly value?: Expression; readonly span: Span }
   | { readonly kind: 'try'; readonly body: readonly Statement[]; readonly handler?: { readonly parameter?: Pattern; readonly body: readonly Statement[] }; readonly finalizer: readonly Statement[]; readonly span: Span }
   | { readonly kind: 'block'; readonly body: readonly Statement[]; readonly span: Span }
-  | { readonly kind: 'import'; readonly from: string; readonly names: readonly { readonly imported: string; readonly local: string; readonly span: Span }[]; readonly namespace?: string; readonly span: Span }
+  /** `orModules`: a name may also be a file below `from` (Python packages); `all`: every name that `from` exports. */
+  | { readonly kind: 'import'; readonly from: string; readonly names: readonly { readonly imported: string; readonly local: string; readonly span: Span }[]; readonly namespace?: string; readonly orModules?: boolean; readonly all?: boolean; readonly span: Span }
   /** `export { a as b }`, `export * from './x'`, `module.exports = ...`; declarations that are exported are listed here by name too. */
   | { readonly kind: 'export'; readonly names: readonly { readonly local: string; readonly exported: string }[]; readonly from?: string; readonly all?: boolean; readonly value?: Expression; readonly span: Span }
   | { readonly kind: 'opaque'; readonly reason: string; readonly span: Span }

@@ -4,10 +4,13 @@ import type { Machine } from '../machine';
 import { withEach } from '../merging';
 import type { Module } from '../scope';
 import { unread, type Value } from '../values';
+import { ARRAY_NUMBERS } from './array-numbers';
+import { ARRAY_SHAPES } from './array-shapes';
 import { LISTS } from './lists';
 import { HIGHER_ORDER } from './higher-order';
 import { MATRICES } from './matrices';
 import { NUMBERS } from './numbers';
+import { PLAIN_LISTS } from './plain-lists';
 import { RECORDS } from './records';
 
 /** What an intrinsic is given: its receiver, or for a plain function its first argument, comes first. */
@@ -26,7 +29,7 @@ export type IntrinsicTable = Readonly<Record<string, Intrinsic>>;
 
 /** Operations on lists, records and matrices that all languages share, by name. */
 export const INTRINSICS: ReadonlyMap<string, Intrinsic> = new Map(
-  [LISTS, HIGHER_ORDER, RECORDS, MATRICES, NUMBERS].flatMap((table) => Object.entries(table)),
+  [LISTS, HIGHER_ORDER, RECORDS, MATRICES, NUMBERS, ARRAY_SHAPES, ARRAY_NUMBERS, PLAIN_LISTS].flatMap((table) => Object.entries(table)),
 );
 
 export function runIntrinsic(m: Machine, module: Module, name: string, self: Value | undefined, args: readonly ArgumentValue[], place: Place): Value {

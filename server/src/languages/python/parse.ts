@@ -1,0 +1,53 @@
+import type { Program, Statement } from '../../program/form';
+import { changingNames } from './bindings';
+import { findComments } from './comments';
+import { Converter } from './converter';
+import type { Recovered } from './recover';
+import { namedChildren, type Node } from './syntax';
+
+/** A module in program form. `comments` holds only those comments and docstrings that contain `@visviva`. */
+export function programOf(recovered: Recovered): Program {
+  const { syntax, broken, errors } = recovered;
+  const { root } = syntax;
+  const converter = new Converter(recovered.text, isPython2(recovered.text, root), broken, changingNames(recovered.text, root));
+  const body = converter.statements(root.children);
+  const known = new Set(body.flatMap(importedNames));
+  const inner = converter.innerImports.filter((s) => importedNames(s).some((n) => !known.has(n)));
+  return {
+    language: 'python',
+    indexBase: 0,
+    listConcat: true,
+    negativeIndex: true,
+    exportsAll: true,
+    body: [...inner, ...body],
+    comments: findComments(converter, syntax),
+    errors: [...errors, ...converter.errors],
+  };
+}
+
+function importedNames(s: Statement): string[] {
+  if (s.kind !== 'import') return [];
+  return [...s.names.map((n) => n.local), ...(s.namespace === undefined ? [] : [s.namespace]), ...(s.all ? [`* of ${s.from}`] : [])];
+}
+
+/** Python 2 by its first line or by a `print` statement, unless it asks for true division. */
+function isPython2(text: string, root: Node): boolean {
+  const top = namedChildren(root);
+  const asksForDivision = top.some(
+    (n) => n.type === 'future_import_statement' && /\bdivision\b/.test(text.slice(n.start, n.end)),
+  );
+  if (asksForDivision) return false;
+  if (/^#!.*\bpython2(?:\.\d+)?\b/.test(text)) return true;
+  if (/^#!.*\bpython3/.test(text)) return false;
+  return /^[ \t]*print[ \t]+["'\w]/m.test(text) && hasPrintStatement(root);
+}
+
+function hasPrintStatement(root: Node): boolean {
+  const stack: Node[] = [root];
+  for (let n = stack.pop(); n; n = stack.pop()) {
+    if (n.type === 'print_statement' || n.type === 'exec_statement') return true;
+    if (n.type === 'module' || /(?:definition|statement|block|clause)$/.test(n.type)) stack.push(...n.children);
+  }
+  return false;
+}
+
