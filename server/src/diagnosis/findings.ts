@@ -1,4 +1,7 @@
 import type { FindingCode } from '@visviva/shared';
+import type { Diagnosis } from './diagnose';
+import type { Edit } from './search/edits';
+import { faultText, repairTitle } from './messages';
 import type { ClaimResult } from '../comparison/subject';
 import type { Expr } from '../expression/node';
 import type { Rational } from '../expression/rational';
@@ -13,6 +16,7 @@ export interface RawFinding {
   readonly code: FindingCode;
   readonly message: string;
   readonly place: Place;
+  readonly repair?: { readonly title: string; readonly edits: readonly Edit[] };
 }
 
 /**
@@ -20,7 +24,7 @@ export interface RawFinding {
  * @param claims all claims of the function, for what they tell about each other
  * @param here where to point when nothing better is known: the claim itself
  */
-export function describeClaim(derived: Derived, claims: readonly ClaimResult[], index: number, here: Place): RawFinding[] {
+export function describeClaim(derived: Derived, claims: readonly ClaimResult[], index: number, here: Place, diagnosis?: Diagnosis): RawFinding[] {
   const claim = claims[index]!;
   const { system } = derived;
   const { decision } = claim;
@@ -44,6 +48,15 @@ export function describeClaim(derived: Derived, claims: readonly ClaimResult[], 
         { code, message: `${claim.quantity}: ${what}. ${numbers}${conventionText(system, claim)}`, place: where },
       ];
       if (rounded) return finish('rounded-constant', roundedText(rounded));
+      if (diagnosis && diagnosis.faults.length > 0) {
+        const repair = diagnosis.edits && { title: repairTitle(diagnosis.faults), edits: diagnosis.edits };
+        return diagnosis.faults.map((f) => ({
+          code: f.code,
+          message: `${claim.quantity}: ${faultText(f)}. ${numbers}${conventionText(system, claim)}`,
+          place: { file: here.file, span: f.span },
+          ...(repair ? { repair } : {}),
+        }));
+      }
       const pattern = findRowPattern(derived, claims, index);
       if (pattern) return finish(pattern.code, `the code ${pattern.message}`);
       return finish('differs', 'the code does not compute what the declared energies give');

@@ -1,5 +1,6 @@
 import type { Problem, ReportClaim, Witness } from '@visviva/shared';
-import { checkSubject, type ClaimResult, type SubjectResult } from '../comparison/subject';
+import { checkSubject, type ClaimResult, type SubjectRequest, type SubjectResult } from '../comparison/subject';
+import type { Diagnosis } from '../diagnosis/diagnose';
 import { describeClaim, type RawFinding } from '../diagnosis/findings';
 import { inOrder } from '../diagnosis/describe';
 import { symbolText, type SymbolData } from '../expression/node';
@@ -20,6 +21,8 @@ export interface BlockOutcome {
   readonly entry: SystemEntry | undefined;
   readonly result: SubjectResult | undefined;
   readonly problems: readonly DeclarationProblem[];
+  /** What is wrong with the code, and the repair; made for reports only. */
+  readonly diagnosis?: Diagnosis;
   /** Findings about the code itself: ambiguous names. */
   readonly ambiguities: readonly { readonly message: string; readonly place: Place }[];
 }
@@ -39,8 +42,8 @@ export async function checkDocument(project: Project, document: Document, budget
   return withUnused(document, outcomes);
 }
 
-async function checkBlock(project: Project, document: Document, placed: PlacedBlock, budget: Budget): Promise<BlockOutcome> {
-  const { block, subject } = placed;
+export async function checkBlock(project: Project, document: Document, placed: PlacedBlock, budget: Budget): Promise<BlockOutcome> {
+  const { block } = placed;
   const lookup = await project.systems.lookup(document, block, budget);
   const problem = (code: Problem['code'], message: string): BlockOutcome => ({
     placed,
@@ -61,7 +64,21 @@ async function checkBlock(project: Project, document: Document, placed: PlacedBl
   }
   const { entry } = lookup;
   await project.imports.prepare(document);
-  const result = checkSubject({
+  const result = checkSubject(subjectRequest(project, document, placed, entry, budget));
+  const own = declares(block)
+    ? [...entry.problems, ...checkDimensions(block).map((d): DeclarationProblem => ({ ...d, severity: 'warning' }))]
+    : block.errors.map((e): DeclarationProblem => ({ ...e, severity: 'error' }));
+  return { placed, entry, result, problems: [...own, ...result.problems], ambiguities: result.ambiguities };
+}
+
+export function subjectRequest(
+  project: Project,
+  document: Document,
+  { block, subject }: PlacedBlock,
+  entry: SystemEntry,
+  budget: Budget,
+): SubjectRequest {
+  return {
     block,
     derived: entry.derived,
     spellings: entry.spellings,
@@ -71,11 +88,7 @@ async function checkBlock(project: Project, document: Document, placed: PlacedBl
     subject,
     importFile: project.imports.reader(document),
     budget,
-  });
-  const own = declares(block)
-    ? [...entry.problems, ...checkDimensions(block).map((d): DeclarationProblem => ({ ...d, severity: 'warning' }))]
-    : block.errors.map((e): DeclarationProblem => ({ ...e, severity: 'error' }));
-  return { placed, entry, result, problems: [...own, ...result.problems], ambiguities: result.ambiguities };
+  };
 }
 
 /** A name counts as used when any declaration of the file uses it, so this waits for the last of them. */
@@ -128,7 +141,7 @@ function reportClaim(document: Document, outcome: BlockOutcome, index: number): 
   const { claims } = outcome.result!;
   const claim = claims[index]!;
   const here = { file, span: claim.span };
-  const findings = describeClaim(derived, claims, index, here).map((f) => reportFinding(document, f, claim));
+  const findings = describeClaim(derived, claims, index, here, outcome.diagnosis).map((f) => reportFinding(document, f, claim));
   const { decision } = claim;
   return {
     file,
@@ -148,7 +161,15 @@ function reportClaim(document: Document, outcome: BlockOutcome, index: number): 
 }
 
 function reportFinding(document: Document, f: RawFinding, claim: ClaimResult): ReportClaim['findings'][number] {
-  if (f.place.file === document.file) return { code: f.code, message: f.message, range: document.lines.range(f.place.span) };
+  if (f.place.file === document.file) {
+    const edits = f.repair?.edits.map((e) => ({ range: document.lines.range(e.span), text: e.text }));
+    return {
+      code: f.code,
+      message: f.message,
+      range: document.lines.range(f.place.span),
+      ...(edits ? { repair: { title: f.repair!.title, edits, verified: true } } : {}),
+    };
+  }
   // Text of another file: the editor shows the claim, the report names the place.
   return { code: f.code, message: f.message, range: document.lines.range(claim.span), file: document.file };
 }

@@ -5,6 +5,7 @@ import { Imports } from '../workspace/imports';
 import { Systems } from '../workspace/systems';
 import type { Files, FileResult, Service } from './api';
 import { checkDocument, fileResult, type BlockOutcome, type Project } from './check';
+import { diagnoseOutcomes } from './diagnose';
 import { deriveSystems } from './derive';
 import { hoverAt } from './hover';
 import { symbolsOf } from './symbols';
@@ -35,7 +36,8 @@ export function createService(files: Files): Service {
       if (!document) {
         return { file, language: languageOf(file)?.id ?? '', systems: [], claims: [], problems: [], dependsOn: [] };
       }
-      return fileResult(document, await checkDocument(project, document, budget));
+      const outcomes = await checkDocument(project, document, budget);
+      return fileResult(document, await diagnoseOutcomes(project, document, outcomes, budget));
     },
 
     async hover(file, position, budget) {

@@ -1,0 +1,74 @@
+import type { FindingCode } from '@visviva/shared';
+import type { Program } from '../../../program/form';
+import type { Edit } from '../edits';
+import type { Model } from '../model';
+import type { Site } from '../sites';
+import type { Evaluation } from '../tagged';
+import type { Expression } from '../../../program/form';
+
+/** An edit that might be the repair. */
+export interface Candidate {
+  readonly site: Site;
+  readonly edits: readonly Edit[];
+  readonly code: FindingCode;
+  /** Smaller is tried, and offered, first: the size of the edit and how often people make the fault. */
+  readonly cost: number;
+  /** The site's new value, by evaluation; undefined where only reading the edited text can tell. */
+  readonly values?: readonly Float64Array[];
+  /** Other places that change along, with their values. */
+  readonly also?: readonly { readonly site: Site; readonly values: readonly Float64Array[] }[];
+  /** The same for the same change at another place with the same text. */
+  readonly label: string;
+  /** Words for the message: what stands there, and what should. */
+  readonly old: string;
+  readonly new: string;
+}
+
+/** Something short the code already has a text for, with its value. */
+export interface Atom {
+  readonly text: string;
+  readonly value: Float64Array;
+  /** Position from which on it may be used. */
+  readonly from: number;
+  readonly owner: Site['owner'];
+}
+
+/** What the makers of candidates see. */
+export interface Scene {
+  readonly model: Model;
+  readonly program: Program;
+  readonly source: string;
+  readonly atoms: readonly Atom[];
+  /** Sites of the same owner, by node. */
+  siteOf(e: Expression): Site | undefined;
+  /** Values of a place by evaluation, as many as `evaluations` has. */
+  valuesOf(e: Expression, evaluations: readonly Evaluation[]): readonly Float64Array[] | undefined;
+}
+
+/** A place to make candidates for. */
+export interface Spot {
+  readonly site: Site;
+  readonly evaluations: readonly Evaluation[];
+  readonly values: readonly Float64Array[];
+  readonly text: string;
+  /** What the place needs, where that is known. */
+  readonly need: Float64Array | undefined;
+}
+
+export type Maker = (scene: Scene, spot: Spot, give: (candidate: Candidate) => void) => void;
+
+export function map1(a: readonly Float64Array[], f: (x: number) => number): Float64Array[] {
+  return a.map((column) => column.map(f));
+}
+
+export function map2(a: readonly Float64Array[], b: readonly Float64Array[], f: (x: number, y: number) => number): Float64Array[] {
+  return a.map((column, k) => column.map((x, s) => f(x, b[k]![s]!)));
+}
+
+/** Whether two columns agree, up to the rounding of a solved value. */
+export function agree(a: Float64Array, b: Float64Array, tolerance = 1e-6): boolean {
+  for (let s = 0; s < a.length; s++) {
+    if (!(Math.abs(a[s]! - b[s]!) <= tolerance * (Math.abs(a[s]!) + Math.abs(b[s]!)) + 1e-12)) return false;
+  }
+  return true;
+}

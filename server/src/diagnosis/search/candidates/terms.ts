@@ -1,0 +1,233 @@
+import { normalForm, type Monomial } from '../../../expression/normal-form';
+import { monomialExpr } from '../../../expression/normal-form';
+import { symbolsOf } from '../../../expression/reach';
+import { Tape } from '../../../expression/tape';
+import type { Expr, SymbolData } from '../../../expression/node';
+import { Binding, bindingOf, bracket, replaceSite } from '../edits';
+import { LogFit } from '../log-fit';
+import type { Model } from '../model';
+import { agree, type Maker, type Scene } from './candidate';
+import { isSum } from './operators';
+import { commonOf, isInnerFactor, writeNice } from './numbers';
+
+/** A product that may be missing: a term of the derived equations without its constant factor. */
+export interface KnownTerm {
+  readonly monomial: Monomial;
+  readonly expr: Expr;
+  readonly value: Float64Array;
+}
+
+const MOST_TERMS = 60;
+
+/** The terms of the derived equations (and of other claims), as columns. */
+export function knownTerms(model: Model, wanted: readonly Expr[]): KnownTerm[] {
+  const { system } = model.derived;
+  const { graph } = system;
+  const out = new Map<Expr, Monomial>();
+  for (const e of wanted) {
+    for (const m of normalForm(graph, e, 40)?.terms ?? []) {
+      const factors = m.factors;
+      if (factors.length === 0) continue;
+      out.set(monomialExpr(graph, { coefficient: m.coefficient.divide(m.coefficient), factors }), m);
+      if (out.size >= MOST_TERMS) break;
+    }
+  }
+  if (out.size === 0) return [];
+  const exprs = [...out.keys()];
+  const tape = new Tape(exprs);
+  const registers = tape.run((s) => {
+    const values = model.column(s);
+    return values && { values };
+  }, model.n);
+  return exprs.flatMap((expr) => {
+    const value = registers.column(expr).values;
+    return value.every(Number.isFinite) ? [{ monomial: out.get(expr)!, expr, value }] : [];
+  });
+}
+
+/** A term of the derived equations put in, or a factor that is missing or too many. */
+export function insertions(terms: readonly KnownTerm[], fit: LogFit): Maker {
+  return (scene, spot, give) => {
+    const { site, need, values, text } = spot;
+    if (!need || values.length !== 1) return;
+    const now = values[0]!;
+    const { node } = site;
+    const { source } = scene;
+    const parent = site.parent?.node;
+    const printer = new TermPrinter(scene, spot.site.span.start, spot.site.owner);
+
+    // A factor: a product of declared symbols, or something the code has a name for.
+    if (!isInnerFactor(spot) || (parent?.kind === 'binary' && parent.op === '/' && node.kind !== 'number')) {
+      const ratio = need.map((x, s) => x / now[s]!);
+      const give1 = (factor: Product, cost: number): void => {
+        const inner = bindingOf(node) < Binding.product ? bracket(text) : text;
+        const whole = factor.attach(inner);
+        if (whole === undefined) return;
+        give({
+          site,
+          edits: [replaceSite(site, source, whole, Binding.product)],
+          code: 'factor',
+          cost,
+          values: [need],
+          label: `times ${factor.label}`,
+          old: text,
+          new: whole,
+        });
+      };
+      if (ratio.every(Number.isFinite) && commonOf(ratio) === undefined) {
+        const p = fit.product(ratio);
+        if (p) {
+          const product = printer.product(p.constant, p.powers);
+          if (product) give1(product, 1.9 + 0.3 * p.powers.length + (Math.abs(p.constant - 1) > 1e-9 ? 0.6 : 0));
+        } else {
+          for (const atom of printer.atoms) {
+            for (const power of [1, -1]) {
+              const rest = ratio.map((x, s) => x / atom.value[s]! ** power);
+              const constant = commonOf(rest);
+              if (constant === undefined) {
+                continue;
+              }
+              const product = printer.withAtom(constant, atom.text, power);
+              if (product) give1(product, 2 + (Math.abs(constant - 1) > 1e-9 ? 0.6 : 0));
+            }
+          }
+        }
+      }
+    }
+    // A term: only at the top of a sum, whose parts all have the same effect.
+    if (parent?.kind === 'binary' && isSum(parent.op)) return;
+    const gap = need.map((x, s) => x - now[s]!);
+    if (!gap.some((x) => Math.abs(x) > 1e-9)) return;
+    const offer = (sign: '+' | '-', body: string, cost: number): void => {
+      const whole = `${bindingOf(node) < Binding.sum ? bracket(text) : text} ${sign} ${body}`;
+      const isZero = node.kind === 'number' && node.value.isZero;
+      give({
+        site,
+        edits: [replaceSite(site, source, isZero ? (sign === '-' ? `-${body}` : body) : whole, isZero ? Binding.product : Binding.sum)],
+        code: 'missing-term',
+        cost,
+        values: [need],
+        label: `${sign} ${body}`,
+        old: '',
+        new: `${sign} ${body}`,
+      });
+    };
+    for (const atom of printer.atoms) {
+      if (agree(gap, atom.value)) offer('+', atom.text, 1.9);
+      else if (agree(gap, atom.value.map((x) => -x))) offer('-', atom.text, 1.9);
+    }
+    for (const term of terms) {
+      const ratio = gap.map((x, s) => x / term.value[s]!);
+      if (!ratio.every(Number.isFinite)) continue;
+      const p = fit.product(ratio);
+      if (!p) continue;
+      const written = printer.term(term.monomial, p.powers, Math.abs(p.constant));
+      if (written) offer(p.constant < 0 ? '-' : '+', written.text, 2.2 + 0.1 * written.size);
+    }
+  };
+}
+
+interface Product {
+  readonly label: string;
+  attach(inner: string): string | undefined;
+}
+
+/** Writes products of symbols with the names that the code has for them at a place. */
+class TermPrinter {
+  readonly atoms: readonly { readonly text: string; readonly value: Float64Array }[];
+
+  constructor(
+    private readonly scene: Scene,
+    at: number,
+    owner: unknown,
+  ) {
+    this.atoms = scene.atoms.filter((a) => a.from <= at && (!a.owner || a.owner === owner));
+  }
+
+  /** The code's text for an expression: one whose value is the same. */
+  private textOf(e: Expr): string | undefined {
+    const { model } = this.scene;
+    let value = e.op === 'symbol' ? model.column(e) : undefined;
+    if (!value) {
+      const symbols = symbolsOf(e);
+      const tape = new Tape([e]);
+      if (symbols.some((s) => !model.column(s))) return undefined;
+      value = tape.run((s) => ({ values: model.column(s)! }), model.n).column(e).values;
+    }
+    const found = this.atoms.filter((a) => agree(a.value, value, 1e-9)).sort((a, b) => a.text.length - b.text.length)[0];
+    if (found) return found.text;
+    if (e.args.length === 1) {
+      const call = new RegExp(`((?:[\\w]+[.:]+)*)\\b(?:sin|cos|tan)\\(`).exec(this.scene.source);
+      const inner = this.textOf(e.args[0]!);
+      if (call && inner) return `${call[1]}${e.op}(${inner})`;
+    }
+    if (e.op === 'sum') {
+      const parts = e.args.map((a) => this.textOf(a));
+      if (parts.every((p) => p !== undefined)) return parts.join(' + ');
+    }
+    if (e.op === 'product' && e.args.length === 2 && e.args[0]!.op === 'number') {
+      const inner = this.textOf(e.args[1]!);
+      const c = (e.args[0]!.data as { toNumber(): number }).toNumber();
+      if (inner) return c === -1 ? `-${inner}` : writeNice(c, this.scene, undefined)?.text + ` * ${inner}`;
+    }
+    return undefined;
+  }
+
+  private factors(list: readonly { readonly base: Expr; readonly power: number }[]): { top: string[]; bottom: string[] } | undefined {
+    const top: string[] = [];
+    const bottom: string[] = [];
+    for (const { base, power } of list) {
+      const text = this.textOf(base);
+      if (text === undefined || power % 1 !== 0 || Math.abs(power) > 4) return undefined;
+      for (let k = 0; k < Math.abs(power); k++) (power > 0 ? top : bottom).push(text);
+    }
+    return { top, bottom };
+  }
+
+  product(constant: number, powers: readonly { readonly base: Expr; readonly power: number }[]): Product | undefined {
+    const f = this.factors(powers);
+    const number = Math.abs(constant - 1) < 1e-9 ? undefined : writeNice(constant, this.scene, undefined);
+    if (!f || (Math.abs(constant - 1) >= 1e-9 && !number)) return undefined;
+    return joinFactors(f.top, f.bottom, number && (number.binding < Binding.atom ? bracket(number.text) : number.text));
+  }
+
+  withAtom(constant: number, text: string, power: number): Product | undefined {
+    const number = Math.abs(constant - 1) < 1e-9 ? undefined : writeNice(constant, this.scene, undefined);
+    if (Math.abs(constant - 1) >= 1e-9 && !number) return undefined;
+    return joinFactors(power > 0 ? [text] : [], power < 0 ? [text] : [], number && (number.binding < Binding.atom ? bracket(number.text) : number.text));
+  }
+
+  term(m: Monomial, extra: readonly { readonly base: Expr; readonly power: number }[], constant: number): { text: string; size: number } | undefined {
+    const powers = new Map<Expr, number>();
+    for (const f of m.factors) powers.set(f.base, f.exponent.toNumber());
+    for (const x of extra) powers.set(x.base, (powers.get(x.base) ?? 0) + x.power);
+    const list = [...powers].filter(([, p]) => p !== 0).map(([base, power]) => ({ base, power }));
+    list.sort((a, b) => rank(a.base) - rank(b.base));
+    const f = this.factors(list);
+    if (!f) return undefined;
+    const number = Math.abs(constant - 1) < 1e-9 ? undefined : writeNice(constant, this.scene, undefined);
+    if (Math.abs(constant - 1) >= 1e-9 && !number) return undefined;
+    const top = [...(number ? [number.binding < Binding.atom ? bracket(number.text) : number.text] : []), ...f.top];
+    if (top.length === 0) top.push('1');
+    const bottom = f.bottom.length === 0 ? '' : f.bottom.length === 1 ? ` / ${f.bottom[0]}` : ` / (${f.bottom.join(' * ')})`;
+    return { text: top.join(' * ') + bottom, size: top.length + f.bottom.length };
+  }
+}
+
+function joinFactors(top: readonly string[], bottom: readonly string[], number: string | undefined): Product {
+  return {
+    label: `${number ?? ''} ${top.join('*')}/${bottom.join('*')}`,
+    attach: (inner) => {
+      const up = [...(number ? [number] : []), inner, ...top].join(' * ');
+      if (bottom.length === 0) return up;
+      return `${up} / ${bottom.length === 1 ? bottom[0] : bracket(bottom.join(' * '))}`;
+    },
+  };
+}
+
+/** Parameters, coordinates, velocities, functions: the order people write factors in. */
+function rank(e: Expr): number {
+  if (e.op !== 'symbol') return 3;
+  const { role, order } = e.data as SymbolData;
+  return role === 'parameter' ? 0 : 1 + order / 2;
+}

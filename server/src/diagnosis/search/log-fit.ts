@@ -1,0 +1,56 @@
+import type { Expr } from '../../expression/node';
+
+/** A column as a constant times small whole powers of positive quantities, found by least squares of logarithms. */
+export class LogFit {
+  private readonly rows: number[][];
+  private readonly normal: number[][] | undefined;
+
+  /** @param bases what may occur, with their columns; only those that are positive at all states are used */
+  constructor(
+    private readonly bases: readonly { readonly expr: Expr; readonly value: Float64Array }[],
+    private readonly n: number,
+  ) {
+    this.bases = bases.filter((b) => b.value.every((x) => x > 1e-9) && !b.value.every((x) => x === b.value[0])).slice(0, n - 4);
+    this.rows = Array.from({ length: n }, (_, s) => [1, ...this.bases.map((b) => Math.log(b.value[s]!))]);
+    const m = this.bases.length + 1;
+    const normal = Array.from({ length: m }, (_, i) => Array.from({ length: m }, (_, j) => this.rows.reduce((t, r) => t + r[i]! * r[j]!, 0)));
+    this.normal = invert(normal);
+  }
+
+  product(column: Float64Array): { readonly constant: number; readonly powers: readonly { readonly base: Expr; readonly power: number }[] } | undefined {
+    const sign = Math.sign(column[0]!);
+    if (!this.normal || sign === 0 || !column.every((x) => Math.sign(x) === sign && Number.isFinite(x))) return undefined;
+    const y = Array.from(column, (x) => Math.log(Math.abs(x)));
+    const right = this.rows[0]!.map((_, i) => this.rows.reduce((t, r, s) => t + r[i]! * y[s]!, 0));
+    const exponents = this.normal.map((row) => Math.round(2 * row.reduce((t, x, j) => t + x * right[j]!, 0)) / 2);
+    const powers = this.bases.map((b, i) => ({ base: b.expr, power: exponents[i + 1]! })).filter((p) => p.power !== 0);
+    if (powers.length > 4 || powers.some((p) => Math.abs(p.power) > 4)) return undefined;
+    let constant: number | undefined;
+    for (let s = 0; s < this.n; s++) {
+      let rest = column[s]!;
+      this.bases.forEach((b, i) => (rest /= b.value[s]! ** exponents[i + 1]!));
+      constant ??= rest;
+      if (!(Math.abs(rest - constant) <= 1e-6 * Math.abs(constant))) return undefined;
+    }
+    return constant === undefined ? undefined : { constant, powers };
+  }
+}
+
+function invert(matrix: readonly (readonly number[])[]): number[][] | undefined {
+  const n = matrix.length;
+  const a = matrix.map((row, i) => [...row, ...row.map((_, j) => (i === j ? 1 : 0))]);
+  for (let k = 0; k < n; k++) {
+    let p = k;
+    for (let i = k + 1; i < n; i++) if (Math.abs(a[i]![k]!) > Math.abs(a[p]![k]!)) p = i;
+    [a[k], a[p]] = [a[p]!, a[k]!];
+    const pivot = a[k]![k]!;
+    if (!(Math.abs(pivot) > 1e-9)) return undefined;
+    a[k] = a[k]!.map((x) => x / pivot);
+    for (let i = 0; i < n; i++) {
+      if (i === k) continue;
+      const f = a[i]![k]!;
+      if (f !== 0) a[i] = a[i]!.map((x, j) => x - f * a[k]![j]!);
+    }
+  }
+  return a.map((row) => row.slice(n));
+}

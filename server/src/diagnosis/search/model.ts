@@ -1,0 +1,155 @@
+import { Motion } from '../../comparison/motion';
+import { Prober } from '../../comparison/prober';
+import { Sampler } from '../../comparison/sampling';
+import type { ClaimResult } from '../../comparison/subject';
+import type { Expr } from '../../expression/node';
+import { symbolsOf } from '../../expression/reach';
+import type { Derived } from '../../mechanics/lagrange';
+import type { Site } from './sites';
+import type { Evaluation, TaggedReading } from './tagged';
+import { TrialTape } from './trial-tape';
+
+/** States every candidate is tried at, and copies of them run together. */
+export const STATES = 16;
+const BLOCKS = 4;
+const DRAWN = 64;
+const FEWEST = 8;
+/** Agreement of values computed along different ways, against the size of what is compared. */
+const CLOSE = 1e-8;
+
+/** A claim at the sampled states. */
+export interface Target {
+  readonly index: number;
+  readonly found: Expr;
+  readonly expected: Float64Array;
+  readonly base: Float64Array;
+  /** What a difference counts against, state by state. */
+  readonly scale: Float64Array;
+  readonly differs: boolean;
+}
+
+/** The function in numbers: its claims, the value at every place, and what becomes of the claims when a place changes. */
+export class Model {
+  private constructor(
+    readonly derived: Derived,
+    readonly tagged: TaggedReading,
+    readonly targets: readonly Target[],
+    readonly n: number,
+    private readonly tape: TrialTape,
+    private readonly values: TrialTape,
+    private readonly columns: ReadonlyMap<Expr, Float64Array>,
+  ) {}
+
+  static make(derived: Derived, claims: readonly ClaimResult[], tagged: TaggedReading): Model | undefined {
+    const { system } = derived;
+    const known = [...tagged.found].filter(([i]) => claims[i]!.expected && claims[i]!.found);
+    const tags = new Set([...tagged.evaluations.values()].flatMap((list) => list.map((e) => e.tag)));
+    const pairs = known.map(([i, found]) => ({ found, plain: claims[i]!.found!, expected: signedExpected(claims[i]!) }));
+    const prober = new Prober(
+      new Motion(derived),
+      pairs.map((p) => [{ found: p.plain, expected: p.expected }]),
+      tagged.reading.assumed,
+    );
+    const reads = [...tagged.evaluations.values()].flatMap((list) => list.map((e) => e.read));
+    const wanted = new Set<Expr>([...prober.symbols, ...system.parameters.map((p) => p.symbol)]);
+    const known2 = system.coordinates.flatMap((c) => [c.symbol, c.velocity]);
+    for (const s of [...known2, ...system.inputs.map((u) => u.symbol)]) wanted.add(s);
+    for (const s of symbolsOf(...reads, ...tagged.names.map((x) => x.expr))) if (!tags.has(s) && isDrawn(s)) wanted.add(s);
+    const drawn = new Sampler(system).draw([...wanted], DRAWN);
+    const { registers, columns } = prober.run(drawn, DRAWN);
+    const good: number[] = [];
+    for (let s = 0; s < DRAWN && good.length < STATES; s++) {
+      if (!tagged.reading.assumed.every((a) => registers.value(a, s) === 1)) continue;
+      if (pairs.every((_, k) => prober.compare(registers, k, s).votes)) good.push(s);
+    }
+    if (good.length < FEWEST) return undefined;
+    const n = good.length;
+    const state = new Map<Expr, Float64Array>();
+    for (const [symbol, c] of columns) state.set(symbol, Float64Array.from(good, (s) => c.values[s]!));
+    // Accelerations and multipliers, where the code or the claims are about them.
+    for (const symbol of prober.tape.symbols) {
+      if (!state.has(symbol)) state.set(symbol, Float64Array.from(good, (s) => registers.value(symbol, s)));
+    }
+    const wide = new Map<Expr, Float64Array>();
+    for (const [symbol, values] of state) {
+      const w = new Float64Array(n * BLOCKS);
+      for (let b = 0; b < BLOCKS; b++) w.set(values, b * n);
+      wide.set(symbol, w);
+    }
+    const tape = new TrialTape(pairs.map((p) => p.found), n * BLOCKS, (s) => wide.get(s));
+    const values = new TrialTape([...reads, ...tagged.names.map((x) => x.expr)], n, (s) => state.get(s));
+    const targets: Target[] = [];
+    for (let k = 0; k < pairs.length; k++) {
+      const expected = Float64Array.from(good, (s) => registers.value(pairs[k]!.expected, s));
+      const base = tape.baseOf(pairs[k]!.found).slice(0, n);
+      const plain = Float64Array.from(good, (s) => registers.value(pairs[k]!.plain, s));
+      const scale = expected.map((x, s) => Math.max(Math.abs(x), Math.abs(plain[s]!), 1e-3));
+      // With tags the same must have been read.
+      if (!base.every((x, s) => Math.abs(x - plain[s]!) <= CLOSE * scale[s]!)) return undefined;
+      const differs = !expected.every((x, s) => Math.abs(x - plain[s]!) <= CLOSE * scale[s]!);
+      targets.push({ index: known[k]![0], found: pairs[k]!.found, expected, base, scale, differs });
+    }
+    return new Model(derived, tagged, targets, n, tape, values, state);
+  }
+
+  /** Evaluations of a place that some claim depends on; empty where none does. */
+  evaluations(site: Site): readonly Evaluation[] {
+    const all = this.tagged.evaluations.get(site) ?? [];
+    return all.some((e) => this.tape.has(e.tag)) ? all : [];
+  }
+
+  value(e: Expr): Float64Array | undefined {
+    if (e.op === 'symbol' && this.columns.has(e)) return this.columns.get(e)!;
+    return this.values.has(e) ? this.values.baseOf(e) : undefined;
+  }
+
+  column(symbol: Expr): Float64Array | undefined {
+    return this.columns.get(symbol);
+  }
+
+  /**
+   * Tries up to four changes at a time. Each gives the new values of some evaluations.
+   * @returns for each change, the claims' values
+   */
+  outcomes(changes: readonly Change[], use: (change: number, found: (target: Target) => Float64Array) => void): void {
+    const { n } = this;
+    for (let from = 0; from < changes.length; from += BLOCKS) {
+      const group = changes.slice(from, from + BLOCKS);
+      const settings = new Map<Expr, Float64Array>();
+      group.forEach((change, b) => {
+        for (const { evaluation, value } of change) {
+          let column = settings.get(evaluation.tag);
+          if (!column) settings.set(evaluation.tag, (column = new Float64Array(n * BLOCKS)));
+          const read = this.values.baseOf(evaluation.read);
+          for (let s = 0; s < n; s++) column[b * n + s] = value[s]! - read[s]!;
+        }
+      });
+      this.tape.try([...settings].map(([symbol, values]) => ({ symbol, values })), () => {
+        group.forEach((_, b) => use(from + b, (t) => this.tape.valueOf(t.found).subarray(b * n, (b + 1) * n)));
+      });
+    }
+  }
+
+  holds(target: Target, found: Float64Array, tolerance = CLOSE): boolean {
+    for (let s = 0; s < this.n; s++) {
+      if (!(Math.abs(found[s]! - target.expected[s]!) <= tolerance * target.scale[s]!)) return false;
+    }
+    return true;
+  }
+
+  allHold(found: (t: Target) => Float64Array, tolerance = CLOSE): boolean {
+    return this.targets.every((t) => this.holds(t, found(t), tolerance));
+  }
+}
+
+/** New values of some evaluations, state by state. */
+export type Change = readonly { readonly evaluation: Evaluation; readonly value: Float64Array }[];
+
+function signedExpected(claim: ClaimResult): Expr {
+  return claim.expected!;
+}
+
+function isDrawn(s: Expr): boolean {
+  const { role, order } = s.data as { role: string; order: number };
+  return role !== 'free' && role !== 'auxiliary' && !(role === 'coordinate' && order === 2);
+}

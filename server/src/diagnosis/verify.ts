@@ -1,0 +1,32 @@
+import type { SubjectResult } from '../comparison/subject';
+import type { Edit } from './search/edits';
+
+/** Reads the file again with some edits made; undefined where that can't be done. */
+export type Recheck = (edits: readonly Edit[]) => Promise<Rechecked | undefined>;
+
+export interface Rechecked {
+  /** The function in question. */
+  readonly result: SubjectResult;
+  /** The other declarations of the file, now and after; asked for only when the function itself is right. */
+  others(): Promise<{ readonly before: readonly SubjectResult[]; readonly after: readonly SubjectResult[] }>;
+}
+
+/** Whether with these edits every claim that was decided holds, and nothing else in the file got worse. */
+export async function isRepair(before: SubjectResult, edits: readonly Edit[], recheck: Recheck): Promise<boolean> {
+  const after = await recheck(edits);
+  if (!after || !isNoWorse(before, after.result)) return false;
+  if (after.result.claims.some((c) => c.decision.verdict === 'differs')) return false;
+  if (!before.claims.every((c, i) => c.decision.verdict === 'unread' || after.result.claims[i]!.decision.verdict === 'holds')) return false;
+  const others = await after.others();
+  return others.before.length === others.after.length && others.before.every((b, i) => isNoWorse(b, others.after[i]!));
+}
+
+function isNoWorse(before: SubjectResult, after: SubjectResult): boolean {
+  if (before.claims.length !== after.claims.length) return false;
+  if (after.ambiguities.length > before.ambiguities.length) return false;
+  return before.claims.every((c, i) => {
+    const a = after.claims[i]!;
+    const is = a.decision.verdict;
+    return a.output === c.output && a.quantity === c.quantity && (is === 'holds' || is === c.decision.verdict);
+  });
+}

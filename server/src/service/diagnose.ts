@@ -1,0 +1,64 @@
+import { diagnose } from '../diagnosis/diagnose';
+import { applyEdits, type Edit } from '../diagnosis/search/edits';
+import type { Rechecked } from '../diagnosis/verify';
+import { findBlocks } from '../notation';
+import { LineIndex } from '../text/line-index';
+import type { Budget } from '../text/budget';
+import type { Document } from '../workspace/documents';
+import { checkBlock, subjectRequest, type BlockOutcome, type Project } from './check';
+
+/** Adds to every declaration that differs what is wrong with its code. */
+export async function diagnoseOutcomes(
+  project: Project,
+  document: Document,
+  outcomes: readonly BlockOutcome[],
+  budget: Budget,
+): Promise<BlockOutcome[]> {
+  const out: BlockOutcome[] = [];
+  for (const [i, o] of outcomes.entries()) {
+    if (!o.entry || !o.result || !o.result.claims.some((c) => c.decision.verdict === 'differs')) {
+      out.push(o);
+      continue;
+    }
+    const request = subjectRequest(project, document, o.placed, o.entry, budget);
+    const recheck = (edits: readonly Edit[]) => recheckWith(project, document, outcomes, i, edits, budget);
+    const diagnosis = await diagnose(request, o.result, document.text, recheck);
+    out.push(diagnosis ? { ...o, diagnosis } : o);
+  }
+  return out;
+}
+
+async function recheckWith(
+  project: Project,
+  document: Document,
+  outcomes: readonly BlockOutcome[],
+  index: number,
+  edits: readonly Edit[],
+  budget: Budget,
+): Promise<Rechecked | undefined> {
+  const edited = editedDocument(document, edits);
+  if (!edited || edited.blocks.length !== document.blocks.length) return undefined;
+  const own = await checkBlock(project, edited, edited.blocks[index]!, budget);
+  if (!own.result) return undefined;
+  return {
+    result: own.result,
+    others: async () => {
+      const before = outcomes.filter((o, k) => k !== index && o.result);
+      const after = [];
+      for (const o of before) {
+        const again = await checkBlock(project, edited, edited.blocks[outcomes.indexOf(o)]!, budget);
+        if (again.result) after.push(again.result);
+      }
+      return { before: before.map((o) => o.result!), after };
+    },
+  };
+}
+
+/** The document with a text of its own; the project's documents stay as they are. */
+function editedDocument(document: Document, edits: readonly Edit[]): Document | undefined {
+  const text = applyEdits(document.text, edits);
+  const program = document.core.parse(document.file, text);
+  if (program.errors.length > document.program.errors.length) return undefined;
+  const blocks = program.comments.flatMap((c) => findBlocks(text, c).map((block) => ({ block, subject: c.subject })));
+  return { ...document, text, program, lines: new LineIndex(text), blocks };
+}
