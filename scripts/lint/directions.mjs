@@ -20,7 +20,7 @@ export const directions = {
     packages: [],
   },
   'server/src/workspace': {
-    from: ['text', 'expression', 'notation', 'program', 'languages', 'shared'],
+    from: ['text', 'expression', 'notation', 'program', 'mechanics', 'languages', 'comparison', 'shared'],
     packages: [],
   },
   'server/src/service': {
