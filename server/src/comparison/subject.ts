@@ -31,6 +31,7 @@ export interface SubjectRequest {
   readonly importFile: ReadRequest['importFile'];
   readonly budget: Budget;
   readonly tag?: ReadRequest['tag'];
+  readonly isNumber?: ReadRequest['isNumber'];
   /** Outputs to read beside those of the claims; their values come last in the reading. */
   readonly extra?: readonly OutputRequest[];
 }
@@ -195,6 +196,7 @@ export function readSubject(request: SubjectRequest, reads: readonly ReadsBindin
     importFile: request.importFile,
     budget: request.budget,
     ...(request.tag ? { tag: request.tag } : {}),
+    ...(request.isNumber ? { isNumber: request.isNumber } : {}),
   });
 }
 

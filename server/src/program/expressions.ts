@@ -8,7 +8,7 @@ import type { Expression, Field } from './form';
 import { clipped } from './limits';
 import type { Machine } from './machine';
 import { readElement, readMember } from './members';
-import { fork } from './merging';
+import { fork, spoilWritten, withEach } from './merging';
 import { unknownName } from './modules';
 import { dataOf, itemsOf, numeric } from './numbers';
 import { binary, negate } from './operators';
@@ -36,6 +36,10 @@ function placed(m: Machine, e: Expression, place: Place, value: Value): Value {
   if (override && override.span.start === e.span.start && override.span.end === e.span.end && override.file === place.file) {
     const n = value.kind === 'unread' ? value : numeric(m, value, place);
     if (!isUnread(n)) value = { kind: 'scalar', expr: override.value(n), place };
+  }
+  if (value.kind === 'object' && !m.quiet && m.request.isNumber?.(e)) {
+    const n = numeric(m, value, place);
+    if (!isUnread(n)) value = { kind: 'scalar', expr: n, place };
   }
   if (value.kind !== 'scalar') return value;
   m.note(place, value.expr);
@@ -233,14 +237,20 @@ function binaryChain(m: Machine, scope: Scope, top: Expression & { kind: 'binary
 
 function logical(m: Machine, scope: Scope, e: Expression & { kind: 'logical' }, place: Place): Value {
   const left = evaluate(m, scope, e.left);
-  if (left.kind === 'unread') return left;
   const right = (): Value => evaluate(m, scope, e.right);
+  if (left.kind === 'unread') {
+    spoilWritten(m, left, [right]);
+    return left;
+  }
   if (left.kind === 'choice' && e.op !== 'and') {
     return fork(m, left.condition, place, () => or(m, e.op, left.whenTrue, right, place), () => or(m, e.op, left.whenFalse, right, place));
   }
   if (e.op !== 'and') return or(m, e.op, left, right, place);
   const c = truthOf(m, left, place);
-  if (isUnread(c)) return c;
+  if (isUnread(c)) {
+    spoilWritten(m, c, [right]);
+    return c;
+  }
   return fork(m, settle(m, c), place, right, () => left);
 }
 
@@ -270,7 +280,10 @@ function or(m: Machine, op: 'and' | 'or' | 'coalesce', left: Value, right: () =>
 
 function conditional(m: Machine, scope: Scope, e: Expression & { kind: 'conditional' }, place: Place): Value {
   const c = conditionOf(m, scope, e.condition);
-  if (isUnread(c)) return c;
+  if (isUnread(c)) {
+    spoilWritten(m, c, [() => evaluate(m, scope, e.whenTrue), () => evaluate(m, scope, e.whenFalse)]);
+    return c;
+  }
   if (c !== m.graph.true && c !== m.graph.false) m.condition(c, m.place(scope, e.condition.span));
   const value = fork(
     m,
@@ -282,43 +295,72 @@ function conditional(m: Machine, scope: Scope, e: Expression & { kind: 'conditio
   return m.request.withinLimits ? clipped(c, value) : value;
 }
 
+/** All parts are worked out first, so that none of their effects is lost where one of them can't be read. */
 function listLiteral(m: Machine, scope: Scope, e: Expression & { kind: 'list' }, place: Place): Value {
+  const parts = e.items.map((item) => ({ value: evaluate(m, scope, item.value), spread: item.spread === true }));
+  const array = scope.frame.module.program.elementwise === true;
+  const open = parts.findIndex((p) => p.spread && p.value.kind === 'choice');
+  if (open >= 0) {
+    return withEach(m, parts[open]!.value, place, (v) => joinParts(m, parts.map((p, k) => (k === open ? { ...p, value: v } : p)), array, place));
+  }
+  return joinParts(m, parts, array, place);
+}
+
+function joinParts(m: Machine, parts: readonly { value: Value; spread: boolean }[], array: boolean, place: Place): Value {
   const items: Value[] = [];
-  for (const item of e.items) {
-    const value = evaluate(m, scope, item.value);
-    if (!item.spread) {
+  for (const { value, spread } of parts) {
+    if (!spread) {
       items.push(value);
       continue;
     }
-    const spread = itemsOf(m, value);
-    if (!spread) return value.kind === 'unread' ? value : unread('a list that is spread out and whose length is not known', place);
-    items.push(...spread);
+    const inner = itemsOf(m, value);
+    if (!inner) return value.kind === 'unread' ? value : unread('a list that is spread out and whose length is not known', place);
+    items.push(...inner);
   }
-  return m.list(items, scope.frame.module.program.elementwise === true);
+  return m.list(items, array);
 }
 
+type Part =
+  | { readonly kind: 'member'; readonly name: string; readonly value: Value }
+  | { readonly kind: 'getter'; readonly name: string; readonly value: FunctionValue }
+  | { readonly kind: 'spread'; readonly value: Value };
+
 function recordLiteral(m: Machine, scope: Scope, fields: readonly Field[], place: Place): Value {
+  const parts: Part[] = [];
+  let problem: Value | undefined;
+  for (const field of fields) {
+    if (field.kind === 'field') parts.push({ kind: 'member', name: field.name, value: evaluate(m, scope, field.value) });
+    else if (field.kind === 'getter') parts.push({ kind: 'getter', name: field.name, value: { kind: 'function', node: field.node, scope } });
+    else if (field.kind === 'spread') parts.push({ kind: 'spread', value: evaluate(m, scope, field.value) });
+    else if (field.kind === 'computed') {
+      const key = evaluate(m, scope, field.name);
+      const value = evaluate(m, scope, field.value);
+      const name = key.kind === 'string' ? key.value : key.kind === 'scalar' && key.expr.op === 'number' ? String(key.expr.data) : undefined;
+      if (name === undefined) problem ??= unread('a record with a name that is not known', place);
+      else parts.push({ kind: 'member', name, value });
+    }
+  }
+  return problem ?? joinFields(m, parts, 0, place);
+}
+
+function joinFields(m: Machine, parts: readonly Part[], from: number, place: Place): Value {
+  const open = parts.findIndex((p, k) => k >= from && p.kind === 'spread' && p.value.kind === 'choice');
+  if (open >= 0) {
+    return withEach(m, parts[open]!.value, place, (v) =>
+      joinFields(m, parts.map((p, k) => (k === open ? { kind: 'spread', value: v } : p)), open + 1, place),
+    );
+  }
   const members = new Map<string, Value>();
   const getters = new Map<string, FunctionValue>();
-  const record = m.object({ kind: 'record', members, getters });
-  for (const field of fields) {
-    if (field.kind === 'field') {
-      members.set(field.name, evaluate(m, scope, field.value));
-    } else if (field.kind === 'computed') {
-      const key = evaluate(m, scope, field.name);
-      const name = key.kind === 'string' ? key.value : key.kind === 'scalar' && key.expr.op === 'number' ? String(key.expr.data) : undefined;
-      if (name === undefined) return unread('a record with a name that is not known', place);
-      members.set(name, evaluate(m, scope, field.value));
-    } else if (field.kind === 'getter') {
-      getters.set(field.name, { kind: 'function', node: field.node, scope });
-    } else if (field.kind === 'spread') {
-      const problem = spreadInto(m, members, evaluate(m, scope, field.value), place);
+  for (const part of parts) {
+    if (part.kind === 'member') members.set(part.name, part.value);
+    else if (part.kind === 'getter') getters.set(part.name, part.value);
+    else {
+      const problem = spreadInto(m, members, part.value, place);
       if (problem) return problem;
     }
   }
-  const now = m.store.writable(record.id);
-  if (now.kind === 'record' && now.members !== members) for (const [k, v] of members) now.members.set(k, v);
-  return record;
+  return m.object({ kind: 'record', members, getters });
 }
 
 function spreadInto(m: Machine, members: Map<string, Value>, value: Value, place: Place): Value | undefined {

@@ -63,6 +63,8 @@ export interface ReadRequest {
   readonly override?: { readonly file: string; readonly span: Span; readonly value: (read: Expr) => Expr };
   /** Asked at every number that is noted in the trace: what goes on in its stead. For a search over all places at once. */
   readonly tag?: (place: Place, source: Expression, read: Expr) => Expr;
+  /** Places where a thing from outside is used as a number, and is tagged as one. */
+  readonly isNumber?: (source: Expression) => boolean;
 }
 
 /**

@@ -52,6 +52,15 @@ type Task = { readonly x: unknown; readonly context: Context };
 const SCALAR = /^(a?(sin|cos|tan)h?|atan2|arctan2?|arcsin|arccos|sqrt|abs|exp|log|fabs|hypot|cbrt|sinf|cosf|sqrtf)$/i;
 const POWER = /^(pow|power|powf|powi|float_power)$/i;
 
+/** A call of a function of numbers. */
+export function isScalarCall(e: Expression & { readonly kind: 'call' }): boolean {
+  return SCALAR.test(calleeName(e)) || POWER.test(calleeName(e));
+}
+
+function calleeName(e: Expression & { readonly kind: 'call' }): string {
+  return e.callee.kind === 'member' || e.callee.kind === 'name' ? e.callee.name : '';
+}
+
 /**
  * All sub-expressions of a program that stand inside the given spans (of functions that were read). Iterative, so that
  * long chains do no harm.
@@ -128,7 +137,7 @@ function inside(e: Expression, site: Site, context: Context, push: (x: unknown, 
       push(e.indices, child('other', false));
       return;
     case 'call': {
-      const name = e.callee.kind === 'member' ? e.callee.name : e.callee.kind === 'name' ? e.callee.name : '';
+      const name = calleeName(e);
       push(e.callee, child('object', false));
       const isPower = POWER.test(name);
       e.args.forEach((a, i) => push(a.value, child('argument', context.mayVary && (SCALAR.test(name) || (isPower && i === 0) || a.value.kind !== 'number'))));

@@ -4,7 +4,7 @@ import type { Expr } from '../../expression/node';
 import type { Expression, FunctionNode } from '../../program/form';
 import { patternNames } from '../../program/scan';
 import type { OutputRequest, OutputValue, Reading } from '../../program/reading';
-import type { Site, SourceMap } from './sites';
+import { isScalarCall, type Site, type SourceMap } from './sites';
 
 /** One evaluation of a place: the unknown added to its value, and the value that was read. */
 export interface Evaluation {
@@ -53,6 +53,10 @@ function readOnce(
   const names = namesOf(request);
   const result = readClaims({
     ...request,
+    isNumber: (source) => {
+      const site = map.byNode.get(source);
+      return site !== undefined && isOperand(site) && mayTagSite(site);
+    },
     extra: names.map((name): OutputRequest => ({ expression: { kind: 'name', name, span: { start: 0, end: 0 } } })),
     tag: (place, source, read) => {
       if (place.file !== request.file || read.op === 'nan') return read;
@@ -91,6 +95,15 @@ function mayTag(site: Site, mode: 'all' | 'arithmetic' | 'none'): boolean {
     if (mode === 'arithmetic') return site.role === 'left' || site.role === 'right';
   }
   return true;
+}
+
+/** Used in arithmetic, so that it must be a number whatever it looks like. */
+function isOperand({ node, parent, role }: Site): boolean {
+  if (node.kind !== 'name' && node.kind !== 'member' && node.kind !== 'index') return false;
+  const p = parent?.node;
+  if (p?.kind === 'unary') return p.op === '-';
+  if (p?.kind === 'binary') return /^[-+*/%]$|\*\*/.test(p.op);
+  return p?.kind === 'call' && role === 'argument' && parent!.mayVary && isScalarCall(p);
 }
 
 function isLiteral(e: Expression): boolean {
