@@ -41,6 +41,7 @@ export function toExpr(graph: Graph, form: NormalForm): Expr {
 export function simplify(graph: Graph, expr: Expr, mostTerms = DEFAULT_TERMS): Expr {
   const expander = new Expander(graph, mostTerms);
   expander.expand(expr);
+  expander.refresh();
   const sizes = new Sizes();
   const best = new Map<Expr, Expr>();
   const inQuotient = new Set<Expr>();
@@ -51,9 +52,14 @@ export function simplify(graph: Graph, expr: Expr, mostTerms = DEFAULT_TERMS): E
       best.set(node, rebuilt);
       continue;
     }
+    const form = expander.polynomial(node);
+    // What an identity costs is spent by the expander; here each form is written out twice.
+    if (form && !expander.spend(2 * form.length)) {
+      best.set(node, rebuilt);
+      continue;
+    }
     const candidates = [expander.shortest(node), rebuilt];
-    const form = node.op === 'sum' ? expander.polynomial(node) : undefined;
-    if (form) {
+    if (form && node.op === 'sum') {
       const terms = sorted(expander.shorten(form));
       candidates.push(inQuotient.has(node) ? factored(graph, terms) : collected(graph, terms));
     }

@@ -37,7 +37,7 @@ export function textReport(report: Report, options: TextReportOptions): string {
     const worst = worstOf(group);
     const paint = worst === 'differs' ? colours.red : worst === 'unread' ? colours.yellow : colours.green;
     out.push(`${colours.bold(cells[0]!)}  ${cells[1]!}  ${paint(cells[2]!)}   ${colours.dim(place)}`);
-    for (const claim of group.claims) for (const f of findingsOf(claim)) story(claim, f);
+    for (const s of storiesOf(group)) story(s);
     previousWasQuiet = isWell;
   }
   if (report.problems.length > 0) {
@@ -55,12 +55,13 @@ export function textReport(report: Report, options: TextReportOptions): string {
   if (report.summary.holds > 0) out.push(colours.dim(CAUTION));
   return `${out.join('\n')}\n`;
 
-  function story(claim: ReportClaim, f: Finding): void {
+  function story({ claim, finding: f, alsoFor }: Story): void {
     blank();
     const paint = claim.verdict === 'differs' ? colours.red : colours.yellow;
     out.push(`  ${placeText(f.file ?? claim.file, f.range)}   ${paint(f.code)}`);
     paragraph(f.message);
     if (claim.witness && !mentions(f.message, claim.witness)) paragraph(witnessText(claim.witness));
+    if (alsoFor.length > 0) paragraph(`The same goes for ${alsoFor.join(', ')}.`);
     quote(f.file ?? claim.file, f.range, paint);
     if (f.repair) paragraph(`${f.repair.verified ? 'Repair' : 'Try'}: ${f.repair.title}`);
   }
@@ -127,6 +128,28 @@ function table(rows: readonly (readonly [Group, string[]])[]): { group: Group; c
   }));
 }
 
+interface Story {
+  readonly claim: ReportClaim;
+  readonly finding: Finding;
+  /** Outputs of other claims with the same to tell. */
+  readonly alsoFor: string[];
+}
+
+/** What there is to tell about a group; several claims that fail at one place for one reason are told once. */
+function storiesOf(group: Group): Story[] {
+  const stories = new Map<string, Story>();
+  for (const claim of group.claims) {
+    for (const finding of findingsOf(claim)) {
+      const general = finding.message.replace(claim.output, '');
+      const key = JSON.stringify([finding.code, finding.file, finding.range, general]);
+      const told = stories.get(key);
+      if (told) told.alsoFor.push(claim.output);
+      else stories.set(key, { claim, finding, alsoFor: [] });
+    }
+  }
+  return [...stories.values()];
+}
+
 /** A claim that is not well always has something to say, if only its witness. */
 function findingsOf(claim: ReportClaim): readonly Finding[] {
   if (claim.findings.length > 0 || claim.verdict === 'holds') return claim.findings;
@@ -147,11 +170,14 @@ function witnessText(w: Witness): string {
   return `${where} code gives ${found}, the declared energies give ${expected}.`;
 }
 
+/** A word, with the whole of what stands between backquotes. */
+const UNBROKEN = /(?:`[^`]*`|[^\s`]|`)+/g;
+
 /** Broken between words, the same on every terminal so that reports can be compared. */
 function wrapped(text: string): string[] {
   const lines: string[] = [];
   let line = '';
-  for (const word of text.split(' ')) {
+  for (const word of text.match(UNBROKEN) ?? []) {
     if (line !== '' && textWidth(line) + 1 + textWidth(word) > LINE_WIDTH) {
       lines.push(line);
       line = word;

@@ -42,6 +42,11 @@ export class Expander {
     this.work = mostTerms * WORK_PER_TERM;
   }
 
+  /** Grants the work anew: after expanding, to choose among what came of it. */
+  refresh(): void {
+    this.work = this.mostTerms * WORK_PER_TERM;
+  }
+
   get exhausted(): boolean {
     return this.work <= 0;
   }
