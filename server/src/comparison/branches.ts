@@ -4,6 +4,13 @@ import { reachable } from '../expression/reach';
 import type { Registers } from '../expression/tape';
 import type { Unvisited } from './pair';
 
+/** The conditions that choose values in each group of expressions. */
+export function conditionsOfEach(groups: readonly (readonly Expr[])[]): Expr[][] {
+  // Most code has none at all: one look at everything together settles that.
+  if (conditionsOf(groups.flat()).length === 0) return groups.map(() => []);
+  return groups.map(conditionsOf);
+}
+
 /** The conditions that choose values of these expressions. */
 export function conditionsOf(roots: readonly Expr[]): Expr[] {
   const out = new Set<Expr>();

@@ -1,7 +1,7 @@
 import { timeDerivatives } from '../expression/differentiate';
 import type { Expr, SymbolData } from '../expression/node';
 import { Rational } from '../expression/rational';
-import { symbolsOf } from '../expression/reach';
+import { firstSymbols } from '../expression/reach';
 import { evaluate, isFunctionName } from '../mechanics/formula';
 import type { Derived } from '../mechanics/lagrange';
 import { canonicalName } from '../mechanics/names';
@@ -289,5 +289,10 @@ export function pairUp(found: OutputValue, target: Target, output: string, index
 
 /** A symbol of the value that stands for code nobody gave a meaning. */
 export function freeSymbol(e: Expr): Expr | undefined {
-  return symbolsOf(e).find((s) => (s.data as SymbolData).role === 'free');
+  return freeSymbols([e])[0];
+}
+
+/** The same for many values at once. */
+export function freeSymbols(values: readonly Expr[]): (Expr | undefined)[] {
+  return firstSymbols(values, (s) => (s.data as SymbolData).role === 'free');
 }

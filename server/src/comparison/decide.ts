@@ -3,7 +3,7 @@ import { Tape, type Column } from '../expression/tape';
 import type { Derived } from '../mechanics/lagrange';
 import type { Budget } from '../text/budget';
 import type { Place } from '../text/span';
-import { conditionsOf, Visits } from './branches';
+import { conditionsOf, conditionsOfEach, Visits } from './branches';
 import { Motion } from './motion';
 import { expand } from './near';
 import type { Decision, Pair, Unvisited } from './pair';
@@ -108,13 +108,14 @@ interface Tally {
 
 function decideEach(request: DecideRequest, motion: Motion, groups: readonly (readonly Pair[])[]): Decision[] {
   const { derived, assumed, budget } = request;
-  const tallies: Tally[] = groups.map((group) => ({
+  const choices = conditionsOfEach(groups.map((group) => group.flatMap((p) => [p.found, p.expected])));
+  const tallies: Tally[] = groups.map((_, i) => ({
     votes: 0,
     missing: 0,
     agrees: true,
     worst: 0,
     best: undefined,
-    visits: new Visits(conditionsOf(group.flatMap((p) => [p.found, p.expected]))),
+    visits: new Visits(choices[i]!),
   }));
   const conditions = [...new Set(tallies.flatMap((t) => t.visits.conditions))];
   const prober = new Prober(motion, groups, [...assumed, ...conditions]);

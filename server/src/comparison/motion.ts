@@ -15,7 +15,7 @@ export class Motion {
   constructor(private readonly derived: Derived) {}
 
   private get residuals(): Tape {
-    return (this.tape ??= new Tape(this.derived.rows));
+    return (this.tape ??= new Tape(this.derived.rows, { keepAll: true }));
   }
 
   private get projection(): Projection {

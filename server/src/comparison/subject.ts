@@ -13,7 +13,7 @@ import { read } from '../program/read';
 import type { Meaning, Meanings, OutputRequest, ReadRequest, Reading, ReadsBinding } from '../program/reading';
 import type { Budget } from '../text/budget';
 import type { Place, Span } from '../text/span';
-import { evaluateLeft, freeSymbol, isFamilyName, pairUp, prepareClaims } from './claims';
+import { evaluateLeft, freeSymbol, freeSymbols, isFamilyName, pairUp, prepareClaims } from './claims';
 import { codeExpression } from './code-path';
 import { decide } from './decide';
 import type { Decision } from './pair';
@@ -108,7 +108,7 @@ export function readClaims(request: SubjectRequest): SubjectReading {
 
   const reading = readSubject(request, reads, [...outputs, ...(request.extra ?? [])]);
   const results: ClaimResult[] = [];
-  const pending: { at: number; found: Expr; expected: Expr }[] = [];
+  const values: { at: number; found: Expr; expected: Expr }[] = [];
   for (const p of prepared) {
     const unread = (reason: string, place: Place | undefined): Decision => ({ verdict: 'unread', reason, place });
     if (!p.target) {
@@ -133,17 +133,20 @@ export function readClaims(request: SubjectRequest): SubjectReading {
         results.push({ ...base, decision: unread(reason, found.place), found: undefined, expected });
         continue;
       }
-      const free = freeSymbol(found.expr);
-      if (free) {
-        const why = reading.free.get(free);
-        const decision = unread(why?.reason ?? 'it depends on something that has no meaning here', why?.place ?? found.place);
-        results.push({ ...base, decision, found: found.expr, expected });
-        continue;
-      }
-      pending.push({ at: results.length, found: found.expr, expected });
+      values.push({ at: results.length, found: found.expr, expected });
       results.push({ ...base, decision: unread('not decided', found.place), found: found.expr, expected });
     }
   }
+  const free = freeSymbols(values.map((p) => p.found));
+  const pending = values.filter((p, i) => {
+    const symbol = free[i];
+    if (!symbol) return true;
+    const why = reading.free.get(symbol);
+    const place = why?.place ?? results[p.at]!.place;
+    const reason = why?.reason ?? 'it depends on something that has no meaning here';
+    results[p.at] = { ...results[p.at]!, decision: { verdict: 'unread', reason, place } };
+    return false;
+  });
   return { claims: results, problems, ambiguities: reading.ambiguities, reading, pending };
 }
 

@@ -2,26 +2,58 @@ import type { Expr } from './node';
 
 /** Every node the roots depend on, themselves included, arguments before users (ascending id). */
 export function reachable(roots: Iterable<Expr>): Expr[] {
-  const seen = new Set<Expr>();
   const stack: Expr[] = [];
+  let top = -1;
   for (const root of roots) {
-    if (!seen.has(root)) {
-      seen.add(root);
-      stack.push(root);
+    stack.push(root);
+    if (root.id > top) top = root.id;
+  }
+  const seen = new Uint8Array(top + 1);
+  const found: Expr[] = [];
+  for (const root of stack) {
+    if (!seen[root.id]) {
+      seen[root.id] = 1;
+      found.push(root);
     }
   }
-  while (stack.length > 0) {
-    for (const arg of stack.pop()!.args) {
-      if (!seen.has(arg)) {
-        seen.add(arg);
-        stack.push(arg);
+  // The list grows while it is walked: what it holds past `next` is still to be opened.
+  for (let next = 0; next < found.length; next++) {
+    for (const arg of found[next]!.args) {
+      if (!seen[arg.id]) {
+        seen[arg.id] = 1;
+        found.push(arg);
       }
     }
   }
-  return [...seen].sort((a, b) => a.id - b.id);
+  return found.sort(ascending);
+}
+
+function ascending(a: Expr, b: Expr): number {
+  return a.id - b.id;
 }
 
 /** The symbols an expression depends on, in order of creation. */
 export function symbolsOf(...roots: readonly Expr[]): Expr[] {
   return reachable(roots).filter((e) => e.op === 'symbol');
+}
+
+/**
+ * For each root the first symbol it depends on that `wanted` accepts; one pass however many roots there are.
+ */
+export function firstSymbols(roots: readonly Expr[], wanted: (symbol: Expr) => boolean): (Expr | undefined)[] {
+  const first = new Map<Expr, Expr>();
+  for (const node of reachable(roots)) {
+    if (node.op === 'symbol') {
+      if (wanted(node)) first.set(node, node);
+      continue;
+    }
+    if (first.size === 0) continue;
+    for (const arg of node.args) {
+      const symbol = first.get(arg);
+      if (!symbol) continue;
+      first.set(node, symbol);
+      break;
+    }
+  }
+  return roots.map((r) => first.get(r));
 }

@@ -8,28 +8,61 @@ export interface Column {
   readonly errors?: Float64Array;
 }
 
+export interface TapeOptions {
+  /** Keep every intermediate value, so that parts can be run again. Otherwise registers are reused once they are read. */
+  readonly keepAll?: boolean;
+  /** Nodes beside the roots whose values are asked for. */
+  readonly keep?: readonly Expr[];
+}
+
 /**
- * A flat instruction list for some expressions, run over many samples at once: one run of doubles per node for values and
- * one for running error bounds. Linear in the graph; no code is generated.
+ * A flat instruction list for some expressions, run over many samples at once: one run of doubles per register for values
+ * and one for running error bounds. Linear in the graph; no code is generated.
  */
 export class Tape {
   readonly nodes: readonly Expr[];
-  private readonly slot = new Map<Expr, number>();
-  private readonly args: Int32Array[] = [];
-  private readonly slots: number;
+  /** Register of each instruction, and of its arguments. */
+  private readonly out: Int32Array;
+  private readonly args: readonly Int32Array[];
+  private readonly registers: number;
+  private readonly kept = new Map<Expr, number>();
+  private scaledFor = 0;
+  private scaled: readonly Int32Array[] = [];
+  private readonly keepAll: boolean;
 
-  constructor(readonly roots: readonly Expr[]) {
-    this.nodes = reachable(roots);
+  constructor(
+    readonly roots: readonly Expr[],
+    options: TapeOptions = {},
+  ) {
+    this.nodes = reachable(options.keep ? [...roots, ...options.keep] : roots);
+    this.keepAll = options.keepAll ?? false;
+    const count = this.nodes.length;
+    const position = new Int32Array(count > 0 ? this.nodes[count - 1]!.id + 1 : 0);
+    this.nodes.forEach((node, i) => (position[node.id] = i));
+    const lasts = this.keepAll ? undefined : lastUses(this.nodes, position);
+    const wanted = new Set<Expr>([...roots, ...(options.keep ?? [])]);
+    this.out = new Int32Array(count);
+    const args: Int32Array[] = [];
+    const free: number[] = [];
     let next = 0;
-    for (const node of this.nodes) {
-      if (node.op === 'component') this.slot.set(node, this.slot.get(node.args[0]!)! + (node.data as number));
-      else {
-        this.slot.set(node, next);
-        next += node.op === 'solve' ? (node.data as number) : 1;
+    for (let i = 0; i < count; i++) {
+      const node = this.nodes[i]!;
+      args.push(Int32Array.from(node.args, (a) => this.out[position[a.id]!]!));
+      if (node.op === 'component') this.out[i] = this.out[position[node.args[0]!.id]!]! + (node.data as number);
+      else if (node.op === 'solve') {
+        this.out[i] = next;
+        next += node.data as number;
+      } else this.out[i] = free.length > 0 ? free.pop()! : next++;
+      if (this.keepAll || wanted.has(node)) this.kept.set(node, this.out[i]!);
+      if (!lasts) continue;
+      // An argument read for the last time gives its register back, but never to the instruction that reads it.
+      for (const arg of new Set(node.args)) {
+        const at = position[arg.id]!;
+        if (lasts[at] === i && !wanted.has(arg) && arg.op !== 'solve' && arg.op !== 'component') free.push(this.out[at]!);
       }
     }
-    this.slots = next;
-    for (const node of this.nodes) this.args.push(Int32Array.from(node.args, (a) => this.slot.get(a)!));
+    this.args = args;
+    this.registers = next;
   }
 
   get symbols(): readonly Expr[] {
@@ -41,32 +74,43 @@ export class Tape {
    * @param n number of samples
    */
   run(column: (symbol: Expr) => Column | undefined, n: number): Registers {
-    const v = new Float64Array(this.slots * n);
-    const e = new Float64Array(this.slots * n);
-    const registers = new Registers(v, e, n, this.slot);
+    const v = new Float64Array(this.registers * n);
+    const e = new Float64Array(this.registers * n);
+    const registers = new Registers(v, e, n, this.kept);
     this.step(registers, column, undefined);
     return registers;
   }
 
-  /** Runs again, in place, only what depends on the given symbols. */
+  /** Runs again, in place, only what depends on the given symbols; of tapes that keep everything. */
   rerun(registers: Registers, column: (symbol: Expr) => Column | undefined, changed: ReadonlySet<Expr>): void {
-    const stale = new Set<Expr>();
-    for (const node of this.nodes) {
-      if (changed.has(node) || node.args.some((a) => stale.has(a))) stale.add(node);
-    }
-    this.step(registers, column, stale);
+    if (!this.keepAll) throw new Error('a tape that reuses registers can not be run in part');
+    this.step(registers, column, this.dependents(changed));
   }
 
-  private step(
-    registers: Registers,
-    column: (symbol: Expr) => Column | undefined,
-    only: ReadonlySet<Expr> | undefined,
-  ): void {
+  private dependents(changed: ReadonlySet<Expr>): Uint8Array {
+    const stale = new Uint8Array(this.nodes.length > 0 ? this.nodes[this.nodes.length - 1]!.id + 1 : 0);
+    for (const node of this.nodes) {
+      if (node.op === 'symbol') {
+        if (changed.has(node)) stale[node.id] = 1;
+        continue;
+      }
+      for (const a of node.args) {
+        if (stale[a.id]) {
+          stale[node.id] = 1;
+          break;
+        }
+      }
+    }
+    return stale;
+  }
+
+  private step(registers: Registers, column: (symbol: Expr) => Column | undefined, only: Uint8Array | undefined): void {
     const { v, e, n } = registers;
+    const args = this.argsFor(n);
     for (let i = 0; i < this.nodes.length; i++) {
       const node = this.nodes[i]!;
-      if (node.op === 'component' || (only && !only.has(node))) continue;
-      const out = this.slot.get(node)! * n;
+      if (node.op === 'component' || (only && !only[node.id])) continue;
+      const out = this.out[i]! * n;
       if (node.op === 'symbol') {
         const c = column(node);
         if (c) v.set(c.values.subarray(0, n), out);
@@ -75,13 +119,31 @@ export class Tape {
         else e.fill(0, out, out + n);
         continue;
       }
-      const args = this.args[i]!;
-      operators[node.op].evaluate(v, e, out, n === 1 ? args : args.map((a) => a * n), n, node.data);
+      operators[node.op].evaluate(v, e, out, args[i]!, n, node.data);
     }
+  }
+
+  /** Arguments as offsets for runs of `n` samples. */
+  private argsFor(n: number): readonly Int32Array[] {
+    if (n === 1) return this.args;
+    if (this.scaledFor !== n) {
+      this.scaled = this.args.map((a) => a.map((slot) => slot * n));
+      this.scaledFor = n;
+    }
+    return this.scaled;
   }
 }
 
-/** What a run left: value and bound of every node at every sample. */
+/** The instruction that reads each node last. */
+function lastUses(nodes: readonly Expr[], position: Int32Array): Int32Array {
+  const last = new Int32Array(nodes.length).fill(-1);
+  nodes.forEach((node, i) => {
+    for (const arg of node.args) last[position[arg.id]!] = i;
+  });
+  return last;
+}
+
+/** What a run left: value and bound of the roots and of every node kept, at every sample. */
 export class Registers {
   constructor(
     readonly v: Float64Array,
@@ -91,16 +153,22 @@ export class Registers {
   ) {}
 
   value(node: Expr, sample: number): number {
-    return this.v[this.slot.get(node)! * this.n + sample]!;
+    return this.v[this.at(node) + sample]!;
   }
 
   error(node: Expr, sample: number): number {
-    return this.e[this.slot.get(node)! * this.n + sample]!;
+    return this.e[this.at(node) + sample]!;
   }
 
   /** A copy of a node's values and bounds, to be another run's column. */
   column(node: Expr): Required<Column> {
-    const start = this.slot.get(node)! * this.n;
+    const start = this.at(node);
     return { values: this.v.slice(start, start + this.n), errors: this.e.slice(start, start + this.n) };
+  }
+
+  private at(node: Expr): number {
+    const slot = this.slot.get(node);
+    if (slot === undefined) throw new Error(`the value of a node (${node.op}) was not kept`);
+    return slot * this.n;
   }
 }
