@@ -60,7 +60,7 @@ export function parseFixture(file: string, text: string): Fixture {
   let offset = 0;
   lines.forEach((line, index) => {
     const at = line.indexOf(mark);
-    const sign = at < 0 ? '' : line[at + mark.length];
+    const sign = at < 0 || line.startsWith('#!/') ? '' : line[at + mark.length];
     if (sign === '!' || sign === '~' || sign === '=') {
       const body = line.slice(at + mark.length + 1).trim();
       const section = sections.filter((s) => s.start <= offset).at(-1) ?? sections[0]!;

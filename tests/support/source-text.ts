@@ -16,6 +16,7 @@ const SYNTAX: Readonly<Record<string, Syntax>> = {
   cjs: C_LIKE,
   jsx: C_LIKE,
   html: { ...C_LIKE, block: [...C_LIKE.block, ['<!--', '-->']], quotes: ['`'] },
+  py: { line: ['#'], block: [['"""', '"""'], ["'''", "'''"]], quotes: ['"', "'"] },
   visviva: { line: ['#'], block: [], quotes: [] },
 };
 

@@ -36,7 +36,7 @@ export function code(style: CodeStyle, exprs: readonly Expr[], options: CodeOpti
   return {
     statements: printed.where.map((w) => style.define(w.name, w.text)),
     values: printed.values,
-    helpers: solves ? [style.solver] : [],
+    helpers: solves && style.solver !== '' ? [style.solver] : [],
   };
 }
 

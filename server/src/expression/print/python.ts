@@ -1,0 +1,111 @@
+import type { FunctionName } from '../node';
+import { Rational } from '../rational';
+import type { CodeStyle } from './code-style';
+import { joined, Level, type Part, type Written } from './layout';
+import { writeRational } from './number';
+
+const RESERVED = new Set(
+  ('False None True and as assert async await break class continue def del elif else except finally for from global if import in ' +
+    'is lambda nonlocal not or pass raise return try while with yield match case type np math').split(' '),
+);
+
+/** Where the functions of the surrounding code come from, as it writes them. */
+export interface PythonNames {
+  /** `np.`, `math.`, or nothing after `from math import sin`. */
+  readonly prefix: string;
+  /** numpy's names (`arcsin`), against those of `math` (`asin`). */
+  readonly isNumpy: boolean;
+  /** The prefix under which numpy itself is known, for solving and choosing. */
+  readonly arrays: string;
+}
+
+const NUMPY_NAMES: Readonly<Partial<Record<FunctionName, string>>> = {
+  asin: 'arcsin',
+  acos: 'arccos',
+  atan: 'arctan',
+  atan2: 'arctan2',
+};
+
+/** Python with the names of numpy or of `math`. */
+export function pythonStyle(names: PythonNames): CodeStyle {
+  const called = (name: FunctionName): string => {
+    if (name === 'abs') return 'abs';
+    if (name === 'min' || name === 'max') return name;
+    if (name === 'sign') return `${names.arrays}sign`;
+    return names.prefix + ((names.isNumpy ? NUMPY_NAMES[name] : undefined) ?? name);
+  };
+  return {
+    language: 'python',
+    pi: `${names.prefix}pi`,
+    nan: "float('nan')",
+    true: 'True',
+    false: 'False',
+    and: 'and',
+    or: 'or',
+    equal: '==',
+    number(value) {
+      const n = writeRational(value);
+      if (n.kind === 'fraction') return { text: `${n.top} / ${n.bottom}`, level: Level.product };
+      return atom(n.text);
+    },
+    product,
+    power(base, exponent) {
+      if (exponent.equals(Rational.HALF)) return atom(`${names.prefix}sqrt(${base.text})`);
+      const e = exponent.isInteger ? exponent.toString() : `(${exponent.numerator} / ${exponent.denominator})`;
+      return { text: `${tight(base)}**${e}`, level: Level.power };
+    },
+    generalPower: (base, exponent) => ({ text: `${tight(base)}**${tight(exponent)}`, level: Level.power }),
+    call: (name: FunctionName, args) => atom(`${called(name)}(${joined(args, ', ')})`),
+    not: (a) => atom(`(not ${a})`),
+    select: (c, yes, no) => ({
+      text: `${above(yes, Level.select)} if ${above(c, Level.select)} else ${above(no, Level.select)}`,
+      level: Level.select,
+    }),
+    solve: (rows, right) =>
+      atom(`${names.arrays}linalg.solve([${joined(rows.map((r) => `[${joined(r, ', ')}]`), ', ')}], [${joined(right, ', ')}])`),
+    component: (solution, index) => atom(`${solution}[${index}]`),
+    define: (name, value) => `${name} = ${value}`,
+    solver: '',
+    identifier(name, order) {
+      const clean = name.normalize('NFKC').replace(/[^\p{ID_Continue}]+/gu, '_').replace(/_+$/, '') || '_';
+      const safe = /^\p{ID_Start}|^_/u.test(clean) && !RESERVED.has(clean) ? clean : `${clean}_`;
+      const valid = /^[\p{ID_Start}_]/u.test(safe) ? safe : `_${safe}`;
+      return order === 0 ? valid : `${valid}_${'d'.repeat(order)}ot`;
+    },
+  };
+}
+
+/** Python that has `import numpy as np`. */
+export const python: CodeStyle = pythonStyle({ prefix: 'np.', isNumpy: true, arrays: 'np.' });
+
+function atom(text: string): Written {
+  return { text, level: Level.atom };
+}
+
+function tight(w: Written): string {
+  return w.level >= Level.atom ? w.text : `(${w.text})`;
+}
+
+function above(w: Written, level: Level): string {
+  return w.level > level ? w.text : `(${w.text})`;
+}
+
+/** A factor of a product: products need no brackets there, quotients do when they are divided by. */
+function product(coefficient: Rational, top: readonly Part[], bottom: readonly Part[]): Written {
+  const n = writeRational(coefficient);
+  const numerator: string[] = top.map((p) => above(p, Level.product));
+  const denominator: string[] = bottom.map((p) => above(p, Level.product));
+  if (n.kind === 'fraction') {
+    if (denominator.length === 0) numerator.unshift(`(${n.top} / ${n.bottom})`);
+    else {
+      if (n.top !== '1' || numerator.length === 0) numerator.unshift(n.top);
+      denominator.unshift(n.bottom);
+    }
+  } else if (!coefficient.isOne || numerator.length === 0) numerator.unshift(n.text);
+  if (denominator.length === 0) {
+    if (numerator.length === 1 && top.length === 1) return top[0]!;
+    return { text: joined(numerator, ' * '), level: Level.product };
+  }
+  const below = denominator.length === 1 ? denominator[0]! : `(${joined(denominator, ' * ')})`;
+  return { text: `${joined(numerator, ' * ')} / ${below}`, level: Level.product };
+}
