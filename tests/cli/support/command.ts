@@ -1,5 +1,5 @@
 import { spawnSync } from 'node:child_process';
-import { mkdirSync, mkdtempSync, realpathSync, rmSync, writeFileSync } from 'node:fs';
+import { mkdirSync, mkdtempSync, readFileSync, realpathSync, rmSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { dirname, join } from 'node:path';
 import { fileURLToPath } from 'node:url';
@@ -35,6 +35,10 @@ export class Folder {
     const file = join(this.path, name);
     mkdirSync(dirname(file), { recursive: true });
     writeFileSync(file, text);
+  }
+
+  read(name: string): string {
+    return readFileSync(join(this.path, name), 'utf8');
   }
 
   run(...args: string[]): Result {
