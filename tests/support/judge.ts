@@ -63,13 +63,14 @@ export class Judge {
     const pick = (s: Drawn): number => s.low + (s.high - s.low) * next();
     // Away from zero, where signs and contacts have kinks that no difference quotient survives.
     const clear = (draw: () => number): number => {
-      for (;;) {
-        const value = draw();
-        if (Math.abs(value) > 0.2) return value;
-      }
+      let value = draw();
+      for (let tries = 0; Math.abs(value) <= 0.2 && tries < 50; tries++) value = draw();
+      return value;
     };
     const speed = (): number => clear(() => 4 * next() - 2);
-    while (this.states.length < (kinked ? STATES_WITH_KINKS : STATES)) {
+    const wanted = kinked ? STATES_WITH_KINKS : STATES;
+    for (let tries = 0; this.states.length < wanted; tries++) {
+      if (tries > 20 * wanted) throw new Error(`${this.fixture.file}: ${this.section.name} has no state away from kinks`);
       const at = new Map<string, readonly number[]>();
       for (const c of this.system.coordinates) at.set(c.name, [clear(() => pick(c)), speed(), 0]);
       for (const p of [...this.system.parameters, ...own.parameters.filter((o) => !at.has(o.name))]) at.set(p.name, [pick(p), 0, 0, 0]);
