@@ -9,7 +9,7 @@ import { binary } from './operators';
 import { bindPattern } from './patterns';
 import type { Scope } from './scope';
 import { sliceTargets } from './slices';
-import { arrivalOf, arrive, declare, readVariable, write } from './variables';
+import { arriveAt, declare, readVariable, write } from './variables';
 import { NOTHING, unread, type Value } from './values';
 
 /** `a = v`, `a += v`, `i++`. */
@@ -32,7 +32,7 @@ function assignName(m: Machine, scope: Scope, e: Expression & { kind: 'assign' }
   let value: Value;
   if (e.op) value = joined(m, scope, e, old, given, place);
   else if (m.request.withinLimits && known && clipsVariable(m, readVariable(m, known, place), given)) value = readVariable(m, known, place);
-  else value = arrive(m, name, given, arrivalOf(variable.scope, name, at));
+  else value = arriveAt(m, scope, variable, given, at);
   write(m, variable, value);
   return e.yields === 'old' ? old : value;
 }
@@ -108,7 +108,7 @@ export function assignTo(m: Machine, scope: Scope, pattern: Pattern, value: Valu
   if (pattern.kind === 'name') {
     const variable = scope.find(pattern.name) ?? declare(m, scope.functionScope, pattern.name);
     const place = m.place(scope, pattern.span);
-    write(m, variable, arrive(m, pattern.name, value, arrivalOf(variable.scope, pattern.name, place)));
+    write(m, variable, arriveAt(m, scope, variable, value, place));
   } else if (pattern.kind === 'place') {
     const { module } = scope.frame;
     const place = m.place(scope, pattern.span);

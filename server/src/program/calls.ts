@@ -87,6 +87,7 @@ function consume(m: Machine, scope: Scope, e: Expression & { kind: 'call' }, why
 
 export function argumentValues(m: Machine, scope: Scope, args: readonly Argument[], place: Place): ArgumentValue[] | Unread {
   const values: ArgumentValue[] = [];
+  let problem: Unread | undefined;
   for (const a of args) {
     const value = evaluate(m, scope, a.value);
     if (!a.spread) {
@@ -97,9 +98,9 @@ export function argumentValues(m: Machine, scope: Scope, args: readonly Argument
     const data = dataOf(m, value);
     if (items) values.push(...items.map((v) => ({ value: v })));
     else if (data?.kind === 'record') for (const [name, v] of data.members) values.push({ value: v, name });
-    else return value.kind === 'unread' ? value : unread('arguments spread from a list whose length is not known', place);
+    else problem ??= value.kind === 'unread' ? value : unread('arguments spread from a list whose length is not known', place);
   }
-  return values;
+  return problem ?? values;
 }
 
 function isProblem(x: ArgumentValue[] | Unread): x is Unread {
@@ -300,11 +301,9 @@ export function callFunctionValue(m: Machine, module: Module, f: Value, args: re
 export function invoke(m: Machine, f: FunctionValue, self: Value | undefined, args: readonly ArgumentValue[], place: Place): Value {
   const { node } = f;
   if (node.opaque !== undefined) {
-    const why = unread(`can't read \`${node.name}\`: it is ${node.opaque}`, place);
-    damage(m, args, why);
-    return why;
+    return unreadable(m, f, self, args, unread(`can't read \`${node.name}\`: it is ${node.opaque}`, place));
   }
-  if (m.calls >= DEEPEST_CALLS) return unread(`can't read \`${node.name}\`: it calls itself, or calls are nested too deeply (recursion)`, place);
+  if (m.calls >= DEEPEST_CALLS) return unreadable(m, f, self, args, unread(`can't read \`${node.name}\`: it calls itself, or calls are nested too deeply (recursion)`, place));
   m.calls++;
   const base = m.store;
   const receiver = node.inheritsSelf ? (f.self ?? f.scope.frame.self) : (f.self ?? self);
@@ -324,6 +323,14 @@ export function invoke(m: Machine, f: FunctionValue, self: Value | undefined, ar
   const value = runBody(m, scope, base, place);
   m.calls--;
   return value;
+}
+
+/** A function of the code that is not read may change whatever it assigns, its receiver and its arguments. */
+function unreadable(m: Machine, f: FunctionValue, self: Value | undefined, args: readonly ArgumentValue[], why: Unread): Unread {
+  damage(m, [{ value: f }, ...args], why);
+  const receiver = f.self ?? self;
+  if (receiver?.kind === 'object') m.breakObject(receiver.id, why);
+  return why;
 }
 
 /** Runs the body of a function whose parameters are bound, and brings its ways out together in `base`. */

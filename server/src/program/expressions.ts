@@ -43,9 +43,9 @@ function placed(m: Machine, e: Expression, place: Place, value: Value): Value {
   }
   if (value.kind !== 'scalar') return value;
   m.note(place, value.expr);
-  if (m.keepPlaces) return value;
   const { tag } = m.request;
-  return { kind: 'scalar', expr: tag && !m.quiet ? tag(place, e, value.expr) : value.expr, place };
+  const expr = tag && !m.quiet ? tag(place, e, value.expr) : value.expr;
+  return { kind: 'scalar', expr, place: m.keepPlaces ? value.place : place };
 }
 
 function evaluateInside(m: Machine, scope: Scope, e: Expression, place: Place): Value {

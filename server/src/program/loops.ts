@@ -134,9 +134,11 @@ export function forEach(m: Machine, scope: Scope, s: ForEach, place: Place, labe
   const start = m.store;
   const ways: Exit[] = [];
   let goesOn = true;
-  for (const item of items) {
+  // The list is looked at anew for each pass: the body may change it.
+  const length = (): number => (s.keys ? items.length : (itemsOf(m, over)?.length ?? items.length));
+  for (let k = 0; k < Math.min(length(), MOST_PASSES); k++) {
     const inner = new Scope(scope, scope.frame);
-    bindTo(inner, item);
+    bindTo(inner, (s.keys ? undefined : itemsOf(m, over)?.[k]) ?? items[k] ?? NOTHING);
     goesOn = runPass(m, () => execute(m, new Scope(inner, inner.frame), s.body), label, ways, place);
     if (!goesOn) break;
   }

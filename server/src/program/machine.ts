@@ -92,7 +92,11 @@ export class Machine {
 
   /** Runs `body` one level deeper, or gives the reason why not. */
   nested<T>(place: () => Place, body: () => T, tooDeep: (u: Unread) => T): T {
-    if (this.depth >= DEEPEST) return tooDeep(unread('this is nested too deeply to be read', place()));
+    if (this.depth >= DEEPEST) {
+      // What it would have changed is not known: nothing that follows is read.
+      this.stop ??= unread('this is nested too deeply to be read', place());
+      return tooDeep(this.stop);
+    }
     this.depth++;
     try {
       return body();

@@ -4,7 +4,7 @@ import { childOf, numberOf } from './generics';
 import { settle } from './conditions';
 import { DEAD, type Machine } from './machine';
 import type { Store } from './store';
-import { NOTHING, isData, isUnread, unread, type Content, type Data, type Value } from './values';
+import { NOTHING, isData, isUnread, unread, type Content, type Data, type Unread, type Value } from './values';
 
 /** Bringing branches together: what one of them wrote becomes `select(condition, a, b)`. */
 
@@ -167,6 +167,20 @@ export function fork(m: Machine, condition: Expr, place: Place, whenTrue: () => 
   const merged = mergePair(m, base, condition, { changes: changesA, value: a }, { changes: changesB, value: b }, place);
   apply(base, merged.changes);
   return merged.value;
+}
+
+/** What branches write of which nobody knows whether they are taken is not known afterwards. */
+export function spoilWritten(m: Machine, why: Unread, branches: readonly (() => void)[]): void {
+  const base = m.store;
+  const touched = new Set<number>();
+  for (const run of branches) {
+    m.store = base.child();
+    run();
+    for (const k of m.store.changesSince(base).keys()) touched.add(k);
+  }
+  m.store = base;
+  touched.delete(DEAD);
+  for (const k of touched) if (base.get(k)) m.spoilLocation(k, why);
 }
 
 /** Does `use` with a value; where it is one of two, with each of them in a branch of its own. */

@@ -129,12 +129,16 @@ function toOutput(m: Machine, value: Value, place: Place | undefined, isComputed
       return { kind: 'unread', reason: value.reason, place: value.place };
     case 'nothing':
       return lost('there is no value here');
-    case 'scalar':
-    case 'condition':
     case 'choice': {
+      const a = toOutput(m, value.whenTrue, place, isComputed, depth + 1);
+      const b = toOutput(m, value.whenFalse, place, isComputed, depth + 1);
+      return chosen(m, value.condition, a, b, place);
+    }
+    case 'scalar':
+    case 'condition': {
       const n = numeric(m, value, place ?? NOWHERE);
       if (isUnread(n)) return { kind: 'unread', reason: n.reason, place: n.place };
-      const at = isComputed || value.kind === 'choice' ? undefined : value.place;
+      const at = isComputed ? undefined : value.place;
       return { kind: 'scalar', expr: m.graph.select(m.dead, m.graph.nan, n), place: at };
     }
     case 'object':
@@ -142,6 +146,19 @@ function toOutput(m: Machine, value: Value, place: Place | undefined, isComputed
     default:
       return lost('this is no number, list or record');
   }
+}
+
+/** What is returned on one of two branches, slot by slot. */
+function chosen(m: Machine, condition: Expr, a: OutputValue, b: OutputValue, place: Place | undefined): OutputValue {
+  if (a.kind === 'unread') return a;
+  if (b.kind === 'unread') return b;
+  if (a.kind === 'scalar' && b.kind === 'scalar') {
+    return { kind: 'scalar', expr: m.graph.select(condition, a.expr, b.expr), place: a.expr === b.expr ? a.place : place };
+  }
+  if (a.kind === 'list' && b.kind === 'list' && a.items.length === b.items.length) {
+    return { kind: 'list', items: a.items.map((x, k) => chosen(m, condition, x, b.items[k]!, x.place)), place };
+  }
+  return { kind: 'unread', reason: 'a value whose shape differs between two branches', place };
 }
 
 const NOWHERE: Place = { file: '', span: { start: 0, end: 0 } };

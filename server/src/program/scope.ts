@@ -10,6 +10,8 @@ export interface Variable {
   readonly scope: Scope;
   /** Gives the value at first use: constants and state of a module, imports. */
   lazy?: () => Value;
+  /** True once a constant it was given stood for the symbol of its name; so will another. */
+  standsForSymbol?: boolean;
   busy?: boolean;
 }
 

@@ -6,12 +6,12 @@ import { evaluate } from './expressions';
 import type { Pattern, Statement } from './form';
 import { isClipGuard } from './limits';
 import { forEach, loop } from './loops';
-import { DEAD, type Machine } from './machine';
-import { apply, mergeEndings, mergePair, type Ending } from './merging';
+import type { Machine } from './machine';
+import { apply, mergeEndings, mergePair, spoilWritten, type Ending } from './merging';
 import { bindPattern } from './patterns';
 import { Scope } from './scope';
 import type { Store } from './store';
-import { arrivalOf, arrive, declare, write } from './variables';
+import { arriveAt, declare, write } from './variables';
 import { NOTHING, isUnread, unread, type Unread, type Value } from './values';
 
 /** Statements. A way out of a block that is taken only under some condition is kept with its guard and its own store. */
@@ -145,7 +145,7 @@ function executeDeclare(m: Machine, scope: Scope, s: Statement & { kind: 'declar
     // A block's own variable may have been looked for before: it keeps its location.
     const known = owner.variables.get(pattern.name);
     const variable = known ?? declare(m, owner, pattern.name);
-    write(m, variable, arrive(m, pattern.name, v, arrivalOf(owner, pattern.name, place)));
+    write(m, variable, arriveAt(m, owner, variable, v, place));
   });
 }
 
@@ -166,24 +166,12 @@ function executeIf(m: Machine, scope: Scope, s: Statement & { kind: 'if' }, plac
 
 /** Which branch is taken can't be read: what either of them writes is not known. */
 function unknownBranch(m: Machine, scope: Scope, s: Statement & { kind: 'if' }, why: Unread): Outcome {
-  const base = m.store;
-  const touched = new Set<number>();
   const exits: Exit[] = [];
-  for (const side of [s.whenTrue, s.whenFalse]) {
-    m.store = base.child();
+  const sides = [s.whenTrue, s.whenFalse].map((side) => (): void => {
     const outcome = execute(m, new Scope(scope, scope.frame), side);
-    for (const k of m.store.changesSince(base).keys()) touched.add(k);
-    for (const x of outcome.exits) {
-      for (const k of x.store.changesSince(base).keys()) touched.add(k);
-      if (x.kind !== 'throw') exits.push(x);
-    }
-  }
-  m.store = base;
-  touched.delete(DEAD);
-  for (const k of touched) {
-    const before = base.get(k);
-    if (before) m.spoilLocation(k, why);
-  }
+    for (const x of outcome.exits) if (x.kind !== 'throw') exits.push(x);
+  });
+  spoilWritten(m, why, sides);
   // Whether the function goes on at all is not known either.
   if (exits.length > 0) return spoil(m, why);
   return GOES_ON;

@@ -61,6 +61,22 @@ export function arrive(m: Machine, name: string, value: Value, arrival: Arrival)
   return settleName(m, name, name, value, arrival.place);
 }
 
+/**
+ * The value a variable takes on at an assignment. A constant stands for the symbol of the variable's name only where no
+ * other value was there before: `let m; if (heavy) m = 2; else m = 1`, not `let x = s[0]; if (x < 0) x = 0`.
+ */
+export function arriveAt(m: Machine, scope: Scope, variable: Variable, value: Value, place: Place): Value {
+  const before = m.store.value(variable.location);
+  const isFirst = (before === undefined && !variable.lazy) || before?.kind === 'nothing' || variable.standsForSymbol === true;
+  if (!isFirst || variable.scope.frame !== scope.frame) {
+    if (value.kind === 'object') addAlias(m, value, variable.name);
+    return value;
+  }
+  const settled = arrive(m, variable.name, value, arrivalOf(variable.scope, variable.name, place));
+  if (settled !== value && value.kind !== 'object') variable.standsForSymbol = true;
+  return settled;
+}
+
 /** The same for a place with a path: a static field, a member of a constant record. */
 export function settleName(m: Machine, name: string, path: string, value: Value, place: Place): Value {
   if (value.kind === 'object') return settleMembers(m, path, value, place, 0);

@@ -15,6 +15,11 @@ function apply(m: Machine, call: Call, f: Value | undefined, args: readonly Valu
   return callFunctionValue(m, call.module, f, args, call.place);
 }
 
+/** An item as it is now: the function may have changed the list. */
+function live(m: Machine, call: Call, k: number, before: Value): Value {
+  return (call.args[0] && itemsOf(m, call.args[0])?.[k]) ?? before;
+}
+
 function index(m: Machine, call: Call, k: number): Value {
   return m.scalar(m.graph.number(k + call.module.program.indexBase), call.place);
 }
@@ -32,7 +37,7 @@ export const HIGHER_ORDER: IntrinsicTable = {
   'list-map': (m, call) => {
     const items = itemsIn(m, call, 0);
     if (!isItems(items)) return items;
-    return m.list(items.map((v, k) => apply(m, call, call.args[1], [v, index(m, call, k), call.args[0]!])));
+    return m.list([...items].map((v, k) => apply(m, call, call.args[1], [live(m, call, k, v), index(m, call, k), call.args[0]!])));
   },
   /** `map(f, xs, ys)`: the function comes first. */
   'list-map-function-first': (m, call) => {
@@ -60,7 +65,7 @@ export const HIGHER_ORDER: IntrinsicTable = {
       if (f) damage(m, [{ value: f }], why);
       return why;
     }
-    for (const [k, v] of [...items].entries()) apply(m, call, call.args[1], [v, index(m, call, k), call.args[0]!]);
+    for (const [k, v] of [...items].entries()) apply(m, call, call.args[1], [live(m, call, k, v), index(m, call, k), call.args[0]!]);
     return { kind: 'nothing' };
   },
   'list-reduce': (m, call) => {
@@ -69,7 +74,9 @@ export const HIGHER_ORDER: IntrinsicTable = {
     const started = call.args.length > 2;
     let total = started ? call.args[2]! : items[0];
     if (!total) return unread('the reduction of an empty list', call.place);
-    for (let k = started ? 0 : 1; k < items.length; k++) total = apply(m, call, call.args[1], [total, items[k]!, index(m, call, k), call.args[0]!]);
+    for (const [k, v] of [...items].entries()) {
+      if (k > 0 || started) total = apply(m, call, call.args[1], [total, live(m, call, k, v), index(m, call, k), call.args[0]!]);
+    }
     return total;
   },
   'list-filter': (m, call) => {

@@ -2,6 +2,7 @@ import type { Place } from '../../text/span';
 import { applyScalar, type ArgumentValue } from '../calls';
 import type { Machine } from '../machine';
 import { withEach } from '../merging';
+import { scalarOf } from '../numbers';
 import type { Module } from '../scope';
 import { unread, type Value } from '../values';
 import { ARRAY_NUMBERS } from './array-numbers';
@@ -32,8 +33,18 @@ export const INTRINSICS: ReadonlyMap<string, Intrinsic> = new Map(
   [LISTS, HIGHER_ORDER, RECORDS, MATRICES, NUMBERS, ARRAY_SHAPES, ARRAY_NUMBERS, PLAIN_LISTS].flatMap((table) => Object.entries(table)),
 );
 
+function isNumberChoice(m: Machine, v: Value): boolean {
+  return v.kind === 'choice' ? isNumberChoice(m, v.whenTrue) && isNumberChoice(m, v.whenFalse) : scalarOf(m, v) !== undefined;
+}
+
 export function runIntrinsic(m: Machine, module: Module, name: string, self: Value | undefined, args: readonly ArgumentValue[], place: Place): Value {
   if (self?.kind === 'choice') return withEach(m, self, place, (v) => runIntrinsic(m, module, name, v, args, place));
+  const open = args.findIndex((a) => a.value.kind === 'choice' && !isNumberChoice(m, a.value));
+  if (open >= 0) {
+    return withEach(m, args[open]!.value, place, (v) =>
+      runIntrinsic(m, module, name, self, args.map((a, k) => (k === open ? { ...a, value: v } : a)), place),
+    );
+  }
   const values = args.filter((a) => a.name === undefined).map((a) => a.value);
   const all = self ? [self, ...values] : values;
   if (name.startsWith('scalar:')) {
