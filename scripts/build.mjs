@@ -4,11 +4,13 @@
  * parser) stays a chunk of its own that is loaded at the first file that needs it.
  */
 import { build } from 'esbuild';
-import { chmod, mkdir, rename, rm } from 'node:fs/promises';
-import { join } from 'node:path';
+import { chmod, copyFile, mkdir, rename, rm } from 'node:fs/promises';
+import { createRequire } from 'node:module';
+import { basename, join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 
 const root = fileURLToPath(new URL('..', import.meta.url));
+const require = createRequire(join(root, 'server', 'package.json'));
 
 /**
  * @param {{ production?: boolean, outdir?: string }} [options] production: smaller, without source maps.
@@ -63,7 +65,11 @@ async function bundle(outdir, production) {
     }),
   ]);
   await chmod(join(outdir, 'visviva.mjs'), 0o755);
+  await Promise.all(compiled.map((file) => copyFile(require.resolve(file), join(outdir, basename(file)))));
 }
+
+/** Parsers that come as compiled code, from their packages; they are loaded from beside the bundles. */
+const compiled = ['web-tree-sitter/web-tree-sitter.wasm', 'tree-sitter-python/tree-sitter-python.wasm'];
 
 /** CommonJS packages inside an ES module bundle still use the names that Node gives to every CommonJS module. */
 const namesForCommonJs = [

@@ -11,7 +11,7 @@ import {
 } from 'vscode-languageclient/node';
 import { details, type StatusItem } from './status-item';
 
-const languages = ['typescript', 'javascript', 'typescriptreact', 'javascriptreact', 'html', 'visviva'];
+const languages = ['typescript', 'javascript', 'typescriptreact', 'javascriptreact', 'html', 'python', 'visviva'];
 
 /** A server that stops this often within the time below is not started again by itself. */
 const stopLimit = 4;

@@ -41,7 +41,10 @@ export const importDirections = {
 };
 
 function judge(name, file, here, rule) {
-  if (isBuiltin(name)) return rule.node ? undefined : { messageId: 'node', data: { here, name } };
+  if (isBuiltin(name)) {
+    const allowed = rule.node === true || rule.node?.includes(name.replace(/^node:/, ''));
+    return allowed ? undefined : { messageId: 'node', data: { here, name } };
+  }
   if (!name.startsWith('.') && !name.startsWith('@visviva/')) {
     const wanted = name.split('/').slice(0, name.startsWith('@') ? 2 : 1).join('/');
     return rule.packages.includes(wanted) ? undefined : { messageId: 'package', data: { here, name: wanted } };

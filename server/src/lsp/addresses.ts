@@ -7,6 +7,7 @@ const extensionOf: Readonly<Record<string, string>> = {
   typescriptreact: '.tsx',
   javascriptreact: '.jsx',
   html: '.html',
+  python: '.py',
   visviva: '.visviva',
 };
 

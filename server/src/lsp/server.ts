@@ -27,7 +27,7 @@ import { fromPosition, toRange } from './ranges';
 import { toFlatSymbols, toSymbols } from './symbols';
 
 /** Kinds of files whose change on disk can change a result. */
-export const watchedFiles = '**/*.{ts,tsx,mts,cts,js,jsx,mjs,cjs,htm,html,json,visviva}';
+export const watchedFiles = '**/*.{ts,tsx,mts,cts,js,jsx,mjs,cjs,htm,html,json,py,visviva}';
 /** A file that only depends on the one being typed in may wait for a pause. */
 const dependentDelay = 100;
 
