@@ -52,6 +52,7 @@ const FUNCTIONS = new Set(['function_definition', 'lambda', 'class_definition'])
 /** Names that `global` or `nonlocal` take from outside, in this function itself. */
 export function outerNames(text: string, body: Node): Set<string> {
   const names = new Set<string>();
+  if (!/\b(?:global|nonlocal)\b/.test(text.slice(body.start, body.end))) return names;
   for (const node of nodesOf(body, (n) => !FUNCTIONS.has(n.type))) {
     if (node.type !== 'global_statement' && node.type !== 'nonlocal_statement') continue;
     for (const n of namedChildren(node)) names.add(textBetween(text, n));
@@ -63,7 +64,7 @@ export function outerNames(text: string, body: Node): Set<string> {
 export function changingNames(text: string, root: Node): Set<string> {
   const changing = new Set<string>();
   const seen = new Set<string>();
-  for (const node of nodesOf(root)) {
+  for (const node of /\bglobal\b/.test(text) ? nodesOf(root) : []) {
     if (node.type === 'global_statement') for (const n of namedChildren(node)) changing.add(textBetween(text, n));
   }
   for (const node of nodesOf(root, (n) => !FUNCTIONS.has(n.type))) {

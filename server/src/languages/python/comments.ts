@@ -10,16 +10,14 @@ const LINE_MARKS = ['#'];
 export function findComments(c: Context, syntax: Syntax): Comment[] {
   if (!c.text.includes(MARK)) return [];
   const found: Comment[] = [];
+  const places = placesIn(c, syntax.root);
   for (const span of runs(c, syntax.comments)) {
     if (!c.text.slice(span.start, span.end).includes(MARK)) continue;
-    found.push({ span, lineMarks: LINE_MARKS, subject: subjectOf(c, syntax.root, span) });
+    found.push({ span, lineMarks: LINE_MARKS, subject: subjectOf(c, places, span) });
   }
-  for (const node of nodesOf(syntax.root)) {
-    if (node.type !== 'expression_statement') continue;
-    const [text] = namedChildren(node);
-    if (!text || !/string$/.test(text.type) || !textOf(c, text).includes(MARK)) continue;
+  for (const { text, isFirst } of places.strings) {
     const span = { start: text.start, end: text.end };
-    found.push({ span, lineMarks: [], subject: isDocstring(syntax.root, node) ? ownerOf(c, syntax.root, span) : subjectOf(c, syntax.root, span) });
+    found.push({ span, lineMarks: [], subject: isFirst ? ownerOf(c, places, span) : subjectOf(c, places, span) });
   }
   return found.sort((a, b) => a.span.start - b.span.start);
 }
@@ -49,28 +47,43 @@ function columnOf(text: string, offset: number): number {
 
 const DEFINITIONS = new Set(['function_definition', 'class_definition', 'lambda']);
 
-/** The first statement of a body is its docstring. */
-function isDocstring(root: Node, statement: Node): boolean {
+/** What of the tree matters for comments, found in one pass. */
+interface Places {
+  readonly definitions: readonly Node[];
+  /** Statements in order of their places, those of one body after each other or nested. */
+  readonly statements: readonly Node[];
+  /** Strings that stand alone with a declaration in them; the first statement of a body is its docstring. */
+  readonly strings: readonly { readonly text: Node; readonly isFirst: boolean }[];
+}
+
+function placesIn(c: Context, root: Node): Places {
+  const definitions: Node[] = [];
+  const statements: Node[] = [];
+  const strings: { text: Node; isFirst: boolean }[] = [];
   for (const n of nodesOf(root)) {
-    if (n.start > statement.start) return false;
-    if ((n.type === 'block' || n.type === 'module') && n.children.find((x) => x.isNamed) === statement) return true;
+    if (DEFINITIONS.has(n.type)) definitions.push(n);
+    if (n.type !== 'block' && n.type !== 'module') continue;
+    let isFirst = true;
+    for (const s of n.children) {
+      if (!s.isNamed) continue;
+      statements.push(s);
+      const text = s.type === 'expression_statement' ? namedChildren(s)[0] : undefined;
+      if (text && /string$/.test(text.type) && textOf(c, text).includes(MARK)) strings.push({ text, isFirst });
+      isFirst = false;
+    }
   }
-  return false;
+  return { definitions, statements, strings };
 }
 
 /** What follows directly, where that is a function or class; else what is around. */
-function subjectOf(c: Context, root: Node, span: Range): Subject {
-  const next = nextDefinition(c, root, span);
-  return next ? named(c, root, next) : ownerOf(c, root, span);
+function subjectOf(c: Context, places: Places, span: Range): Subject {
+  const next = nextDefinition(c, places, span);
+  return next ? named(c, places, next) : ownerOf(c, places, span);
 }
 
-function nextDefinition(c: Context, root: Node, span: Range): Node | undefined {
+function nextDefinition(c: Context, places: Places, span: Range): Node | undefined {
   let next: Node | undefined;
-  for (const n of nodesOf(root)) {
-    if (n.type !== 'block' && n.type !== 'module') continue;
-    const first = n.children.find((x) => x.isNamed && x.start >= span.end);
-    if (first && (!next || first.start < next.start)) next = first;
-  }
+  for (const n of places.statements) if (n.start >= span.end && (!next || n.start < next.start)) next = n;
   if (!next || columnOf(c.text, next.start) < columnOf(c.text, span.start)) return undefined;
   return definitionIn(next);
 }
@@ -83,10 +96,10 @@ function definitionIn(statement: Node): Node | undefined {
   return at && DEFINITIONS.has(at.type) ? at : undefined;
 }
 
-function ownerOf(c: Context, root: Node, span: Range): Subject {
-  const around = chainTo(root, (n) => holds(c, n, span)).filter((n) => n.type !== 'lambda');
+function ownerOf(c: Context, places: Places, span: Range): Subject {
+  const around = chainTo(places, (n) => holds(c, n, span)).filter((n) => n.type !== 'lambda');
   const last = around[around.length - 1];
-  return last ? named(c, root, last) : { kind: 'file' };
+  return last ? named(c, places, last) : { kind: 'file' };
 }
 
 /** A comment indented deeper than a definition that just ended is still in it. */
@@ -97,14 +110,12 @@ function holds(c: Context, n: Node, span: Range): boolean {
   return /^(?:[ \t\f]*(?:#.*)?(?:\r\n|\n|\r))*[ \t\f]*(?:#.*)?$/.test(between) && columnOf(c.text, span.start) > columnOf(c.text, n.start);
 }
 
-function chainTo(root: Node, wanted: (node: Node) => boolean): Node[] {
-  const found: Node[] = [];
-  for (const n of nodesOf(root)) if (DEFINITIONS.has(n.type) && wanted(n)) found.push(n);
-  return found;
+function chainTo(places: Places, wanted: (node: Node) => boolean): Node[] {
+  return places.definitions.filter(wanted);
 }
 
-function named(c: Context, root: Node, node: Node): Subject {
-  const around = chainTo(root, (n) => n.start <= node.start && node.end <= n.end && n !== node);
+function named(c: Context, places: Places, node: Node): Subject {
+  const around = chainTo(places, (n) => n.start <= node.start && node.end <= n.end && n !== node);
   const path = [...around, node].flatMap((n) => nameOf(c, n) ?? (n === node ? [ANONYMOUS] : [])).join('.');
   if (node.type === 'class_definition') return { kind: 'class', path, node: classOf(c, node) };
   const owner = ownerClass(c, around);

@@ -32,7 +32,7 @@ function definition(c: Context, node: Node, { isMethod = false, decorators = [] 
   if (c.broken.has(node.start)) return { ...base, parameters: [], body: [], opaque: 'not finished: it has a syntax error' };
   const { parameters, names } = parametersOf(c, child(node, 'parameters'));
   const receiver = isMethod ? names[0] : undefined;
-  const opaque = opacity(node, body);
+  const opaque = opacity(c, node, body);
   const made: Statement[] = body ? inside(c, names, receiver, body, () => c.block(body)) : [];
   return { ...base, parameters, body: made, ...(opaque === undefined ? {} : { opaque }) };
 }
@@ -67,9 +67,9 @@ function lambda(c: Context, node: Node): FunctionNode {
 }
 
 /** Why a call of it can't be read, by how it is written. */
-function opacity(node: Node, body: Node | undefined): string | undefined {
+function opacity(c: Context, node: Node, body: Node | undefined): string | undefined {
   if (node.children.some((n) => n.type === 'async')) return 'an async function';
-  if (!body) return undefined;
+  if (!body || !/\byield\b/.test(textOf(c, body))) return undefined;
   for (const n of nodesOf(body, (x) => x.type !== 'function_definition' && x.type !== 'lambda' && x.type !== 'class_definition')) {
     if (n.type === 'yield') return 'a generator';
   }

@@ -28,15 +28,19 @@ export function copyTree(language: Language, tree: Tree): Syntax {
   const { types, fields } = language;
   const cursor = tree.walk();
   const comments: Node[] = [];
+  // Each question to the cursor is a call into the parser's memory, so none is asked twice.
   const make = (): Draft => {
-    const type = types[cursor.nodeTypeId] ?? cursor.nodeType;
+    const id = cursor.nodeTypeId;
+    const type = types[id] ?? cursor.nodeType;
+    const start = cursor.startIndex;
+    const end = cursor.endIndex;
     return {
       type,
-      start: cursor.startIndex,
-      end: cursor.endIndex,
+      start,
+      end,
       field: fields[cursor.currentFieldId] ?? undefined,
-      isNamed: cursor.nodeIsNamed,
-      isBroken: type === 'ERROR' || cursor.nodeIsMissing,
+      isNamed: language.nodeTypeIsNamed(id),
+      isBroken: type === 'ERROR' || (start === end && cursor.nodeIsMissing),
       children: [],
     };
   };
