@@ -7,6 +7,8 @@ import { harmless } from './report/width';
 export const DERIVE_FORMS = ['text', 'tex', 'typescript'] as const;
 export type DeriveForm = (typeof DERIVE_FORMS)[number];
 
+const COMMENT_MARK: Record<DeriveForm, string> = { text: '', tex: '% ', typescript: '// ' };
+
 /** Prints the derived equations of what a file declares. */
 export async function derive(file: string, form: DeriveForm, system: string | undefined, io: Io): Promise<Status> {
   const { service, inputs } = openService([file], io);
@@ -31,6 +33,6 @@ export async function derive(file: string, form: DeriveForm, system: string | un
 }
 
 function section(d: DerivedSystem, form: DeriveForm): string {
-  const title = { text: d.system, tex: `% ${d.system}`, typescript: `// ${d.system}` }[form];
+  const title = `${COMMENT_MARK[form]}${d.system}`;
   return `${harmless(title)}\n${d.text.replace(/\n*$/, '')}\n`;
 }

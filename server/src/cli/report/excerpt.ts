@@ -1,5 +1,5 @@
 import type { ReportRange } from '@visviva/shared';
-import { LineIndex } from '../../text/line-index';
+import type { LineIndex } from '../../text/line-index';
 import { cells, type Cell } from './width';
 
 export interface Excerpt {
@@ -13,14 +13,18 @@ export interface Excerpt {
 const MOST_COLUMNS = 110;
 const RULE = '‾';
 
+/** Of longer lines (code made by programs) only what surrounds the place is looked at. */
+const MOST_UNITS = 2000;
+
 /** The source line of a range, as a terminal shows it, and a rule for the line below it. */
-export function excerpt(text: string, range: ReportRange): Excerpt | undefined {
-  const source = new LineIndex(text).line(range.start.line);
+export function excerpt(lines: LineIndex, range: ReportRange): Excerpt | undefined {
+  const source = lines.line(range.start.line);
   if (source.trim() === '') return undefined;
   const from = range.start.column - 1;
   const to = range.end.line > range.start.line ? source.trimEnd().length : range.end.column - 1;
-  const all = cells(source);
-  const first = all.findIndex((c) => c.text.trim() !== '' && c.offset >= 0);
+  const near = Math.max(0, from - MOST_UNITS / 4);
+  const all = source.length <= MOST_UNITS ? cells(source) : shifted(cells(source.slice(near, near + MOST_UNITS)), near);
+  const first = all.findIndex((c) => c.text.trim() !== '');
   const window = cut(all.slice(Math.max(0, first)), from, to);
   let blanks = 0;
   let length = 0;
@@ -29,6 +33,10 @@ export function excerpt(text: string, range: ReportRange): Excerpt | undefined {
     else if (c.offset < to) length += c.width;
   }
   return { line: window.map((c) => c.text).join(''), blanks: ' '.repeat(blanks), rule: RULE.repeat(Math.max(1, length)) };
+}
+
+function shifted(line: readonly Cell[], by: number): Cell[] {
+  return line.map((c) => ({ ...c, offset: c.offset + by }));
 }
 
 function cut(line: readonly Cell[], from: number, to: number): Cell[] {

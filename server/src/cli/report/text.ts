@@ -1,5 +1,6 @@
 import type { Finding, Problem, Report, ReportClaim, ReportRange, Witness } from '@visviva/shared';
 import pc from 'picocolors';
+import { LineIndex } from '../../text/line-index';
 import { formatNumber, formatPair } from '../../text/number';
 import { excerpt } from './excerpt';
 import { harmless, textWidth } from './width';
@@ -25,6 +26,7 @@ interface Group {
 /** The report for people: a line per system that is well, the whole story of what is not. */
 export function textReport(report: Report, options: TextReportOptions): string {
   const colours = pc.createColors(options.colour);
+  const sources = new Map<string, LineIndex>();
   const out: string[] = [];
   const blank = () => {
     if (out.length > 0 && out.at(-1) !== '') out.push('');
@@ -79,8 +81,9 @@ export function textReport(report: Report, options: TextReportOptions): string {
   }
 
   function quote(file: string, range: ReportRange, paint: (s: string) => string): void {
-    const text = options.read(file);
-    const e = text === undefined ? undefined : excerpt(text, range);
+    let lines = sources.get(file);
+    if (!lines) sources.set(file, (lines = new LineIndex(options.read(file) ?? '')));
+    const e = excerpt(lines, range);
     if (!e) return;
     out.push(`      ${e.line}`, `      ${e.blanks}${paint(e.rule)}`);
   }
