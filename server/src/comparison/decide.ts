@@ -62,10 +62,13 @@ function decideTogether(request: DecideRequest, motion: Motion, decisions: (Deci
   const sampler = new Sampler(system);
   let votes = 0;
   let worst = 0;
+  let sampled = false;
   for (let batch = 0; batch < 3 && votes < STATES; batch++) {
     if (!request.budget.look()) return;
     const columns = new Map<Expr, Column>(sampler.draw(symbols, STATES));
-    const registers = tape.run((s) => columns.get(s), STATES);
+    const column = (s: Expr) => columns.get(s);
+    const registers = sampled ? tape.runSampled(column, STATES) : tape.run(column, STATES);
+    const before = votes;
     system.coordinates.forEach((c, i) => columns.set(c.acceleration, registers.column(found[i]!)));
     const residuals = motion.residual(columns, STATES);
     for (let s = 0; s < STATES; s++) {
@@ -84,6 +87,8 @@ function decideTogether(request: DecideRequest, motion: Motion, decisions: (Deci
       worst = Math.max(worst, share);
       visits.note(registers, s);
     }
+    // Values are there, but guaranteed bounds say nothing of them: estimate the bounds from here on.
+    if (votes - before < STATES / 2) sampled = true;
   }
   if (votes < FEWEST || visits.missing.length > 0 || singular(motion, symbols, sampler)) return;
   for (const i of claims) decisions[i] = { verdict: 'holds', states: votes, worst };
@@ -122,14 +127,16 @@ function decideEach(request: DecideRequest, motion: Motion, groups: readonly (re
   const symbols = prober.symbols;
   const sampler = new Sampler(derived.system);
   let tried = 0;
+  let bounds: 'guaranteed' | 'sampled' = 'guaranteed';
   for (let batch = 0; batch < MOST_BATCHES; batch++) {
     // Usual states first; unusual ones only to fill branches not reached and votes not given.
     const wide = batch >= 3;
     const open = tallies.filter((t) => t.votes < STATES || t.visits.missing.length > 0);
     if (open.length === 0 || (wide && tallies.every((t) => t.votes >= FEWEST && t.visits.missing.length === 0))) break;
     if (!budget.look()) break;
-    const { registers, columns } = prober.run(sampler.draw(symbols, STATES, wide), STATES);
+    const { registers, columns } = prober.run(sampler.draw(symbols, STATES, wide), STATES, bounds);
     tried += STATES;
+    let blurred = 0;
     for (let s = 0; s < STATES; s++) {
       const allowed = assumed.every((a) => registers.value(a, s) === 1 && registers.error(a, s) === 0);
       if (!allowed) continue;
@@ -137,6 +144,7 @@ function decideEach(request: DecideRequest, motion: Motion, groups: readonly (re
         const c = prober.compare(registers, claim, s);
         if (!c.votes) {
           t.missing++;
+          if (c.blurred) blurred++;
           return;
         }
         const fresh = t.visits.note(registers, s);
@@ -151,6 +159,8 @@ function decideEach(request: DecideRequest, motion: Motion, groups: readonly (re
         }
       });
     }
+    // Values are there, but guaranteed bounds say nothing of them: estimate the bounds from here on.
+    if (blurred > (STATES * tallies.length) / 2) bounds = 'sampled';
   }
   return tallies.map((t, claim) => conclude(request, motion, groups[claim]!, t, tried));
 }

@@ -17,6 +17,8 @@ export interface Comparison {
   readonly size: number;
   /** False where a value is missing, or rounding hides too much: the state does not vote. */
   readonly votes: boolean;
+  /** Both values are there; only the rounding bound keeps the state from voting. */
+  readonly blurred: boolean;
   readonly agrees: boolean;
 }
 
@@ -41,10 +43,15 @@ export class Prober {
   }
 
   /** Runs at these states, moved onto the constraints where there are any; `columns` of the answer are the states taken. */
-  run(columns: ReadonlyMap<Expr, Column>, n: number): { registers: Registers; columns: ReadonlyMap<Expr, Column> } {
+  run(
+    columns: ReadonlyMap<Expr, Column>,
+    n: number,
+    bounds: 'guaranteed' | 'sampled' = 'guaranteed',
+  ): { registers: Registers; columns: ReadonlyMap<Expr, Column> } {
     const at = this.motion.onConstraints(columns, n);
     const solution = this.needsMotion ? this.motion.solve(at, n) : undefined;
-    return { registers: this.tape.run((s) => at.get(s) ?? solution?.get(s), n), columns: at };
+    const column = (s: Expr) => at.get(s) ?? solution?.get(s);
+    return { registers: bounds === 'sampled' ? this.tape.runSampled(column, n) : this.tape.run(column, n), columns: at };
   }
 
   compare(registers: Registers, claim: number, sample: number): Comparison {
@@ -70,7 +77,8 @@ export class Prober {
     }
     // A bound as large as a millionth of the values says nothing; absolute, for values that happen to be near zero.
     const votes = clear && bound <= 1e-6 * Math.max(size, 1e-3);
-    return { found, expected, difference, bound, size, votes, agrees };
+    const blurred = !votes && Number.isFinite(found) && Number.isFinite(expected);
+    return { found, expected, difference, bound, size, votes, blurred, agrees };
   }
 }
 
