@@ -62,6 +62,9 @@ function placesIn(c: Context, root: Node): Places {
   const strings: { text: Node; isFirst: boolean }[] = [];
   for (const n of nodesOf(root)) {
     if (DEFINITIONS.has(n.type)) definitions.push(n);
+    // A comment may stand between a decorator and what it decorates.
+    const inner = n.type === 'decorated_definition' ? child(n, 'definition') : undefined;
+    if (inner) statements.push(inner);
     if (n.type !== 'block' && n.type !== 'module') continue;
     let isFirst = true;
     for (const s of n.children) {
