@@ -3,7 +3,7 @@ import type { SubjectRequest, SubjectResult } from '../comparison/subject';
 import type { Span } from '../text/span';
 import type { Candidate } from './search/candidates/candidate';
 import { trimmed, type Edit } from './search/edits';
-import { search } from './search/search';
+import { Search } from './search/search';
 import { isRepair, type Recheck } from './verify';
 
 /** One thing that is wrong with the code of a function. */
@@ -29,12 +29,13 @@ const MOST_UNTRIED = 6;
 /** Looks for what is wrong with a function whose claims differ, and for an edit that makes them right. */
 export async function diagnose(request: SubjectRequest, result: SubjectResult, source: string, recheck: Recheck): Promise<Diagnosis | undefined> {
   if (!result.claims.some((c) => c.decision.verdict === 'differs')) return undefined;
-  const found = search(request, result, source);
+  const found = Search.start(request, result, source);
   if (!found) return undefined;
-  const tries = distinct([...found.candidates.slice(0, MOST_TRIES), ...found.untried.slice(0, MOST_UNTRIED)]);
-  for (const c of tries) {
-    if (!request.budget.look()) break;
-    if (await isRepair(result, c.edits, recheck)) return repaired([c], source);
+  for (const stage of [() => found.known(), () => found.open(), () => found.untried.slice(0, MOST_UNTRIED)]) {
+    for (const c of distinct(stage()).slice(0, MOST_TRIES)) {
+      if (!request.budget.look()) break;
+      if (await isRepair(result, c.edits, recheck)) return repaired([c], source);
+    }
   }
   return { faults: [], edits: undefined, place: found.places[0]?.span };
 }

@@ -11,7 +11,7 @@ import { readElement, readMember } from './members';
 import { fork, spoilWritten, withEach } from './merging';
 import { unknownName } from './modules';
 import { dataOf, itemsOf, numeric } from './numbers';
-import { binary, negate } from './operators';
+import { binary, depthOf, negate } from './operators';
 import { transpose } from './intrinsics/matrices';
 import type { Scope } from './scope';
 import { sliceItems } from './slices';
@@ -144,6 +144,11 @@ function indexValue(m: Machine, scope: Scope, e: Expression & { kind: 'index' },
 function indexWith(m: Machine, scope: Scope, object: Value, indices: readonly Expression[], place: Place, base: number): Value {
   const [first, ...rest] = indices;
   if (!first) return object;
+  if (first.kind === 'slice' && first.rest) {
+    const whole = Math.max(0, depthOf(m, object) - rest.length);
+    const ranges = Array.from({ length: whole }, (): Expression => ({ kind: 'slice', span: first.span }));
+    return indexWith(m, scope, object, [...ranges, ...rest], place, base);
+  }
   if (first.kind === 'slice') {
     const items = sliceItems(m, scope, object, first, place);
     if (isSlice(items)) {

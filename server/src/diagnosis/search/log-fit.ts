@@ -32,7 +32,7 @@ export class LogFit {
       constant ??= rest;
       if (!(Math.abs(rest - constant) <= 1e-6 * Math.abs(constant))) return undefined;
     }
-    return constant === undefined ? undefined : { constant, powers };
+    return constant === undefined || Math.abs(constant) < 1e-3 || Math.abs(constant) > 1e3 ? undefined : { constant, powers };
   }
 }
 

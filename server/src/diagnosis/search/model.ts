@@ -11,7 +11,10 @@ import { TrialTape } from './trial-tape';
 
 /** States every candidate is tried at, and copies of them run together. */
 export const STATES = 16;
-const BLOCKS = 4;
+const BLOCKS = 2;
+/** A first look takes fewer states and more candidates at a time. */
+const FIRST_STATES = 4;
+const FIRST_BLOCKS = 8;
 const DRAWN = 64;
 const FEWEST = 8;
 /** Agreement of values computed along different ways, against the size of what is compared. */
@@ -36,6 +39,7 @@ export class Model {
     readonly targets: readonly Target[],
     readonly n: number,
     private readonly tape: TrialTape,
+    private readonly first: TrialTape,
     private readonly values: TrialTape,
     private readonly columns: ReadonlyMap<Expr, Float64Array>,
   ) {}
@@ -48,7 +52,7 @@ export class Model {
     const prober = new Prober(
       new Motion(derived),
       pairs.map((p) => [{ found: p.plain, expected: p.expected }]),
-      tagged.reading.assumed,
+      [...tagged.reading.assumed, ...symbolsOf(...pairs.flatMap((p) => [p.plain, p.expected]))],
     );
     const reads = [...tagged.evaluations.values()].flatMap((list) => list.map((e) => e.read));
     const wanted = new Set<Expr>([...prober.symbols, ...system.parameters.map((p) => p.symbol)]);
@@ -70,13 +74,9 @@ export class Model {
     for (const symbol of prober.tape.symbols) {
       if (!state.has(symbol)) state.set(symbol, Float64Array.from(good, (s) => registers.value(symbol, s)));
     }
-    const wide = new Map<Expr, Float64Array>();
-    for (const [symbol, values] of state) {
-      const w = new Float64Array(n * BLOCKS);
-      for (let b = 0; b < BLOCKS; b++) w.set(values, b * n);
-      wide.set(symbol, w);
-    }
-    const tape = new TrialTape(pairs.map((p) => p.found), n * BLOCKS, (s) => wide.get(s));
+    const founds = pairs.map((p) => p.found);
+    const tape = new TrialTape(founds, n * BLOCKS, (s) => repeated(state.get(s), n, BLOCKS));
+    const first = new TrialTape(founds, FIRST_STATES * FIRST_BLOCKS, (s) => repeated(state.get(s), FIRST_STATES, FIRST_BLOCKS));
     const values = new TrialTape([...reads, ...tagged.names.map((x) => x.expr)], n, (s) => state.get(s));
     const targets: Target[] = [];
     for (let k = 0; k < pairs.length; k++) {
@@ -89,7 +89,7 @@ export class Model {
       const differs = !expected.every((x, s) => Math.abs(x - plain[s]!) <= CLOSE * scale[s]!);
       targets.push({ index: known[k]![0], found: pairs[k]!.found, expected, base, scale, differs });
     }
-    return new Model(derived, tagged, targets, n, tape, values, state);
+    return new Model(derived, tagged, targets, n, tape, first, values, state);
   }
 
   /** Evaluations of a place that some claim depends on; empty where none does. */
@@ -108,38 +108,68 @@ export class Model {
   }
 
   /**
-   * Tries up to four changes at a time. Each gives the new values of some evaluations.
-   * @returns for each change, the claims' values
+   * Tries changes, a few at a time. Each gives the new values of some evaluations.
+   * @param use is given the claims' values for each change
    */
   outcomes(changes: readonly Change[], use: (change: number, found: (target: Target) => Float64Array) => void): void {
-    const { n } = this;
-    for (let from = 0; from < changes.length; from += BLOCKS) {
-      const group = changes.slice(from, from + BLOCKS);
+    this.run(this.tape, this.n, BLOCKS, changes, use);
+  }
+
+  /** Those of many changes that make every claim right. */
+  successes(changes: readonly Change[]): number[] {
+    const promising: number[] = [];
+    this.run(this.first, FIRST_STATES, FIRST_BLOCKS, changes, (k, found) => {
+      if (this.targets.every((t) => this.agrees(t, found(t), FIRST_STATES, CLOSE))) promising.push(k);
+    });
+    const out: number[] = [];
+    this.outcomes(promising.map((k) => changes[k]!), (k, found) => {
+      if (this.targets.every((t) => this.holds(t, found(t)))) out.push(promising[k]!);
+    });
+    return out;
+  }
+
+  private run(
+    tape: TrialTape,
+    n: number,
+    blocks: number,
+    changes: readonly Change[],
+    use: (change: number, found: (target: Target) => Float64Array) => void,
+  ): void {
+    for (let from = 0; from < changes.length; from += blocks) {
+      const group = changes.slice(from, from + blocks);
       const settings = new Map<Expr, Float64Array>();
       group.forEach((change, b) => {
         for (const { evaluation, value } of change) {
+          if (!tape.has(evaluation.tag)) continue;
           let column = settings.get(evaluation.tag);
-          if (!column) settings.set(evaluation.tag, (column = new Float64Array(n * BLOCKS)));
-          const read = this.values.baseOf(evaluation.read);
+          if (!column) settings.set(evaluation.tag, (column = new Float64Array(n * blocks)));
+          const read = this.value(evaluation.read)!;
           for (let s = 0; s < n; s++) column[b * n + s] = value[s]! - read[s]!;
         }
       });
-      this.tape.try([...settings].map(([symbol, values]) => ({ symbol, values })), () => {
-        group.forEach((_, b) => use(from + b, (t) => this.tape.valueOf(t.found).subarray(b * n, (b + 1) * n)));
+      tape.try([...settings].map(([symbol, values]) => ({ symbol, values })), () => {
+        group.forEach((_, b) => use(from + b, (t) => tape.valueOf(t.found).subarray(b * n, (b + 1) * n)));
       });
     }
   }
 
   holds(target: Target, found: Float64Array, tolerance = CLOSE): boolean {
-    for (let s = 0; s < this.n; s++) {
+    return this.agrees(target, found, this.n, tolerance);
+  }
+
+  private agrees(target: Target, found: Float64Array, n: number, tolerance: number): boolean {
+    for (let s = 0; s < n; s++) {
       if (!(Math.abs(found[s]! - target.expected[s]!) <= tolerance * target.scale[s]!)) return false;
     }
     return true;
   }
+}
 
-  allHold(found: (t: Target) => Float64Array, tolerance = CLOSE): boolean {
-    return this.targets.every((t) => this.holds(t, found(t), tolerance));
-  }
+function repeated(values: Float64Array | undefined, n: number, blocks: number): Float64Array | undefined {
+  if (!values) return undefined;
+  const out = new Float64Array(n * blocks);
+  for (let b = 0; b < blocks; b++) out.set(values.subarray(0, n), b * n);
+  return out;
 }
 
 /** New values of some evaluations, state by state. */

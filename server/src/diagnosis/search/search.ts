@@ -1,6 +1,5 @@
 import type { ClaimResult, SubjectRequest, SubjectResult } from '../../comparison/subject';
 import type { Expression } from '../../program/form';
-import type { Span } from '../../text/span';
 import { solvePlace, type Needed } from './angelic';
 import type { Atom, Candidate, Maker, Scene, Spot } from './candidates/candidate';
 import { agree } from './candidates/candidate';
@@ -15,86 +14,121 @@ import { Model, type Change } from './model';
 import { mapSource, type Site, type SourceMap } from './sites';
 import { readTagged, type Evaluation } from './tagged';
 
-/** What a search over one function found. */
-export interface SearchResult {
-  readonly model: Model;
-  readonly map: SourceMap;
-  /** Edits that make all claims right at the sampled states, likeliest first; reading the edited text must confirm them. */
-  readonly candidates: readonly Candidate[];
-  /** Edits that were not tried by numbers. */
-  readonly untried: readonly Candidate[];
-  /** Places at which some value would make all claims right, the smallest first. */
-  readonly places: readonly Site[];
-  /** Every edit tried, for the search of pairs. */
-  readonly all: readonly Candidate[];
-}
-
 const BASIC: readonly Maker[] = [signs, operators, drops, groupings, names, constants, functions, powers];
 
-export function search(request: SubjectRequest, result: SubjectResult, source: string): SearchResult | undefined {
-  const { derived, budget, program, file } = request;
-  if (derived.system.near || !result.reading) return undefined;
-  const claims = result.claims;
-  const starts = result.reading.trace.filter((t) => t.place.file === file).map((t) => t.place.span.start).sort((a, b) => a - b);
-  const map = mapSource(program, (span) => containsAny(starts, span));
-  const tagged = readTagged(request, claims, map);
-  const model = tagged && Model.make(derived, claims, tagged);
-  if (!tagged || !model || !model.targets.some((t) => t.differs)) return undefined;
+/** The search for an edit that makes all claims of a function right, in stages from cheap to dear. */
+export class Search {
+  /** Places at which some value would make all claims right, the smallest first. */
+  readonly places: Site[] = [];
+  /** Edits that numbers can't try. */
+  readonly untried: Candidate[] = [];
+  /** Every edit thought of so far. */
+  readonly all: Candidate[] = [];
+  private readonly needs = new Map<Site, Needed>();
+  private readonly scene: Scene;
+  private readonly makers: readonly Maker[];
+  private readonly repeated = new Map<string, Candidate[]>();
 
-  const scene = makeScene(request, model, map, source);
-  const terms = knownTerms(model, wantedTerms(claims, derived.residuals));
-  const symbols = [...derived.system.parameters, ...derived.system.inputs].map((p) => p.symbol);
-  const fit = new LogFit(
-    symbols.flatMap((expr) => {
+  private constructor(
+    private readonly request: SubjectRequest,
+    claims: readonly ClaimResult[],
+    readonly model: Model,
+    readonly map: SourceMap,
+    private readonly source: string,
+  ) {
+    const { system, residuals } = request.derived;
+    this.scene = makeScene(request, model, map, source);
+    const terms = knownTerms(model, wantedTerms(claims, residuals));
+    const symbols = [...system.parameters, ...system.inputs].map((p) => p.symbol);
+    const bases = symbols.flatMap((expr) => {
       const value = model.column(expr);
       return value ? [{ expr, value }] : [];
-    }),
-    model.n,
-  );
-  const makers = [...BASIC, insertions(terms, fit)];
+    });
+    this.makers = [...BASIC, insertions(terms, new LogFit(bases, model.n))];
+    for (const site of map.sites) {
+      if (!request.budget.look()) break;
+      const evaluations = model.evaluations(site);
+      if (evaluations.length === 0 || !this.valuesOf(evaluations)) continue;
+      this.needs.set(site, solvePlace(model, site, evaluations));
+    }
+    for (const [site, needed] of this.needs) if (needed.kind === 'values') this.places.push(site);
+    this.places.sort((a, b) => a.span.end - a.span.start - (b.span.end - b.span.start));
+  }
 
-  const passed: Candidate[] = [];
-  const untried: Candidate[] = [];
-  const all: Candidate[] = [];
-  const places: Site[] = [];
-  const repeated = new Map<string, Candidate[]>();
-  for (const site of map.sites) {
-    if (!budget.look()) break;
-    const evaluations = model.evaluations(site);
-    if (evaluations.length === 0) continue;
-    const values = evaluations.map((e) => model.value(e.read));
-    if (values.some((v) => v === undefined || !v.every(Number.isFinite))) continue;
-    const needed = solvePlace(model, site, evaluations);
+  static start(request: SubjectRequest, result: SubjectResult, source: string): Search | undefined {
+    const { derived, program } = request;
+    if (derived.system.near || !result.reading) return undefined;
+    const map = mapSource(program);
+    const tagged = readTagged(request, result.claims, map);
+    const model = tagged && Model.make(derived, result.claims, tagged);
+    if (!model || !model.targets.some((t) => t.differs)) return undefined;
+    return new Search(request, result.claims, model, map, source);
+  }
+
+  /** Edits at places where the value needed is known. Candidates are right at all sampled states, likeliest first. */
+  known(): Candidate[] {
+    return this.at('values').sort(byCost);
+  }
+
+  /** Edits everywhere else; rows exchanged; the same edit at several places. */
+  open(): Candidate[] {
+    const passed = this.at('open');
+    for (const [site, needed] of this.needs) if (needed.kind === 'none') this.make(site, needed);
+    const swaps: Candidate[] = [];
+    exchanges(this.scene, this.map.siblings, (s) => this.model.evaluations(s), (c) => swaps.push(c));
+    this.all.push(...swaps);
+    passed.push(...confirmed(this.model, swaps), ...everywhere(this.model, this.repeated));
+    this.untried.sort(byCost);
+    return passed.sort(byCost);
+  }
+
+  private at(kind: Needed['kind']): Candidate[] {
+    const passed: Candidate[] = [];
+    for (const [site, needed] of this.needs) {
+      if (needed.kind !== kind) continue;
+      if (!this.request.budget.look()) break;
+      passed.push(...confirmed(this.model, this.make(site, needed)));
+    }
+    return passed;
+  }
+
+  /** Makes the candidates of a place; returned are those worth trying. */
+  private make(site: Site, needed: Needed): Candidate[] {
+    const evaluations = this.model.evaluations(site);
     const spot: Spot = {
       site,
       evaluations,
-      values: values as Float64Array[],
-      text: source.slice(site.span.start, site.span.end),
+      values: this.valuesOf(evaluations)!,
+      text: this.source.slice(site.span.start, site.span.end),
       need: needed.kind === 'values' ? needed.need : undefined,
     };
-    if (needed.kind === 'values') places.push(site);
-    const open: Candidate[] = [];
+    const worth: Candidate[] = [];
+    const from = this.all.length;
     const give = (c: Candidate): void => {
-      all.push(c);
-      if (!c.values) untried.push(c);
-      else if (needed.kind === 'values') {
-        if (agree(c.values[0]!, needed.need)) open.push(c);
-      } else if (needed.kind === 'open') open.push(c);
+      this.all.push(c);
+      if (!c.values) this.untried.push(c);
+      else if (needed.kind === 'values' ? agree(c.values[0]!, needed.need) : needed.kind === 'open') worth.push(c);
     };
-    const plain = needed.kind === 'values' ? spot : { ...spot, need: undefined };
-    for (const make of makers) make(scene, plain, give);
-    passed.push(...confirmed(model, open));
-    remember(repeated, spot, all, site);
+    for (const make of this.makers) make(this.scene, spot, give);
+    if (spot.text.length <= 60) this.remember(spot.text, this.all.slice(from));
+    return worth;
   }
-  exchanges(scene, map.siblings, (s) => model.evaluations(s), (c) => {
-    all.push(c);
-    passed.push(...confirmed(model, [c]));
-  });
-  passed.push(...everywhere(model, repeated));
-  passed.sort(byCost);
-  places.sort((a, b) => a.span.end - a.span.start - (b.span.end - b.span.start));
-  untried.sort(byCost);
-  return { model, map, candidates: passed, untried, places, all };
+
+  /** Candidates of places with the same text, to be made together: one wrong name used twice. */
+  private remember(text: string, candidates: readonly Candidate[]): void {
+    for (const c of candidates) {
+      if (!c.values) continue;
+      const key = `${text}\u0000${c.label}`;
+      const list = this.repeated.get(key);
+      if (list) list.push(c);
+      else this.repeated.set(key, [c]);
+    }
+  }
+
+  private valuesOf(evaluations: readonly Evaluation[]): Float64Array[] | undefined {
+    const values = evaluations.map((e) => this.model.value(e.read));
+    return values.every((v) => v?.every(Number.isFinite)) ? (values as Float64Array[]) : undefined;
+  }
 }
 
 function byCost(a: Candidate, b: Candidate): number {
@@ -107,30 +141,13 @@ function size(c: Candidate): number {
 
 /** Runs candidates in the model; keeps those that make every claim right. */
 export function confirmed(model: Model, candidates: readonly Candidate[]): Candidate[] {
-  const out: Candidate[] = [];
-  model.outcomes(candidates.map((c) => changeOf(model, c)), (k, found) => {
-    if (model.allHold(found)) out.push(candidates[k]!);
-  });
-  return out;
+  return model.successes(candidates.map((c) => changeOf(model, c))).map((k) => candidates[k]!);
 }
 
 export function changeOf(model: Model, c: Candidate): Change {
   const one = (site: Site, values: readonly Float64Array[]): Change =>
     model.evaluations(site).map((evaluation, k) => ({ evaluation, value: values[k]! }));
   return [...one(c.site, c.values!), ...(c.also ?? []).flatMap((a) => one(a.site, a.values))];
-}
-
-/** Candidates of places with the same text, to be made together: one wrong name used twice. */
-function remember(repeated: Map<string, Candidate[]>, spot: Spot, all: readonly Candidate[], site: Site): void {
-  if (spot.text.length > 60) return;
-  for (let i = all.length - 1; i >= 0 && all[i]!.site === site; i--) {
-    const c = all[i]!;
-    if (!c.values) continue;
-    const key = `${spot.text}\u0000${c.label}`;
-    const list = repeated.get(key);
-    if (list) list.push(c);
-    else repeated.set(key, [c]);
-  }
 }
 
 const MOST_REPEATS = 8;
@@ -148,17 +165,6 @@ function everywhere(model: Model, repeated: ReadonlyMap<string, readonly Candida
     });
   }
   return confirmed(model, joined.slice(0, 600));
-}
-
-function containsAny(starts: readonly number[], span: Span): boolean {
-  let low = 0;
-  let high = starts.length;
-  while (low < high) {
-    const middle = (low + high) >> 1;
-    if (starts[middle]! < span.start) low = middle + 1;
-    else high = middle;
-  }
-  return low < starts.length && starts[low]! < span.end;
 }
 
 function wantedTerms(claims: readonly ClaimResult[], residuals: readonly import('../../expression/node').Expr[]) {
@@ -224,5 +230,3 @@ function definedAt(map: SourceMap, text: string): number {
   }
   return at;
 }
-
-export type { Needed };

@@ -52,6 +52,8 @@ type Task = { readonly x: unknown; readonly context: Context };
 const SCALAR = /^(a?(sin|cos|tan)h?|atan2|arctan2?|arcsin|arccos|sqrt|abs|exp|log|fabs|hypot|cbrt|sinf|cosf|sqrtf)$/i;
 const POWER = /^(pow|power|powf|powi|float_power)$/i;
 
+const MOST_SITES = 40_000;
+
 /** A call of a function of numbers. */
 export function isScalarCall(e: Expression & { readonly kind: 'call' }): boolean {
   return SCALAR.test(calleeName(e)) || POWER.test(calleeName(e));
@@ -62,10 +64,9 @@ function calleeName(e: Expression & { readonly kind: 'call' }): string {
 }
 
 /**
- * All sub-expressions of a program that stand inside the given spans (of functions that were read). Iterative, so that
- * long chains do no harm.
+ * All sub-expressions of a program. Iterative, so that long chains do no harm.
  */
-export function mapSource(program: Program, isRead: (span: Span) => boolean): SourceMap {
+export function mapSource(program: Program): SourceMap {
   const sites: Site[] = [];
   const byNode = new Map<Expression, Site>();
   const siblings: Siblings[] = [];
@@ -84,7 +85,7 @@ export function mapSource(program: Program, isRead: (span: Span) => boolean): So
     }
     if (typeof x !== 'object' || x === null) continue;
     const node = x as { readonly kind?: string; readonly span?: Span };
-    if (node.span && !isRead(node.span)) continue;
+    if (sites.length > MOST_SITES) break;
     if (isExpression(node)) {
       const site: Site = {
         node,

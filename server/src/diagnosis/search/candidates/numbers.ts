@@ -87,7 +87,7 @@ export function writeNice(x: number, scene: Scene, like: string | undefined): Ni
   const write = (k: number): string => (float ? `${k}.0` : String(k));
   for (let q = 1; q <= MOST; q++) {
     const p = Math.round(x * q);
-    if (p === 0 && Math.abs(x) > 1e-9) continue;
+    if (p === 0 && (like === undefined || Math.abs(x) > 1e-9)) continue;
     if (Math.abs(p) > 400 || Math.abs(x - p / q) > 1e-8 * Math.max(1, Math.abs(x))) continue;
     const value = p / q;
     if (q === 1) return { text: write(p), value, binding: p < 0 ? Binding.sign : Binding.atom, whole: true, size: p > 12 ? 2 : 0 };
