@@ -11,23 +11,31 @@ import { ENERGY_WORDS, LONG_WORDS } from './words';
 /** The statements of one group of lines: mostly one; several where commas join them (`T = ..., V = ...`). */
 export function parseStatements(c: Cursor, word?: string): Statement[] {
   const result: Statement[] = [];
+  let first = c.take();
+  let head = word ?? first.text;
   for (;;) {
-    const first = c.take();
-    const contents = parseContent(c, result.length ? first.text : (word ?? first.text));
+    const contents = parseContent(c, head);
     const over = c.isWord('over') || c.isWord('for') ? parseFamilies(c, parseExpression) : undefined;
     c.skipRemark();
     const joined = c.is(',') && headAt(c, 1);
-    if (!joined) reportRest(c);
+    // `parameters m[i] over i in 1..3, g > 0`: the same statement goes on, without the family.
+    const resumed = !joined && over !== undefined && SYMBOL_WORDS.has(head) && c.is(',') && c.peek(1).kind === 'name';
+    if (!joined && !resumed) reportRest(c);
     const remark = c.remarks.map((r) => r.text).join('; ');
     const span = c.from(first.span.start);
     for (const content of contents) {
       result.push({ ...content, span, wordSpan: first.span, ...(remark && { remark }), ...(over && { over }) } as Statement);
     }
-    if (!joined) return result;
+    if (!joined && !resumed) return result;
     c.remarks.length = 0;
     c.take();
+    if (!joined) continue;
+    first = c.take();
+    head = first.text;
   }
 }
+
+const SYMBOL_WORDS: ReadonlySet<string> = new Set(['coordinates', 'parameters', 'inputs']);
 
 /** True where another statement begins at the k-th token: `V =`, `Q[x] =`, `checks return`. */
 function headAt(c: Cursor, k: number): boolean {
