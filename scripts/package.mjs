@@ -10,7 +10,7 @@ export async function packageExtension(folder = root) {
   const { name, version } = JSON.parse(readFileSync(join(root, 'package.json'), 'utf8'));
   mkdirSync(folder, { recursive: true });
   const packagePath = join(folder, `${name}-${version}.vsix`);
-  await createVSIX({ cwd: root, packagePath, dependencies: false, allowMissingRepository: true });
+  await createVSIX({ cwd: root, packagePath, dependencies: false, allowMissingRepository: true, rewriteRelativeLinks: false });
   return packagePath;
 }
 

@@ -7,6 +7,7 @@ import {
   createMessageConnection,
   IPCMessageReader,
   IPCMessageWriter,
+  type CodeAction,
   type DocumentSymbol,
   type Hover,
 } from 'vscode-languageserver-protocol/node';
@@ -61,6 +62,21 @@ describe('the built server, over standard input and output', () => {
     expect((await client.diagnostics(uri, 2)).diagnostics.length).toBeGreaterThan(0);
     client.change(uri, 3, '-', { start: { line, character }, end: { line, character } });
     expect((await client.diagnostics(uri, 3)).diagnostics).toEqual([]);
+  });
+
+  test('the repair of a wrong sign makes the file right', async () => {
+    await client.initialize(rich);
+    const wrong = right.replace('- p.g * sine)', '+ p.g * sine)');
+    client.open(uri, wrong);
+    const { diagnostics } = await client.diagnostics(uri, 1);
+    const [action] = await client.request<CodeAction[]>('textDocument/codeAction', {
+      textDocument: { uri },
+      range: diagnostics[0]!.range,
+      context: { diagnostics },
+    });
+    expect(action).toMatchObject({ kind: 'quickfix', diagnostics: [{ source: 'visviva' }] });
+    for (const { range, newText } of action!.edit!.changes![uri]!) client.change(uri, 2, newText, range);
+    expect((await client.diagnostics(uri, 2)).diagnostics).toEqual([]);
   });
 
   test('counts columns in UTF-16 units, with emoji, Greek and tabs before the place, and CRLF line ends', async () => {

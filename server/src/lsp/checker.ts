@@ -68,6 +68,7 @@ export class Checker {
       this.tell({ uri: run.key, version, counts: nothing });
       return;
     }
+    open.result = undefined;
     const again = open.ranOutAt === version;
     try {
       await service.prepare(file); // loading a parser is not the file's fault
@@ -80,6 +81,7 @@ export class Checker {
         this.request(open, pause);
       }
       open.dependsOn = result.dependsOn;
+      open.result = { version, result };
       const diagnostics = toDiagnostics(result, {
         uriOf: (name) => this.context.addresses.uriOf(name),
         line: (line) => lineOf(document, line),

@@ -1,5 +1,6 @@
 import type { Diagnostic } from 'vscode-languageserver';
 import type { TextDocument } from 'vscode-languageserver-textdocument';
+import type { FileResult } from '../service/api';
 
 /** A document that is open in the editor, and what is known of it. */
 export interface OpenFile {
@@ -7,6 +8,8 @@ export interface OpenFile {
   readonly document: TextDocument;
   /** Other files that its last result was made from. */
   dependsOn: readonly string[];
+  /** Its last result, and the version that it is about. */
+  result: { readonly version: number; readonly result: FileResult } | undefined;
   /** The version whose check ran out of time. */
   ranOutAt: number | undefined;
   /** What the editor shows of it now; undefined before the first result. */
@@ -17,7 +20,7 @@ export class OpenFiles {
   private readonly byUri = new Map<string, OpenFile>();
 
   set(file: string, document: TextDocument): OpenFile {
-    const open: OpenFile = { file, document, dependsOn: [], ranOutAt: undefined, published: undefined };
+    const open: OpenFile = { file, document, dependsOn: [], result: undefined, ranOutAt: undefined, published: undefined };
     this.byUri.set(document.uri, open);
     return open;
   }

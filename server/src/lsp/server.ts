@@ -1,5 +1,6 @@
 import { defaultSettings, readSettings, type Settings } from '@visviva/shared';
 import {
+  CodeActionKind,
   DidChangeConfigurationNotification,
   DidChangeWatchedFilesNotification,
   FileChangeType,
@@ -21,6 +22,7 @@ import type { Files, Service } from '../service/api';
 import { Budget } from '../text/budget';
 import { Addresses } from './addresses';
 import { Checker, describe } from './checker';
+import { toCodeActions } from './code-actions';
 import { plainText } from './hover';
 import { OpenFiles } from './open-files';
 import { fromPosition, toRange } from './ranges';
@@ -68,6 +70,7 @@ export function serve(connection: Connection, createService: (files: Files) => S
         textDocumentSync: { openClose: true, change: TextDocumentSyncKind.Incremental },
         hoverProvider: true,
         documentSymbolProvider: true,
+        codeActionProvider: { codeActionKinds: [CodeActionKind.QuickFix] },
         workspace: { workspaceFolders: { supported: true, changeNotifications: true } },
       },
     };
@@ -182,6 +185,16 @@ export function serve(connection: Connection, createService: (files: Files) => S
       return capabilities.textDocument?.documentSymbol?.hierarchicalDocumentSymbolSupport
         ? toSymbols(symbols)
         : toFlatSymbols(symbols, textDocument.uri);
+    }),
+  );
+
+  connection.onCodeAction(
+    guarded('code actions', null, ({ textDocument, range, context }) => {
+      const open = files.get(textDocument.uri);
+      // Edits of an older text would land in the wrong place.
+      if (!open?.result || open.result.version !== open.document.version || !settings.enable) return null;
+      if (context.only && !context.only.some((kind) => `${CodeActionKind.QuickFix}.`.startsWith(`${kind}.`))) return null;
+      return toCodeActions(open.result.result, range, context.diagnostics, (file) => addresses.uriOf(file));
     }),
   );
 

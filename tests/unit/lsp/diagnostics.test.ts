@@ -1,5 +1,6 @@
 import type { Finding, ReportClaim, ReportRange } from '@visviva/shared';
 import { expect, test } from 'vitest';
+import { toCodeActions } from '../../../server/src/lsp/code-actions';
 import { plainText } from '../../../server/src/lsp/hover';
 import { toDiagnostics } from '../../../server/src/lsp/diagnostics';
 import type { FileResult } from '../../../server/src/service/api';
@@ -51,6 +52,32 @@ test('a claim that does not hold is never passed over', () => {
     ['differs', 1],
     ['unread', 3],
   ]);
+});
+
+test('a verified repair is offered once where its finding is; an unverified one never', () => {
+  const at = place(3, 1, 5);
+  const repair = { title: 'Write b', edits: [{ range: at, text: 'b' }], verified: true };
+  const fault: Finding = { code: 'sign', message: 'wrong', range: at, repair };
+  const claims = [
+    claim('a', 'differs', fault, { ...fault, repair: { ...repair, title: 'c', verified: false } }),
+    claim('b', 'differs', fault),
+  ];
+  const ask = (line: number): unknown =>
+    toCodeActions(result({ claims }), { start: { line, character: 2 }, end: { line, character: 2 } }, [], context.uriOf);
+  expect(ask(2)).toEqual([
+    {
+      title: 'Write b',
+      kind: 'quickfix',
+      isPreferred: true,
+      diagnostics: [],
+      edit: {
+        changes: {
+          'file:///a.ts': [{ range: { start: { line: 2, character: 0 }, end: { line: 2, character: 4 } }, newText: 'b' }],
+        },
+      },
+    },
+  ]);
+  expect(ask(1)).toEqual([]);
 });
 
 test('problems keep their severity, in order of place', () => {
