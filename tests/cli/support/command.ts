@@ -3,6 +3,10 @@ import { mkdirSync, mkdtempSync, readFileSync, realpathSync, rmSync, writeFileSy
 import { tmpdir } from 'node:os';
 import { dirname, join } from 'node:path';
 import { fileURLToPath } from 'node:url';
+import { vi } from 'vitest';
+
+// Every run is a process of its own, and the machine may be busy.
+vi.setConfig({ testTimeout: 120_000 });
 
 const command = fileURLToPath(new URL('../../../dist/visviva.mjs', import.meta.url));
 
