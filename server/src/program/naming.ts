@@ -1,5 +1,6 @@
 import type { Expr, SymbolData } from '../expression/node';
 import type { Place } from '../text/span';
+import type { Expression } from './form';
 import type { Machine } from './machine';
 import { lastName, memberPath, pathOf, spellings } from './paths';
 import type { Meaning, ReadsBinding } from './reading';
@@ -24,8 +25,13 @@ export class Naming {
     private readonly m: Machine,
     private readonly forcedFree: ReadonlySet<string>,
   ) {
-    for (const binding of m.request.meanings.reads) {
-      const path = pathOf(binding.target);
+    this.settle(() => undefined);
+  }
+
+  /** Once constants are known: `reads s[X] = x` with `const X = 0` is `reads s[0] = x`. */
+  settle(indexOf: (e: Expression) => string | undefined): void {
+    for (const binding of this.m.request.meanings.reads) {
+      const path = pathOf(binding.target, indexOf);
       if (path !== undefined && !this.reads.has(path)) this.reads.set(path, binding);
     }
   }

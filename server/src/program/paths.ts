@@ -21,28 +21,31 @@ export function lastName(path: string): string | undefined {
   return m?.[1];
 }
 
-/** The canonical path of an expression that only names a place; undefined for anything that computes. */
-export function pathOf(e: Expression): string | undefined {
+/**
+ * The canonical path of an expression that only names a place; undefined for anything that computes.
+ * @param indexOf the value of an index that is not literal, such as a named constant
+ */
+export function pathOf(e: Expression, indexOf: (e: Expression) => string | undefined = () => undefined): string | undefined {
   switch (e.kind) {
     case 'name':
       return e.name.normalize('NFC');
     case 'self':
       return 'this';
     case 'member': {
-      const object = pathOf(e.object);
+      const object = pathOf(e.object, indexOf);
       return object === undefined ? undefined : memberPath(object, e.name.normalize('NFC'));
     }
     case 'index': {
-      let path = pathOf(e.object);
+      let path = pathOf(e.object, indexOf);
       for (const i of e.indices) {
         if (path === undefined) return undefined;
-        const key = keyOf(i);
+        const key = keyOf(i) ?? indexOf(i);
         path = key === undefined ? undefined : memberPath(path, key);
       }
       return path;
     }
     case 'call': {
-      const callee = pathOf(e.callee);
+      const callee = pathOf(e.callee, indexOf);
       const args = e.args.map((a) => argumentText(a.value));
       return callee === undefined || args.includes(undefined) ? undefined : `${callee}(${args.join(', ')})`;
     }

@@ -1,17 +1,20 @@
+import type { Rational } from '../expression/rational';
 import type { Place } from '../text/span';
 import { assume } from './assumptions';
 import { runBody } from './calls';
 import { classInfo } from './classes';
 import { enter } from './entry';
+import { evaluate } from './expressions';
 import { genericAt } from './generics';
 import { Machine } from './machine';
 import { apply, mergeEndings, type Ending } from './merging';
 import { loadModule } from './modules';
 import { readOutputs, type Ended } from './outputs';
+import type { Expression } from './form';
 import type { Ambiguity, OutputValue, ReadRequest, Reading } from './reading';
 import { Scope, type Module } from './scope';
 import { execute } from './statements';
-import { NOTHING, unread, type Value } from './values';
+import { NOTHING, type Value } from './values';
 
 const MOST_ROUNDS = 5;
 
@@ -61,9 +64,51 @@ function subjectPlace(request: ReadRequest): Place | undefined {
 
 function readOnce(m: Machine): OutputValue[] {
   const { request } = m;
+  const { subject } = request;
+  if (subject.kind === 'function' && subject.node.opaque !== undefined) {
+    // Nothing it was to write can be taken from the state it began with.
+    const reason = `can't read \`${subject.node.name}\`: it is ${subject.node.opaque}`;
+    return request.outputs.map(() => ({ kind: 'unread', reason, place: subjectPlace(request) }));
+  }
   const module = loadModule(m, request.file, request.program, request.library);
+  m.naming.settle((e) => constantIndex(m, module, e));
   const ended = request.subject.kind === 'function' ? runFunction(m, module) : runTop(m, module);
-  return readOutputs(m, request.outputs, ended);
+  const outputs = readOutputs(m, request.outputs, ended);
+  if (subject.kind !== 'class') return outputs;
+  return outputs.map((o, i) => {
+    if (o.kind === 'unread' || namesMethod(request.outputs[i]!.expression)) return o;
+    const reason = 'a class computes nothing by itself: claim what a method returns (`step.return`, `H(q)`), or put the claim above the method';
+    return { kind: 'unread', reason, place: subjectPlace(request) };
+  });
+}
+
+/** An index given by a name: a constant of the file, or one declared at the head of the function. */
+function constantIndex(m: Machine, module: Module, e: Expression): string | undefined {
+  const { subject } = m.request;
+  if (e.kind === 'name' && subject.kind === 'function') {
+    for (const s of subject.node.body) {
+      if (s.kind !== 'declare' || s.target.kind !== 'name' || s.target.name !== e.name) continue;
+      if (s.value?.kind === 'number' && s.value.value.isInteger) return s.value.value.toString();
+    }
+  }
+  const value = evaluate(m, module.scope, e);
+  if (value.kind !== 'scalar' || value.expr.op !== 'number') return undefined;
+  const r = value.expr.data as Rational;
+  return r.isInteger ? r.toString() : undefined;
+}
+
+/** True for outputs such as `rates.return[1]` and `H(q)`. */
+function namesMethod(e: Expression): boolean {
+  switch (e.kind) {
+    case 'call':
+      return true;
+    case 'member':
+      return e.name === 'return' || namesMethod(e.object);
+    case 'index':
+      return namesMethod(e.object);
+    default:
+      return false;
+  }
 }
 
 function runFunction(m: Machine, module: Module): Ended {
@@ -77,8 +122,7 @@ function runFunction(m: Machine, module: Module): Ended {
   m.store = before.child();
   const base = m.store;
   const place = m.place(scope, node.nameSpan);
-  const returned =
-    node.opaque !== undefined ? unread(`can't read \`${node.name}\`: it is ${node.opaque}`, place) : runBody(m, scope, base, place);
+  const returned = runBody(m, scope, base, place);
   return {
     module,
     outer: scope.parent ?? module.scope,
