@@ -10,14 +10,19 @@ export interface Mutant {
 const OPERATORS: Readonly<Record<string, string>> = { '+': '-', '-': '+', '*': '/', '/': '*', '+=': '-=', '-=': '+=', '*=': '/=', '/=': '*=', '<': '>', '>': '<' };
 const FUNCTIONS: Readonly<Record<string, string>> = { sin: 'cos', cos: 'sin', tan: 'sin', max: 'min', min: 'max', sqrt: 'abs', abs: 'sign' };
 
-/** All single changes of operators, functions, numbers and names in the code of a section, in order of place. */
+/**
+ * All single changes of operators, functions, numbers and names in the code of a section, in order of place; none where the
+ * declaration says how to take it whatever it is: ends of loops, clips under `within limits`.
+ */
 export function mutantsOf(fixture: Fixture, section: Section): Mutant[] {
   const { text } = fixture;
   const tree = ts.createSourceFile('module.tsx', text, ts.ScriptTarget.ES2022, true, ts.ScriptKind.TSX);
   const out: Mutant[] = [];
+  const from = text.indexOf('@visviva', section.start);
+  const clips = text.slice(from, section.end).includes('within limits');
   const change = (node: ts.Node, to: string): void => {
     const [start, end] = [node.getStart(tree), node.end];
-    if (start < section.start || end > section.end || text.slice(start, end) === to) return;
+    if (start < from || end > section.end || text.slice(start, end) === to) return;
     const line = tree.getLineAndCharacterOfPosition(start).line + 1;
     out.push({ what: `line ${line}: ${text.slice(start, end)} -> ${to}`, text: text.slice(0, start) + to + text.slice(end) });
   };
@@ -25,14 +30,16 @@ export function mutantsOf(fixture: Fixture, section: Section): Mutant[] {
     if (ts.isTypeNode(node)) return;
     if (ts.isBinaryExpression(node)) {
       const other = OPERATORS[node.operatorToken.getText(tree)];
-      if (other) change(node.operatorToken, other);
+      if (other && !ts.isForStatement(node.parent)) change(node.operatorToken, other);
       if (node.operatorToken.kind === ts.SyntaxKind.MinusToken) swapSides(node);
     }
     if (ts.isPrefixUnaryExpression(node) && node.operator === ts.SyntaxKind.MinusToken) change(node, node.operand.getText(tree));
     if (ts.isNumericLiteral(node) && ts.isExpression(node.parent)) change(node, String(Number(node.text) + 1));
     if (ts.isIdentifier(node)) {
       const other = FUNCTIONS[node.text];
-      if (other && ts.isExpression(node.parent)) change(node, other);
+      if (other && ts.isExpression(node.parent)) {
+        if (!clips || !/^m(ax|in)$/.test(other)) change(node, other);
+      }
       else if (ts.isExpression(node.parent) && !ts.isCallExpression(node.parent) && isValue(node)) change(node, neighbour(node) ?? node.text);
     }
     ts.forEachChild(node, visit);
