@@ -13,7 +13,7 @@ export type Shape =
   | { readonly kind: 'prose' };
 
 const KEYWORDS = new Set('at on over in with between and or not rest mass inertia centre center angle rotation order within limits of by to'.split(' '));
-const PROSE = new Set('the is are was were that which an from for if when this these it its be has have should must will can'.split(' '));
+const PROSE = new Set('the is are was were that which an from for if when this these it its has have should must will can'.split(' '));
 const EQUATIONS = new Set(['where', 'reads', 'checks', 'near', 'constraint']);
 
 export function shapeOf(line: string): Shape {

@@ -10,7 +10,7 @@ import { Machine } from './machine';
 import { apply, mergeEndings, type Ending } from './merging';
 import { loadModule } from './modules';
 import { readOutputs, type Ended } from './outputs';
-import type { Expression } from './form';
+import type { ClassNode, Expression } from './form';
 import type { Ambiguity, OutputValue, ReadRequest, Reading } from './reading';
 import { Scope, type Module } from './scope';
 import { execute } from './statements';
@@ -76,7 +76,7 @@ function readOnce(m: Machine): OutputValue[] {
   const outputs = readOutputs(m, request.outputs, ended);
   if (subject.kind !== 'class') return outputs;
   return outputs.map((o, i) => {
-    if (o.kind === 'unread' || namesMethod(request.outputs[i]!.expression)) return o;
+    if (o.kind === 'unread' || namesMethod(request.outputs[i]!.expression, subject.node)) return o;
     const reason = 'a class computes nothing by itself: claim what a method returns (`step.return`, `H(q)`), or put the claim above the method';
     return { kind: 'unread', reason, place: subjectPlace(request) };
   });
@@ -97,15 +97,19 @@ function constantIndex(m: Machine, module: Module, e: Expression): string | unde
   return r.isInteger ? r.toString() : undefined;
 }
 
-/** True for outputs such as `rates.return[1]` and `H(q)`. */
-function namesMethod(e: Expression): boolean {
+/** True for outputs such as `rates.return[1]`, `H(q)`, and `this.acceleration` where that is a getter. */
+function namesMethod(e: Expression, node: ClassNode): boolean {
   switch (e.kind) {
     case 'call':
       return true;
-    case 'member':
-      return e.name === 'return' || namesMethod(e.object);
+    case 'member': {
+      if (e.name === 'return') return true;
+      if (e.object.kind !== 'self') return namesMethod(e.object, node);
+      // What a base class has is not looked for here.
+      return node.base !== undefined || node.members.some((x) => x.kind === 'getter' && x.name === e.name);
+    }
     case 'index':
-      return namesMethod(e.object);
+      return namesMethod(e.object, node);
     default:
       return false;
   }
