@@ -37,6 +37,10 @@ export async function diagnose(request: SubjectRequest, result: SubjectResult, s
       if (await isRepair(result, c.edits, recheck)) return repaired([c], source);
     }
   }
+  for (const { first, second } of found.pairs().slice(0, MOST_TRIES)) {
+    if (!request.budget.look()) break;
+    if (await isRepair(result, [...first.edits, ...second.edits], recheck)) return repaired([first, second], source);
+  }
   return { faults: [], edits: undefined, place: found.places[0]?.span };
 }
 

@@ -39,7 +39,7 @@ function placed(m: Machine, e: Expression, place: Place, value: Value): Value {
   }
   if (value.kind === 'object' && !m.quiet && m.request.isNumber?.(e)) {
     const n = numeric(m, value, place);
-    if (!isUnread(n)) value = { kind: 'scalar', expr: n, place };
+    if (!isUnread(n) && m.naming.containsDeclared(n)) value = { kind: 'scalar', expr: n, place };
   }
   if (value.kind !== 'scalar') return value;
   m.note(place, value.expr);

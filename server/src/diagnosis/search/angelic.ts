@@ -7,7 +7,7 @@ import type { Evaluation } from './tagged';
  * "Angelic Debugging", ICSE 2011: a place where such values exist may hold the fault, others may not).
  */
 export type Needed =
-  /** These values, and no others, do it. */
+  /** These values, and no others, do it; NaN at states where the claims don't depend on the place. */
   | { readonly kind: 'values'; readonly need: Float64Array }
   /** The claims depend on the place in a way that was not solved: candidates have to be tried. */
   | { readonly kind: 'open' }
@@ -66,7 +66,12 @@ export function solvePlace(model: Model, site: Site, evaluations: readonly Evalu
         } else if (!t.differs) harm = true;
       }
     });
-    if (fixes.length === wrong.length && !harm) return { kind: 'values', need };
+    if (fixes.length === wrong.length && !harm) {
+      for (let s = 0; s < n; s++) {
+        if (touched.every((t) => isSame(t, probes[0]!.get(t)!, s) && isSame(t, probes[1]!.get(t)!, s))) need[s] = NaN;
+      }
+      return { kind: 'values', need };
+    }
     if (exact === 'several') isOpen = true;
     if (!harm && fixes.length > (partial?.fixes.length ?? 0)) partial = { need, fixes };
   }
@@ -80,7 +85,11 @@ function stepOf(value: Float64Array): Float64Array {
 }
 
 function depends(t: Target, probe: Float64Array): boolean {
-  return probe.some((x, s) => !(Math.abs(x - t.base[s]!) <= 1e-12 * t.scale[s]!));
+  return probe.some((_, s) => !isSame(t, probe, s));
+}
+
+function isSame(t: Target, probe: Float64Array, s: number): boolean {
+  return Math.abs(probe[s]! - t.base[s]!) <= 1e-12 * t.scale[s]!;
 }
 
 /**

@@ -17,8 +17,17 @@ export class LogFit {
     this.normal = invert(normal);
   }
 
+  /** Only the states that count; NaN marks the others. */
+  private without(column: Float64Array): ReturnType<LogFit['product']> {
+    const states = [...column.keys()].filter((s) => !Number.isNaN(column[s]!));
+    if (states.length < 6) return undefined;
+    const pick = (x: Float64Array): Float64Array => Float64Array.from(states, (s) => x[s]!);
+    return new LogFit(this.bases.map((b) => ({ expr: b.expr, value: pick(b.value) })), states.length).product(pick(column));
+  }
+
   product(column: Float64Array): { readonly constant: number; readonly powers: readonly { readonly base: Expr; readonly power: number }[] } | undefined {
     const sign = Math.sign(column[0]!);
+    if (column.some(Number.isNaN)) return this.without(column);
     if (!this.normal || sign === 0 || !column.every((x) => Math.sign(x) === sign && Number.isFinite(x))) return undefined;
     const y = Array.from(column, (x) => Math.log(Math.abs(x)));
     const right = this.rows[0]!.map((_, i) => this.rows.reduce((t, r, s) => t + r[i]! * y[s]!, 0));

@@ -115,6 +115,13 @@ export class Model {
     this.run(this.tape, this.n, BLOCKS, changes, use);
   }
 
+  readonly firstStates = FIRST_STATES;
+
+  /** The same at the first few states only. */
+  firstLook(changes: readonly Change[], use: (change: number, found: (target: Target) => Float64Array) => void): void {
+    this.run(this.first, FIRST_STATES, FIRST_BLOCKS, changes, use);
+  }
+
   /** Those of many changes that make every claim right. */
   successes(changes: readonly Change[]): number[] {
     const promising: number[] = [];

@@ -10,9 +10,10 @@ import { constants } from './candidates/numbers';
 import { drops, groupings, operators, signs } from './candidates/operators';
 import { insertions, knownTerms } from './candidates/terms';
 import { LogFit } from './log-fit';
+import { findPairs, type CandidatePair } from './pairs';
 import { Model, type Change } from './model';
 import { mapSource, type Site, type SourceMap } from './sites';
-import { readTagged, type Evaluation } from './tagged';
+import { MODES, readTagged, type Evaluation } from './tagged';
 
 const BASIC: readonly Maker[] = [signs, operators, drops, groupings, names, constants, functions, powers];
 
@@ -59,10 +60,12 @@ export class Search {
     const { derived, program } = request;
     if (derived.system.near || !result.reading) return undefined;
     const map = mapSource(program);
-    const tagged = readTagged(request, result.claims, map);
-    const model = tagged && Model.make(derived, result.claims, tagged);
-    if (!model || !model.targets.some((t) => t.differs)) return undefined;
-    return new Search(request, result.claims, model, map, source);
+    for (const mode of MODES) {
+      const tagged = readTagged(request, result.claims, map, mode);
+      const model = tagged && Model.make(derived, result.claims, tagged);
+      if (model) return model.targets.some((t) => t.differs) ? new Search(request, result.claims, model, map, source) : undefined;
+    }
+    return undefined;
   }
 
   /** Edits at places where the value needed is known. Candidates are right at all sampled states, likeliest first. */
@@ -80,6 +83,11 @@ export class Search {
     passed.push(...confirmed(this.model, swaps), ...everywhere(this.model, this.repeated));
     this.untried.sort(byCost);
     return passed.sort(byCost);
+  }
+
+  /** Two edits at once; after `known` and `open`. */
+  pairs(): CandidatePair[] {
+    return findPairs(this.model, this.all, (c) => changeOf(this.model, c), this.request.budget);
   }
 
   private at(kind: Needed['kind']): Candidate[] {
@@ -175,7 +183,7 @@ function wantedTerms(claims: readonly ClaimResult[], residuals: readonly import(
 function makeScene(request: SubjectRequest, model: Model, map: SourceMap, source: string): Scene {
   const atoms = new Map<string, Atom>();
   const add = (atom: Atom): void => {
-    const key = `${atom.text}\u0000${atom.owner?.span.start ?? ''}`;
+    const key = `${atom.text}\u0000${atom.owner?.span.start ?? ''}\u0000${atom.values.length}`;
     const known = atoms.get(key);
     if (!known || atom.from < known.from) atoms.set(key, atom);
   };
@@ -183,15 +191,14 @@ function makeScene(request: SubjectRequest, model: Model, map: SourceMap, source
     const { node } = site;
     if (!['name', 'member', 'index', 'call'].includes(node.kind) || site.span.end - site.span.start > 40) continue;
     const evaluations = model.tagged.evaluations.get(site);
-    if (evaluations?.length !== 1) continue;
-    const value = model.value(evaluations[0]!.read);
-    if (!value || !value.every(Number.isFinite)) continue;
-    add({ text: source.slice(site.span.start, site.span.end), value, from: 0, owner: site.owner });
+    const values = evaluations?.map((e) => model.value(e.read));
+    if (!values?.every((v) => v?.every(Number.isFinite))) continue;
+    add({ text: source.slice(site.span.start, site.span.end), values: values as Float64Array[], from: 0, owner: site.owner });
   }
   const subject = request.subject.kind === 'function' ? request.subject.node : undefined;
   for (const { text, expr } of model.tagged.names) {
     const value = model.value(expr);
-    if (value?.every(Number.isFinite)) add({ text, value, from: definedAt(map, text), owner: subject });
+    if (value?.every(Number.isFinite)) add({ text, values: [value], from: definedAt(map, text), owner: subject });
   }
   const list = [...atoms.values()];
   for (const a of list) if (a.from === 0) (a as { from: number }).from = definedAt(map, a.text);

@@ -25,28 +25,16 @@ export interface TaggedReading {
 const MOST_EVALUATIONS = 24;
 
 /**
- * Reads the subject again with tags. Numbers that turn out to be needed as plain numbers are left alone in a second try.
+ * Reads the subject again with tags. `mode` says which numbers are left as they are.
  * @param claims the results of the plain reading, by which the tagged one is checked for having read the same
  */
 export function readTagged(
   request: SubjectRequest,
   claims: readonly ClaimResult[],
   map: SourceMap,
-  pick: (site: Site) => boolean = () => true,
+  mode: Mode,
 ): TaggedReading | undefined {
-  for (const mode of ['all', 'arithmetic', 'none'] as const) {
-    const found = readOnce(request, claims, map, (site) => pick(site) && mayTag(site, mode));
-    if (found) return found;
-  }
-  return undefined;
-}
-
-function readOnce(
-  request: SubjectRequest,
-  claims: readonly ClaimResult[],
-  map: SourceMap,
-  mayTagSite: (site: Site) => boolean,
-): TaggedReading | undefined {
+  const mayTagSite = (site: Site) => mayTag(site, mode);
   const { graph } = request.derived.system;
   const evaluations = new Map<Site, Evaluation[]>();
   let count = 0;
@@ -55,7 +43,7 @@ function readOnce(
     ...request,
     isNumber: (source) => {
       const site = map.byNode.get(source);
-      return site !== undefined && isOperand(site) && mayTagSite(site);
+      return site !== undefined && isOperand(site, mode) && mayTagSite(site);
     },
     extra: names.map((name): OutputRequest => ({ expression: { kind: 'name', name, span: { start: 0, end: 0 } } })),
     tag: (place, source, read) => {
@@ -87,8 +75,9 @@ function readOnce(
 }
 
 /** Numbers may be tagged only where nothing but arithmetic is done with them. */
-function mayTag(site: Site, mode: 'all' | 'arithmetic' | 'none'): boolean {
+function mayTag(site: Site, mode: Mode): boolean {
   const { node } = site;
+  if (mode !== 'all' && isInLimit(site)) return false;
   if (!site.mayVary && (node.kind === 'number' || node.kind === 'unary')) return false;
   if (node.kind === 'number') {
     if (mode === 'none') return false;
@@ -97,10 +86,25 @@ function mayTag(site: Site, mode: 'all' | 'arithmetic' | 'none'): boolean {
   return true;
 }
 
+/** Numbers that are needed as plain numbers show only when reading with tags fails: then fewer are tagged. */
+export const MODES = ['all', 'arithmetic', 'none'] as const;
+type Mode = 'all' | 'arithmetic' | 'none';
+
+/** Inside a clip, whose form must stay recognisable. */
+function isInLimit(site: Site): boolean {
+  for (let s: Site | undefined = site; s; s = s.parent) {
+    const { node } = s;
+    const callee = node.kind === 'call' ? node.callee : undefined;
+    if ((callee?.kind === 'member' || callee?.kind === 'name') && /^(f?min|f?max|clip|clamp|saturate|constrain)$/i.test(callee.name)) return true;
+  }
+  return false;
+}
+
 /** Used in arithmetic, so that it must be a number whatever it looks like. */
-function isOperand({ node, parent, role }: Site): boolean {
+function isOperand({ node, parent, role }: Site, mode: Mode): boolean {
   if (node.kind !== 'name' && node.kind !== 'member' && node.kind !== 'index') return false;
   const p = parent?.node;
+  if (role === 'item' || (role === 'whole' && !p)) return mode === 'all';
   if (p?.kind === 'unary') return p.op === '-';
   if (p?.kind === 'binary') return /^[-+*/%]$|\*\*/.test(p.op);
   return p?.kind === 'call' && role === 'argument' && parent!.mayVary && isScalarCall(p);

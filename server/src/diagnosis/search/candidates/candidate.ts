@@ -27,7 +27,8 @@ export interface Candidate {
 /** Something short the code already has a text for, with its value. */
 export interface Atom {
   readonly text: string;
-  readonly value: Float64Array;
+  /** By evaluation; a single one holds for every evaluation of a place. */
+  readonly values: readonly Float64Array[];
   /** Position from which on it may be used. */
   readonly from: number;
   readonly owner: Site['owner'];
@@ -57,6 +58,12 @@ export interface Spot {
 
 export type Maker = (scene: Scene, spot: Spot, give: (candidate: Candidate) => void) => void;
 
+/** An atom's values as a place sees them, evaluation by evaluation. */
+export function seenAt(atom: Atom, evaluations: number): readonly Float64Array[] | undefined {
+  if (atom.values.length === evaluations) return atom.values;
+  return atom.values.length === 1 ? Array.from({ length: evaluations }, () => atom.values[0]!) : undefined;
+}
+
 export function map1(a: readonly Float64Array[], f: (x: number) => number): Float64Array[] {
   return a.map((column) => column.map(f));
 }
@@ -65,9 +72,10 @@ export function map2(a: readonly Float64Array[], b: readonly Float64Array[], f: 
   return a.map((column, k) => column.map((x, s) => f(x, b[k]![s]!)));
 }
 
-/** Whether two columns agree, up to the rounding of a solved value. */
+/** Whether a column has the values needed, up to the rounding of a solved value; where any will do, `b` is NaN. */
 export function agree(a: Float64Array, b: Float64Array, tolerance = 1e-6): boolean {
   for (let s = 0; s < a.length; s++) {
+    if (Number.isNaN(b[s]!)) continue;
     if (!(Math.abs(a[s]! - b[s]!) <= tolerance * (Math.abs(a[s]!) + Math.abs(b[s]!)) + 1e-12)) return false;
   }
   return true;

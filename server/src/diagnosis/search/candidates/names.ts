@@ -1,6 +1,6 @@
 import { symbolText, type SymbolData } from '../../../expression/node';
 import { Binding, replaceSite } from '../edits';
-import { agree, type Maker } from './candidate';
+import { agree, seenAt, type Maker } from './candidate';
 
 /** Another name that stands in the code, or a member or entry beside the one that stands there. */
 export const names: Maker = (scene, spot, give) => {
@@ -10,16 +10,16 @@ export const names: Maker = (scene, spot, give) => {
   const isShort = isName || node.kind === 'number' || node.kind === 'call';
   if (!isShort && !need) return;
   const seen = new Set<string>([text]);
-  const offer = (other: string, value: Float64Array, cost: number): void => {
+  const offer = (other: string, value: readonly Float64Array[], cost: number): void => {
     if (seen.has(other)) return;
     seen.add(other);
-    if (need && !agree(value, need)) return;
+    if (need && !agree(value[0]!, need)) return;
     give({
       site,
       edits: [replaceSite(site, scene.source, other, Binding.atom)],
       code: 'swapped-symbol',
       cost: cost + (isName ? 0 : isShort ? 1 : 1.5 + 0.02 * text.length),
-      values: values.map(() => value),
+      values: value,
       label: `name ${other}`,
       old: text,
       new: other,
@@ -31,12 +31,13 @@ export const names: Maker = (scene, spot, give) => {
     const { system } = scene.model.derived;
     for (const d of [...system.parameters, ...system.inputs, ...system.coordinates]) {
       const value = scene.model.column(d.symbol);
-      if (value && /^[\p{L}_][\p{L}\p{N}_]*$/u.test(d.name)) offer(head + d.name, value, 1.15 + distance(text, head + d.name));
+      if (value && values.length > 0 && /^[\p{L}_][\p{L}\p{N}_]*$/u.test(d.name)) offer(head + d.name, values.map(() => value), 1.15 + distance(text, head + d.name));
     }
   }
   for (const atom of scene.atoms) {
     if (atom.from > site.span.start || (atom.owner && atom.owner !== site.owner)) continue;
-    offer(atom.text, atom.value, 1 + distance(text, atom.text));
+    const seen = seenAt(atom, values.length);
+    if (seen) offer(atom.text, seen, 1 + distance(text, atom.text));
   }
 };
 

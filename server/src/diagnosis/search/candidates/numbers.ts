@@ -64,9 +64,9 @@ export function isInnerFactor(spot: Spot): boolean {
 
 /** The value all have in common. */
 export function commonOf(values: Float64Array): number | undefined {
-  const first = values[0]!;
-  if (!Number.isFinite(first)) return undefined;
-  for (const x of values) if (!(Math.abs(x - first) <= 1e-7 * Math.abs(first) + 1e-12)) return undefined;
+  const first = values.find((x) => !Number.isNaN(x));
+  if (first === undefined || !Number.isFinite(first)) return undefined;
+  for (const x of values) if (!Number.isNaN(x) && !(Math.abs(x - first) <= 1e-7 * Math.abs(first) + 1e-12)) return undefined;
   return first;
 }
 

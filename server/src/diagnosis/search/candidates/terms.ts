@@ -6,7 +6,7 @@ import type { Expr, SymbolData } from '../../../expression/node';
 import { Binding, bindingOf, bracket, replaceSite } from '../edits';
 import { LogFit } from '../log-fit';
 import type { Model } from '../model';
-import { agree, type Maker, type Scene } from './candidate';
+import { agree, map2, seenAt, type Maker, type Scene } from './candidate';
 import { isSum } from './operators';
 import { commonOf, isInnerFactor, writeNice } from './numbers';
 
@@ -49,7 +49,10 @@ export function knownTerms(model: Model, wanted: readonly Expr[]): KnownTerm[] {
 export function insertions(terms: readonly KnownTerm[], fit: LogFit): Maker {
   return (scene, spot, give) => {
     const { site, need, values, text } = spot;
-    if (!need || values.length !== 1) return;
+    if (!need || values.length !== 1) {
+      guesses(scene, spot, give);
+      return;
+    }
     const now = values[0]!;
     const { node } = site;
     const { source } = scene;
@@ -74,7 +77,7 @@ export function insertions(terms: readonly KnownTerm[], fit: LogFit): Maker {
           new: whole,
         });
       };
-      if (ratio.every(Number.isFinite) && commonOf(ratio) === undefined) {
+      if (commonOf(ratio) === undefined) {
         const p = fit.product(ratio);
         if (p) {
           const product = printer.product(p.constant, p.powers);
@@ -98,6 +101,7 @@ export function insertions(terms: readonly KnownTerm[], fit: LogFit): Maker {
     if (parent?.kind === 'binary' && isSum(parent.op)) return;
     const gap = need.map((x, s) => x - now[s]!);
     if (!gap.some((x) => Math.abs(x) > 1e-9)) return;
+    const least = Math.max(...gap.map((x) => (Number.isNaN(x) ? 0 : Math.abs(x))));
     const offer = (sign: '+' | '-', body: string, cost: number): void => {
       const whole = `${bindingOf(node) < Binding.sum ? bracket(text) : text} ${sign} ${body}`;
       const isZero = node.kind === 'number' && node.value.isZero;
@@ -113,12 +117,12 @@ export function insertions(terms: readonly KnownTerm[], fit: LogFit): Maker {
       });
     };
     for (const atom of printer.atoms) {
-      if (agree(gap, atom.value)) offer('+', atom.text, 1.9);
-      else if (agree(gap, atom.value.map((x) => -x))) offer('-', atom.text, 1.9);
+      if (agree(atom.value, gap)) offer('+', atom.text, 1.9);
+      else if (agree(atom.value.map((x) => -x), gap)) offer('-', atom.text, 1.9);
     }
     for (const term of terms) {
       const ratio = gap.map((x, s) => x / term.value[s]!);
-      if (!ratio.every(Number.isFinite)) continue;
+      if (least < 1e-9) continue;
       const p = fit.product(ratio);
       if (!p) continue;
       const written = printer.term(term.monomial, p.powers, Math.abs(p.constant));
@@ -126,6 +130,31 @@ export function insertions(terms: readonly KnownTerm[], fit: LogFit): Maker {
     }
   };
 }
+
+/** Where the values needed are not known: times or divided by anything the code has a name for. */
+const guesses: Maker = (scene, spot, give) => {
+  const { site, values, text } = spot;
+  if (isInnerFactor(spot) || site.node.kind === 'number') return;
+  const inner = bindingOf(site.node) < Binding.product ? bracket(text) : text;
+  for (const atom of scene.atoms) {
+    if (atom.from > site.span.start || (atom.owner && atom.owner !== site.owner) || atom.text.length > 24) continue;
+    const seen = seenAt(atom, values.length);
+    if (!seen) continue;
+    for (const op of ['*', '/'] as const) {
+      const whole = `${inner} ${op} ${atom.text}`;
+      give({
+        site,
+        edits: [replaceSite(site, scene.source, whole, Binding.product)],
+        code: 'factor',
+        cost: 2,
+        values: map2(values, seen, op === '*' ? (x, y) => x * y : (x, y) => x / y),
+        label: `${op} ${atom.text}`,
+        old: text,
+        new: whole,
+      });
+    }
+  }
+};
 
 interface Product {
   readonly label: string;
@@ -141,7 +170,9 @@ class TermPrinter {
     at: number,
     owner: unknown,
   ) {
-    this.atoms = scene.atoms.filter((a) => a.from <= at && (!a.owner || a.owner === owner));
+    this.atoms = scene.atoms
+      .filter((a) => a.values.length === 1 && a.from <= at && (!a.owner || a.owner === owner))
+      .map((a) => ({ text: a.text, value: a.values[0]! }));
   }
 
   /** The code's text for an expression: one whose value is the same. */
