@@ -33,7 +33,7 @@ export interface Answer {
   readonly reading: Reading;
   readonly graph: Graph;
   /** The outputs as text. */
-  readonly text: string[];
+  readonly text: readonly string[];
   /** The source text at the place of an output. */
   placeText(output: number): string;
   readonly source: string;
@@ -91,7 +91,9 @@ export function readCode(source: string, outputs: readonly string[], ask: Ask = 
     reading,
     graph,
     source,
-    text: reading.outputs.map(outputText),
+    get text() {
+      return reading.outputs.map(outputText);
+    },
     placeText: (k) => {
       const place = reading.outputs[k]!.place;
       return place ? source.slice(place.span.start, place.span.end) : '';
@@ -100,7 +102,7 @@ export function readCode(source: string, outputs: readonly string[], ask: Ask = 
 }
 
 /** The outputs' texts alone. */
-export function outputs(source: string, wanted: readonly string[], ask: Ask = {}): string[] {
+export function outputs(source: string, wanted: readonly string[], ask: Ask = {}): readonly string[] {
   return readCode(source, wanted, ask).text;
 }
 

@@ -5,6 +5,7 @@ import { clipsVariable } from './limits';
 import type { Machine } from './machine';
 import { readElement, readMember, writeElement, writeMember } from './members';
 import { withEach } from './merging';
+import { itemsOf } from './numbers';
 import { binary } from './operators';
 import { bindPattern } from './patterns';
 import type { Scope } from './scope';
@@ -39,8 +40,19 @@ function assignName(m: Machine, scope: Scope, e: Expression & { kind: 'assign' }
 
 function joined(m: Machine, scope: Scope, e: Expression & { kind: 'assign' }, old: Value, given: Value, place: Place): Value {
   const value = binary(m, scope.frame.module, e.op!, old, given, place);
+  if (scope.frame.module.program.listConcat && old.kind === 'object' && value.kind === 'object') return inPlace(m, old, value);
   if (value.kind === 'scalar') m.note(place, value.expr);
   return value;
+}
+
+/** Python's `+=` changes a list or array itself, so that its other names see it. */
+function inPlace(m: Machine, old: Value & { kind: 'object' }, value: Value & { kind: 'object' }): Value {
+  const items = itemsOf(m, value);
+  if (!items || !itemsOf(m, old)) return value;
+  const list = m.store.writable(old.id);
+  if (list.kind !== 'list') return value;
+  list.items = [...items];
+  return old;
 }
 
 function assignPlace(m: Machine, scope: Scope, e: Expression & { kind: 'assign' }, target: Expression, place: Place): Value {

@@ -300,6 +300,9 @@ export function callFunctionValue(m: Machine, module: Module, f: Value, args: re
 /** Runs a function of the code. */
 export function invoke(m: Machine, f: FunctionValue, self: Value | undefined, args: readonly ArgumentValue[], place: Place): Value {
   const { node } = f;
+  if (node.wrapped !== undefined) {
+    return unreadable(m, f, self, args, unread(`can't read the call of \`${node.name}\`: ${node.wrapped}`, place));
+  }
   if (node.opaque !== undefined) {
     return unreadable(m, f, self, args, unread(`can't read \`${node.name}\`: it is ${node.opaque}`, place));
   }

@@ -147,7 +147,7 @@ export function structure(m: Machine, id: number): void {
   const { generic } = data;
   const paths = [generic.path, ...generic.aliases];
   const read = m.naming.read(paths, generic.place);
-  const family = read ? undefined : m.naming.family(paths);
+  const family = read || paths.some((p) => familyItem(m, p)) ? undefined : m.naming.family(paths);
   const items = read?.kind === 'list' ? read.items : family;
   if (items) {
     generic.structured = true;

@@ -22,7 +22,7 @@ export function loadModule(m: Machine, file: string, program: Program, library: 
   const names = m.atRoot(() => m.store.add({ kind: 'record', members: new Map() }));
   const frame = { names, depth: 0 } as { -readonly [K in keyof Frame]: Frame[K] };
   const scope = new Scope(undefined, frame, true);
-  const module: Module = { file, program, library, scope, exports: new Map(), everythingOf: [] };
+  const module: Module = { file, program, library, scope, exports: new Map(), everythingOf: [], imports: [] };
   frame.module = module;
   m.modules.set(file, module);
   for (const s of program.body) addTopLevel(m, module, scope, s);
@@ -156,12 +156,41 @@ const stateNames = new WeakMap<Program, Set<string>>();
 function addImport(m: Machine, module: Module, s: Statement & { kind: 'import' }): void {
   const { scope } = module;
   for (const n of s.names) {
-    lazy(m, scope, n.local, () => imported(m, module, s.from, n.imported, n.local, m.place(scope, n.span)));
+    lazy(m, scope, n.local, () => {
+      const place = m.place(scope, n.span);
+      const value = imported(m, module, s.from, n.imported, n.local, place);
+      if (!s.orModules || (value.kind !== 'unread' && !isOutside(m, value))) return value;
+      // Not a name of the package: perhaps a file in it.
+      const below = `${s.from}${s.from.endsWith('.') ? '' : '.'}${n.imported}`;
+      const whole = importedWhole(m, module, below, n.local, place);
+      return isOutside(m, whole) ? value : whole;
+    });
   }
+  if (s.all) module.imports.push({ from: s.from, place: m.place(scope, s.span) });
   if (s.namespace !== undefined) {
     const { namespace } = s;
     lazy(m, scope, namespace, () => importedWhole(m, module, s.from, namespace, m.place(scope, s.span)));
   }
+}
+
+function isOutside(m: Machine, value: Value): boolean {
+  return value.kind === 'object' && m.store.data(value.id).kind === 'generic';
+}
+
+/** A name that `from x import *` brings in. */
+function broughtIn(m: Machine, module: Module, name: string): Value | undefined {
+  for (const { from, place } of module.imports) {
+    const prefix = module.library.modules.get(from);
+    if (prefix !== undefined) {
+      const path = prefix + name;
+      const { scalars, constants, intrinsics } = module.library;
+      if (scalars.has(path) || constants.has(path) || intrinsics.has(path)) return libraryMember(m, module, path, place);
+      continue;
+    }
+    const other = open(m, module, from);
+    if (other && (other.exports.has(name) || other.scope.variables.has(name))) return exportOf(m, other, name, place);
+  }
+  return undefined;
 }
 
 function imported(m: Machine, module: Module, from: string, name: string, local: string, place: Place): Value {
@@ -243,6 +272,8 @@ export function exportOf(m: Machine, module: Module, name: string, place: Place,
 /** A name that no scope has: of the library, or a thing from outside. */
 export function unknownName(m: Machine, scope: Scope, name: string, place: Place): Value {
   const { module } = scope.frame;
+  const brought = module.imports.length > 0 ? broughtIn(m, module, name) : undefined;
+  if (brought) return brought;
   if (m.libraryNames(module.library).has(name)) return libraryMember(m, module, name, place);
   let found = m.globals.get(name);
   if (!found) m.globals.set(name, (found = genericAt(m, name, place)));

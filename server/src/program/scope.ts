@@ -1,4 +1,4 @@
-import type { Span } from '../text/span';
+import type { Place, Span } from '../text/span';
 import type { ClassNode, Expression, FunctionNode, Program } from './form';
 import type { Library } from './library';
 import type { Value } from './values';
@@ -61,6 +61,8 @@ export interface Module {
   readonly exports: Map<string, () => Value>;
   /** `export * from`, and `module.exports = ...`. */
   readonly everythingOf: { readonly from: string; readonly span: Span }[];
+  /** `from x import *` */
+  readonly imports: { readonly from: string; readonly place: Place }[];
   whole?: Expression;
 }
 

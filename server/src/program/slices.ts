@@ -4,6 +4,7 @@ import type { Expression } from './form';
 import type { Machine } from './machine';
 import { readElement } from './members';
 import { countOf, dataOf, itemsOf } from './numbers';
+import { depthOf } from './operators';
 import type { Scope } from './scope';
 import { unread, type Unread, type Value } from './values';
 
@@ -64,6 +65,11 @@ export function sliceTargets(m: Machine, scope: Scope, object: Value, indices: r
   if (!first) return unread('an assignment to nothing', place);
   const { indexBase } = scope.frame.module.program;
   const { module } = scope.frame;
+  if (first.kind === 'slice' && first.rest) {
+    const whole = Math.max(0, depthOf(m, object) - rest.length);
+    const ranges = Array.from({ length: whole }, (): Expression => ({ kind: 'slice', span: first.span }));
+    return sliceTargets(m, scope, object, [...ranges, ...rest], value, place);
+  }
   if (first.kind !== 'slice') {
     const key = evaluate(m, scope, first);
     if (rest.length === 0) return [{ object, key, value }];
