@@ -110,6 +110,10 @@ function namesMethod(e: Expression, node: ClassNode): boolean {
     }
     case 'index':
       return namesMethod(e.object, node);
+    case 'unary':
+      return namesMethod(e.operand, node);
+    case 'binary':
+      return namesMethod(e.left, node) || namesMethod(e.right, node);
     default:
       return false;
   }
