@@ -17,7 +17,7 @@ import { evaluateLeft, freeSymbol, freeSymbols, isFamilyName, pairUp, prepareCla
 import { codeExpression } from './code-path';
 import { decide } from './decide';
 import type { Decision } from './pair';
-import { Spellings } from './spellings';
+import type { Spellings } from './spellings';
 
 export interface SubjectRequest {
   /** The block with `reads` and `checks`: the system's own, or one that names it. */

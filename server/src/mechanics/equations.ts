@@ -2,7 +2,7 @@ import type { Graph } from '../expression/graph';
 import type { Expr, SymbolData } from '../expression/node';
 import { normalForm, simplify, toExpr } from '../expression/normal-form';
 import { symbolsOf } from '../expression/reach';
-import { Rational } from '../expression/rational';
+import type { Rational } from '../expression/rational';
 import type { Derived } from './lagrange';
 import type { Coordinate } from './system';
 
