@@ -1,5 +1,6 @@
 import type { Place } from '../text/span';
 import { callSuper, construct, findMember } from './classes';
+import { damage, unknownCall } from './damage';
 import { evaluate } from './expressions';
 import type { Argument, Expression, Parameter } from './form';
 import { childOf, fallbackOf, genericAt, valueOf } from './generics';
@@ -12,10 +13,10 @@ import { requireModule } from './modules';
 import { dataOf, describe, itemsOf, numeric } from './numbers';
 import { bindItem } from './patterns';
 import { lastName, pathOf } from './paths';
-import { assignments, hoistedNames } from './scan';
+import { hoistedNames } from './scan';
 import { Scope, type Frame, type Module } from './scope';
 import { execute, type Exit } from './statements';
-import { arrivalOf, arrive, declare, readVariable, write } from './variables';
+import { arrivalOf, arrive, declare, readVariable } from './variables';
 import { NOTHING, isUnread, unread, type FunctionValue, type LibraryValue, type Unread, type Value } from './values';
 
 /** Calls: of the code's own functions, by running them; of the library, by its table; of anything else, not at all. */
@@ -246,38 +247,6 @@ export function applyScalar(m: Machine, f: NonNullable<ReturnType<LibraryValue['
   const r = f(m.graph, exprs);
   if ('unread' in r) return unread(r.unread, place);
   return m.scalar(m.request.withinLimits ? unclip(r) : r, place);
-}
-
-export function unknownCall(m: Machine, args: readonly ArgumentValue[], place: Place, words: string, why?: string): Unread {
-  const reason = unread(why ?? `can't read the call \`${words}(...)\`: no function of that name is in this project or in the library tables`, place);
-  damage(m, args, reason);
-  return reason;
-}
-
-/** Things made here that an unknown call was given may be changed by it. */
-export function damage(m: Machine, args: readonly ArgumentValue[], why: Unread): void {
-  const seen = new Set<number>();
-  const stack = args.map((a) => a.value);
-  while (stack.length > 0) {
-    const v = stack.pop()!;
-    if (v.kind === 'choice') stack.push(v.whenTrue, v.whenFalse);
-    if (v.kind === 'function') {
-      for (const name of assignments(v.node).assigned) {
-        const variable = v.scope.find(name);
-        if (variable) write(m, variable, why);
-      }
-    }
-    if (v.kind !== 'object' || seen.has(v.id)) continue;
-    seen.add(v.id);
-    const data = m.store.data(v.id);
-    if (data.kind === 'list') stack.push(...data.items);
-    else if (data.kind === 'record') stack.push(...data.members.values());
-    if (data.kind === 'list' || data.kind === 'record') m.breakObject(v.id, why);
-    else if (data.kind === 'generic' && data.members.size > 0) {
-      const own = m.store.writable(v.id);
-      if (own.kind === 'generic') for (const key of [...own.members.keys()]) own.members.set(key, why);
-    }
-  }
 }
 
 /** `new F(...)` of a plain function: JavaScript before classes. */

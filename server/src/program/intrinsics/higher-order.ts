@@ -1,6 +1,7 @@
 import { truthOf } from '../conditions';
 import type { Machine } from '../machine';
-import { callFunctionValue, damage, invoke } from '../calls';
+import { callFunctionValue, invoke } from '../calls';
+import { damage } from '../damage';
 import { countOf, dataOf, itemsOf } from '../numbers';
 import { isUnread, unread, type Unread, type Value } from '../values';
 import { isItems, itemsIn } from './lists';

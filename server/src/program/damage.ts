@@ -1,0 +1,40 @@
+import type { Place } from '../text/span';
+import type { ArgumentValue } from './calls';
+import type { Machine } from './machine';
+import { assignments } from './scan';
+import { write } from './variables';
+import { unread, type Unread } from './values';
+
+/** What a call that can't be read may have done. */
+
+export function unknownCall(m: Machine, args: readonly ArgumentValue[], place: Place, words: string, why?: string): Unread {
+  const reason = unread(why ?? `can't read the call \`${words}(...)\`: no function of that name is in this project or in the library tables`, place);
+  damage(m, args, reason);
+  return reason;
+}
+
+/** Things made here that an unknown call was given may be changed by it. */
+export function damage(m: Machine, args: readonly ArgumentValue[], why: Unread): void {
+  const seen = new Set<number>();
+  const stack = args.map((a) => a.value);
+  while (stack.length > 0) {
+    const v = stack.pop()!;
+    if (v.kind === 'choice') stack.push(v.whenTrue, v.whenFalse);
+    if (v.kind === 'function') {
+      for (const name of assignments(v.node).assigned) {
+        const variable = v.scope.find(name);
+        if (variable) write(m, variable, why);
+      }
+    }
+    if (v.kind !== 'object' || seen.has(v.id)) continue;
+    seen.add(v.id);
+    const data = m.store.data(v.id);
+    if (data.kind === 'list') stack.push(...data.items);
+    else if (data.kind === 'record') stack.push(...data.members.values());
+    if (data.kind === 'list' || data.kind === 'record') m.breakObject(v.id, why);
+    else if (data.kind === 'generic' && data.members.size > 0) {
+      const own = m.store.writable(v.id);
+      if (own.kind === 'generic') for (const key of [...own.members.keys()]) own.members.set(key, why);
+    }
+  }
+}
