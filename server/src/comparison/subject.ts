@@ -1,4 +1,5 @@
-import type { Expr } from '../expression/node';
+import { symbolText, type Expr, type SymbolData } from '../expression/node';
+import { firstSymbols } from '../expression/reach';
 import { evaluate, type FormulaContext } from '../mechanics/formula';
 import type { Derived } from '../mechanics/lagrange';
 import { quantityContext } from '../mechanics/quantities';
@@ -137,10 +138,12 @@ export function readClaims(request: SubjectRequest): SubjectReading {
       results.push({ ...base, decision: unread('not decided', found.place), found: found.expr, expected });
     }
   }
+  const borrowed = borrowedAccelerations(values, results, reading);
+  for (const [at, decision] of borrowed) results[at] = { ...results[at]!, decision };
   const free = freeSymbols(values.map((p) => p.found));
   const pending = values.filter((p, i) => {
     const symbol = free[i];
-    if (!symbol) return true;
+    if (!symbol) return !borrowed.has(p.at);
     const why = reading.free.get(symbol);
     const place = why?.place ?? results[p.at]!.place;
     const reason = why?.reason ?? 'it depends on something that has no meaning here';
@@ -148,6 +151,33 @@ export function readClaims(request: SubjectRequest): SubjectReading {
     return false;
   });
   return { claims: results, problems, ambiguities: reading.ambiguities, reading, pending };
+}
+
+/**
+ * Claims about accelerations whose value is taken from something that only by its name is an acceleration: nothing was
+ * computed, so nothing is confirmed. A residual takes the accelerations as arguments and is meant so.
+ */
+function borrowedAccelerations(
+  values: readonly { readonly at: number; readonly found: Expr }[],
+  results: readonly ClaimResult[],
+  reading: Reading,
+): Map<number, Decision> {
+  const named = new Map<Expr, Reading['bindings'][number]>();
+  for (const b of reading.bindings) {
+    const data = b.meaning.op === 'symbol' ? (b.meaning.data as SymbolData) : undefined;
+    if (b.how === 'name' && data?.role === 'coordinate' && data.order >= 2) named.set(b.meaning, b);
+  }
+  const out = new Map<number, Decision>();
+  if (named.size === 0) return out;
+  const first = firstSymbols(values.map((v) => v.found), (s) => named.has(s));
+  values.forEach((v, i) => {
+    const binding = first[i] && named.get(first[i]);
+    if (!binding || results[v.at]!.quantity.includes('residual')) return;
+    const meaning = symbolText(binding.meaning.data as SymbolData);
+    const reason = `it is not computed here but taken from \`${binding.code}\`; if that is ${meaning} indeed, say so with \`reads ${binding.code} = ${meaning}\``;
+    out.set(v.at, { verdict: 'unread', reason, place: binding.place });
+  });
+  return out;
 }
 
 function isEquilibrium(request: SubjectRequest, mustVanish: readonly Expr[]): boolean {

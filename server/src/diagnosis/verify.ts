@@ -11,12 +11,11 @@ export interface Rechecked {
   others(): Promise<{ readonly before: readonly SubjectResult[]; readonly after: readonly SubjectResult[] }>;
 }
 
-/** Whether with these edits every claim that was decided holds, and nothing else in the file got worse. */
+/** Whether with these edits every claim of the function holds, and nothing else in the file got worse. */
 export async function isRepair(before: SubjectResult, edits: readonly Edit[], recheck: Recheck): Promise<boolean> {
   const after = await recheck(edits);
   if (!after || !isNoWorse(before, after.result)) return false;
-  if (after.result.claims.some((c) => c.decision.verdict === 'differs')) return false;
-  if (!before.claims.every((c, i) => c.decision.verdict === 'unread' || after.result.claims[i]!.decision.verdict === 'holds')) return false;
+  if (!after.result.claims.every((c) => c.decision.verdict === 'holds')) return false;
   const others = await after.others();
   return others.before.length === others.after.length && others.before.every((b, i) => isNoWorse(b, others.after[i]!));
 }

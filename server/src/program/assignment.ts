@@ -51,7 +51,13 @@ function inPlace(m: Machine, old: Value & { kind: 'object' }, value: Value & { k
   if (!items || !itemsOf(m, old)) return value;
   const list = m.store.writable(old.id);
   if (list.kind !== 'list') return value;
+  const { view } = list;
   list.items = [...items];
+  if (view && view.length !== items.length) return value;
+  view?.forEach((part, k) => {
+    const source = m.store.writable(part.id);
+    if (source.kind === 'list') source.items[part.at] = items[k]!;
+  });
   return old;
 }
 

@@ -3,11 +3,12 @@ import { callSuper, construct, findMember } from './classes';
 import { damage, unknownCall } from './damage';
 import { evaluate } from './expressions';
 import type { Argument, Expression, Parameter } from './form';
-import { childOf, fallbackOf, genericAt, valueOf } from './generics';
+import { childOf, fallbackOf, fieldValue, genericAt, valueOf } from './generics';
 import { runIntrinsic } from './intrinsics/table';
+import type { ScalarFunction } from './library';
 import { unclip } from './limits';
 import type { Machine } from './machine';
-import { readMember } from './members';
+import { readMember, writeMember } from './members';
 import { apply, mergeEndings, withEach, type Ending } from './merging';
 import { requireModule } from './modules';
 import { dataOf, describe, itemsOf, numeric } from './numbers';
@@ -220,9 +221,25 @@ function callLibrary(m: Machine, callee: LibraryValue, args: readonly ArgumentVa
   const intrinsic = library.intrinsics.get(callee.path);
   if (intrinsic) return runIntrinsic(m, callee.module, intrinsic, undefined, args, place);
   const scalar = library.scalars.get(callee.path);
-  if (scalar) return applyScalar(m, scalar, args.map((a) => a.value), place);
+  if (scalar) return callScalar(m, callee.module, scalar, args, place);
   const name = lastName(callee.path);
   return unknownCall(m, args, place, callee.path, name === 'random' ? 'a random number' : undefined);
+}
+
+/** Named arguments of a scalar function: a type says nothing, `out` is written to, and any other is not known. */
+function callScalar(m: Machine, module: Module, f: ScalarFunction, args: readonly ArgumentValue[], place: Place): Value {
+  const named = args.filter((a) => a.name !== undefined && a.name !== 'dtype');
+  const value = applyScalar(m, f, args.filter((a) => a.name === undefined).map((a) => a.value), place);
+  if (named.length === 0) return value;
+  const out = named.find((a) => a.name === 'out')?.value;
+  const items = itemsOf(m, value);
+  if (named.length > 1 || out?.kind !== 'object' || !items || itemsOf(m, out)?.length !== items.length) {
+    const why = unread('a function of the library with arguments that are not known', place);
+    damage(m, args, why);
+    return why;
+  }
+  items.forEach((v, k) => writeMember(m, module, out, String(k + module.program.indexBase), v, place));
+  return out;
 }
 
 /** A scalar function; over the items of a numeric vector where it is given one. */
@@ -372,6 +389,9 @@ function bindParameter(m: Machine, scope: Scope, parameter: Parameter, value: Va
     const place = m.place(s, pattern.span);
     const settled = fromDefault ? arrive(m, pattern.name, v, arrivalOf(s, pattern.name, place)) : v;
     declare(m, s, pattern.name, settled);
-    if (parameter.field && s.frame.self?.kind === 'object') m.setMember(s.frame.self, pattern.name, settled);
+    if (parameter.field && s.frame.self?.kind === 'object') {
+      const { self } = s.frame;
+      m.setMember(self, pattern.name, m.constructing === self.id ? fieldValue(m, pattern.name, settled, place) : settled);
+    }
   });
 }

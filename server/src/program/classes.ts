@@ -2,7 +2,7 @@ import type { Place } from '../text/span';
 import { invoke, type ArgumentValue } from './calls';
 import { evaluate } from './expressions';
 import type { ClassNode, Member } from './form';
-import { genericAt, valueOf } from './generics';
+import { fieldValue, genericAt, valueOf } from './generics';
 import type { Machine } from './machine';
 import { patternNames } from './scan';
 import { Scope, type ClassInfo, type Frame } from './scope';
@@ -97,6 +97,7 @@ function bodyScope(m: Machine, info: ClassInfo, self: Value): Scope {
 
 export function construct(m: Machine, info: ClassInfo, args: readonly ArgumentValue[], place: Place): Value {
   const self = m.object({ kind: 'record', members: new Map(), info });
+  if (info.scope.frame.module.program.classFields) initialiseClassFields(m, info, self);
   const problem = initialise(m, info, self, args, place);
   return problem ?? self;
 }
@@ -128,13 +129,25 @@ export function callSuper(m: Machine, info: ClassInfo, self: ObjectValue, args: 
   return NOTHING;
 }
 
+/** What instances see of the class bodies, the base's first. */
+function initialiseClassFields(m: Machine, info: ClassInfo, self: ObjectValue): void {
+  const chain: ClassInfo[] = [];
+  for (let at: ClassInfo | 'unknown' | undefined = info; at && at !== 'unknown' && chain.length < 64; at = at.base()) chain.unshift(at);
+  for (const one of chain) setFields(m, one, self);
+}
+
 function initialiseFields(m: Machine, info: ClassInfo, self: ObjectValue): void {
+  if (!info.scope.frame.module.program.classFields) setFields(m, info, self);
+}
+
+function setFields(m: Machine, info: ClassInfo, self: ObjectValue): void {
   const scope = bodyScope(m, info, self);
   for (const member of info.node.members) {
     if (member.kind !== 'field' || member.isStatic || !member.value) continue;
     const value = evaluate(m, scope, member.value);
+    const settled = m.constructing === self.id ? fieldValue(m, member.name, value, m.place(scope, member.span)) : value;
     const data = m.store.writable(self.id);
-    if (data.kind === 'record') data.members.set(member.name, value);
+    if (data.kind === 'record') data.members.set(member.name, settled);
   }
 }
 
@@ -169,11 +182,15 @@ function constructed(m: Machine, info: ClassInfo): ObjectValue {
     const self = m.object({ kind: 'record', members: new Map(), info });
     m.instances.set(info.node, self);
     // Its arguments are things of their own: they must not be held against the fields they are stored in.
-    const run = m.naming.run;
-    m.naming.run = -1;
+    const { run } = m.naming;
+    const before = m.constructing;
+    m.naming.run = -1 - 2 * m.instances.size;
+    m.constructing = self.id;
     const args = genericArguments(m, info);
+    if (info.scope.frame.module.program.classFields) initialiseClassFields(m, info, self);
     initialise(m, info, self, args, m.place(info.scope, info.node.nameSpan));
     m.naming.run = run;
+    m.constructing = before;
     return self;
   });
 }

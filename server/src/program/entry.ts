@@ -57,7 +57,21 @@ function enterParameter(m: Machine, scope: Scope, parameter: Parameter): void {
   const { initial } = parameter;
   let first: Value | undefined;
   const fallback = initial ? (): Value => (first ??= evaluate(m, scope, initial)) : undefined;
+  const info = parameter.type && parameter.pattern.kind === 'name' ? classOf(m, scope, parameter.type) : undefined;
+  if (info && parameter.pattern.kind === 'name') {
+    const place = m.place(scope, parameter.pattern.span);
+    declare(m, scope, parameter.pattern.name, genericAt(m, parameter.pattern.name, place, { info }));
+    return;
+  }
   enterPattern(m, scope, parameter.pattern, [], fallback);
+}
+
+/** The class of this project that a type names. */
+function classOf(m: Machine, scope: Scope, type: Expression): ClassInfo | undefined {
+  m.quiet++;
+  const value = evaluate(m, scope, type);
+  m.quiet--;
+  return value.kind === 'class' ? value.info : undefined;
 }
 
 /** Each name of a parameter is a thing of its own: of a field that is renamed, by either name. */

@@ -18,6 +18,10 @@ export interface Program {
   readonly elementwise?: boolean;
   /** `+` joins plain lists and `*` repeats them (Python). */
   readonly listConcat?: boolean;
+  /** Fields of a class body belong to the class, and are there before any constructor runs (Python). */
+  readonly classFields?: boolean;
+  /** What the source calls `this`, for messages. */
+  readonly selfWord?: string;
   /** Every top-level name can be imported, listed as an export or not. */
   readonly exportsAll?: boolean;
   /** Negative indices count from the end (Python). */

@@ -123,6 +123,27 @@ function throughGetters(path: string): boolean {
   return true;
 }
 
+/**
+ * The value that a constructor run on generic arguments leaves in a field: what `reads` or the field's name says it is;
+ * else the value, a constructor's parameter standing for what its own name means.
+ */
+export function fieldValue(m: Machine, key: string, value: Value, place: Place): Value {
+  const path = m.naming.member('this', key);
+  const read = m.naming.read([path], place);
+  if (read) return read.kind === 'scalar' ? { kind: 'scalar', expr: read.expr, place } : value;
+  if (value.kind === 'scalar' && m.naming.containsDeclared(value.expr)) return value;
+  const data = value.kind === 'object' ? m.store.data(value.id) : undefined;
+  if (data && (data.kind !== 'generic' || data.members.size > 0 || data.generic.info)) return value;
+  if (value.kind !== 'scalar' && value.kind !== 'unread' && !data) return value;
+  const { run } = m.naming;
+  m.naming.run = run - 1;
+  const expr = m.naming.agree(key, path, path, place);
+  m.naming.run = run;
+  if (expr) return { kind: 'scalar', expr, place };
+  const own = data?.kind === 'generic' ? meaningOf(m, data.generic) : undefined;
+  return own && !isUnread(own) ? own : value;
+}
+
 function freeOf(m: Machine, generic: Generic) {
   const ambiguous = m.naming.isForcedFree(generic.path);
   const reason = ambiguous
@@ -134,7 +155,7 @@ function freeOf(m: Machine, generic: Generic) {
 /** A value for a meaning. */
 export function valueOf(m: Machine, meaning: Meaning, place: Place | undefined): Value {
   if (meaning.kind === 'scalar') return { kind: 'scalar', expr: meaning.expr, ...(place ? { place } : {}) };
-  return m.list(meaning.items.map((item) => valueOf(m, item, place)));
+  return m.list(meaning.items.map((item) => valueOf(m, item, place)), m.request.program.listConcat === true);
 }
 
 /**
@@ -153,7 +174,8 @@ export function structure(m: Machine, id: number): void {
     generic.structured = true;
     m.atRoot(() => {
       const list = items.map((item) => valueOf(m, item, generic.place));
-      m.store.set(id, { kind: 'list', items: list, array: false });
+      const vectors = m.request.program.listConcat === true;
+      m.store.set(id, { kind: 'list', items: list, array: vectors, ...(vectors ? { outside: true } : {}) });
     });
     return;
   }

@@ -36,6 +36,8 @@ export class Machine {
   /** Flags and kinds that `assume` settles, by path. */
   readonly given = new Map<string, Value>();
   readonly trace: TraceEntry[] = [];
+  /** Local variables that are claimed as outputs. */
+  readonly claimedNames = new Set<string>();
   readonly files = new Set<string>();
   /** Above zero while a loop is only looked over, or an output is read: nothing is recorded and nothing replaced. */
   quiet = 0;
@@ -47,6 +49,8 @@ export class Machine {
   keepPlaces = false;
   calls = 0;
   readonly classes = new Map<ClassNode, ClassInfo>();
+  /** The instance that a constructor is making from generic arguments: what its fields mean by `reads` or name, they are. */
+  constructing: number | undefined;
   /** Instances made from generic arguments, by class. */
   readonly instances = new Map<ClassNode, ObjectValue>();
   readonly frameNames = new Set<number>();
@@ -188,6 +192,9 @@ export class Machine {
   }
 
   breakObject(id: number, why: Unread): void {
+    const content = this.store.get(id);
+    // What is done to a view is done to what it shows.
+    if (content?.kind === 'list' && content.view) for (const part of content.view) this.store.set(part.id, { kind: 'broken', unread: why });
     this.store.set(id, { kind: 'broken', unread: why });
   }
 
@@ -208,13 +215,20 @@ export class Machine {
     if (!this.quiet && !this.conditions.has(expr)) this.conditions.set(expr, place);
   }
 
-  ambiguous(message: string, place: Place): void {
+  ambiguous(words: string, place: Place): void {
+    const message = this.inWords(words);
     if (!this.ambiguities.has(message)) this.ambiguities.set(message, { message, place });
+  }
+
+  /** Words for people, in which the receiver is called as the source calls it. */
+  inWords(text: string): string {
+    const { selfWord } = this.request.program;
+    return selfWord === undefined ? text : text.replace(/\bthis(?=[.\[(])/g, selfWord);
   }
 
   freeSymbol(path: string, reason: string, place: Place): Expr {
     const symbol = this.graph.symbol({ name: path, role: 'free', order: 0 });
-    if (!this.free.has(symbol)) this.free.set(symbol, { code: path, reason, place });
+    if (!this.free.has(symbol)) this.free.set(symbol, { code: this.inWords(path), reason: this.inWords(reason), place });
     return symbol;
   }
 }

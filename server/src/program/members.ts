@@ -2,7 +2,7 @@ import type { Place } from '../text/span';
 import { invoke } from './calls';
 import { isChoiceOfNumbers } from './conditions';
 import { findMember, instanceField, staticMember } from './classes';
-import { childOf } from './generics';
+import { childOf, fieldValue } from './generics';
 import { runIntrinsic } from './intrinsics/table';
 import type { Machine } from './machine';
 import { withEach } from './merging';
@@ -51,7 +51,7 @@ export function readMember(m: Machine, module: Module, object: Value, key: strin
     case 'record':
       return recordMember(m, module, object, data, key, place);
     case 'generic':
-      return genericMember(m, object, data, key, place);
+      return genericMember(m, module, object, data, key, place);
   }
 }
 
@@ -115,11 +115,13 @@ function fromClass(m: Machine, info: ClassInfo, object: ObjectValue, key: string
   return found.member.kind === 'method' ? f : undefined;
 }
 
-function genericMember(m: Machine, object: ObjectValue, data: GenericData, key: string, place: Place): Value {
+function genericMember(m: Machine, module: Module, object: ObjectValue, data: GenericData, key: string, place: Place): Value {
   const written = data.members.get(key);
   if (written) return written;
   const { generic } = data;
   const bound = [generic.path, ...generic.aliases].some((path) => m.naming.hasRead(m.naming.member(path, key)));
+  const method = bound || generic.info ? undefined : module.library.methods.get(`generic.${key}`);
+  if (method) return { kind: 'method', intrinsic: method, self: object };
   if (generic.info && !bound) {
     const found = fromClass(m, generic.info, object, key, place);
     if (found && found.kind !== 'unread') return found;
@@ -164,6 +166,8 @@ export function readElement(m: Machine, module: Module, object: Value, given: Va
   }
   const data = dataOf(m, object);
   if (data?.kind === 'list') return elementAt(m, module, data, known);
+  // What is indexed by the first place is no number: its one entry goes by the name of the whole.
+  if (object.kind === 'scalar' && module.program.listConcat && known === module.program.indexBase) return object;
   if (!data) return unread(`an element of a ${describe(object)}`, place);
   return readMember(m, module, object, String(known), place);
 }
@@ -211,7 +215,8 @@ export function writeMember(m: Machine, module: Module, object: Value, key: stri
   const info = before.kind === 'record' ? before.info : before.kind === 'generic' ? before.generic.info : undefined;
   if (info && callSetter(m, info, object, key, value, place)) return;
   const data = m.store.writable(object.id);
-  if (data.kind === 'record' || data.kind === 'generic') data.members.set(key, value);
+  if (data.kind === 'record' && m.constructing === object.id) data.members.set(key, fieldValue(m, key, value, place));
+  else if (data.kind === 'record' || data.kind === 'generic') data.members.set(key, value);
   else if (data.kind === 'list') {
     if (/^\d+$/.test(key)) setItem(m, object, data, Number(key) - module.program.indexBase, value, place);
     else if (key === 'length') {
@@ -231,6 +236,12 @@ function callSetter(m: Machine, info: ClassInfo, object: ObjectValue, key: strin
 }
 
 function setItem(m: Machine, object: ObjectValue, data: ListData, k: number, value: Value, place: Place): void {
+  const part = data.view?.[k];
+  if (part) {
+    const source = m.store.writable(part.id);
+    if (source.kind === 'list') source.items[part.at] = value;
+    return;
+  }
   if (k < 0 || k > LONGEST) {
     m.breakObject(object.id, unread('a list written to outside its bounds', place));
     return;

@@ -52,6 +52,11 @@ export class Naming {
     return memberPath(path, key);
   }
 
+  /** What `reads` says about a path, without a record of it. */
+  meaningOf(path: string): Meaning | undefined {
+    return this.reads.get(path)?.meaning;
+  }
+
   hasRead(path: string): boolean {
     return this.reads.has(path);
   }
@@ -82,6 +87,14 @@ export class Naming {
     const meaning = this.byName(name);
     if (!meaning || 'ambiguous' in meaning || meaning.expr.op !== 'symbol') return false;
     return (meaning.expr.data as SymbolData).role === 'coordinate';
+  }
+
+  /** True for a name that agrees with the second time derivative of a coordinate. */
+  isAcceleration(name: string): boolean {
+    const meaning = this.byName(name);
+    if (!meaning || 'ambiguous' in meaning || meaning.expr.op !== 'symbol') return false;
+    const data = meaning.expr.data as SymbolData;
+    return data.role === 'coordinate' && data.order >= 2;
   }
 
   family(paths: readonly string[]): readonly Meaning[] | undefined {
@@ -177,6 +190,6 @@ export class Naming {
   private record(code: string, meaning: Expr, how: 'reads' | 'name', place: Place): void {
     if (this.m.quiet) return;
     const key = `${code} ${meaning.id}`;
-    if (!this.m.bindings.has(key)) this.m.bindings.set(key, { code, meaning, how, place });
+    if (!this.m.bindings.has(key)) this.m.bindings.set(key, { code: this.m.inWords(code), meaning, how, place });
   }
 }

@@ -123,6 +123,9 @@ function onLists(
   // Formulas of outputs are written as on paper.
   if (m.keepPlaces && op === '*' && x && y) return multiplyMatrices(m, a, b, place);
   const vectors = elementwise || m.keepPlaces || x?.array || y?.array || op.startsWith('elementwise');
+  if (listConcat && op === '+' && x && y && ((x.outside && !y.array) || (y.outside && !x.array))) {
+    return unread('a sum of lists of which one comes from outside: say with `np.array(...)` whether they are joined or added', place);
+  }
   if (!vectors && listConcat) {
     if (op === '+' && x && y) return m.list([...x.items, ...y.items]);
     if (op === '*' && (x === undefined) !== (y === undefined)) {

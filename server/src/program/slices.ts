@@ -13,7 +13,7 @@ import { unread, type Unread, type Value } from './values';
 type Slice = Expression & { kind: 'slice' };
 
 /** The positions, from 0, that a slice of a list of `length` takes; a base of 1 counts the last one in. */
-function positions(m: Machine, scope: Scope, s: Slice, length: number, place: Place): number[] | undefined {
+export function positions(m: Machine, scope: Scope, s: Slice, length: number, place: Place): number[] | undefined {
   const { indexBase, negativeIndex } = scope.frame.module.program;
   const bound = (e: Expression | undefined, otherwise: number): number | undefined =>
     e ? countOf(m, evaluate(m, scope, e), place) : otherwise;

@@ -1,4 +1,4 @@
-import { isData, type Content, type Data, type Value } from './values';
+import { isData, type Content, type Data, type ListData, type Value, type ViewItem } from './values';
 
 /**
  * Everything that can change, in layers: a branch writes to a layer of its own, and only what it wrote is merged. A store
@@ -44,8 +44,19 @@ export class Store {
 
   data(location: number): Data {
     const c = this.get(location);
-    if (c && isData(c)) return c;
+    if (c && isData(c)) return c.kind === 'list' && c.view ? this.seen(c, c.view) : c;
     return { kind: 'broken', unread: { kind: 'unread', reason: 'a thing used before it is made', place: undefined } };
+  }
+
+  /** A view with what its lists hold now. */
+  private seen(list: ListData, view: readonly ViewItem[]): Data {
+    const items: Value[] = [];
+    for (const { id, at } of view) {
+      const source = this.get(id);
+      if (source?.kind === 'broken') return source;
+      items.push((source?.kind === 'list' ? source.items[at] : undefined) ?? { kind: 'nothing' });
+    }
+    return { ...list, items };
   }
 
   set(location: number, content: Content): void {

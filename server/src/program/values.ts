@@ -86,6 +86,17 @@ export interface ListData {
   items: Value[];
   /** A numeric vector, on which operators work element by element. */
   readonly array: boolean;
+  /** Known from a declaration only: in languages that have both, it could be a plain list or a numeric vector. */
+  readonly outside?: boolean;
+  /** A part of other lists: item k is theirs, so that writing to either shows in both. */
+  readonly view?: readonly ViewItem[];
+}
+
+export interface ViewItem {
+  /** The list in the store. */
+  readonly id: number;
+  /** From 0. */
+  readonly at: number;
 }
 
 export interface RecordData {

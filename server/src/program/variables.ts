@@ -1,7 +1,8 @@
 import type { Place } from '../text/span';
-import { addAlias, valueOf } from './generics';
+import type { Expr } from '../expression/node';
+import { addAlias, genericAt, valueOf } from './generics';
 import type { Machine } from './machine';
-import { memberPath } from './paths';
+import { lastName, memberPath } from './paths';
 import { assignments } from './scan';
 import type { Scope, Variable } from './scope';
 import { unread, type Value } from './values';
@@ -54,11 +55,33 @@ export function arrivalOf(scope: Scope, name: string, place: Place): Arrival {
  */
 export function arrive(m: Machine, name: string, value: Value, arrival: Arrival): Value {
   if (value.kind === 'object') {
+    if (meansAnother(m, value, name)) return genericAt(m, name, arrival.place);
     addAlias(m, value, name);
     return settleList(m, name, value, arrival);
   }
   if (arrival.isAccumulated) return value;
   return settleName(m, name, name, value, arrival.place);
+}
+
+/** `I1 = p.inertia; I2 = p.inertia`: by their own names these are two different symbols, whatever the code has for both. */
+function meansAnother(m: Machine, value: Value & { kind: 'object' }, name: string): boolean {
+  const data = m.store.data(value.id);
+  if (data.kind !== 'generic' || data.members.size > 0) return false;
+  const { path, aliases } = data.generic;
+  const meaning = symbolOf(m, name);
+  if (!meaning || symbolOf(m, path) || symbolOf(m, lastName(path) ?? '')) return false;
+  return aliases.some((a) => {
+    const other = symbolOf(m, a);
+    return other !== undefined && other !== meaning;
+  });
+}
+
+/** The one number that `reads` or its own name says a name is. */
+function symbolOf(m: Machine, name: string): Expr | undefined {
+  const read = m.naming.meaningOf(name);
+  if (read) return read.kind === 'scalar' ? read.expr : undefined;
+  const meaning = m.naming.byName(name);
+  return meaning && 'expr' in meaning ? meaning.expr : undefined;
 }
 
 /**
@@ -85,6 +108,8 @@ export function settleName(m: Machine, name: string, path: string, value: Value,
   if (value.kind === 'unread' && m.stopped) return value;
   const read = m.naming.read([path, name], place);
   if (read) return valueOf(m, read, place);
+  // What the code computes as an acceleration, or as a claimed output, is its answer: it can't mean the right one by its name.
+  if (m.naming.isAcceleration(name) || (m.claimedNames.has(name) && value.kind === 'unread' && m.naming.isState(name))) return value;
   const literal = value.kind === 'scalar' && value.expr.op === 'number';
   const origin = literal ? `${name} = ${literalText(value)}` : path;
   const expr = m.naming.agree(name, path, origin, place);

@@ -1,47 +1,47 @@
-import type { Expr } from '../../expression/node';
-
-/** A column as a constant times small whole powers of positive quantities, found by least squares of logarithms. */
-export class LogFit {
+/** A column as a constant times small whole powers of known columns, found by least squares of logarithms. */
+export class LogFit<B> {
   private readonly rows: number[][];
   private readonly normal: number[][] | undefined;
+  private readonly bases: readonly { readonly expr: B; readonly value: Float64Array }[];
 
-  /** @param bases what may occur, with their columns; only those that are positive at all states are used */
+  /** @param bases what may occur, with their columns; none may come near zero */
   constructor(
-    private readonly bases: readonly { readonly expr: Expr; readonly value: Float64Array }[],
+    bases: readonly { readonly expr: B; readonly value: Float64Array }[],
     private readonly n: number,
   ) {
-    this.bases = bases.filter((b) => b.value.every((x) => x > 1e-9) && !b.value.every((x) => x === b.value[0])).slice(0, n - 4);
-    this.rows = Array.from({ length: n }, (_, s) => [1, ...this.bases.map((b) => Math.log(b.value[s]!))]);
+    this.bases = bases.filter((b) => b.value.every((x) => Math.abs(x) > 1e-9) && !b.value.every((x) => x === b.value[0])).slice(0, n - 5);
+    this.rows = Array.from({ length: n }, (_, s) => [1, ...this.bases.map((b) => Math.log(Math.abs(b.value[s]!)))]);
     const m = this.bases.length + 1;
     const normal = Array.from({ length: m }, (_, i) => Array.from({ length: m }, (_, j) => this.rows.reduce((t, r) => t + r[i]! * r[j]!, 0)));
     this.normal = invert(normal);
   }
 
-  /** Only the states that count; NaN marks the others. */
-  private without(column: Float64Array): ReturnType<LogFit['product']> {
-    const states = [...column.keys()].filter((s) => !Number.isNaN(column[s]!));
-    if (states.length < 6) return undefined;
-    const pick = (x: Float64Array): Float64Array => Float64Array.from(states, (s) => x[s]!);
-    return new LogFit(this.bases.map((b) => ({ expr: b.expr, value: pick(b.value) })), states.length).product(pick(column));
-  }
-
-  product(column: Float64Array): { readonly constant: number; readonly powers: readonly { readonly base: Expr; readonly power: number }[] } | undefined {
-    const sign = Math.sign(column[0]!);
+  /** NaN marks states that don't count. */
+  product(column: Float64Array): { readonly constant: number; readonly powers: readonly { readonly base: B; readonly power: number }[] } | undefined {
     if (column.some(Number.isNaN)) return this.without(column);
-    if (!this.normal || sign === 0 || !column.every((x) => Math.sign(x) === sign && Number.isFinite(x))) return undefined;
+    if (!this.normal || !column.every((x) => Number.isFinite(x) && x !== 0)) return undefined;
     const y = Array.from(column, (x) => Math.log(Math.abs(x)));
     const right = this.rows[0]!.map((_, i) => this.rows.reduce((t, r, s) => t + r[i]! * y[s]!, 0));
     const exponents = this.normal.map((row) => Math.round(2 * row.reduce((t, x, j) => t + x * right[j]!, 0)) / 2);
     const powers = this.bases.map((b, i) => ({ base: b.expr, power: exponents[i + 1]! })).filter((p) => p.power !== 0);
-    if (powers.length > 4 || powers.some((p) => Math.abs(p.power) > 4)) return undefined;
+    if (powers.length > 5 || powers.some((p) => Math.abs(p.power) > 4)) return undefined;
     let constant: number | undefined;
     for (let s = 0; s < this.n; s++) {
       let rest = column[s]!;
-      this.bases.forEach((b, i) => (rest /= b.value[s]! ** exponents[i + 1]!));
+      this.bases.forEach((b, i) => {
+        if (exponents[i + 1] !== 0) rest /= b.value[s]! ** exponents[i + 1]!;
+      });
       constant ??= rest;
       if (!(Math.abs(rest - constant) <= 1e-6 * Math.abs(constant))) return undefined;
     }
     return constant === undefined || Math.abs(constant) < 1e-3 || Math.abs(constant) > 1e3 ? undefined : { constant, powers };
+  }
+
+  private without(column: Float64Array): ReturnType<LogFit<B>['product']> {
+    const states = [...column.keys()].filter((s) => !Number.isNaN(column[s]!));
+    if (states.length < 6 || states.length === this.n) return undefined;
+    const pick = (x: Float64Array): Float64Array => Float64Array.from(states, (s) => x[s]!);
+    return new LogFit(this.bases.map((b) => ({ expr: b.expr, value: pick(b.value) })), states.length).product(pick(column));
   }
 }
 

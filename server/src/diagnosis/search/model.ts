@@ -10,7 +10,7 @@ import type { Evaluation, TaggedReading } from './tagged';
 import { TrialTape } from './trial-tape';
 
 /** States every candidate is tried at, and copies of them run together. */
-export const STATES = 16;
+export const STATES = 20;
 const BLOCKS = 2;
 /** A first look takes fewer states and more candidates at a time. */
 const FIRST_STATES = 4;

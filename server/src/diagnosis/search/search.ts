@@ -1,6 +1,7 @@
 import type { ClaimResult, SubjectRequest, SubjectResult } from '../../comparison/subject';
 import type { Expression } from '../../program/form';
 import { solvePlace, type Needed } from './angelic';
+import { brackets } from './candidates/brackets';
 import type { Atom, Candidate, Maker, Scene, Spot } from './candidates/candidate';
 import { agree } from './candidates/candidate';
 import { exchanges } from './candidates/exchanges';
@@ -15,7 +16,7 @@ import { Model, type Change } from './model';
 import { mapSource, type Site, type SourceMap } from './sites';
 import { MODES, readTagged, type Evaluation } from './tagged';
 
-const BASIC: readonly Maker[] = [signs, operators, drops, groupings, names, constants, functions, powers];
+const BASIC: readonly Maker[] = [signs, operators, drops, groupings, brackets, names, constants, functions, powers];
 
 /** The search for an edit that makes all claims of a function right, in stages from cheap to dear. */
 export class Search {

@@ -19,6 +19,8 @@ export function programOf(recovered: Recovered): Program {
     listConcat: true,
     negativeIndex: true,
     exportsAll: true,
+    classFields: true,
+    selfWord: 'self',
     body: [...inner, ...body],
     comments: findComments(converter, syntax),
     errors: [...errors, ...converter.errors],

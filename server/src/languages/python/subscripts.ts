@@ -19,7 +19,11 @@ export function subscript(c: Context, node: Node, object: Expression): Expressio
 function index(c: Context, node: Node): Expression {
   const span = spanOf(node);
   if (node.type === 'ellipsis') return { kind: 'slice', rest: true, span };
-  if (node.type !== 'slice') return c.expression(node);
+  if (node.type !== 'slice') {
+    // `np.newaxis` is None.
+    const value = c.expression(node);
+    return value.kind === 'member' && value.name === 'newaxis' ? { kind: 'nothing', span } : value;
+  }
   const parts: (Node | undefined)[] = [undefined];
   for (const n of node.children) {
     if (n.isNamed) parts[parts.length - 1] = n;

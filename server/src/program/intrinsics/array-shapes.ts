@@ -60,7 +60,10 @@ function joined(axisOf: (m: Machine, call: Call, parts: readonly Value[]) => num
     const parts = itemsIn(m, call, 0);
     if (!isItems(parts)) return parts;
     const axis = axisOf(m, call, parts);
-    return axis === undefined ? unread('an axis that is not known', call.place) : join(m, call, parts, axis);
+    return axis === undefined
+      ? unread('an axis that is not known', call.place)
+      : // Of a batch that is read as one row, the axis across rows is the only one left.
+        join(m, call, parts, Math.min(axis, Math.max(0, depthOf(m, parts[0] ?? m.list([])) - 1)));
   };
 }
 
@@ -128,7 +131,7 @@ export const ARRAY_SHAPES: IntrinsicTable = {
     const parts = itemsIn(m, call, 0);
     if (!isItems(parts)) return parts;
     const axis = knownAxis(m, call, parts, 1);
-    return axis === undefined ? unread('an axis that is not known', call.place) : stack(m, call, parts, axis);
+    return axis === undefined ? unread('an axis that is not known', call.place) : stack(m, call, parts, Math.min(axis, depthOf(m, parts[0] ?? m.list([]))));
   },
   'array-columns': (m, call) => {
     const parts = itemsIn(m, call, 0);

@@ -46,7 +46,7 @@ export function knownTerms(model: Model, wanted: readonly Expr[]): KnownTerm[] {
 }
 
 /** A term of the derived equations put in, or a factor that is missing or too many. */
-export function insertions(terms: readonly KnownTerm[], fit: LogFit): Maker {
+export function insertions(terms: readonly KnownTerm[], fit: LogFit<Expr>): Maker {
   return (scene, spot, give) => {
     const { site, need, values, text } = spot;
     if (!need || values.length !== 1) {
@@ -79,9 +79,12 @@ export function insertions(terms: readonly KnownTerm[], fit: LogFit): Maker {
       };
       if (commonOf(ratio) === undefined) {
         const p = fit.product(ratio);
-        if (p) {
-          const product = printer.product(p.constant, p.powers);
-          if (product) give1(product, 1.9 + 0.3 * p.powers.length + (Math.abs(p.constant - 1) > 1e-9 ? 0.6 : 0));
+        const product = p && printer.product(p.constant, p.powers);
+        const own = product ? undefined : printer.own.product(ratio);
+        if (product) give1(product, 1.9 + 0.3 * p.powers.length + (Math.abs(p.constant - 1) > 1e-9 ? 0.6 : 0));
+        else if (own) {
+          const written = printer.ofAtoms(own.constant, own.powers);
+          if (written) give1(written, 2 + 0.3 * own.powers.length);
         } else {
           for (const atom of printer.atoms) {
             for (const power of [1, -1]) {
@@ -120,6 +123,12 @@ export function insertions(terms: readonly KnownTerm[], fit: LogFit): Maker {
       if (agree(atom.value, gap)) offer('+', atom.text, 1.9);
       else if (agree(atom.value.map((x) => -x), gap)) offer('-', atom.text, 1.9);
     }
+    const own = printer.own.product(gap);
+    const written = own && printer.ofAtoms(Math.abs(own.constant), own.powers);
+    if (own && written) {
+      const body = written.attach('');
+      if (body) offer(own.constant < 0 ? '-' : '+', body, 2 + 0.15 * own.powers.length);
+    }
     for (const term of terms) {
       const ratio = gap.map((x, s) => x / term.value[s]!);
       if (least < 1e-9) continue;
@@ -156,6 +165,25 @@ const guesses: Maker = (scene, spot, give) => {
   }
 };
 
+const fits = new WeakMap<Scene, Map<string, LogFit<string>>>();
+
+/** One fit per set of names, made once: distinct sizes only, plain names first. */
+function fitOf(scene: Scene, atoms: readonly { readonly text: string; readonly value: Float64Array }[]): LogFit<string> {
+  let known = fits.get(scene);
+  if (!known) fits.set(scene, (known = new Map()));
+  const key = atoms.map((a) => a.text).join(' ');
+  let fit = known.get(key);
+  if (!fit) {
+    const chosen: { expr: string; value: Float64Array }[] = [];
+    for (const a of [...atoms].sort((x, y) => x.text.length - y.text.length)) {
+      if (a.value.some((x) => Math.abs(x) < 1e-9) || chosen.some((c) => c.value.every((x, s) => Math.abs(Math.abs(x) - Math.abs(a.value[s]!)) < 1e-9))) continue;
+      chosen.push({ expr: a.text, value: a.value });
+    }
+    known.set(key, (fit = new LogFit(chosen, scene.model.n)));
+  }
+  return fit;
+}
+
 interface Product {
   readonly label: string;
   attach(inner: string): string | undefined;
@@ -164,6 +192,7 @@ interface Product {
 /** Writes products of symbols with the names that the code has for them at a place. */
 class TermPrinter {
   readonly atoms: readonly { readonly text: string; readonly value: Float64Array }[];
+  private fit: LogFit<string> | undefined;
 
   constructor(
     private readonly scene: Scene,
@@ -173,6 +202,18 @@ class TermPrinter {
     this.atoms = scene.atoms
       .filter((a) => a.values.length === 1 && a.from <= at && (!a.owner || a.owner === owner))
       .map((a) => ({ text: a.text, value: a.values[0]! }));
+  }
+
+  /** Products of what the code has names for here. */
+  get own(): LogFit<string> {
+    return (this.fit ??= fitOf(this.scene, this.atoms));
+  }
+
+  ofAtoms(constant: number, powers: readonly { readonly base: string; readonly power: number }[]): Product | undefined {
+    const number = Math.abs(constant - 1) < 1e-9 ? undefined : writeNice(constant, this.scene, undefined);
+    if ((Math.abs(constant - 1) >= 1e-9 && !number) || powers.some((p) => p.power % 1 !== 0)) return undefined;
+    const list = (sign: number) => powers.flatMap((p) => Array<string>(Math.max(0, sign * p.power)).fill(p.base));
+    return joinFactors(list(1), list(-1), number && (number.binding < Binding.atom ? bracket(number.text) : number.text));
   }
 
   /** The code's text for an expression: one whose value is the same. */
@@ -249,7 +290,7 @@ function joinFactors(top: readonly string[], bottom: readonly string[], number: 
   return {
     label: `${number ?? ''} ${top.join('*')}/${bottom.join('*')}`,
     attach: (inner) => {
-      const up = [...(number ? [number] : []), inner, ...top].join(' * ');
+      const up = [...(number ? [number] : []), ...(inner ? [inner] : []), ...top].join(' * ') || '1';
       if (bottom.length === 0) return up;
       return `${up} / ${bottom.length === 1 ? bottom[0] : bracket(bottom.join(' * '))}`;
     },
