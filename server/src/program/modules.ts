@@ -7,7 +7,7 @@ import type { Library } from './library';
 import type { Machine } from './machine';
 import { libraryMember, readMember } from './members';
 import { bindPattern } from './patterns';
-import { assignments, nodesOf, patternNames } from './scan';
+import { assignments, patternNames, writtenThings } from './scan';
 import { Scope, type Frame, type Module } from './scope';
 import { enumValue } from './statements';
 import { arrivalOf, arrive, readVariable, type Arrival } from './variables';
@@ -22,7 +22,7 @@ export function loadModule(m: Machine, file: string, program: Program, library: 
   const names = m.atRoot(() => m.store.add({ kind: 'record', members: new Map() }));
   const frame = { names, depth: 0 } as { -readonly [K in keyof Frame]: Frame[K] };
   const scope = new Scope(undefined, frame, true);
-  const module: Module = { file, program, library, scope, exports: new Map(), everythingOf: [], imports: [] };
+  const module: Module = { file, program, library, scope, touched: new Set(), exports: new Map(), everythingOf: [], imports: [] };
   frame.module = module;
   m.modules.set(file, module);
   for (const s of program.body) addTopLevel(m, module, scope, s);
@@ -134,24 +134,8 @@ function topLevelValue(m: Machine, module: Module, scope: Scope, name: string, v
 
 /** True where members or elements of a top-level thing are written somewhere. */
 function isState(module: Module, name: string): boolean {
-  let known = stateNames.get(module.program);
-  if (!known) {
-    known = new Set();
-    for (const n of nodesOf(module.program.body)) {
-      const e = n as Expression;
-      if (e.kind !== 'assign' || !('target' in e)) continue;
-      const targets = e.target.kind === 'place' ? [e.target.target] : e.target.kind === 'list' ? e.target.items.flatMap((i) => (i?.pattern.kind === 'place' ? [i.pattern.target] : [])) : [];
-      for (let t of targets) {
-        while (t.kind === 'member' || t.kind === 'index') t = t.object;
-        if (t.kind === 'name') known.add(t.name);
-      }
-    }
-    stateNames.set(module.program, known);
-  }
-  return known.has(name);
+  return writtenThings(module.program).has(name);
 }
-
-const stateNames = new WeakMap<Program, Set<string>>();
 
 function addImport(m: Machine, module: Module, s: Statement & { kind: 'import' }): void {
   const { scope } = module;

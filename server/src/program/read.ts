@@ -53,6 +53,7 @@ function finished(m: Machine, outputs: readonly OutputValue[], ambiguities: read
     conditions: [...m.conditions].map(([expr, place]) => ({ expr, place })),
     assumed: m.assumed,
     trace: m.trace,
+    touched: m.modules.get(m.request.file)?.touched ?? new Set(),
     files: [...m.files],
   };
 }

@@ -116,6 +116,8 @@ export interface Reading {
   readonly assumed: readonly Expr[];
   /** Every scalar sub-expression read, in order of evaluation. */
   readonly trace: readonly TraceEntry[];
+  /** Names of the subject's own file, at its top level, that were looked up. */
+  readonly touched: ReadonlySet<string>;
   /** Files whose text this reading depends on, beyond the subject's own. */
   readonly files: readonly string[];
 }

@@ -155,3 +155,39 @@ export function memberIsAssigned(program: Program, name: string): boolean {
 export function isUsedAsThing(program: Program, name: string): boolean {
   return memberScan(program).used.has(name);
 }
+
+const writtenOf = new WeakMap<Program, Set<string>>();
+
+/** Names of things whose members or elements are written somewhere. */
+export function writtenThings(program: Program): ReadonlySet<string> {
+  let known = writtenOf.get(program);
+  if (known) return known;
+  known = new Set();
+  for (const n of nodesOf(program.body)) {
+    const e = n as Expression;
+    if (e.kind !== 'assign' || !('target' in e)) continue;
+    for (let t of placesOf(e.target)) {
+      while (t.kind === 'member' || t.kind === 'index') t = t.object;
+      if (t.kind === 'name') known.add(t.name);
+    }
+  }
+  writtenOf.set(program, known);
+  return known;
+}
+
+const factsOfPrograms = new WeakMap<Program, string>();
+
+/**
+ * What a reading of any function may have asked of the whole file: which names and members are assigned somewhere. Two
+ * programs with the same facts answer alike.
+ */
+export function factsOf(program: Program): string {
+  let facts = factsOfPrograms.get(program);
+  if (facts === undefined) {
+    const { assigned, computed } = assignments(program);
+    const members = memberScan(program);
+    facts = [assigned, computed, members.assigned, members.used, writtenThings(program)].map((names) => [...names].sort().join(' ')).join('|');
+    factsOfPrograms.set(program, facts);
+  }
+  return facts;
+}

@@ -39,6 +39,8 @@ export class Scope {
   find(name: string): Variable | undefined {
     for (let s: Scope | undefined = this; s; s = s.parent) {
       const v = s.variables.get(name);
+      // What a reading asks of a file's top level is what it depends on, also where there is no such name.
+      if (!s.parent) s.frame.module.touched.add(name);
       if (v) return v;
     }
     return undefined;
@@ -57,6 +59,8 @@ export interface Module {
   readonly program: Program;
   readonly library: Library;
   readonly scope: Scope;
+  /** Top-level names that were looked up. */
+  readonly touched: Set<string>;
   /** Exported name -> how to get its value. */
   readonly exports: Map<string, () => Value>;
   /** `export * from`, and `module.exports = ...`. */
