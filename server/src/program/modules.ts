@@ -181,10 +181,18 @@ function imported(m: Machine, module: Module, from: string, name: string, local:
   const prefix = module.library.modules.get(from);
   if (prefix !== undefined) {
     if (name === 'default') return { kind: 'library', path: prefix.replace(/\.$/, ''), module };
-    return libraryMember(m, module, prefix + name, place);
+    return underName(m, module, local, libraryMember(m, module, prefix + name, place), place);
   }
   const other = open(m, module, from);
-  return other ? exportOf(m, other, name, place) : genericAt(m, local, place);
+  if (!other) return genericAt(m, local, place);
+  const value = exportOf(m, other, name, place);
+  return local === name ? value : underName(m, module, local, value, place);
+}
+
+/** A constant that comes in under a name with a meaning stands for it, as one that is given to such a name does. */
+function underName(m: Machine, module: Module, local: string, value: Value, place: Place): Value {
+  if (value.kind !== 'scalar' || value.expr.op !== 'number') return value;
+  return arrive(m, local, value, arrival(module.scope, local, place));
 }
 
 function importedWhole(m: Machine, module: Module, from: string, local: string, place: Place): Value {
