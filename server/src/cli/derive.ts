@@ -4,10 +4,10 @@ import { openService } from './check';
 import { UsageError, type Io, type Status } from './io';
 import { harmless } from './report/width';
 
-export const DERIVE_FORMS = ['text', 'tex', 'typescript'] as const;
+export const DERIVE_FORMS = ['text', 'tex', 'typescript', 'python'] as const;
 export type DeriveForm = (typeof DERIVE_FORMS)[number];
 
-const COMMENT_MARK: Record<DeriveForm, string> = { text: '', tex: '% ', typescript: '// ' };
+const COMMENT_MARK: Record<DeriveForm, string> = { text: '', tex: '% ', typescript: '// ', python: '# ' };
 
 /** Prints the derived equations of what a file declares. */
 export async function derive(file: string, form: DeriveForm, system: string | undefined, io: Io): Promise<Status> {

@@ -16,12 +16,21 @@ export interface Service {
   handles(file: string): boolean;
   /** Loads the parsers that a file needs; `check` and the others call it themselves. */
   prepare(file: string): Promise<void>;
-  check(file: string, budget: Budget): Promise<FileResult>;
+  /**
+   * Checks every declaration of a file. What did not change since the last time is remembered.
+   * @param depth `verdicts` leaves out the search for faults and repairs that are not known already
+   */
+  check(file: string, budget: Budget, depth?: 'verdicts' | 'repairs'): Promise<FileResult>;
+  /** How many functions were read so far, remembered results not counted. */
+  readonly readings: number;
   hover(file: string, position: ReportPosition, budget: Budget): Promise<Hover | undefined>;
   symbols(file: string): Promise<readonly DocumentSymbol[]>;
   /** The derived equations of every system a file declares. */
-  derive(file: string, as: 'text' | 'tex' | 'typescript', budget: Budget): Promise<readonly DerivedSystem[]>;
+  derive(file: string, as: DeriveForm, budget: Budget): Promise<readonly DerivedSystem[]>;
 }
+
+/** What derived equations are written in. */
+export type DeriveForm = 'text' | 'tex' | 'typescript' | 'python';
 
 /** Where documents that are not open come from; given by the rim. Paths are whatever the rim uses, `/` between folders. */
 export interface Files {

@@ -1,5 +1,5 @@
 import { symbolText, type SymbolData } from '../expression/node';
-import { code, equationText, tex, texAll, text, typescript, type CodeStyle } from '../expression/print';
+import { code, equationText, python, tex, texAll, text, typescript, type CodeStyle } from '../expression/print';
 import type { Expr } from '../expression/node';
 import { symbolsOf } from '../expression/reach';
 import { findEquilibria, type Equilibrium } from '../comparison/equilibria';
@@ -8,13 +8,15 @@ import type { Derived } from '../mechanics/lagrange';
 import type { Budget } from '../text/budget';
 import type { Document } from '../workspace/documents';
 import { declares } from '../workspace/systems';
-import type { DerivedSystem } from './api';
+import type { DeriveForm, DerivedSystem } from './api';
 import type { Project } from './check';
+
+const STYLES = { typescript, python } as const;
 
 export async function deriveSystems(
   project: Project,
   document: Document,
-  as: 'text' | 'tex' | 'typescript',
+  as: DeriveForm,
   budget: Budget,
 ): Promise<DerivedSystem[]> {
   const out: DerivedSystem[] = [];
@@ -30,7 +32,7 @@ export async function deriveSystems(
         ? asText(derived)
         : as === 'tex'
           ? asTex(derived)
-          : asTypescript(derived);
+          : accelerationFunction(derived, STYLES[as]);
     out.push({ system: block.name, range: document.lines.range(block.span), text: body });
   }
   return out;
@@ -86,10 +88,6 @@ function asTex(derived: Derived): string {
 }
 
 /** A function from coordinates, velocities, parameters and inputs to the accelerations. */
-function asTypescript(derived: Derived): string {
-  return accelerationFunction(derived, typescript);
-}
-
 function accelerationFunction(derived: Derived, style: CodeStyle): string {
   const { coordinates, parameters, inputs, name } = derived.system;
   const solved = solvedAccelerations(derived);
@@ -102,18 +100,13 @@ function accelerationFunction(derived: Derived, style: CodeStyle): string {
   const state = [...coordinates.map((c) => c.symbol), ...coordinates.map((c) => c.velocity)];
   const rest = [...parameters, ...inputs].map((p) => p.symbol);
   const extra = [...used].filter((s) => !state.includes(s) && !rest.includes(s));
-  const args = [...rest, ...extra].filter((s) => used.has(s)).map((s) => `${identifier(s)}: number`);
+  const constants = [...rest, ...extra].filter((e) => used.has(e));
   const printed = code(style, values);
-  const title = name.replace(/[^A-Za-z0-9]+(.)?/g, (_, c: string | undefined) => (c ? c.toUpperCase() : ''));
-  return [
-    ...printed.helpers,
-    ...(printed.helpers.length > 0 ? [''] : []),
-    `/** ${coordinates.map((c) => symbolText(c.acceleration.data as SymbolData)).join(', ')} of ${name}. */`,
-    `export function ${title}Accelerations(state: number[], p: { ${args.join('; ')} }): number[] {`,
-    `  const [${state.map(identifier).join(', ')}] = state;`,
-    ...(args.length > 0 ? [`  const { ${args.map((a) => a.split(':')[0]).join(', ')} } = p;`] : []),
-    ...printed.statements.map((s) => `  ${s}`),
-    `  return [${printed.values.join(', ')}];`,
-    '}',
-  ].join('\n');
+  return style.function({
+    name: `${name} accelerations`,
+    remark: `${coordinates.map((c) => symbolText(c.acceleration.data as SymbolData)).join(', ')} of ${name}.`,
+    state: state.map(identifier),
+    constants: constants.map(identifier),
+    ...printed,
+  });
 }

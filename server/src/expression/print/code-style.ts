@@ -31,6 +31,20 @@ export interface CodeStyle {
   define(name: string, value: string): string;
   /** Source of the function `solve` calls. */
   readonly solver: string;
+  /** A whole function from a state and constants to values. */
+  function(f: WrittenFunction): string;
   /** A name made fit for the language: `th'` to `thDot`, keywords avoided. */
   identifier(name: string, order: number): string;
+}
+
+export interface WrittenFunction {
+  /** Of several words, in lower case or as the declaration has them: `harbour crane accelerations`. */
+  readonly name: string;
+  readonly remark: string;
+  /** Names of the entries of the state, and of the constants. */
+  readonly state: readonly string[];
+  readonly constants: readonly string[];
+  readonly statements: readonly string[];
+  readonly values: readonly string[];
+  readonly helpers: readonly string[];
 }

@@ -66,6 +66,15 @@ export function pythonStyle(names: PythonNames): CodeStyle {
     component: (solution, index) => atom(`${solution}[${index}]`),
     define: (name, value) => `${name} = ${value}`,
     solver: '',
+    function: (f) =>
+      [
+        ...f.helpers,
+        `def ${snakeCase(f.name)}(${['state', ...f.constants].join(', ')}):`,
+        `    """${f.remark}"""`,
+        `    ${f.state.join(', ')}${f.state.length === 1 ? ',' : ''} = state`,
+        ...f.statements.map((s) => `    ${s}`),
+        `    return [${f.values.join(', ')}]`,
+      ].join('\n'),
     identifier(name, order) {
       const clean = name.normalize('NFKC').replace(/[^\p{ID_Continue}]+/gu, '_').replace(/_+$/, '') || '_';
       const safe = /^\p{ID_Start}|^_/u.test(clean) && !RESERVED.has(clean) ? clean : `${clean}_`;
@@ -77,6 +86,11 @@ export function pythonStyle(names: PythonNames): CodeStyle {
 
 /** Python that has `import numpy as np`. */
 export const python: CodeStyle = pythonStyle({ prefix: 'np.', isNumpy: true, arrays: 'np.' });
+
+function snakeCase(words: string): string {
+  const name = words.replace(/[^A-Za-z0-9]+/g, '_').replace(/^_+|_+$/g, '').toLowerCase();
+  return /^\d/.test(name) ? `f_${name}` : name;
+}
 
 function atom(text: string): Written {
   return { text, level: Level.atom };
