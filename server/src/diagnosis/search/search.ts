@@ -1,8 +1,9 @@
 import type { ClaimResult, SubjectRequest, SubjectResult } from '../../comparison/subject';
-import type { Expression } from '../../program/form';
+import type { Expr } from '../../expression/node';
+import { reachable } from '../../expression/reach';
 import { solvePlace, type Needed } from './angelic';
 import { brackets } from './candidates/brackets';
-import type { Atom, Candidate, Maker, Scene, Spot } from './candidates/candidate';
+import type { Candidate, Maker, Scene, Spot } from './candidates/candidate';
 import { agree } from './candidates/candidate';
 import { exchanges } from './candidates/exchanges';
 import { functions, powers } from './candidates/functions';
@@ -14,6 +15,7 @@ import { LogFit } from './log-fit';
 import { findPairs, type CandidatePair } from './pairs';
 import { Model, type Change } from './model';
 import { mapSource, type Site, type SourceMap } from './sites';
+import { makeScene } from './scene';
 import { MODES, readTagged, type Evaluation } from './tagged';
 
 const BASIC: readonly Maker[] = [signs, operators, drops, groupings, brackets, names, constants, functions, powers];
@@ -39,8 +41,8 @@ export class Search {
     private readonly source: string,
   ) {
     const { system, residuals } = request.derived;
-    this.scene = makeScene(request, model, map, source);
     const terms = knownTerms(model, wantedTerms(claims, residuals));
+    this.scene = makeScene(request, model, map, source, functionsOf(terms.map((t) => t.expr)));
     const symbols = [...system.parameters, ...system.inputs].map((p) => p.symbol);
     const bases = symbols.flatMap((expr) => {
       const value = model.column(expr);
@@ -176,65 +178,11 @@ function everywhere(model: Model, repeated: ReadonlyMap<string, readonly Candida
   return confirmed(model, joined.slice(0, 600));
 }
 
-function wantedTerms(claims: readonly ClaimResult[], residuals: readonly import('../../expression/node').Expr[]) {
+function wantedTerms(claims: readonly ClaimResult[], residuals: readonly Expr[]): Expr[] {
   const own = claims.flatMap((c) => (c.expected && c.decision.verdict === 'differs' && c.expected.op !== 'symbol' ? [c.expected] : []));
   return [...own, ...residuals];
 }
 
-function makeScene(request: SubjectRequest, model: Model, map: SourceMap, source: string): Scene {
-  const atoms = new Map<string, Atom>();
-  const add = (atom: Atom): void => {
-    const key = `${atom.text}\u0000${atom.owner?.span.start ?? ''}\u0000${atom.values.length}`;
-    const known = atoms.get(key);
-    if (!known || atom.from < known.from) atoms.set(key, atom);
-  };
-  for (const site of map.sites) {
-    const { node } = site;
-    if (!['name', 'member', 'index', 'call'].includes(node.kind) || site.span.end - site.span.start > 40) continue;
-    const evaluations = model.tagged.evaluations.get(site);
-    const values = evaluations?.map((e) => model.value(e.read));
-    if (!values?.every((v) => v?.every(Number.isFinite))) continue;
-    add({ text: source.slice(site.span.start, site.span.end), values: values as Float64Array[], from: 0, owner: site.owner });
-  }
-  const subject = request.subject.kind === 'function' ? request.subject.node : undefined;
-  for (const { text, expr } of model.tagged.names) {
-    const value = model.value(expr);
-    if (value?.every(Number.isFinite)) add({ text, values: [value], from: definedAt(map, text), owner: subject });
-  }
-  const list = [...atoms.values()];
-  for (const a of list) if (a.from === 0) (a as { from: number }).from = definedAt(map, a.text);
-  return {
-    model,
-    program: request.program,
-    source,
-    atoms: list,
-    siteOf: (e) => map.byNode.get(e),
-    valuesOf: (e: Expression, evaluations: readonly Evaluation[]) => {
-      const site = map.byNode.get(e);
-      const own = site && model.tagged.evaluations.get(site);
-      if (own?.length === evaluations.length) {
-        const values = own.map((x) => model.value(x.read));
-        return values.every((v) => v !== undefined) ? values : undefined;
-      }
-      const literal = literalValue(e);
-      return literal === undefined ? undefined : evaluations.map(() => new Float64Array(model.n).fill(literal));
-    },
-  };
-}
-
-function literalValue(e: Expression): number | undefined {
-  if (e.kind === 'number') return e.value.toNumber();
-  if (e.kind === 'unary' && e.op === '-' && e.operand.kind === 'number') return -e.operand.value.toNumber();
-  return undefined;
-}
-
-/** Where a name of the function has its value: the end of its declaration; 0 for parameters and what comes from outside. */
-function definedAt(map: SourceMap, text: string): number {
-  const name = /^[\p{L}_$][\p{L}\p{N}_$]*/u.exec(text)?.[0];
-  let at = 0;
-  for (const s of map.sites) {
-    const a = s.assignment;
-    if (a?.isDeclaration && a.target.kind === 'name' && a.target.name === name) at = Math.max(at, a.span.end);
-  }
-  return at;
+function functionsOf(terms: readonly Expr[]): Expr[] {
+  return reachable(terms).filter((e) => e.op === 'sin' || e.op === 'cos' || e.op === 'tan');
 }

@@ -1,4 +1,3 @@
-import { symbolText, type SymbolData } from '../../../expression/node';
 import { Binding, replaceSite } from '../edits';
 import { agree, seenAt, type Maker } from './candidate';
 
@@ -25,15 +24,6 @@ export const names: Maker = (scene, spot, give) => {
       new: other,
     });
   };
-  if (node.kind === 'member' && values.length > 0) {
-    // p.m1 for p.m2, whether or not p.m1 is read anywhere.
-    const head = scene.source.slice(node.span.start, node.nameSpan.start);
-    const { system } = scene.model.derived;
-    for (const d of [...system.parameters, ...system.inputs, ...system.coordinates]) {
-      const value = scene.model.column(d.symbol);
-      if (value && values.length > 0 && /^[\p{L}_][\p{L}\p{N}_]*$/u.test(d.name)) offer(head + d.name, values.map(() => value), 1.15 + distance(text, head + d.name));
-    }
-  }
   for (const atom of scene.atoms) {
     if (atom.from > site.span.start || (atom.owner && atom.owner !== site.owner)) continue;
     const seen = seenAt(atom, values.length);
@@ -49,8 +39,4 @@ function distance(a: string, b: string): number {
   let end = 0;
   while (end < a.length - start && end < b.length - start && a[a.length - 1 - end] === b[b.length - 1 - end]) end++;
   return 0.5 * (1 - (2 * (start + end)) / (a.length + b.length));
-}
-
-export function symbolLabel(data: unknown): string {
-  return symbolText(data as SymbolData);
 }
