@@ -12,6 +12,8 @@ import { contentOf, lineOf, type OpenFile, type OpenFiles } from './open-files';
 /** A check that ran out of time is repeated once, after a pause, with so many times the time. */
 const patience = 3;
 const pause = 500;
+/** So long after a verdict the search for its fault begins. */
+const searchDelay = 200;
 
 export interface CheckerContext {
   readonly connection: Connection;
@@ -74,26 +76,47 @@ export class Checker {
       await service.prepare(file); // loading a parser is not the file's fault
       const start = clock();
       const budget = new Budget({ milliseconds: settings().timeLimit * (again ? patience : 1) }, clock, stale);
-      const result = await service.check(file, budget);
+      const result = await service.check(file, budget, 'verdicts');
       if (stale()) return;
       if (budget.why === 'time' && !again) {
         open.ranOutAt = version;
         this.request(open, pause);
       }
-      open.dependsOn = result.dependsOn;
-      open.result = { version, result };
-      const diagnostics = toDiagnostics(result, {
-        uriOf: (name) => this.context.addresses.uriOf(name),
-        line: (line) => lineOf(document, line),
-      });
-      this.publish(open, version, diagnostics);
+      this.show(open, version, result);
       this.tell({ uri: run.key, version, counts: count(result), milliseconds: clock() - start });
+      if (result.claims.some((c) => c.verdict === 'differs')) this.searchLater(open, version, run.key);
     } catch (error) {
       this.context.connection.console.error(`Check of ${file} failed: ${describe(error)}`);
       if (stale()) return;
       this.publish(open, version, [internalFailure()]);
       this.tell({ uri: run.key, version, reason: 'The check failed; the output channel has the details.' });
     }
+  }
+
+  private show(open: OpenFile, version: number, result: FileResult): void {
+    open.dependsOn = result.dependsOn;
+    open.result = { version, result };
+    const diagnostics = toDiagnostics(result, {
+      uriOf: (name) => this.context.addresses.uriOf(name),
+      line: (line) => lineOf(open.document, line),
+    });
+    this.publish(open, version, diagnostics);
+  }
+
+  /** Verdicts come at once; the search for the fault and its repair waits until nobody types. */
+  private searchLater(open: OpenFile, version: number, uri: string): void {
+    const { clock, files, service, settings, connection } = this.context;
+    const stale = (): boolean => files.get(uri) !== open || open.document.version !== version;
+    setTimeout(() => {
+      if (stale()) return;
+      const budget = new Budget({ milliseconds: settings().timeLimit }, clock, stale);
+      service.check(open.file, budget, 'repairs').then(
+        (result) => {
+          if (!stale()) this.show(open, version, result);
+        },
+        (error: unknown) => connection.console.error(`The search in ${open.file} failed: ${describe(error)}`),
+      );
+    }, searchDelay);
   }
 
   private reasonToSkip({ document, file }: OpenFile): string | undefined {

@@ -191,3 +191,41 @@ export function factsOf(program: Program): string {
   }
   return facts;
 }
+
+/** Names that a statement of a file's top level makes known there. */
+export function declaredNames(s: Statement): string[] {
+  switch (s.kind) {
+    case 'function':
+    case 'class':
+      return [s.node.name];
+    case 'enum':
+      return [s.name];
+    case 'declare':
+      return patternNames(s.target);
+    case 'import':
+      return [...s.names.map((n) => n.local), ...(s.namespace === undefined ? [] : [s.namespace])];
+    case 'export':
+      return s.names.map((n) => n.exported);
+    case 'block':
+    case 'if':
+    case 'loop':
+    case 'for-each':
+    case 'try':
+    case 'switch':
+    case 'labelled':
+    case 'expression':
+      // What may declare or assign names from inside counts for each of them.
+      return [...new Set([...hoistedNames([s]), ...assignedIn(s)])];
+    default:
+      return [];
+  }
+}
+
+function assignedIn(s: Statement): string[] {
+  const names: string[] = [];
+  for (const n of nodesOf(s, false)) {
+    const e = n as Expression;
+    if (e.kind === 'assign' && 'target' in e) names.push(...patternNames(e.target));
+  }
+  return names;
+}

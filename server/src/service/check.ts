@@ -14,6 +14,7 @@ import type { Document, Documents, PlacedBlock } from '../workspace/documents';
 import type { Imports } from '../workspace/imports';
 import { declares, type SystemEntry, type Systems } from '../workspace/systems';
 import type { FileResult } from './api';
+import type { Remembered, ResultCache } from './result-cache';
 
 /** Everything that was found out about one declaration. */
 export interface BlockOutcome {
@@ -23,6 +24,8 @@ export interface BlockOutcome {
   readonly problems: readonly DeclarationProblem[];
   /** What is wrong with the code, and the repair; made for reports only. */
   readonly diagnosis?: Diagnosis;
+  /** The result as it is kept for the next time. */
+  readonly remembered?: Remembered<Diagnosis>;
   /** Findings about the code itself: ambiguous names. */
   readonly ambiguities: readonly { readonly message: string; readonly place: Place }[];
 }
@@ -31,18 +34,26 @@ export interface Project {
   readonly documents: Documents;
   readonly systems: Systems;
   readonly imports: Imports;
+  readonly results: ResultCache<Diagnosis>;
 }
 
 /** Checks every declaration of a document. */
 export async function checkDocument(project: Project, document: Document, budget: Budget): Promise<BlockOutcome[]> {
   const outcomes: BlockOutcome[] = [];
   for (const placed of document.blocks) {
-    outcomes.push(await checkBlock(project, document, placed, budget));
+    outcomes.push(await checkBlock(project, document, placed, budget, project.results));
   }
   return withUnused(document, outcomes);
 }
 
-export async function checkBlock(project: Project, document: Document, placed: PlacedBlock, budget: Budget): Promise<BlockOutcome> {
+/** @param results where to look for what is known already; none for a text that is only tried out */
+export async function checkBlock(
+  project: Project,
+  document: Document,
+  placed: PlacedBlock,
+  budget: Budget,
+  results?: ResultCache<Diagnosis>,
+): Promise<BlockOutcome> {
   const { block } = placed;
   const lookup = await project.systems.lookup(document, block, budget);
   const problem = (code: Problem['code'], message: string): BlockOutcome => ({
@@ -64,11 +75,21 @@ export async function checkBlock(project: Project, document: Document, placed: P
   }
   const { entry } = lookup;
   await project.imports.prepare(document);
-  const result = checkSubject(subjectRequest(project, document, placed, entry, budget));
+  let remembered = results?.find(document, placed, entry.derived);
+  const result = remembered?.result ?? checkSubject(subjectRequest(project, document, placed, entry, budget));
+  // What a budget cut short is no result to keep.
+  if (!remembered && !budget.why) remembered = results?.add(document, placed, entry.derived, result);
   const own = declares(block)
     ? [...entry.problems, ...checkDimensions(block).map((d): DeclarationProblem => ({ ...d, severity: 'warning' }))]
     : block.errors.map((e): DeclarationProblem => ({ ...e, severity: 'error' }));
-  return { placed, entry, result, problems: [...own, ...result.problems], ambiguities: result.ambiguities };
+  return {
+    placed,
+    entry,
+    result,
+    problems: [...own, ...result.problems],
+    ambiguities: result.ambiguities,
+    ...(remembered ? { remembered } : {}),
+  };
 }
 
 export function subjectRequest(

@@ -1,4 +1,4 @@
-import { diagnose } from '../diagnosis/diagnose';
+import { diagnose, type Diagnosis } from '../diagnosis/diagnose';
 import { applyEdits, type Edit } from '../diagnosis/search/edits';
 import type { Rechecked } from '../diagnosis/verify';
 import { findBlocks } from '../notation';
@@ -6,6 +6,7 @@ import { LineIndex } from '../text/line-index';
 import type { Budget } from '../text/budget';
 import type { Document } from '../workspace/documents';
 import { checkBlock, subjectRequest, type BlockOutcome, type Project } from './check';
+import type { Relocate } from './result-cache';
 
 /** Adds to every declaration that differs what is wrong with its code. */
 export async function diagnoseOutcomes(
@@ -13,6 +14,7 @@ export async function diagnoseOutcomes(
   document: Document,
   outcomes: readonly BlockOutcome[],
   budget: Budget,
+  depth: 'verdicts' | 'repairs' = 'repairs',
 ): Promise<BlockOutcome[]> {
   const out: BlockOutcome[] = [];
   for (const [i, o] of outcomes.entries()) {
@@ -20,12 +22,30 @@ export async function diagnoseOutcomes(
       out.push(o);
       continue;
     }
+    const known = o.remembered?.extra;
+    if (known) {
+      out.push({ ...o, diagnosis: movedDiagnosis(known, o.remembered!.relocate) });
+      continue;
+    }
+    if (depth === 'verdicts') {
+      out.push(o);
+      continue;
+    }
     const request = subjectRequest(project, document, o.placed, o.entry, budget);
     const recheck = (edits: readonly Edit[]) => recheckWith(project, document, outcomes, i, edits, budget);
     const diagnosis = await diagnose(request, o.result, document.text, recheck);
+    if (diagnosis && !budget.why) o.remembered?.keep(diagnosis);
     out.push(diagnosis ? { ...o, diagnosis } : o);
   }
   return out;
+}
+
+function movedDiagnosis(d: Diagnosis, relocate: Relocate): Diagnosis {
+  return {
+    faults: d.faults.map((f) => ({ ...f, span: relocate(f.span) })),
+    edits: d.edits?.map((e) => ({ ...e, span: relocate(e.span) })),
+    place: d.place && relocate(d.place),
+  };
 }
 
 async function recheckWith(

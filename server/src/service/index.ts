@@ -1,3 +1,4 @@
+import type { Diagnosis } from '../diagnosis/diagnose';
 import { languageOf } from '../languages';
 import type { Budget } from '../text/budget';
 import { Documents } from '../workspace/documents';
@@ -8,6 +9,7 @@ import { checkDocument, fileResult, type BlockOutcome, type Project } from './ch
 import { diagnoseOutcomes } from './diagnose';
 import { deriveSystems } from './derive';
 import { hoverAt } from './hover';
+import { ResultCache } from './result-cache';
 import { symbolsOf } from './symbols';
 
 export type * from './api';
@@ -17,7 +19,8 @@ export function createService(files: Files): Service {
   const documents = new Documents((file) => files.read(file));
   const imports = new Imports(documents);
   const systems = new Systems(documents, () => files.declarations(), (d) => imports.reader(d));
-  const project: Project = { documents, systems, imports };
+  const results = new ResultCache<Diagnosis>((file) => documents.text(file));
+  const project: Project = { documents, systems, imports, results };
 
   const load = async (file: string) => {
     await documents.prepare(file);
@@ -28,16 +31,19 @@ export function createService(files: Files): Service {
     update: (file, text) => documents.update(file, text),
     close: (file) => documents.close(file),
     invalidate: (file) => documents.invalidate(file),
+    get readings() {
+      return results.misses;
+    },
     handles: (file) => languageOf(file) !== undefined,
     prepare: (file) => documents.prepare(file),
 
-    async check(file: string, budget: Budget): Promise<FileResult> {
+    async check(file: string, budget: Budget, depth: 'verdicts' | 'repairs' = 'repairs'): Promise<FileResult> {
       const document = await load(file);
       if (!document) {
         return { file, language: languageOf(file)?.id ?? '', systems: [], claims: [], problems: [], dependsOn: [] };
       }
       const outcomes = await checkDocument(project, document, budget);
-      return fileResult(document, await diagnoseOutcomes(project, document, outcomes, budget));
+      return fileResult(document, await diagnoseOutcomes(project, document, outcomes, budget, depth));
     },
 
     async hover(file, position, budget) {

@@ -11,6 +11,7 @@ export class ScriptedService implements Service {
   readonly texts = new Map<string, string>();
   readonly checked: string[] = [];
   readonly stopped: string[] = [];
+  readonly readings = 0;
 
   constructor(readonly files: Files) {}
 
