@@ -5,6 +5,7 @@ import { readTextFile } from '../host/text-file';
 import type { FileResult, Service } from '../service/api';
 import { createService } from '../service/index';
 import { Budget } from '../text/budget';
+import { fixFiles } from './fix';
 import { byPath, findInputs, type Skipped } from './inputs';
 import { UsageError, type Io, type Status } from './io';
 
@@ -12,10 +13,14 @@ export interface CheckOptions {
   readonly requireClaims?: boolean;
   readonly function?: string;
   readonly system?: string;
+  readonly fix?: boolean;
+  readonly dryRun?: boolean;
 }
 
 export interface Outcome {
   readonly report: Report;
+  /** The repairs as a diff, where only that was asked for. */
+  readonly diff?: string;
   readonly status: Status;
 }
 
@@ -27,6 +32,8 @@ export async function check(paths: readonly string[], options: CheckOptions, io:
   const { service, inputs } = openService(paths, io);
   const skipped: Skipped[] = [...inputs.skipped];
   const results: FileResult[] = [];
+  const budget = () => new Budget({ milliseconds: MILLISECONDS_PER_FILE });
+  const diff = options.fix ? await fixFiles(service, inputs.files, options, budget, io) : '';
   let read = 0;
   let failed = false;
   for (const file of inputs.files) {
@@ -38,14 +45,14 @@ export async function check(paths: readonly string[], options: CheckOptions, io:
     read++;
     if (!text.text.includes(declarationMark) && !file.endsWith('.visviva')) continue;
     try {
-      results.push(await service.check(file, new Budget({ milliseconds: MILLISECONDS_PER_FILE })));
+      results.push(await service.check(file, budget()));
     } catch (error) {
       failed = true;
       io.log(`Internal failure while checking ${shown(file, io.folder)}: ${describe(error)}`);
     }
   }
   const report = assemble(results, skipped, read, options, io.folder);
-  return { report, status: failed ? 2 : statusOf(report, options) };
+  return { report, status: failed ? 2 : statusOf(report, options), ...(options.fix && options.dryRun ? { diff } : {}) };
 }
 
 export function openService(paths: readonly string[], io: Io): { service: Service; inputs: ReturnType<typeof findInputs> } {

@@ -58,10 +58,13 @@ function createProgram(io: Io, finish: (status: Status | undefined) => void): Co
     .option('--require-claims', 'end with status 1 when nothing is claimed')
     .option('--function <name>', 'only claims about this function')
     .option('--system <name>', 'only this system')
+    .option('--fix', 'make the repairs that were verified, then report')
+    .option('--dry-run', 'with --fix: print the repairs as a diff and change nothing')
     .addHelpText('after', '\nExit status: 0 every claim holds, 1 something differs, is unread or wrongly declared, 2 failure.')
     .action(async (paths: string[], options: CheckOptions & { format: string }) => {
+      if (options.dryRun && !options.fix) throw new UsageError('--dry-run says how --fix is to work: give both.');
       const outcome = await check(paths, options, io);
-      io.out(writers[options.format]!(outcome, io));
+      io.out(outcome.diff ?? writers[options.format]!(outcome, io));
       finish(outcome.status);
     });
 
