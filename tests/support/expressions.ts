@@ -1,7 +1,7 @@
 import * as fc from 'fast-check';
 import type { Expr, FunctionName, SymbolData } from '../../server/src/expression/node';
 import { symbolText } from '../../server/src/expression/node';
-import { Graph } from '../../server/src/expression/graph';
+import type { Graph } from '../../server/src/expression/graph';
 import { Rational } from '../../server/src/expression/rational';
 import { reachable } from '../../server/src/expression/reach';
 
