@@ -6,17 +6,19 @@ import { comprehend } from './comprehensions';
 import { conditionOf, isOpenFlag, isThing, settle, truthOf } from './conditions';
 import type { Expression, Field } from './form';
 import { clipped } from './limits';
+import { childOf, copyOfGeneric, valueOf } from './generics';
+import { indexValue } from './indexing';
 import type { Machine } from './machine';
-import { readElement, readMember } from './members';
+import { readMember } from './members';
 import { fork, spoilWritten, withEach } from './merging';
 import { unknownName } from './modules';
-import { countOf, dataOf, itemsOf, numeric } from './numbers';
-import { binary, depthOf, negate } from './operators';
+import { dataOf, itemsOf, numeric } from './numbers';
+import { binary, negate } from './operators';
+import { pathOf } from './paths';
 import { transpose } from './intrinsics/matrices';
 import type { Scope } from './scope';
-import { positions, sliceItems } from './slices';
 import { readVariable } from './variables';
-import { NOTHING, isUnread, unread, type FunctionValue, type Value, type ViewItem } from './values';
+import { NOTHING, isUnread, unread, type FunctionValue, type Value } from './values';
 
 /** The value of an expression. */
 export function evaluate(m: Machine, scope: Scope, e: Expression): Value {
@@ -115,6 +117,11 @@ function memberValue(m: Machine, scope: Scope, e: Expression & { kind: 'member' 
   if (e.object.kind === 'super') return superMember(m, scope, e.name, place);
   const object = evaluate(m, scope, e.object);
   if (object.kind === 'nothing' && e.optional) return NOTHING;
+  if (object.kind === 'module') {
+    const path = pathOf(e);
+    const read = path === undefined ? undefined : m.naming.read([path], place);
+    if (read) return valueOf(m, read, place);
+  }
   return readMember(m, scope.frame.module, object, e.name, place);
 }
 
@@ -132,84 +139,6 @@ function superMember(m: Machine, scope: Scope, name: string, place: Place): Valu
     ...(self ? { self } : {}),
   };
   return found.member.kind === 'getter' ? invoke(m, f, self, [], place) : f;
-}
-
-function indexValue(m: Machine, scope: Scope, e: Expression & { kind: 'index' }, place: Place): Value {
-  const { module } = scope.frame;
-  const object = evaluate(m, scope, e.object);
-  if (object.kind === 'nothing' && e.optional) return NOTHING;
-  return indexWith(m, scope, object, e.indices, place, module.program.indexBase);
-}
-
-function indexWith(m: Machine, scope: Scope, object: Value, indices: readonly Expression[], place: Place, base: number): Value {
-  const [first, ...rest] = indices;
-  if (!first) return object;
-  if (first.kind === 'slice' && first.rest) {
-    const whole = Math.max(0, depthOf(m, object) - rest.length);
-    const ranges = Array.from({ length: whole }, (): Expression => ({ kind: 'slice', span: first.span }));
-    return indexWith(m, scope, object, [...ranges, ...rest], place, base);
-  }
-  if (first.kind === 'slice') {
-    if (rest.length > 0 && isBatch(m, first, object, rest.length)) return indexWith(m, scope, object, rest, place, base);
-    const items = sliceItems(m, scope, object, first, place);
-    if (!isSlice(items)) return items;
-    if (rest.length === 0) return partOf(m, scope, object, first, items, place);
-    return viewOfRows(m, scope, items, rest, place) ?? m.list(items.map((row) => indexWith(m, scope, row, rest, place, base)), true);
-  }
-  const key = evaluate(m, scope, first);
-  if (key.kind === 'nothing' && scope.frame.module.program.listConcat) return m.list([indexWith(m, scope, object, rest, place, base)], true);
-  const list = itemsOf(m, key);
-  if (list) {
-    const picked = list.map((k) => indexWith(m, scope, readElement(m, scope.frame.module, object, k, place), rest, place, base));
-    return m.list(picked, true);
-  }
-  // A single row is indexed by its column where a matrix is a list of rows.
-  const element = readElement(m, scope.frame.module, object, key, place);
-  return indexWith(m, scope, element, rest, place, base);
-}
-
-/** `x[:, 0]` of a single state: a batch of states is read as one generic row. */
-function isBatch(m: Machine, s: Expression & { kind: 'slice' }, object: Value, more: number): boolean {
-  if (s.from || s.to || s.step) return false;
-  const data = dataOf(m, object);
-  if (data?.kind === 'generic') return data.members.size === 0;
-  return data?.kind === 'list' && data.outside === true && depthOf(m, object) <= more;
-}
-
-/** The part of a list that a slice takes: of a numeric vector a view of it where the language has views, else a copy. */
-function partOf(m: Machine, scope: Scope, object: Value, s: Expression & { kind: 'slice' }, items: readonly Value[], place: Place): Value {
-  const data = dataOf(m, object);
-  const { listConcat } = scope.frame.module.program;
-  if (data?.kind !== 'list' || object.kind !== 'object' || !listConcat) return m.list(items, true);
-  if (!data.array) return m.list(items);
-  const picked = positions(m, scope, s, data.items.length, place) ?? [];
-  const view = picked.map((at) => data.view?.[at] ?? { id: object.id, at });
-  return m.object({ kind: 'list', items: [...items], array: true, ...(data.outside ? { outside: true } : {}), view });
-}
-
-/** A column, `M[:, 1]`, of rows that are lists themselves. */
-function viewOfRows(m: Machine, scope: Scope, rows: readonly Value[], rest: readonly Expression[], place: Place): Value | undefined {
-  const { listConcat, negativeIndex, indexBase } = scope.frame.module.program;
-  const [only, ...more] = rest;
-  if (!listConcat || !only || more.length > 0 || only.kind === 'slice') return undefined;
-  const k = countOf(m, evaluate(m, scope, only), place);
-  if (k === undefined) return undefined;
-  const items: Value[] = [];
-  const view: ViewItem[] = [];
-  for (const row of rows) {
-    const data = dataOf(m, row);
-    if (data?.kind !== 'list' || row.kind !== 'object') return undefined;
-    const at = k < 0 && negativeIndex ? data.items.length + k : k - indexBase;
-    const item = data.items[at];
-    if (!item) return undefined;
-    items.push(item);
-    view.push(data.view?.[at] ?? { id: row.id, at });
-  }
-  return m.object({ kind: 'list', items, array: true, view });
-}
-
-function isSlice(x: readonly Value[] | Value): x is readonly Value[] {
-  return Array.isArray(x);
 }
 
 function unary(m: Machine, scope: Scope, e: Expression & { kind: 'unary' }, place: Place): Value {
@@ -352,6 +281,11 @@ function listLiteral(m: Machine, scope: Scope, e: Expression & { kind: 'list' },
 }
 
 function joinParts(m: Machine, parts: readonly { value: Value; spread: boolean }[], array: boolean, place: Place): Value {
+  const [only] = parts;
+  if (parts.length === 1 && only!.spread && only!.value.kind === 'object' && isOutside(m, only!.value)) {
+    const data = dataOf(m, only!.value);
+    if (data?.kind === 'generic') return copyOfGeneric(m, only!.value.id, data);
+  }
   const items: Value[] = [];
   for (const { value, spread } of parts) {
     if (!spread) {
@@ -397,6 +331,8 @@ function joinFields(m: Machine, parts: readonly Part[], from: number, place: Pla
   }
   const members = new Map<string, Value>();
   const getters = new Map<string, FunctionValue>();
+  const outside = parts.findIndex((p) => p.kind === 'spread' && isOutside(m, p.value));
+  if (outside >= 0) return joinOutside(m, parts, outside, place);
   for (const part of parts) {
     if (part.kind === 'member') members.set(part.name, part.value);
     else if (part.kind === 'getter') getters.set(part.name, part.value);
@@ -406,6 +342,40 @@ function joinFields(m: Machine, parts: readonly Part[], from: number, place: Pla
     }
   }
   return m.object({ kind: 'record', members, getters });
+}
+
+function isOutside(m: Machine, value: Value): boolean {
+  const data = dataOf(m, value);
+  return data?.kind === 'generic' && !data.generic.info;
+}
+
+/**
+ * `{ ...state, x: 1 }` of a thing from outside: a copy of it, on which the members that follow are written. What stands
+ * before it is a default, as in `{ m: 1, ...options }`.
+ */
+function joinOutside(m: Machine, parts: readonly Part[], at: number, place: Place): Value {
+  const spread = parts[at]!;
+  const data = spread.kind === 'spread' ? dataOf(m, spread.value) : undefined;
+  if (spread.kind !== 'spread' || spread.value.kind !== 'object' || data?.kind !== 'generic') return unread('a spread', place);
+  const before = joinFields(m, parts.slice(0, at), 0, place);
+  if (before.kind === 'unread') return before;
+  const defaults = dataOf(m, before);
+  const members = new Map(data.members);
+  const source = data.copyOf ?? spread.value.id;
+  if (defaults?.kind === 'record') {
+    for (const [key, v] of defaults.members) {
+      if (!members.has(key)) members.set(key, childOf(m, source, data.generic, key, place, () => v));
+    }
+  }
+  for (const part of parts.slice(at + 1)) {
+    if (part.kind === 'member') members.set(part.name, part.value);
+    else if (part.kind === 'getter') return unread('a getter beside members that are not known', place);
+    else {
+      const problem = spreadInto(m, members, part.value, place);
+      if (problem) return problem;
+    }
+  }
+  return m.object({ kind: 'generic', generic: data.generic, copyOf: source, members });
 }
 
 function spreadInto(m: Machine, members: Map<string, Value>, value: Value, place: Place): Value | undefined {

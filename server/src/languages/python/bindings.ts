@@ -6,6 +6,8 @@ import { namedChildren, nodesOf, type Node } from './syntax';
  * to a name becomes one in the program form, later ones are assignments.
  */
 export class Bindings {
+  /** In a class body: the names it has bound so far, which its later lines see, but not its methods. */
+  readonly classNames?: Set<string>;
   private readonly bound: Set<string>;
   private readonly outer: ReadonlySet<string>;
 
@@ -18,7 +20,9 @@ export class Bindings {
     readonly receiver: string | undefined,
     /** At a module's top: names that something assigns to later. */
     private readonly changing: ReadonlySet<string> = new Set(),
+    isClassBody = false,
   ) {
+    if (isClassBody) this.classNames = new Set();
     this.bound = new Set(parameters);
     this.outer = outer;
   }

@@ -21,7 +21,7 @@ export function classNode(c: Context, node: Node, decorators: readonly Node[] = 
   const bases = basesOf(c, node);
   const outside = c.bindings;
   // Methods do not see the names of the class body; its statements are no locals of the function around.
-  c.bindings = new Bindings(outside, [], new Set(), undefined);
+  c.bindings = new Bindings(outside, [], new Set(), undefined, new Set(), true);
   const members: Member[] = [];
   const fields: Field[] = [];
   for (const s of body ? namedChildren(body) : []) addMember(c, s, members, fields);
@@ -67,8 +67,8 @@ function addMember(c: Context, node: Node, members: Member[], fields: Field[]): 
   if (left?.type !== 'identifier') return;
   const value = right ? defaultOf(c, right) : undefined;
   const isTyped = child(statement, 'type') !== undefined;
+  c.bindings.classNames?.add(nameText(c, left));
   fields.push({ name: nameText(c, left), nameSpan: spanOf(left), isTyped, value, span });
-  if (right?.type === 'lambda') return;
 }
 
 /** `field(default=1.0)` and `field(default_factory=lambda: ...)` stand for the value itself. */

@@ -164,6 +164,7 @@ export function identifier(c: Context, node: Node): Expression {
   const span = spanOf(node);
   if (text === '') return opaque('an unfinished expression', span);
   if (c.bindings.isReceiver(text)) return { kind: 'self', span };
+  if (c.bindings.classNames?.has(text)) return { kind: 'member', object: { kind: 'self', span }, name: text, nameSpan: span, span };
   return name(text, span);
 }
 

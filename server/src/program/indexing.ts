@@ -1,0 +1,90 @@
+import type { Place } from '../text/span';
+import { evaluate } from './expressions';
+import type { Expression } from './form';
+import type { Machine } from './machine';
+import { readElement } from './members';
+import { countOf, dataOf, itemsOf } from './numbers';
+import { depthOf } from './operators';
+import type { Scope } from './scope';
+import { positions, sliceItems } from './slices';
+import { NOTHING, type Value, type ViewItem } from './values';
+
+/** Elements and parts of lists: `y[0]`, `y[2:]`, `M[:, 1]`, `x[..., 0]`. */
+
+export function indexValue(m: Machine, scope: Scope, e: Expression & { kind: 'index' }, place: Place): Value {
+  const { module } = scope.frame;
+  const object = evaluate(m, scope, e.object);
+  if (object.kind === 'nothing' && e.optional) return NOTHING;
+  return indexWith(m, scope, object, e.indices, place, module.program.indexBase);
+}
+
+function indexWith(m: Machine, scope: Scope, object: Value, indices: readonly Expression[], place: Place, base: number): Value {
+  const [first, ...rest] = indices;
+  if (!first) return object;
+  if (first.kind === 'slice' && first.rest) {
+    const whole = Math.max(0, depthOf(m, object) - rest.length);
+    const ranges = Array.from({ length: whole }, (): Expression => ({ kind: 'slice', span: first.span }));
+    return indexWith(m, scope, object, [...ranges, ...rest], place, base);
+  }
+  if (first.kind === 'slice') {
+    if (rest.length > 0 && isBatch(m, first, object, rest.length)) return indexWith(m, scope, object, rest, place, base);
+    const items = sliceItems(m, scope, object, first, place);
+    if (!isSlice(items)) return items;
+    if (rest.length === 0) return partOf(m, scope, object, first, items, place);
+    return viewOfRows(m, scope, items, rest, place) ?? m.list(items.map((row) => indexWith(m, scope, row, rest, place, base)), true);
+  }
+  const key = evaluate(m, scope, first);
+  if (key.kind === 'nothing' && scope.frame.module.program.listConcat) return m.list([indexWith(m, scope, object, rest, place, base)], true);
+  const list = itemsOf(m, key);
+  if (list) {
+    const picked = list.map((k) => indexWith(m, scope, readElement(m, scope.frame.module, object, k, place), rest, place, base));
+    return m.list(picked, true);
+  }
+  // A single row is indexed by its column where a matrix is a list of rows.
+  const element = readElement(m, scope.frame.module, object, key, place);
+  return indexWith(m, scope, element, rest, place, base);
+}
+
+/** `x[:, 0]` of a single state: a batch of states is read as one generic row. */
+function isBatch(m: Machine, s: Expression & { kind: 'slice' }, object: Value, more: number): boolean {
+  if (s.from || s.to || s.step) return false;
+  const data = dataOf(m, object);
+  if (data?.kind === 'generic') return data.members.size === 0;
+  return data?.kind === 'list' && data.outside === true && depthOf(m, object) <= more;
+}
+
+/** The part of a list that a slice takes: of a numeric vector a view of it where the language has views, else a copy. */
+function partOf(m: Machine, scope: Scope, object: Value, s: Expression & { kind: 'slice' }, items: readonly Value[], place: Place): Value {
+  const data = dataOf(m, object);
+  const { listConcat } = scope.frame.module.program;
+  if (data?.kind !== 'list' || object.kind !== 'object' || !listConcat) return m.list(items, true);
+  if (!data.array) return m.list(items);
+  const picked = positions(m, scope, s, data.items.length, place) ?? [];
+  const view = picked.map((at) => data.view?.[at] ?? { id: object.id, at });
+  return m.object({ kind: 'list', items: [...items], array: true, ...(data.outside ? { outside: true } : {}), view });
+}
+
+/** A column, `M[:, 1]`, of rows that are lists themselves. */
+function viewOfRows(m: Machine, scope: Scope, rows: readonly Value[], rest: readonly Expression[], place: Place): Value | undefined {
+  const { listConcat, negativeIndex, indexBase } = scope.frame.module.program;
+  const [only, ...more] = rest;
+  if (!listConcat || !only || more.length > 0 || only.kind === 'slice') return undefined;
+  const k = countOf(m, evaluate(m, scope, only), place);
+  if (k === undefined) return undefined;
+  const items: Value[] = [];
+  const view: ViewItem[] = [];
+  for (const row of rows) {
+    const data = dataOf(m, row);
+    if (data?.kind !== 'list' || row.kind !== 'object') return undefined;
+    const at = k < 0 && negativeIndex ? data.items.length + k : k - indexBase;
+    const item = data.items[at];
+    if (!item) return undefined;
+    items.push(item);
+    view.push(data.view?.[at] ?? { id: row.id, at });
+  }
+  return m.object({ kind: 'list', items, array: true, view });
+}
+
+function isSlice(x: readonly Value[] | Value): x is readonly Value[] {
+  return Array.isArray(x);
+}
