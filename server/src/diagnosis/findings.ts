@@ -10,6 +10,7 @@ import { formatPair } from '../expression/print/number';
 import type { Derived } from '../mechanics/lagrange';
 import { conventionText, stateText } from './describe';
 import { findRowPattern } from './rows';
+import { findTermFault, termText } from './terms';
 
 /** A finding about a claim, before it is put into lines and columns. */
 export interface RawFinding {
@@ -49,19 +50,26 @@ export function describeClaim(derived: Derived, claims: readonly ClaimResult[], 
       ];
       if (rounded) return finish('rounded-constant', roundedText(rounded));
       if (diagnosis && diagnosis.faults.length > 0) {
+        const term = diagnosis.faults.length === 1 ? findTermFault(derived, claims, index) : undefined;
         const repair = diagnosis.edits && { title: repairTitle(diagnosis.faults), edits: diagnosis.edits };
         return diagnosis.faults.map((f) => ({
           code: f.code,
-          message: `${claim.quantity}: ${faultText(f)}. ${numbers}${conventionText(system, claim)}`,
+          message: `${claim.quantity}: ${term ? `${termText(term)}. ${sentence(faultText(f))}` : faultText(f)}. ${numbers}${conventionText(system, claim)}`,
           place: { file: here.file, span: f.span },
           ...(repair ? { repair } : {}),
         }));
       }
       const pattern = findRowPattern(derived, claims, index);
       if (pattern) return finish(pattern.code, `the code ${pattern.message}`);
+      const term = findTermFault(derived, claims, index);
+      if (term) return finish(term.code, termText(term));
       return finish('differs', 'the code does not compute what the declared energies give');
     }
   }
+}
+
+function sentence(words: string): string {
+  return words[0]!.toUpperCase() + words.slice(1);
 }
 
 function roundedText(rounded: { readonly literal: Expr; readonly exactText: string }): string {
