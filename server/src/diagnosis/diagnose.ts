@@ -46,7 +46,7 @@ export async function diagnose(request: SubjectRequest, result: SubjectResult, s
 
 function repaired(candidates: readonly Candidate[], source: string): Diagnosis {
   return {
-    faults: candidates.map((c) => ({ code: c.code, span: c.site.span, old: c.old, new: c.new })),
+    faults: candidates.map((c) => ({ code: c.code, span: c.place ?? c.site.span, old: c.old, new: c.new })),
     edits: candidates.flatMap((c) => c.edits.map((e) => trimmed(e, source))),
     place: undefined,
   };

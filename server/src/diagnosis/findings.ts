@@ -1,7 +1,7 @@
 import type { FindingCode } from '@visviva/shared';
 import type { Diagnosis } from './diagnose';
 import type { Edit } from './search/edits';
-import { faultText, repairTitle } from './messages';
+import { faultText, NO_EXPLANATION, repairTitle, termAndFault } from './messages';
 import type { ClaimResult } from '../comparison/subject';
 import type { Expr } from '../expression/node';
 import type { Rational } from '../expression/rational';
@@ -54,7 +54,7 @@ export function describeClaim(derived: Derived, claims: readonly ClaimResult[], 
         const repair = diagnosis.edits && { title: repairTitle(diagnosis.faults), edits: diagnosis.edits };
         return diagnosis.faults.map((f) => ({
           code: f.code,
-          message: `${claim.quantity}: ${term ? `${termText(term)}. ${sentence(faultText(f))}` : faultText(f)}. ${numbers}${conventionText(system, claim)}`,
+          message: `${claim.quantity}: ${term ? termAndFault(termText(term), f) : faultText(f)}. ${numbers}${conventionText(system, claim)}`,
           place: { file: here.file, span: f.span },
           ...(repair ? { repair } : {}),
         }));
@@ -63,13 +63,9 @@ export function describeClaim(derived: Derived, claims: readonly ClaimResult[], 
       if (pattern) return finish(pattern.code, `the code ${pattern.message}`);
       const term = findTermFault(derived, claims, index);
       if (term) return finish(term.code, termText(term));
-      return finish('differs', 'the code does not compute what the declared energies give');
+      return finish('differs', NO_EXPLANATION);
     }
   }
-}
-
-function sentence(words: string): string {
-  return words[0]!.toUpperCase() + words.slice(1);
 }
 
 function roundedText(rounded: { readonly literal: Expr; readonly exactText: string }): string {

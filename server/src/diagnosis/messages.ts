@@ -1,34 +1,54 @@
-import type { FindingCode } from '@visviva/shared';
 import type { Fault } from './diagnose';
 
 /** Every sentence of a diagnosis. Short, in the order what, why, what to do. */
 
 /** What is wrong at a place, and what should stand there; completes "th'': ...". */
 export function faultText(fault: Fault): string {
-  const { old, new: better } = fault;
+  const old = clip(fault.old);
   switch (fault.code) {
     case 'sign':
-      return `\`${clip(old)}\` has the wrong sign: write \`${clip(better)}\``;
+      return `\`${old}\` has the wrong sign: ${toDo(fault)}`;
     case 'factor':
-      return `\`${clip(old)}\` is off by a factor: write \`${clip(better)}\``;
+      return `\`${old}\` is off by a factor: ${toDo(fault)}`;
     case 'missing-term':
-      return `the term \`${clip(better)}\` is missing here`;
+      return `a term is missing: ${toDo(fault)}`;
     case 'extra-term':
-      return `the term \`${clip(old)}\` is one too many`;
+      return `the term \`${old}\` is one too many: ${toDo(fault)}`;
     case 'swapped-symbol':
-      return `\`${clip(old)}\` stands where \`${clip(better)}\` belongs`;
+      return `\`${old}\` stands where \`${clip(fault.new)}\` belongs`;
     case 'swapped-rows':
-      return `\`${clip(old)}\` and \`${clip(better)}\` are exchanged`;
+      return `\`${old}\` and \`${clip(fault.new)}\` are exchanged`;
     case 'wrong-function':
-      return `\`${clip(old)}\` should be \`${clip(better)}\``;
+      return `the wrong function: ${toDo(fault)}`;
     case 'wrong-power':
-      return `\`${clip(old)}\` has the wrong power: write \`${clip(better)}\``;
+      return `\`${old}\` has the wrong power: ${toDo(fault)}`;
     case 'wrong-operator':
-      return `the operator of \`${clip(old)}\` is wrong: write \`${clip(better)}\``;
+      return `\`${old}\` has the wrong operator: ${toDo(fault)}`;
     case 'grouping':
-      return `the brackets of \`${clip(old)}\` are wrong: write \`${clip(better)}\``;
+      return `the brackets of \`${old}\` are wrong: ${toDo(fault)}`;
     default:
-      return `write \`${clip(better)}\` for \`${clip(old)}\``;
+      return toDo(fault);
+  }
+}
+
+/** The same where the term of the equation is already named. */
+export function termAndFault(term: string, fault: Fault): string {
+  return `${term}: ${toDo(fault)}`;
+}
+
+/** What to do, for the end of a sentence. */
+function toDo(fault: Fault): string {
+  const old = clip(fault.old);
+  const better = clip(fault.new);
+  switch (fault.code) {
+    case 'missing-term':
+      return `add \`${better}\``;
+    case 'extra-term':
+      return `take \`${old}\` out`;
+    case 'swapped-rows':
+      return `exchange \`${old}\` and \`${better}\``;
+    default:
+      return `write \`${better}\` for \`${old}\``;
   }
 }
 
@@ -39,12 +59,8 @@ export function repairTitle(faults: readonly Fault[]): string {
 }
 
 function shortTitle(fault: Fault): string {
-  const titles: Partial<Record<FindingCode, string>> = {
-    'missing-term': `Add \`${clip(fault.new)}\``,
-    'extra-term': `Take \`${clip(fault.old)}\` out`,
-    'swapped-rows': `Exchange \`${clip(fault.old)}\` and \`${clip(fault.new)}\``,
-  };
-  return titles[fault.code] ?? `Write \`${clip(fault.new)}\` for \`${clip(fault.old)}\``;
+  const words = toDo(fault);
+  return words[0]!.toUpperCase() + words.slice(1);
 }
 
 const LONGEST = 60;
@@ -53,4 +69,14 @@ const LONGEST = 60;
 function clip(code: string): string {
   const line = code.replace(/\s+/g, ' ').trim();
   return line.length <= LONGEST ? line : `${line.slice(0, LONGEST - 3)}...`;
+}
+
+export const NO_EXPLANATION = 'the code does not compute what the declared energies give';
+
+export function declarationText(change: string): string {
+  return `Or the declaration is wrong: every claim holds with ${change}.`;
+}
+
+export function derivedText(equation: string): string {
+  return `The energies give ${equation}.`;
 }

@@ -186,5 +186,5 @@ function velocityPower(term: Expr, velocity: Expr): number {
 /** `the gravity term m*g*l*sin(th) of th's equation has the wrong sign` */
 export function termText(fault: TermFault): string {
   const kind = fault.kind === '' ? 'term' : `${fault.kind} term`;
-  return `the ${kind} ${fault.term}${fault.equation === undefined ? '' : ` of the equation of ${fault.equation}`} ${fault.verdict}`;
+  return `the ${kind} ${fault.term}${fault.equation === undefined ? '' : ` in the equation of ${fault.equation}`} ${fault.verdict}`;
 }

@@ -1,5 +1,6 @@
 import type { Expression } from '../../../program/form';
 import { isBracketed, type Edit } from '../edits';
+import type { Span } from '../../../text/span';
 import type { Candidate, Maker, Scene, Spot } from './candidate';
 
 /** A run of operands and operators as it stands in the source, brackets of its own left whole. */
@@ -61,7 +62,7 @@ export const brackets: Maker = (scene, spot, give) => {
       if (other === op) continue;
       const changed = ops.map((o, i) => (i === k ? other : o));
       const isSign = isSum(op) && isSum(other);
-      give(candidate(scene, spot, [{ span: at, text: other }], evaluate(undefined, changed), isSign ? 'sign' : 'wrong-operator', isSign ? 0.95 : 1.15));
+      give(candidate(scene, spot, [{ span: at, text: other }], evaluate(undefined, changed), isSign ? 'sign' : 'wrong-operator', isSign ? 0.95 : 1.15, { start: at.start, end: run.units[k + 1]!.end }));
     }
   });
   run.units.forEach((unit, at) => {
@@ -80,13 +81,13 @@ export const brackets: Maker = (scene, spot, give) => {
   });
 };
 
-function candidate(scene: Scene, spot: Spot, edits: readonly Edit[], values: Float64Array[], code: Candidate['code'], cost: number): Candidate {
+function candidate(scene: Scene, spot: Spot, edits: readonly Edit[], values: Float64Array[], code: Candidate['code'], cost: number, place?: Span): Candidate {
   const { span } = spot.site;
   let text = scene.source.slice(span.start, span.end);
   for (const e of [...edits].sort((a, b) => b.span.start - a.span.start)) {
     text = text.slice(0, e.span.start - span.start) + e.text + text.slice(e.span.end - span.start);
   }
-  return { site: spot.site, edits, code, cost, values, label: `text ${text}`, old: spot.text, new: text };
+  return { site: spot.site, edits, code, ...(place ? { place } : {}), cost, values, label: `text ${text}`, old: spot.text, new: text };
 }
 
 function isSum(op: string): boolean {

@@ -1,4 +1,5 @@
 import type { FindingCode } from '@visviva/shared';
+import type { Span } from '../../../text/span';
 import type { Program } from '../../../program/form';
 import type { Edit } from '../edits';
 import type { Model } from '../model';
@@ -11,6 +12,8 @@ export interface Candidate {
   readonly site: Site;
   readonly edits: readonly Edit[];
   readonly code: FindingCode;
+  /** The part of the site to point at, where not all of it is meant. */
+  readonly place?: Span;
   /** Smaller is tried, and offered, first: the size of the edit and how often people make the fault. */
   readonly cost: number;
   /** The site's new value, by evaluation; undefined where only reading the edited text can tell. */

@@ -38,6 +38,7 @@ export const signs: Maker = (scene, spot, give) => {
         site,
         edits: [{ span: node.opSpan, text: op }],
         code: 'sign',
+        place: { start: node.opSpan.start, end: node.right.span.end },
         cost: 0.9,
         values: map2(sides[0], sides[1], ARITHMETIC[op]!),
         label: 'operator ' + op,

@@ -81,10 +81,11 @@ export function insertions(terms: readonly KnownTerm[], fit: LogFit<Expr>): Make
         const p = fit.product(ratio);
         const product = p && printer.product(p.constant, p.powers);
         const own = product ? undefined : printer.own.product(ratio);
-        if (product) give1(product, 1.9 + 0.3 * p.powers.length + (Math.abs(p.constant - 1) > 1e-9 ? 0.6 : 0));
+        const below = parent?.kind === 'binary' && parent.op === '/' && site.role === 'right' ? 0.5 : 0;
+        if (product) give1(product, below + 1.9 + 0.3 * p.powers.length + (Math.abs(p.constant - 1) > 1e-9 ? 0.6 : 0));
         else if (own) {
           const written = printer.ofAtoms(own.constant, own.powers);
-          if (written) give1(written, 2 + 0.3 * own.powers.length);
+          if (written) give1(written, below + 2 + 0.3 * own.powers.length);
         } else {
           for (const atom of printer.atoms) {
             for (const power of [1, -1]) {
@@ -94,7 +95,7 @@ export function insertions(terms: readonly KnownTerm[], fit: LogFit<Expr>): Make
                 continue;
               }
               const product = printer.withAtom(constant, atom.text, power);
-              if (product) give1(product, 2 + (Math.abs(constant - 1) > 1e-9 ? 0.6 : 0));
+              if (product) give1(product, below + 2 + (Math.abs(constant - 1) > 1e-9 ? 0.6 : 0));
             }
           }
         }
