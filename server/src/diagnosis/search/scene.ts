@@ -42,21 +42,34 @@ export function makeScene(request: SubjectRequest, model: Model, map: SourceMap,
   }
   addMembers(request, model, withoutComments(source, request), [...atoms.values()], add);
   addFunctions(model, source, functions, [...atoms.values()], add);
+  const valuesOf = (e: Expression, evaluations: readonly Evaluation[]): readonly Float64Array[] | undefined => {
+    const own = model.tagged.evaluations.get(map.byNode.get(e)!);
+    if (own?.length === evaluations.length) {
+      const values = own.map((x) => model.value(x.read));
+      return values.every((v) => v !== undefined) ? values : undefined;
+    }
+    const literal = literalValue(e);
+    return literal === undefined ? undefined : evaluations.map(() => new Float64Array(model.n).fill(literal));
+  };
   return {
     model,
     program: request.program,
     source,
     atoms: [...atoms.values()],
     siteOf: (e) => map.byNode.get(e),
-    valuesOf: (e: Expression, evaluations: readonly Evaluation[]) => {
-      const site = map.byNode.get(e);
-      const own = site && model.tagged.evaluations.get(site);
-      if (own?.length === evaluations.length) {
-        const values = own.map((x) => model.value(x.read));
-        return values.every((v) => v !== undefined) ? values : undefined;
-      }
-      const literal = literalValue(e);
-      return literal === undefined ? undefined : evaluations.map(() => new Float64Array(model.n).fill(literal));
+    valuesOf,
+    assignedBefore: (site, evaluations) => {
+      const { start, end } = site.assignment!.target.span;
+      const name = source.slice(start, end);
+      const earlier = map.sites.filter(
+        (s) =>
+          s.owner === site.owner &&
+          s.assignment?.value === s.node &&
+          s.span.end < start &&
+          source.slice(s.assignment.target.span.start, s.assignment.target.span.end) === name,
+      );
+      const last = earlier.at(-1);
+      return last?.assignment?.op === undefined && last ? valuesOf(last.node, evaluations) : undefined;
     },
   };
 }

@@ -2,6 +2,7 @@ import type { ClaimResult, SubjectRequest, SubjectResult } from '../../compariso
 import type { Expr } from '../../expression/node';
 import { reachable } from '../../expression/reach';
 import { solvePlace, type Needed } from './angelic';
+import { assignments } from './candidates/assignments';
 import { brackets } from './candidates/brackets';
 import type { Candidate, Maker, Scene, Spot } from './candidates/candidate';
 import { agree } from './candidates/candidate';
@@ -18,7 +19,7 @@ import { mapSource, type Site, type SourceMap } from './sites';
 import { makeScene } from './scene';
 import { MODES, readTagged, type Evaluation } from './tagged';
 
-const BASIC: readonly Maker[] = [signs, operators, drops, groupings, brackets, names, constants, functions, powers];
+const BASIC: readonly Maker[] = [signs, assignments, operators, drops, groupings, brackets, names, constants, functions, powers];
 
 /** The search for an edit that makes all claims of a function right, in stages from cheap to dear. */
 export class Search {

@@ -45,6 +45,8 @@ export interface Scene {
   readonly atoms: readonly Atom[];
   /** Sites of the same owner, by node. */
   siteOf(e: Expression): Site | undefined;
+  /** What the target of an assignment was given before it. */
+  assignedBefore(site: Site, evaluations: readonly Evaluation[]): readonly Float64Array[] | undefined;
   /** Values of a place by evaluation, as many as `evaluations` has. */
   valuesOf(e: Expression, evaluations: readonly Evaluation[]): readonly Float64Array[] | undefined;
 }

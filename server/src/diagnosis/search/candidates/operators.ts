@@ -1,5 +1,5 @@
 import type { Expression } from '../../../program/form';
-import { Binding, bindingOf, bracket, isBracketed, replaceSite, sourceOf } from '../edits';
+import { Binding, bindingOf, bracket, replaceSite, sourceOf } from '../edits';
 import { map1, map2, type Maker, type Scene, type Spot } from './candidate';
 
 type Binary = Expression & { readonly kind: 'binary' };
@@ -20,7 +20,7 @@ export const signs: Maker = (scene, spot, give) => {
     const inner = source.slice(node.operand.span.start, node.operand.span.end);
     give({
       site,
-      edits: [replaceSite(site, source, isBracketed(node.operand.span, source) && bindingOf(node.operand) < Binding.product ? bracket(inner) : inner, Math.max(bindingOf(node.operand), Binding.product))],
+      edits: [{ span: { start: site.span.start, end: site.span.start + text.length - text.replace(/^-\s*/, '').length }, text: '' }],
       code: 'sign',
       cost: 0.8,
       values: map1(values, (x) => -x),
