@@ -27,6 +27,26 @@ export interface Service {
   symbols(file: string): Promise<readonly DocumentSymbol[]>;
   /** The derived equations of every system a file declares. */
   derive(file: string, as: DeriveForm, budget: Budget): Promise<readonly DerivedSystem[]>;
+  /**
+   * Compares declarations as mechanics. Those of `file` are paired with those of `other`: by name, or the only ones.
+   * With `name` instead of a file, the other declarations of the same file are compared with the one of that name.
+   * @param system only this one of `file`
+   */
+  compare(file: string, against: { readonly file: string } | { readonly name: string }, system: string | undefined, budget: Budget): Promise<ComparisonResult>;
+}
+
+export type ComparisonResult =
+  | { readonly comparisons: readonly Comparison[] }
+  /** Why nothing could be compared, in words. */
+  | { readonly failure: string };
+
+/** How two declarations compare, and that in words. */
+export interface Comparison {
+  /** `same`: the same equations of motion. `same motion`: other equations with the same accelerations. */
+  readonly kind: 'same' | 'same motion' | 'differ' | 'undecided';
+  readonly first: string;
+  readonly second: string;
+  readonly text: string;
 }
 
 /** What derived equations are written in. */

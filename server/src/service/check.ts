@@ -5,9 +5,11 @@ import { describeClaim, type RawFinding } from '../diagnosis/findings';
 import { inOrder } from '../diagnosis/describe';
 import { symbolText, type SymbolData } from '../expression/node';
 import { checkDimensions } from '../mechanics/dimensions';
+import { printFormula } from '../notation';
 import { findUnused } from '../mechanics/unused';
 import type { DeclarationProblem, System } from '../mechanics/system';
 import type { Subject } from '../program/form';
+import type { Block, Statement } from '../notation/tree';
 import type { Budget } from '../text/budget';
 import type { Place } from '../text/span';
 import type { Document, Documents, PlacedBlock } from '../workspace/documents';
@@ -81,7 +83,11 @@ export async function checkBlock(
   if (!remembered && !budget.why) remembered = results?.add(document, placed, entry.derived, result);
   const own = declares(block)
     ? [...entry.problems, ...checkDimensions(block).map((d): DeclarationProblem => ({ ...d, severity: 'warning' }))]
-    : block.errors.map((e): DeclarationProblem => ({ ...e, severity: 'error' }));
+    : [
+        ...block.errors.map((e): DeclarationProblem => ({ ...e, severity: 'error' })),
+        ...misplaced(block),
+        ...(entry.isExtended ? entry.problems : []),
+      ];
   return {
     placed,
     entry,
@@ -112,6 +118,22 @@ export function subjectRequest(
   };
 }
 
+const OF_THE_SYSTEM: ReadonlySet<Statement['kind']> = new Set([
+  'energy', 'generalized-force', 'force', 'torque', 'constraint', 'point', 'body', 'gravity', 'spring', 'damper',
+] as const);
+
+/** Statements that belong to the declaration with the coordinates; here they would be passed over in silence. */
+function misplaced(block: Block): DeclarationProblem[] {
+  return block.statements
+    .filter((s) => OF_THE_SYSTEM.has(s.kind))
+    .map((s) => ({
+      code: 'inconsistent',
+      message: `this block only names \`${block.name}\`: what its energies are stands with its \`coordinates\``,
+      span: s.span,
+      severity: 'error',
+    }));
+}
+
 /** A name counts as used when any declaration of the file uses it, so this waits for the last of them. */
 function withUnused(document: Document, outcomes: BlockOutcome[]): BlockOutcome[] {
   return outcomes.map((o) => {
@@ -120,7 +142,8 @@ function withUnused(document: Document, outcomes: BlockOutcome[]): BlockOutcome[
     const claimed = outcomes.some((x) => x.placed.block.name === system.name && x.result && x.result.claims.length > 0);
     if (!claimed || document.language === 'visviva') return o;
     const shift = o.placed.block.span.start - system.block.span.start;
-    const unused = findUnused(system).map((p) => ({ ...p, span: { start: p.span.start + shift, end: p.span.end + shift } }));
+    const family = outcomes.flatMap((x) => (x.placed.block.name === system.name && x.entry ? [...x.entry.derived.system.scope.used] : []));
+    const unused = findUnused(system, new Set(family)).map((p) => ({ ...p, span: { start: p.span.start + shift, end: p.span.end + shift } }));
     return unused.length > 0 ? { ...o, problems: [...o.problems, ...unused] } : o;
   });
 }
@@ -139,7 +162,8 @@ export function fileResult(document: Document, outcomes: readonly BlockOutcome[]
     }
     if (o.entry && o.entry.file !== file) dependsOn.add(o.entry.file);
     o.result?.reading?.files.forEach((f) => dependsOn.add(f));
-    o.result?.claims.forEach((_, i) => claims.push(reportClaim(document, o, i)));
+    if (o.result) o.result.claims.forEach((_, i) => claims.push(reportClaim(document, o, i)));
+    else claims.push(...unresolvedClaims(document, o));
   }
   return {
     file,
@@ -179,6 +203,32 @@ function reportClaim(document: Document, outcome: BlockOutcome, index: number): 
     ...(decision.verdict === 'differs' ? { witness: reportWitness(system, decision.witness) } : {}),
     findings,
   };
+}
+
+/** The claims of a block whose system was not found: none of them passes in silence. */
+function unresolvedClaims(document: Document, { placed, problems }: BlockOutcome): ReportClaim[] {
+  const { lines, file, program } = document;
+  const { block, subject } = placed;
+  const items = block.statements.flatMap((s) => (s.kind === 'checks' ? s.items : []));
+  const reason = problems[problems.length - 1]!.message;
+  return items.flatMap((claim) => {
+    const listed = claim.right.kind === 'list' || claim.right.kind === 'tuple' ? claim.right.items : undefined;
+    const output = printFormula(claim.left);
+    const each = listed
+      ? listed.map((item, i) => [`${output}[${i + program.indexBase}]`, printFormula(item)] as const)
+      : [[output, printFormula(claim.right)] as const];
+    return each.map(([name, quantity]): ReportClaim => ({
+      file,
+      language: program.language,
+      system: block.name,
+      function: subjectName(subject),
+      output: name,
+      quantity,
+      line: lines.position(claim.span.start).line,
+      verdict: 'unread',
+      findings: [{ code: 'unread', message: `${name} is not checked: ${reason}.`, range: lines.range(claim.span) }],
+    }));
+  });
 }
 
 function reportFinding(document: Document, f: RawFinding, claim: ClaimResult): ReportClaim['findings'][number] {

@@ -4,7 +4,8 @@ import type { Budget } from '../text/budget';
 import { Documents } from '../workspace/documents';
 import { Imports } from '../workspace/imports';
 import { Systems } from '../workspace/systems';
-import type { Files, FileResult, Service } from './api';
+import { compareSystems, pairDeclarations } from './against';
+import type { Comparison, Files, FileResult, Service } from './api';
 import { checkDocument, fileResult, type BlockOutcome, type Project } from './check';
 import { diagnoseOutcomes } from './diagnose';
 import { deriveSystems } from './derive';
@@ -60,6 +61,16 @@ export function createService(files: Files): Service {
     async derive(file, as, budget) {
       const document = await load(file);
       return document ? deriveSystems(project, document, as, budget) : [];
+    },
+
+    async compare(file, against, system, budget) {
+      const document = await load(file);
+      const other = 'file' in against ? await load(against.file) : document;
+      const pairs = pairDeclarations(document, other, 'name' in against ? against.name : undefined, system);
+      if ('failure' in pairs) return pairs;
+      const comparisons: Comparison[] = [];
+      for (const [a, b] of pairs.pairs) comparisons.push(await compareSystems(project, a, b, budget));
+      return { comparisons };
     },
   };
 }

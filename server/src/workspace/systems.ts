@@ -2,10 +2,10 @@ import { asCodeEnergies, readCodeEnergies } from '../comparison/code-energies';
 import { checkDeclaration } from '../comparison/declaration';
 import { Spellings } from '../comparison/spellings';
 import { Graph } from '../expression/graph';
-import { buildSystem } from '../mechanics/build';
+import { buildSystem, type CodeEnergies } from '../mechanics/build';
 import { Derived } from '../mechanics/lagrange';
 import type { DeclarationProblem, System } from '../mechanics/system';
-import type { Block } from '../notation/tree';
+import type { Block, Statement } from '../notation/tree';
 import type { ReadRequest } from '../program/reading';
 import type { Budget } from '../text/budget';
 import type { Document, Documents } from './documents';
@@ -19,6 +19,9 @@ export interface SystemEntry {
   readonly problems: readonly DeclarationProblem[];
   /** Files read for it beyond its own. */
   readonly files: readonly string[];
+  readonly energies: CodeEnergies;
+  /** Set where a block that names the system adds to it (`near`, `ranges`, a step size): for that block alone. */
+  readonly isExtended?: boolean;
 }
 
 export type Lookup =
@@ -30,6 +33,9 @@ export type Lookup =
 const MOST_NODES = 60_000;
 const MOST_ENTRIES = 100;
 
+/** What a block that names a system may add to it. */
+const ADDITIONS: ReadonlySet<Statement['kind']> = new Set(['near', 'ranges', 'where', 'parameters', 'inputs', 'time'] as const);
+
 /** Finds and keeps the systems that blocks declare or name. */
 export class Systems {
   private readonly kept = new Map<string, SystemEntry>();
@@ -40,8 +46,43 @@ export class Systems {
     private readonly importFile: (core: Document) => ReadRequest['importFile'],
   ) {}
 
-  /** The system a block declares or refers to by its name. */
+  /** The system a block declares or refers to by its name, with what the block adds to it. */
   async lookup(document: Document, block: Block, budget: Budget): Promise<Lookup> {
+    const base = await this.lookupBase(document, block, budget);
+    if (base.kind !== 'found' || declares(block)) return base;
+    const additions = block.statements.filter((s) => ADDITIONS.has(s.kind));
+    return additions.length === 0 ? base : { kind: 'found', entry: this.extended(base.entry, document, block, additions) };
+  }
+
+  private extended(base: SystemEntry, document: Document, block: Block, additions: readonly Statement[]): SystemEntry {
+    const { system } = base.derived;
+    const key = ['+', base.file, document.file, block.name, document.text.slice(block.span.start, block.span.end)].join('\u0000');
+    const known = this.kept.get(key);
+    // The same graph means the same base.
+    if (known && known.derived.system.graph === system.graph) return moved(known, block);
+    const merged = buildSystem({ ...system.block, statements: [...system.block.statements, ...additions] }, system.graph, base.energies);
+    const before = new Set(base.problems.map((p) => p.message));
+    const entry: SystemEntry = {
+      ...base,
+      file: document.file,
+      block,
+      derived: new Derived(merged),
+      spellings: new Spellings(merged),
+      problems: merged.problems.filter((p) => !before.has(p.message)),
+      files: base.file === document.file ? [] : [base.file],
+      isExtended: true,
+    };
+    this.keep(key, entry);
+    return entry;
+  }
+
+  private keep(key: string, entry: SystemEntry): void {
+    if (this.kept.size >= MOST_ENTRIES) this.kept.delete(this.kept.keys().next().value!);
+    this.kept.delete(key);
+    this.kept.set(key, entry);
+  }
+
+  private async lookupBase(document: Document, block: Block, budget: Budget): Promise<Lookup> {
     if (declares(block)) return { kind: 'found', entry: this.entry(document, block, budget) };
     const here = document.blocks.filter((b) => b.block.name === block.name && declares(b.block));
     if (here.length === 1) return { kind: 'found', entry: this.entry(document, here[0]!.block, budget) };
@@ -71,9 +112,7 @@ export class Systems {
     const known = this.kept.get(key);
     if (known && known.derived.system.graph.nodes.length < MOST_NODES) return moved(known, block);
     const entry = this.build(document, block, definers, budget);
-    if (this.kept.size >= MOST_ENTRIES) this.kept.delete(this.kept.keys().next().value!);
-    this.kept.delete(key);
-    this.kept.set(key, entry);
+    this.keep(key, entry);
     return entry;
   }
 
@@ -82,6 +121,7 @@ export class Systems {
     let system: System = buildSystem(block, graph);
     const extra: DeclarationProblem[] = [];
     const files: string[] = [];
+    let codeEnergies: CodeEnergies = new Map();
     if (definers.length > 0) {
       const derived = new Derived(system);
       const spellings = new Spellings(system);
@@ -99,7 +139,8 @@ export class Systems {
         }),
       );
       for (const e of energies) if (e.problem) extra.push(e.problem);
-      system = buildSystem(block, graph, asCodeEnergies(energies));
+      codeEnergies = asCodeEnergies(energies);
+      system = buildSystem(block, graph, codeEnergies);
       if (extra.length > 0 && !system.blocked) {
         system = { ...system, blocked: { reason: extra[0]!.message, span: extra[0]!.span } };
       }
@@ -112,6 +153,7 @@ export class Systems {
       spellings: new Spellings(system),
       problems: [...system.problems, ...extra, ...checkDeclaration(derived)],
       files,
+      energies: codeEnergies,
     };
   }
 }
