@@ -97,7 +97,7 @@ function parseItem(c: Cursor, families: ReadonlySet<string>): Draft {
       c.take();
       const value = parseExpression(c, LEVEL.sum);
       item.bounds.push({ op: next.text as '<', value, span: c.from(next.span.start) });
-    } else if (c.isWord('in')) {
+    } else if (c.isWord('in') && !isRemarkWithIn(c)) {
       c.take();
       const { low, high } = parseInterval(c);
       item.bounds.push({ op: 'in', low, high, span: c.from(next.span.start) });
@@ -106,6 +106,12 @@ function parseItem(c: Cursor, families: ReadonlySet<string>): Draft {
       item.typical = parseExpression(c, LEVEL.sum);
     } else return item;
   }
+}
+
+/** `x [m]    in the turning frame`: words after two spaces are a remark, also where the first of them is `in`. */
+function isRemarkWithIn(c: Cursor): boolean {
+  const word = c.peek();
+  return !word.newline && word.gap >= 2 && !c.is('[', 1) && !c.is('(', 1);
 }
 
 /** `[kg m^2]`, taken as raw text: units have their own grammar. */

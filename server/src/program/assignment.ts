@@ -1,4 +1,5 @@
 import type { Place } from '../text/span';
+import { settleField } from './classes';
 import { evaluate } from './expressions';
 import type { Expression, Pattern } from './form';
 import { clipsVariable } from './limits';
@@ -8,7 +9,7 @@ import { withEach } from './merging';
 import { itemsOf } from './numbers';
 import { binary } from './operators';
 import { bindPattern } from './patterns';
-import type { Scope } from './scope';
+import type { ClassInfo, Scope } from './scope';
 import { sliceTargets } from './slices';
 import { arriveAt, declare, readVariable, write } from './variables';
 import { NOTHING, unread, type Value } from './values';
@@ -65,7 +66,17 @@ function assignPlace(m: Machine, scope: Scope, e: Expression & { kind: 'assign' 
   const { module } = scope.frame;
   if (target.kind === 'member') {
     const object = evaluate(m, scope, target.object);
-    return through(m, scope, e, object, place, (o) => readMember(m, module, o, target.name, place), (o, v) => writeMember(m, module, o, target.name, v, place));
+    const maker = !e.op && e.value.kind === 'number' && target.object.kind === 'self' ? constructorOf(m, scope) : undefined;
+    const settled = (v: Value): Value => (maker ? settleField(m, maker, target.name, v, place) : v);
+    return through(
+      m,
+      scope,
+      e,
+      object,
+      place,
+      (o) => readMember(m, module, o, target.name, place),
+      (o, v) => writeMember(m, module, o, target.name, settled(v), place),
+    );
   }
   if (target.kind === 'index') {
     let object = evaluate(m, scope, target.object);
@@ -78,6 +89,13 @@ function assignPlace(m: Machine, scope: Scope, e: Expression & { kind: 'assign' 
   if (target.kind === 'name') return assignName(m, scope, e, target.name, place);
   evaluate(m, scope, e.value);
   return unread('an assignment to something that is no variable, member or element', place);
+}
+
+/** The class whose constructor is running, where an instance is made by the code itself. */
+function constructorOf(m: Machine, scope: Scope): ClassInfo | undefined {
+  const { home, node } = scope.frame;
+  if (!home || m.constructing !== undefined) return undefined;
+  return home.node.members.some((x) => x.kind === 'constructor' && x.node === node) ? home : undefined;
 }
 
 function through(

@@ -1,9 +1,10 @@
 import type { Place } from '../text/span';
-import { callSuper, construct, findMember } from './classes';
+import { findMember } from './class-members';
+import { callSuper, construct } from './classes';
 import { damage, unknownCall } from './damage';
 import { evaluate } from './expressions';
 import type { Argument, Expression, Parameter } from './form';
-import { childOf, fallbackOf, fieldValue, genericAt, valueOf } from './generics';
+import { childOf, copyOfGeneric, fallbackOf, fieldValue, genericAt, hasWritesBelow, valueOf } from './generics';
 import { runIntrinsic } from './intrinsics/table';
 import type { ScalarFunction } from './library';
 import { unclip } from './limits';
@@ -180,14 +181,27 @@ function callObject(m: Machine, scope: Scope, callee: Value & { kind: 'object' }
     const read = m.naming.read(paths, place);
     if (read) return valueOf(m, read, place);
   }
+  const list = listOf(generic.path, (method) => scope.frame.module.library.methods.has(`list.${method}`));
+  if (list !== undefined) {
+    return unknownCall(m, args, place, words, `can't read the call \`${words}(...)\`: how many items \`${list}\` has is not known; bind it as a whole, \`reads ${list} = [...]\``);
+  }
   return unknownCall(m, args, place, words);
+}
+
+/** `carts` of `carts.map`, where `map` is a method of lists. */
+function listOf(path: string, isListMethod: (name: string) => boolean): string | undefined {
+  const method = lastName(path);
+  if (method === undefined || !path.endsWith(`.${method}`) || !isListMethod(method)) return undefined;
+  return path.slice(0, -method.length - 1);
 }
 
 /** `state.clone()`: a thing of its own, with the same members to begin with. */
 function copyOf(m: Machine, object: Value, name: string): Value | undefined {
-  if (object.kind !== 'object' || (name !== 'clone' && name !== 'copy')) return undefined;
+  if (object.kind !== 'object' || (name !== 'clone' && name !== 'copy' && name !== 'slice')) return undefined;
   const data = dataOf(m, object);
   if (data?.kind !== 'generic' || data.generic.info) return undefined;
+  if (name === 'slice') return copyOfGeneric(m, object.id, data);
+  if (hasWritesBelow(m, object.id)) return undefined;
   return m.object({ ...data, members: new Map(data.members) });
 }
 

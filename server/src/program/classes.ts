@@ -1,10 +1,10 @@
 import type { Place } from '../text/span';
 import { invoke, type ArgumentValue } from './calls';
+import { findMember } from './class-members';
 import { evaluate } from './expressions';
 import type { ClassNode, Member } from './form';
 import { fieldValue, genericAt, valueOf } from './generics';
 import type { Machine } from './machine';
-import { patternNames } from './scan';
 import { Scope, type ClassInfo, type Frame } from './scope';
 import { declare, settleName } from './variables';
 import { NOTHING, unread, type FunctionValue, type ObjectValue, type Value } from './values';
@@ -33,23 +33,6 @@ export function classInfo(m: Machine, scope: Scope, node: ClassNode): ClassInfo 
   // The class knows itself by name, also where it is an expression.
   if (node.name !== '' && !scope.variables.has(node.name)) declare(m, inner, node.name, { kind: 'class', info });
   return info;
-}
-
-type Found = { readonly member: Member; readonly info: ClassInfo };
-
-/** The getter, method or field of instances by this name, the nearest class first. */
-export function findMember(info: ClassInfo, name: string, kind?: Member['kind'], isStatic = false): Found | 'unknown' | undefined {
-  let at: ClassInfo | 'unknown' | undefined = info;
-  for (let k = 0; at && k < 64; k++) {
-    if (at === 'unknown') return 'unknown';
-    const here: ClassInfo = at;
-    const member = here.node.members.find(
-      (x) => x.name === name && x.isStatic === isStatic && (kind ? x.kind === kind : x.kind !== 'setter' && x.kind !== 'constructor'),
-    );
-    if (member) return { member, info: here };
-    at = here.base();
-  }
-  return undefined;
 }
 
 export function staticMember(m: Machine, info: ClassInfo, key: string, place: Place): Value {
@@ -145,10 +128,17 @@ function setFields(m: Machine, info: ClassInfo, self: ObjectValue): void {
   for (const member of info.node.members) {
     if (member.kind !== 'field' || member.isStatic || !member.value) continue;
     const value = evaluate(m, scope, member.value);
-    const settled = m.constructing === self.id ? fieldValue(m, member.name, value, m.place(scope, member.span)) : value;
+    const place = m.place(scope, member.span);
+    const settled = m.constructing === self.id ? fieldValue(m, member.name, value, place) : settleField(m, info, member.name, value, place);
     const data = m.store.writable(self.id);
     if (data.kind === 'record') data.members.set(member.name, settled);
   }
+}
+
+/** A literal that a class gives to a field, and nothing else ever does, stands for the symbol of the field's name. */
+export function settleField(m: Machine, info: ClassInfo, key: string, value: Value, place: Place): Value {
+  if (value.kind !== 'scalar' || value.expr.op !== 'number' || m.isAssignedMember(key)) return value;
+  return settleName(m, key, `${info.node.name}.${key}`, value, place);
 }
 
 /**
@@ -204,10 +194,12 @@ function genericArguments(m: Machine, info: ClassInfo): ArgumentValue[] {
       return parameters
         .filter((p) => !p.rest && !p.restNamed)
         .map((p) => {
-          const name = p.pattern.kind === 'name' ? p.pattern.name : patternNames(p.pattern).length > 0 ? '' : '';
+          const name = p.pattern.kind === 'name' ? p.pattern.name : '';
           const place = m.place(info.scope, p.pattern.span);
           const meaning = name === '' ? undefined : m.naming.read([name], place);
-          return { value: meaning ? valueOf(m, meaning, place) : genericAt(m, name, place) };
+          const { initial } = p;
+          const fallback = initial ? { fallback: () => evaluate(m, info.scope, initial) } : {};
+          return { value: meaning ? valueOf(m, meaning, place) : genericAt(m, name, place, fallback) };
         });
     }
     at = at.base();

@@ -1,5 +1,6 @@
 import type { Expr } from '../expression/node';
 import type { Rational } from '../expression/rational';
+import { substitute } from '../expression/substitute';
 import type { Place } from '../text/span';
 import { evaluate } from './expressions';
 import type { BinaryOperator, Expression } from './form';
@@ -55,8 +56,19 @@ export function settle(m: Machine, c: Expr): Expr {
     if (against === c) return g.false;
     if (against && g.not(against) === c) return g.true;
     if (a.op === 'less' && g.lessEqual(a.args[0]!, a.args[1]!) === c) return g.true;
+    const told = toldByValue(m, a, c);
+    if (told) return told;
   }
   return c;
+}
+
+/** What `kind == 1` says about `kind == 2` or `kind < 1`. */
+function toldByValue(m: Machine, a: Expr, c: Expr): Expr | undefined {
+  if (a.op !== 'equal') return undefined;
+  const [x, n] = a.args[0]!.op === 'number' ? [a.args[1]!, a.args[0]!] : [a.args[0]!, a.args[1]!];
+  if (x.op !== 'symbol' || n.op !== 'number') return undefined;
+  const [said] = substitute(m.graph, [c], new Map([[x, n]]));
+  return said === m.graph.true || said === m.graph.false ? said : undefined;
 }
 
 /** `b <= a` for `a < b`, `b < a` for `a <= b`. */

@@ -1,11 +1,12 @@
 import { classInfo } from './classes';
 import { evaluate } from './expressions';
-import type { ClassNode, Expression, FunctionNode, Parameter, Pattern, Program } from './form';
+import type { ClassNode, Expression, FunctionNode, Parameter, Pattern, Program, TypeNote } from './form';
 import { genericAt } from './generics';
 import type { Machine } from './machine';
 import { addTopLevel } from './modules';
 import { nodesOf } from './scan';
 import { Scope, type ClassInfo, type Frame, type Module } from './scope';
+import { typeFacts, type Typed } from './type-notes';
 import { declare } from './variables';
 import type { Value } from './values';
 
@@ -57,42 +58,33 @@ function enterParameter(m: Machine, scope: Scope, parameter: Parameter): void {
   const { initial } = parameter;
   let first: Value | undefined;
   const fallback = initial ? (): Value => (first ??= evaluate(m, scope, initial)) : undefined;
-  const info = parameter.type && parameter.pattern.kind === 'name' ? classOf(m, scope, parameter.type) : undefined;
-  if (info && parameter.pattern.kind === 'name') {
-    const place = m.place(scope, parameter.pattern.span);
-    declare(m, scope, parameter.pattern.name, genericAt(m, parameter.pattern.name, place, { info }));
-    return;
-  }
-  enterPattern(m, scope, parameter.pattern, [], fallback);
-}
-
-/** The class of this project that a type names. */
-function classOf(m: Machine, scope: Scope, type: Expression): ClassInfo | undefined {
-  m.quiet++;
-  const value = evaluate(m, scope, type);
-  m.quiet--;
-  return value.kind === 'class' ? value.info : undefined;
+  const note = parameter.note ?? (parameter.type && { class: parameter.type });
+  enterPattern(m, scope, parameter.pattern, [], note && { note, scope }, fallback);
 }
 
 /** Each name of a parameter is a thing of its own: of a field that is renamed, by either name. */
-function enterPattern(m: Machine, scope: Scope, pattern: Pattern, others: readonly string[], fallback?: () => Value): void {
+function enterPattern(m: Machine, scope: Scope, pattern: Pattern, others: readonly string[], typed?: Typed, fallback?: () => Value): void {
   switch (pattern.kind) {
     case 'name': {
       const place = m.place(scope, pattern.span);
       const aliases = others.filter((o) => o !== pattern.name);
-      declare(m, scope, pattern.name, genericAt(m, pattern.name, place, { aliases, ...(fallback ? { fallback } : {}) }));
+      declare(m, scope, pattern.name, genericAt(m, pattern.name, place, { aliases, ...typeFacts(m, typed), ...(fallback ? { fallback } : {}) }));
       return;
     }
     case 'list':
-      for (const item of pattern.items) if (item) enterPattern(m, scope, item.pattern, []);
+      for (const item of pattern.items) if (item) enterPattern(m, scope, item.pattern, [], partOf(typed, typed?.note.item));
       return;
     case 'record':
-      for (const field of pattern.fields) enterPattern(m, scope, field.item.pattern, [field.name]);
+      for (const field of pattern.fields) enterPattern(m, scope, field.item.pattern, [field.name], partOf(typed, typed?.note.member?.(field.name)));
       if (pattern.rest) enterPattern(m, scope, pattern.rest, []);
       return;
     default:
       return;
   }
+}
+
+function partOf(typed: Typed | undefined, note: TypeNote | undefined): Typed | undefined {
+  return typed && note && { note, scope: typed.scope };
 }
 
 /** The scopes of the functions around one, with generic arguments of their own. */

@@ -1,7 +1,8 @@
 import type { Place } from '../text/span';
 import { assign } from './assignment';
 import { evaluateCall, invoke } from './calls';
-import { classInfo, findMember } from './classes';
+import { findMember } from './class-members';
+import { classInfo } from './classes';
 import { comprehend } from './comprehensions';
 import { conditionOf, isOpenFlag, isThing, settle, truthOf } from './conditions';
 import type { Expression, Field } from './form';
@@ -47,7 +48,8 @@ function placed(m: Machine, e: Expression, place: Place, value: Value): Value {
   m.note(place, value.expr);
   const { tag } = m.request;
   const expr = tag && !m.quiet ? tag(place, e, value.expr) : value.expr;
-  return { kind: 'scalar', expr, place: m.keepPlaces ? value.place : place };
+  const clip = value.clip && expr === value.expr ? { clip: value.clip } : {};
+  return { kind: 'scalar', expr, place: m.keepPlaces ? value.place : place, ...clip };
 }
 
 function evaluateInside(m: Machine, scope: Scope, e: Expression, place: Place): Value {
@@ -346,7 +348,7 @@ function joinFields(m: Machine, parts: readonly Part[], from: number, place: Pla
 
 function isOutside(m: Machine, value: Value): boolean {
   const data = dataOf(m, value);
-  return data?.kind === 'generic' && !data.generic.info;
+  return data?.kind === 'generic';
 }
 
 /**
@@ -375,7 +377,9 @@ function joinOutside(m: Machine, parts: readonly Part[], at: number, place: Plac
       if (problem) return problem;
     }
   }
-  return m.object({ kind: 'generic', generic: data.generic, copyOf: source, members });
+  // Methods and getters of a class are not spread.
+  const { info, ...plain } = data.generic;
+  return m.object({ kind: 'generic', generic: info ? plain : data.generic, copyOf: source, members });
 }
 
 function spreadInto(m: Machine, members: Map<string, Value>, value: Value, place: Place): Value | undefined {

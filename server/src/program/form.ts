@@ -136,6 +136,16 @@ export interface Parameter extends PatternItem {
   readonly restNamed?: boolean;
   /** The class its type names, where the source says one. */
   readonly type?: Expression;
+  readonly note?: TypeNote;
+}
+
+/** What a type in the source says of a value, as far as classes of the project are in it. */
+export interface TypeNote {
+  /** The class it names. */
+  readonly class?: Expression;
+  /** Of each item of a list. */
+  readonly item?: TypeNote;
+  readonly member?: (name: string) => TypeNote | undefined;
 }
 
 export interface FunctionNode {
@@ -174,12 +184,13 @@ export interface Member {
   /** `readonly`, `final`, `const`: nothing changes it after construction. */
   readonly isConstant?: boolean;
   readonly value?: Expression;
+  readonly note?: TypeNote;
   readonly node?: FunctionNode;
   readonly span: Span;
 }
 
 export type Statement =
-  | { readonly kind: 'declare'; readonly mutable: boolean; readonly scope: 'block' | 'function'; readonly target: Pattern; readonly value?: Expression; readonly span: Span }
+  | { readonly kind: 'declare'; readonly mutable: boolean; readonly scope: 'block' | 'function'; readonly target: Pattern; readonly value?: Expression; readonly note?: TypeNote; readonly span: Span }
   | { readonly kind: 'expression'; readonly value: Expression; readonly span: Span }
   | { readonly kind: 'function'; readonly node: FunctionNode; readonly span: Span }
   | { readonly kind: 'class'; readonly node: ClassNode; readonly span: Span }

@@ -10,11 +10,17 @@ import type { Expression } from './form';
 import { readVariable } from './variables';
 import { isData, type Content, type Value } from './values';
 
+/** Where a pass begins: the place in the source, and why all that is known is one pass, in words that begin a sentence. */
+export interface PassStart {
+  readonly place: Place;
+  readonly origin?: string;
+}
+
 /**
  * One pass of a loop whose number of passes is not known (or does not matter): what the body writes starts from a generic
  * value, the one its name means.
  */
-export function genericPass(m: Machine, scope: Scope, place: Place, run: () => Outcome): Outcome {
+export function genericPass(m: Machine, scope: Scope, start: PassStart, run: () => Outcome): Outcome {
   const base = m.store;
   const written = dryRun(m, base, run);
   const variables = variablesByLocation(scope);
@@ -24,8 +30,8 @@ export function genericPass(m: Machine, scope: Scope, place: Place, run: () => O
     if (!before || location === DEAD) continue;
     if (!isData(before)) {
       const variable = variables.get(location);
-      if (variable) m.store.set(location, entryValue(m, variable, before, place));
-    } else openMembers(m, location, written.get(location)!, names.get(location), place);
+      if (variable) m.store.set(location, entryValue(m, variable, before, start));
+    } else openMembers(m, location, written.get(location)!, names.get(location), start);
   }
   m.inGenericPass++;
   const outcome = run();
@@ -61,14 +67,14 @@ function namesOfObjects(m: Machine, variables: ReadonlyMap<number, Variable>): M
 }
 
 /** The generic value of a variable at the start of a pass. */
-function entryValue(m: Machine, variable: Variable, before: Value, place: Place): Value {
+function entryValue(m: Machine, variable: Variable, before: Value, { place, origin }: PassStart): Value {
   if (before.kind === 'function' || before.kind === 'class' || before.kind === 'library' || before.kind === 'module') return before;
-  const value = genericAt(m, variable.name, place, before.kind === 'object' ? { fallback: () => before } : {});
+  const value = genericAt(m, variable.name, place, { ...(origin === undefined ? {} : { origin }), ...(before.kind === 'object' ? { fallback: () => before } : {}) });
   if (!m.entries.has(variable.name)) m.entries.set(variable.name, value);
   return value;
 }
 
-function openMembers(m: Machine, id: number, after: Content, name: string | undefined, place: Place): void {
+function openMembers(m: Machine, id: number, after: Content, name: string | undefined, { place, origin }: PassStart): void {
   const data = m.store.data(id);
   if (!isData(after)) return;
   if (data.kind === 'generic' && after.kind === 'generic') {
@@ -78,7 +84,10 @@ function openMembers(m: Machine, id: number, after: Content, name: string | unde
   }
   const base = m.request.program.indexBase;
   const open = (key: string, before: Value | undefined): Value =>
-    genericAt(m, memberPath(name ?? 'list', key), place, before?.kind === 'object' ? { fallback: () => before } : {});
+    genericAt(m, memberPath(name ?? 'list', key), place, {
+      ...(origin === undefined ? {} : { origin }),
+      ...(before?.kind === 'object' ? { fallback: () => before } : {}),
+    });
   if (data.kind === 'list' && after.kind === 'list') {
     const read = name === undefined ? undefined : m.naming.read([name], place);
     const own = m.store.writable(id);

@@ -1,6 +1,7 @@
 import { childNames } from './children';
 import type { Machine } from './machine';
 import { lastName } from './paths';
+import { typeFacts, typeOfMember } from './type-notes';
 import type { Meaning } from './reading';
 import { isUnread, unread, type Generic, type GenericData, type ObjectValue, type Scalar, type Value } from './values';
 import type { Expr } from '../expression/node';
@@ -13,7 +14,7 @@ export function genericAt(
   m: Machine,
   path: string,
   place: Place,
-  more: { aliases?: readonly string[]; info?: Generic['info']; fallback?: Generic['fallback']; constant?: boolean } = {},
+  more: { aliases?: readonly string[]; info?: Generic['info']; typed?: Generic['typed']; fallback?: Generic['fallback']; constant?: boolean; origin?: string } = {},
 ): ObjectValue {
   const { aliases = [], ...rest } = more;
   const generic: Generic = { path, aliases: [...aliases], place, ...rest };
@@ -36,10 +37,27 @@ export function childOf(m: Machine, id: number, generic: Generic, key: string, p
   if (!child) {
     const [path, ...aliases] = childNames(generic, key);
     const inherited = fallback ?? fallbackMember(m, generic, key);
-    child = genericAt(m, path!, place, { aliases, ...(inherited ? { fallback: inherited } : {}), ...(constant ? { constant } : {}) });
+    const from = { ...typeFacts(m, typeOfMember(generic, key)), ...(generic.origin === undefined ? {} : { origin: generic.origin }) };
+    child = genericAt(m, path!, place, { aliases, ...from, ...(inherited ? { fallback: inherited } : {}), ...(constant ? { constant } : {}) });
     children.set(k, child);
   }
   return child;
+}
+
+/** A copy with the same members: what is in them is shared. */
+export function copyOfGeneric(m: Machine, id: number, data: GenericData): ObjectValue {
+  return m.object({ kind: 'generic', generic: data.generic, copyOf: data.copyOf ?? id, members: new Map(data.members) });
+}
+
+/** True where something was written to a member of a member of a thing from outside. */
+export function hasWritesBelow(m: Machine, id: number): boolean {
+  const prefix = `${id} `;
+  for (const [key, child] of memo(m).children) {
+    if (!key.startsWith(prefix)) continue;
+    const data = m.store.data(child.id);
+    if (data.kind === 'generic' && (data.members.size > 0 || hasWritesBelow(m, child.id))) return true;
+  }
+  return false;
 }
 
 function fallbackMember(m: Machine, generic: Generic, key: string): Generic['fallback'] {
@@ -79,10 +97,25 @@ export function numberOf(m: Machine, id: number, data: GenericData): Scalar | Re
     return found;
   }
   if (m.counting > 0) {
-    const v = fallbackOf(m, generic);
-    if (v?.kind === 'scalar') return v;
+    const v = countedFallback(m, generic);
+    if (v) {
+      // Once it has counted passes or places it is that number throughout.
+      if (!m.quiet) numbers.set(key, v);
+      return v;
+    }
   }
   return { kind: 'scalar', expr: freeOf(m, generic), place: generic.place };
+}
+
+/** The number that a thing starts from, through the fields and defaults it was handed on by. */
+function countedFallback(m: Machine, generic: Generic): Scalar | undefined {
+  let v = fallbackOf(m, generic);
+  for (let k = 0; v && k < 8; k++) {
+    if (v.kind === 'scalar') return v;
+    const data = v.kind === 'object' ? m.store.data(v.id) : undefined;
+    v = data?.kind === 'generic' ? fallbackOf(m, data.generic) : undefined;
+  }
+  return undefined;
 }
 
 /** What `reads`, its name or its initial value say a thing is; undefined where nothing does. */
@@ -146,9 +179,10 @@ export function fieldValue(m: Machine, key: string, value: Value, place: Place):
 
 function freeOf(m: Machine, generic: Generic) {
   const ambiguous = m.naming.isForcedFree(generic.path);
+  const from = generic.origin === undefined ? '' : `${generic.origin}, and `;
   const reason = ambiguous
     ? `\`${generic.path}\` is ambiguous: another name agrees with the same symbol; say what each means with \`reads\``
-    : `nothing says what \`${generic.path}\` means: declare it, or bind it with \`reads ${generic.path} = ...\``;
+    : `${from}nothing says what \`${generic.path}\` means: declare it, or bind it with \`reads ${generic.path} = ...\``;
   return m.freeSymbol(generic.path, reason, generic.place);
 }
 

@@ -1,5 +1,6 @@
 import type { Expr } from '../expression/node';
 import type { Graph } from '../expression/graph';
+import type { Program } from './form';
 
 /**
  * A language's numeric library, as a table of meanings. A language folder fills one in; the executor looks names up in it
@@ -18,6 +19,11 @@ export interface Library {
   readonly properties?: ReadonlyMap<string, string>;
   /** Modules whose import gives the names of this table: `import { sin } from 'math'` -> prefix `Math.` */
   readonly modules: ReadonlyMap<string, string>;
+  /**
+   * Names that stand without a prefix where the program has none of its own by that name: `sin` of a drawing library's
+   * global style -> `Math.sin`, or the reason why it is not known what it gives.
+   */
+  bare?(name: string, program: Program): string | { readonly unread: string } | undefined;
   /** Calls that can be left out when their value is not used: `console.log`. */
   readonly ignorable: ReadonlySet<string>;
 }

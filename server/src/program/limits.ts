@@ -1,4 +1,5 @@
 import type { Expr } from '../expression/node';
+import type { Rational } from '../expression/rational';
 import type { Expression, Statement } from './form';
 import type { Machine } from './machine';
 import { scalarOf } from './numbers';
@@ -29,12 +30,33 @@ function isBound(e: Expr): boolean {
 /** The clipped argument of `min(max(x, low), high)` in any order, or the expression itself. */
 export function unclip(e: Expr): Expr {
   let x = e;
-  for (let k = 0; k < 4 && (x.op === 'min' || x.op === 'max'); k++) {
+  const bounds: { min?: Expr; max?: Expr } = {};
+  while (x.op === 'min' || x.op === 'max') {
     const inner = x.args.filter((a) => !isBound(a));
+    const bound = x.args.filter(isBound);
     if (inner.length !== 1) break;
+    // Two bounds on one side are no clip: `min(-limit, min(limit, u))` never gives u where u is above -limit.
+    if (bound.length > 1 || (bound.length === 1 && bounds[x.op])) return e;
+    if (bound[0]) bounds[x.op] = bound[0];
     x = inner[0]!;
   }
-  return x;
+  return bounds.min && bounds.max && areSwapped(bounds.max, bounds.min) ? e : x;
+}
+
+/** True for a lower bound that is above the upper one as far as one can see: nothing passes between them. */
+export function areSwapped(low: Expr, high: Expr): boolean {
+  const [l, h] = [factorOf(low), factorOf(high)];
+  if (low.op === 'number' && high.op === 'number') return l.factor > h.factor;
+  return l.rest === h.rest && l.factor > 0 && h.factor < 0;
+}
+
+/** -2*a as -2 and what remains. */
+function factorOf(e: Expr): { factor: number; rest: string } {
+  if (e.op === 'number') return { factor: (e.data as Rational).toNumber(), rest: '' };
+  if (e.op !== 'product') return { factor: 1, rest: String(e.id) };
+  const numbers = e.args.filter((a) => a.op === 'number');
+  const rest = e.args.filter((a) => a.op !== 'number').map((a) => a.id);
+  return { factor: numbers.reduce((p, a) => p * (a.data as Rational).toNumber(), 1), rest: rest.sort().join(' ') };
 }
 
 /** The value that passes where a conditional expression clips: `x > hi ? hi : x`. */

@@ -3,7 +3,7 @@ import { conditionOf } from './conditions';
 import { evaluate } from './expressions';
 import type { Pattern, Statement } from './form';
 import { genericAt } from './generics';
-import { genericPass, startsFromLiteralState } from './generic-pass';
+import { genericPass, startsFromLiteralState, type PassStart } from './generic-pass';
 import { isWrap } from './limits';
 import type { Machine } from './machine';
 import { apply } from './merging';
@@ -13,6 +13,7 @@ import { pathOf } from './paths';
 import { Scope } from './scope';
 import { assignTo } from './assignment';
 import { execute, join, split, type Exit, type Outcome } from './statements';
+import { typeFacts } from './type-notes';
 import { declare, readVariable, write } from './variables';
 import { NOTHING, isUnread, unread, type Value } from './values';
 
@@ -37,7 +38,7 @@ export function loop(m: Machine, scope: Scope, s: LoopStatement, place: Place, l
   if (unrolled === 'unknown') {
     m.trace.length = Math.min(m.trace.length, traced);
     m.store = base;
-    return pass(m, outer, s, place, label);
+    return pass(m, outer, s, place, label, unknownEnd(m, outer, s, place));
   }
   if (unrolled.exits.length === 0 && unrolled.normal) {
     const changes = m.store.changesSince(base);
@@ -101,7 +102,13 @@ function freshCopy(m: Machine, outer: Scope, from: Scope): Scope {
   return scope;
 }
 
-function pass(m: Machine, outer: Scope, s: LoopStatement, place: Place, label: string | undefined): Outcome {
+/** Where and why the number of passes is not known. */
+function unknownEnd(m: Machine, scope: Scope, s: LoopStatement, place: Place): PassStart {
+  if (!s.condition) return { place, origin: 'the end of this loop depends on data' };
+  return { place: m.place(scope, s.condition.span), origin: 'how often this loop runs depends on data' };
+}
+
+function pass(m: Machine, outer: Scope, s: LoopStatement, place: Place, label: string | undefined, start: PassStart = { place }): Outcome {
   const run = (): Outcome => {
     const base = m.store;
     const ways: Exit[] = [];
@@ -111,7 +118,7 @@ function pass(m: Machine, outer: Scope, s: LoopStatement, place: Place, label: s
     if (outcome.normal) execute(m, new Scope(outer, outer.frame), s.update);
     return outcome;
   };
-  return genericPass(m, outer, place, run);
+  return genericPass(m, outer, start, run);
 }
 
 export function forEach(m: Machine, scope: Scope, s: ForEach, place: Place, label?: string): Outcome {
@@ -120,7 +127,8 @@ export function forEach(m: Machine, scope: Scope, s: ForEach, place: Place, labe
   const bindTo = (inner: Scope, value: Value): void => bindTarget(m, inner, s, value);
   if (!items || items.length > MOST_PASSES || startsFromLiteralState(m, scope, [s.body])) {
     const one = genericItem(m, scope, s, over);
-    return genericPass(m, scope, place, () => {
+    const start = items ? { place } : { place: m.place(scope, s.over.span), origin: 'this loop runs over a list whose length is not known' };
+    return genericPass(m, scope, start, () => {
       const base = m.store;
       const ways: Exit[] = [];
       const inner = new Scope(scope, scope.frame);
@@ -187,7 +195,9 @@ function genericItem(m: Machine, scope: Scope, s: ForEach, over: Value): Value {
   const path = data?.kind === 'generic' ? `${data.generic.path}[each]` : `${pathOf(s.over) ?? 'list'}[each]`;
   if (name === undefined && s.target.kind !== 'record' && s.target.kind !== 'list') return NOTHING;
   if (!data) return unread('a loop over something that is no list', at);
-  return genericAt(m, path, at, { aliases: name === undefined ? [] : [name] });
+  const { typed } = data?.kind === 'generic' ? data.generic : { typed: undefined };
+  const item = typed?.note.item && { note: typed.note.item, scope: typed.scope };
+  return genericAt(m, path, at, { aliases: name === undefined ? [] : [name], ...typeFacts(m, item) });
 }
 
 function nameOf(p: Pattern): string | undefined {

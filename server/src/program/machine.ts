@@ -43,6 +43,8 @@ export class Machine {
   quiet = 0;
   /** Above zero where a count is wanted: fields that hold a literal give it. */
   counting = 0;
+  /** Set at the start of a reading, so that what is below the evaluator can ask for a value. */
+  evaluate: (scope: Scope, e: Expression) => Value = () => unread('an expression', undefined);
   /** Runs a function of the file on generic arguments, from the state at the subject's entry. */
   runSeparately: (f: FunctionValue) => Value = () => unread('a call', undefined);
   /** Set while an output is read, so that values keep the place that made them. */

@@ -1,7 +1,8 @@
 import type { Place } from '../text/span';
 import { invoke } from './calls';
 import { isChoiceOfNumbers } from './conditions';
-import { findMember, instanceField, staticMember } from './classes';
+import { findMember } from './class-members';
+import { instanceField, staticMember } from './classes';
 import { childOf, fieldValue } from './generics';
 import { runIntrinsic } from './intrinsics/table';
 import type { Machine } from './machine';
@@ -127,9 +128,9 @@ function genericMember(m: Machine, module: Module, object: ObjectValue, data: Ge
     if (found && found.kind !== 'unread') return found;
     if (found && findMember(generic.info, key) !== 'unknown') return found;
     const field = instanceField(m, generic.info, object, key);
-    return field.function ?? childOf(m, object.id, generic, key, place, field.fallback, field.constant);
+    return field.function ?? childOf(m, data.copyOf ?? object.id, generic, key, place, field.fallback, field.constant);
   }
-  return childOf(m, object.id, generic, key, place, undefined, generic.constant && !m.isAssignedMember(key));
+  return childOf(m, data.copyOf ?? object.id, generic, key, place, undefined, generic.constant && !m.isAssignedMember(key));
 }
 
 /** A key that is known: text, or a whole number as the source counts. */

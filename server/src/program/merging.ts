@@ -91,7 +91,7 @@ function mergeData(m: Machine, condition: Expr, a: Data, b: Data, id: number, pl
     return { ...a, members };
   }
   if (a.kind === 'generic' && b.kind === 'generic') {
-    const members = mergeMembers(m, condition, a.members, b.members, (key) => childOf(m, id, a.generic, key, place), place);
+    const members = mergeMembers(m, condition, a.members, b.members, (key) => childOf(m, a.copyOf ?? id, a.generic, key, place), place);
     return { ...a, members };
   }
   if (a.kind === 'broken') return a;

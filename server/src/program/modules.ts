@@ -1,7 +1,7 @@
 import type { Place } from '../text/span';
 import { classInfo } from './classes';
 import { evaluate } from './expressions';
-import type { Expression, Program, Statement } from './form';
+import type { Expression, Program, Statement, TypeNote } from './form';
 import { genericAt } from './generics';
 import type { Library } from './library';
 import type { Machine } from './machine';
@@ -10,6 +10,7 @@ import { bindPattern } from './patterns';
 import { assignments, patternNames, writtenThings } from './scan';
 import { Scope, type Frame, type Module } from './scope';
 import { enumValue } from './statements';
+import { typeFacts } from './type-notes';
 import { arrivalOf, arrive, readVariable, type Arrival } from './variables';
 import { unread, type Value } from './values';
 import type { Variable } from './scope';
@@ -87,7 +88,7 @@ function addVariables(m: Machine, module: Module, scope: Scope, s: Statement & {
   if (s.target.kind === 'name') {
     const { name } = s.target;
     if (scope.variables.has(name) && !s.value) return;
-    lazy(m, scope, name, () => topLevelValue(m, module, scope, name, s.value, s.mutable, m.place(scope, s.target.span)));
+    lazy(m, scope, name, () => topLevelValue(m, module, scope, name, s.value, s.mutable, m.place(scope, s.target.span), s.note));
     return;
   }
   // Taken apart when one of its names is first wanted.
@@ -114,7 +115,7 @@ function arrival(scope: Scope, name: string, place: Place): Arrival {
  * A top-level variable at a function's entry: a constant has its value; one that functions change is state, known by its
  * name only, of the shape of its first value.
  */
-function topLevelValue(m: Machine, module: Module, scope: Scope, name: string, value: Expression | undefined, mutable: boolean, at?: Place): Value {
+function topLevelValue(m: Machine, module: Module, scope: Scope, name: string, value: Expression | undefined, mutable: boolean, at?: Place, note?: TypeNote): Value {
   const place = value ? m.place(scope, value.span) : (at ?? m.place(scope, { start: 0, end: 0 }));
   const initial = (): Value | undefined => (value ? evaluate(m, scope, value) : undefined);
   const changes = mutable && assignments(module.program).assigned.has(name);
@@ -129,7 +130,7 @@ function topLevelValue(m: Machine, module: Module, scope: Scope, name: string, v
     }
   }
   let first: Value | undefined;
-  return genericAt(m, name, place, { fallback: () => (first ??= initial()) });
+  return genericAt(m, name, place, { ...typeFacts(m, note && { note, scope }), fallback: () => (first ??= initial()) });
 }
 
 /** True where members or elements of a top-level thing are written somewhere. */
@@ -267,6 +268,9 @@ export function unknownName(m: Machine, scope: Scope, name: string, place: Place
   const brought = module.imports.length > 0 ? broughtIn(m, module, name) : undefined;
   if (brought) return brought;
   if (m.libraryNames(module.library).has(name)) return libraryMember(m, module, name, place);
+  const bare = module.library.bare?.(name, module.program);
+  if (typeof bare === 'string') return libraryMember(m, module, bare, place);
+  if (bare) return unread(bare.unread, place);
   let found = m.globals.get(name);
   if (!found) m.globals.set(name, (found = genericAt(m, name, place)));
   return found;

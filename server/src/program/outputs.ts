@@ -197,7 +197,7 @@ function writtenItems(m: Machine, id: number, data: GenericData): Value[] {
   if (last > 10_000) return [...data.members.values()];
   return Array.from({ length: last - base + 1 }, (_, k) => {
     const key = String(k + base);
-    return data.members.get(key) ?? childOf(m, id, data.generic, key, data.generic.place);
+    return data.members.get(key) ?? childOf(m, data.copyOf ?? id, data.generic, key, data.generic.place);
   });
 }
 

@@ -72,6 +72,7 @@ function readOnce(m: Machine): OutputValue[] {
     return request.outputs.map(() => ({ kind: 'unread', reason, place: subjectPlace(request) }));
   }
   for (const o of request.outputs) if (o.expression.kind === 'name') m.claimedNames.add(o.expression.name);
+  m.evaluate = (scope, e) => evaluate(m, scope, e);
   const module = loadModule(m, request.file, request.program, request.library);
   m.naming.settle((e) => constantIndex(m, module, e));
   const ended = request.subject.kind === 'function' ? runFunction(m, module) : runTop(m, module);

@@ -11,6 +11,7 @@ import { apply, mergeEndings, mergePair, spoilWritten, type Ending } from './mer
 import { bindPattern } from './patterns';
 import { Scope } from './scope';
 import type { Store } from './store';
+import { annotate } from './type-notes';
 import { arriveAt, declare, write } from './variables';
 import { NOTHING, isUnread, unread, type Unread, type Value } from './values';
 
@@ -139,6 +140,7 @@ function executeDeclare(m: Machine, scope: Scope, s: Statement & { kind: 'declar
     return;
   }
   const value = evaluate(m, scope, s.value);
+  if (s.note && s.target.kind === 'name') annotate(m, value, { note: s.note, scope });
   bindPattern(m, scope, s.target, value, (_, pattern, v) => {
     if (pattern.kind !== 'name') return;
     const place = s.target.kind === 'name' ? m.place(scope, s.value!.span) : m.place(scope, pattern.span);

@@ -2,6 +2,7 @@ import type { Expr } from '../expression/node';
 import type { Place } from '../text/span';
 import type { FunctionNode } from './form';
 import type { ClassInfo, Module, Scope } from './scope';
+import type { Typed } from './type-notes';
 
 /**
  * What an expression of the code can be. Values are immutable; whatever can change (variables, lists, records, generic
@@ -30,6 +31,15 @@ export interface Scalar {
   readonly kind: 'scalar';
   readonly expr: Expr;
   readonly place?: Place;
+  /** Within limits: the clip that was taken out to get here. */
+  readonly clip?: Clip;
+}
+
+/** The bounds of a clip, and the clip as written. */
+export interface Clip {
+  readonly min?: Expr;
+  readonly max?: Expr;
+  readonly whole: Expr;
 }
 
 export interface Condition {
@@ -112,6 +122,8 @@ export interface RecordData {
 export interface GenericData {
   readonly kind: 'generic';
   readonly generic: Generic;
+  /** The thing it is a copy of, whose members of its own it shares. */
+  readonly copyOf?: number;
   readonly members: Map<string, Value>;
 }
 
@@ -122,10 +134,14 @@ export interface Generic {
   readonly aliases: string[];
   readonly place: Place;
   readonly info?: ClassInfo;
+  /** What its declared type says. */
+  readonly typed?: Typed;
   /** Its value where neither `reads` nor its name gives one: a field's initialiser, say. */
   readonly fallback?: () => Value | undefined;
   /** True where nothing changes it, so that a literal initial value is its value. */
   readonly constant?: boolean;
+  /** Where it comes from, in words that begin a sentence, if that is why nothing says what it means. */
+  readonly origin?: string;
   /** True once it was looked at whether it is a list. */
   structured?: boolean;
 }

@@ -3,6 +3,7 @@ import type { ClassNode, Expression, FunctionNode, Member } from '../../program/
 import { type Context, type Name, hasModifier, nameOf, propertyName, spanOf } from './context';
 import { ANONYMOUS } from './functions';
 import { valueNamed } from './naming';
+import { typeNote } from './types';
 
 const K = ts.SyntaxKind;
 
@@ -35,7 +36,8 @@ function member(c: Context, node: ts.ClassElement): Member | undefined {
     const label = { text: memberName(c, node.name), span: spanOf(c, node.name) };
     const value = node.initializer ? { value: valueNamed(c, node.initializer, label) } : {};
     const constant = hasModifier(node, K.ReadonlyKeyword) ? { isConstant: true } : {};
-    return { kind: 'field', name: label.text, isStatic, ...constant, ...value, span };
+    const note = typeNote(c, node.type);
+    return { kind: 'field', name: label.text, isStatic, ...constant, ...value, ...(note ? { note } : {}), span };
   }
   if (ts.isMethodDeclaration(node) || ts.isGetAccessorDeclaration(node) || ts.isSetAccessorDeclaration(node)) {
     if (!node.body) return undefined;

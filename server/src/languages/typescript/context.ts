@@ -22,6 +22,8 @@ export interface Context {
   /** Names under `exports.` or `module.exports.` that the file assigns at its top. */
   readonly exported: Set<string>;
 
+  /** Interfaces and type aliases of the file's top level. */
+  typesByName(): ReadonlyMap<string, ts.InterfaceDeclaration | ts.TypeAliasDeclaration>;
   expression(node: ts.Expression): Expression;
   statements(nodes: readonly ts.Statement[]): Statement[];
   /** A single statement as a list: blocks are opened, declarations of several names become several statements. */

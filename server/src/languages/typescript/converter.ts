@@ -1,7 +1,7 @@
-import type ts from 'typescript';
+import ts from 'typescript';
 import type { ClassNode, Expression, FunctionNode, Pattern, Statement } from '../../program/form';
 import { classNode } from './classes';
-import type { Context, FunctionSyntax, Name } from './context';
+import { nameText, type Context, type FunctionSyntax, type Name } from './context';
 import { expression } from './expressions';
 import { functionNode } from './functions';
 import { binding, target } from './patterns';
@@ -14,6 +14,7 @@ export class Converter implements Context {
   readonly owners = new WeakMap<ts.Node, ClassNode>();
   readonly hasPrototypes: boolean;
   base: string | undefined = undefined;
+  private types: Map<string, ts.InterfaceDeclaration | ts.TypeAliasDeclaration> | undefined;
 
   constructor(
     readonly source: ts.SourceFile,
@@ -21,6 +22,16 @@ export class Converter implements Context {
     readonly errorsAt: readonly number[],
   ) {
     this.hasPrototypes = source.text.includes('.prototype');
+  }
+
+  typesByName(): ReadonlyMap<string, ts.InterfaceDeclaration | ts.TypeAliasDeclaration> {
+    if (!this.types) {
+      this.types = new Map();
+      for (const s of this.source.statements) {
+        if (ts.isInterfaceDeclaration(s) || ts.isTypeAliasDeclaration(s)) this.types.set(nameText(s.name.text), s);
+      }
+    }
+    return this.types;
   }
 
   expression(node: ts.Expression): Expression {

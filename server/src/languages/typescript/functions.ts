@@ -2,6 +2,7 @@ import ts from 'typescript';
 import type { FunctionNode, Parameter, Statement } from '../../program/form';
 import { type Context, type FunctionSyntax, type Name, hasModifier, nameOf, propertyName, spanOf } from './context';
 import { valueNamed } from './naming';
+import { typeNote } from './types';
 
 const K = ts.SyntaxKind;
 
@@ -71,8 +72,10 @@ function isThisParameter(node: ts.ParameterDeclaration): boolean {
 function parameter(c: Context, node: ts.ParameterDeclaration): Parameter {
   const pattern = c.binding(node.name);
   const label = pattern.kind === 'name' ? { text: pattern.name, span: pattern.span } : undefined;
+  const note = typeNote(c, node.type);
   return {
     pattern,
+    ...(note ? { note } : {}),
     ...(node.initializer ? { initial: valueNamed(c, node.initializer, label) } : {}),
     ...(node.dotDotDotToken ? { rest: true } : {}),
     ...(isFieldParameter(node) ? { field: true } : {}),

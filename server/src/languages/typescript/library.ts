@@ -1,14 +1,15 @@
 import type { Library } from '../../program/library';
 import { PACKAGE_CONSTANTS, PACKAGE_INTRINSICS, PACKAGE_MODULES, PACKAGE_SCALARS } from './library-packages';
 import { CONSTANTS, SCALARS } from './library-scalars';
+import { SKETCH_CONSTANTS, SKETCH_INTRINSICS, SKETCH_SCALARS, bareName } from './library-sketch';
 
 /**
  * What the standard library of JavaScript means. Names are looked up by dotted path after the names of the program, so
  * `const { sin } = Math`, `const M = Math` and `const s = Math.sin` all come back to these entries.
  */
 export const typescriptLibrary: Library = {
-  scalars: new Map([...SCALARS, ...PACKAGE_SCALARS]),
-  constants: new Map([...CONSTANTS, ...PACKAGE_CONSTANTS]),
+  scalars: new Map([...SCALARS, ...PACKAGE_SCALARS, ...SKETCH_SCALARS]),
+  constants: new Map([...CONSTANTS, ...PACKAGE_CONSTANTS, ...SKETCH_CONSTANTS]),
   intrinsics: new Map([
     ['Array', 'list-new'],
     ['Array.from', 'list-from'],
@@ -30,6 +31,7 @@ export const typescriptLibrary: Library = {
     ['Math.min', 'number-min'],
     ['Math.max', 'number-max'],
     ...PACKAGE_INTRINSICS,
+    ...SKETCH_INTRINSICS,
   ]),
   methods: new Map([
     ...listMethods(),
@@ -37,6 +39,7 @@ export const typescriptLibrary: Library = {
     ['scalar.valueOf', 'identity'],
   ]),
   modules: new Map(PACKAGE_MODULES),
+  bare: bareName,
   ignorable: new Set([
     ...'log info warn error debug trace assert table group groupEnd time timeEnd timeLog count'.split(' ').map((n) => `console.${n}`),
     'alert',

@@ -8,6 +8,7 @@ import { namespaceValue } from './namespaces';
 import { valueNamed } from './naming';
 import { boundNames } from './patterns';
 import { prototypeClasses } from './prototype-classes';
+import { typeNote } from './types';
 
 const K = ts.SyntaxKind;
 
@@ -93,7 +94,8 @@ export function declarations(c: Context, node: ts.VariableDeclarationList, span:
         return { kind: 'declare', mutable, scope, target: name, value: opaque(target.reason, target.span), span: own };
       });
     }
-    const made: Statement = { kind: 'declare', mutable, scope, target, ...value, span: own };
+    const note = typeNote(c, d.type);
+    const made: Statement = { kind: 'declare', mutable, scope, target, ...value, ...(note ? { note } : {}), span: own };
     return exported ? [...exported, made] : [made];
   });
 }

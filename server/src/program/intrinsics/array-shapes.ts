@@ -1,3 +1,4 @@
+import { genericAt } from '../generics';
 import type { Machine } from '../machine';
 import { depthOf } from '../operators';
 import { countOf, itemsOf } from '../numbers';
@@ -110,6 +111,19 @@ function squeeze(m: Machine, v: Value): Value {
   return items.length === 1 ? squeeze(m, items[0]!) : m.list(items.map((x) => squeeze(m, x)), true);
 }
 
+/** What is written to a copy of a thing from outside does not show in the thing itself. */
+function copyOfOutside(m: Machine, v: Value): Value {
+  const data = v.kind === 'object' ? m.store.data(v.id) : undefined;
+  if (data?.kind !== 'generic') return v;
+  const { path, aliases, place, ...more } = data.generic;
+  const made = genericAt(m, path, place, { aliases, ...more });
+  if (data.members.size > 0) {
+    const own = m.store.writable(made.id);
+    if (own.kind === 'generic') for (const [k, x] of data.members) own.members.set(k, x);
+  }
+  return made;
+}
+
 export const ARRAY_SHAPES: IntrinsicTable = {
   'array-zeros': constant(zero),
   'array-ones': constant(one),
@@ -197,7 +211,7 @@ export const ARRAY_SHAPES: IntrinsicTable = {
       const items = itemsOf(m, x);
       return items ? m.list(items.map(copy), true) : x;
     };
-    return copy(v);
+    return itemsOf(m, v) ? copy(v) : copyOfOutside(m, v);
   },
   'array-item': (m, call) => {
     const v = given(call, 0) ?? missing(call);

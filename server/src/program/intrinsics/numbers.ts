@@ -1,6 +1,6 @@
 import type { Expr } from '../../expression/node';
 import { truthOf } from '../conditions';
-import { unclip } from '../limits';
+import { areSwapped, unclip } from '../limits';
 import type { Machine } from '../machine';
 import { itemsOf, numeric } from '../numbers';
 import { NOTHING, isUnread, unread, type Unread, type Value } from '../values';
@@ -35,8 +35,24 @@ function limited(op: 'min' | 'max') {
       if (isReason(exprs)) return exprs;
       if (exprs.length === 0) return unread(`the ${op} of nothing`, call.place);
       const e = m.graph.apply(op, exprs);
-      return m.scalar(m.request.withinLimits ? unclip(e) : e, call.place);
+      return m.request.withinLimits ? passed(m, call, op, args, exprs, e) : m.scalar(e, call.place);
     });
+}
+
+/**
+ * What a clip passes. A second bound on the same side, or bounds the wrong way round, are no clip: nothing passes them.
+ */
+function passed(m: Machine, call: Call, op: 'min' | 'max', args: readonly Value[], exprs: readonly Expr[], e: Expr): Value {
+  const inner = unclip(e);
+  const at = exprs.indexOf(inner);
+  if (inner === e || at < 0 || exprs.length !== 2) return m.scalar(inner, call.place);
+  const arg = args[at]!;
+  const before = arg.kind === 'scalar' ? arg.clip : undefined;
+  const bound = exprs[1 - at]!;
+  const bounds = { ...before, [op]: bound };
+  const whole = m.graph.apply(op, [before?.whole ?? inner, bound]);
+  if (before?.[op] || (bounds.min && bounds.max && areSwapped(bounds.max, bounds.min))) return m.scalar(whole, call.place);
+  return { kind: 'scalar', expr: inner, place: call.place, clip: { ...bounds, whole } };
 }
 
 export const NUMBERS: IntrinsicTable = {
@@ -49,7 +65,7 @@ export const NUMBERS: IntrinsicTable = {
       if (isReason(exprs)) return exprs;
       const [x, low, high] = exprs;
       if (!x || !low || !high) return unread('a clip without two bounds', call.place);
-      if (m.request.withinLimits) return m.scalar(x, call.place);
+      if (m.request.withinLimits && !areSwapped(low, high)) return m.scalar(x, call.place);
       return m.scalar(m.graph.apply('min', [m.graph.apply('max', [x, low]), high]), call.place);
     }),
   'number-hypot': (m, call) => {
