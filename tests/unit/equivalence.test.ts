@@ -27,4 +27,17 @@ describe('two declarations of one system', () => {
     expect(compare(cartesian, polar.replace('r^2*phi', 'r*phi'))).toBe('differ');
     expect(compare(cartesian, polar.replace('where x = r*cos(phi), y = r*sin(phi)', ''))).toBe('undecided');
   });
+
+  test('constraints against coordinates that meet them', () => {
+    const bound =
+      'coordinates x, y [m]\nparameters m, l, g > 0\npoint bob: mass m at (x, y)\ngravity (0, -g)\nconstraint x^2 + y^2 = l^2';
+    const free =
+      "coordinates th [rad]\nparameters m, l, g > 0\nwhere x = l*sin(th), y = -l*cos(th)\nT = 1/2*m*l^2*th'^2\nV = -m*g*l*cos(th)";
+    expect(compare(bound, free)).toBe('same');
+    expect(compare(bound, free.replace('V = -', 'V = '))).toBe('differ');
+    expect(compare(bound, free.replace('y = -l', 'y = -2*l'))).toBe('undecided');
+    expect(compare(bound, bound.replace('x^2 + y^2 = l^2', 'sqrt(x^2 + y^2) = l'))).toBe('same');
+    expect(compare(bound, bound.replace('x^2 + y^2 = l^2', 'x^2 + y^2 = 4*l^2'))).toBe('undecided');
+    expect(compare(bound, bound.replace('at (x, y)', 'at (x, 2*y)'))).toBe('differ');
+  });
 });

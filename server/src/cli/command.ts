@@ -3,7 +3,7 @@ import { version } from '@visviva/shared';
 import { readTextFile } from '../host/text-file';
 import { absolute } from '../host/paths';
 import { check, describe, type CheckOptions, type Outcome } from './check';
-import { derive, DERIVE_FORMS, type DeriveForm } from './derive';
+import { derive, deriveAgainst, DERIVE_FORMS, type DeriveForm } from './derive';
 import { explain } from './explain';
 import { UsageError, type Io, type Status } from './io';
 import { jsonReport } from './report/json';
@@ -80,8 +80,11 @@ function createProgram(io: Io, finish: (status: Status | undefined) => void): Co
     .argument('<file>')
     .addOption(new Option('--as <form>', 'how they are written').choices([...DERIVE_FORMS]).default('text'))
     .option('--system <name>', 'only this system')
-    .action(async (file: string, options: { as: DeriveForm; system?: string }) => {
-      finish(await derive(file, options.as, options.system, io));
+    .option('--against <file or name>', 'tell how they compare with those of another file, or with that system of the same file')
+    .addHelpText('after', '\nExit status with --against: 0 the same equations of motion, 1 others or not decided, 2 failure.')
+    .action(async (file: string, options: { as: DeriveForm; system?: string; against?: string }) => {
+      if (options.against !== undefined) finish(await deriveAgainst(file, options.against, options.system, io));
+      else finish(await derive(file, options.as, options.system, io));
     });
 
   program

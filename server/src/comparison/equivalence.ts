@@ -31,7 +31,6 @@ export function compareDeclarations(first: System, second: Block, budget = new B
   const other = buildSystem(second, g);
   for (const s of [first, other]) {
     if (s.blocked) return { kind: 'undecided', reason: `${s.name}: ${s.blocked.reason}` };
-    if (s.constraints.length > 0) return { kind: 'undecided', reason: `${s.name}: declarations with constraints are not compared` };
   }
   const moved = inCoordinatesOf(first, other);
   if ('reason' in moved) return { kind: 'undecided', reason: moved.reason };
@@ -44,11 +43,18 @@ export function compareDeclarations(first: System, second: Block, budget = new B
 
   const forces = b.system.Q.map((q, i) => ({ found: g.subtract(q, b.damping[i]!), expected: g.subtract(a.system.Q[i]!, a.damping[i]!) }));
   const sameForces = holds(equal(forces));
-  if (sameForces && holds(equal([{ found: b.system.L, expected: a.system.L }]))) return { kind: 'same' };
+  if (moved.system.constraints.length > 0 || other.constraints.length > 0) {
+    const bound = compareConstraints(a, b, (pairs, derived) => equal(pairs, derived));
+    if (bound) return bound;
+  }
+  // Constraints on velocities leave forces across them to the energies: there L counts off the constraints too.
+  const nonholonomic = a.system.constraints.some((c) => c.kind === 'velocity');
+  const wide = nonholonomic ? new Derived({ ...a.system, constraints: [] }) : a;
+  if (sameForces && holds(equal([{ found: b.system.L, expected: a.system.L }], wide))) return { kind: 'same' };
   const difference = g.subtract(b.system.L, a.system.L);
   const by = b.system.coordinates.flatMap((c) => [c.symbol, c.velocity]);
   const slopes = gradient(g, [difference], [g.one], by).map((found) => ({ found, expected: g.zero }));
-  if (sameForces && holds(equal(slopes))) return { kind: 'constant' };
+  if (sameForces && holds(equal(slopes, wide))) return { kind: 'constant' };
 
   // With accelerations as free as velocities, equal residuals mean equal equations.
   const free = new Map(b.system.coordinates.map((c): [Expr, Expr] => [
@@ -72,6 +78,31 @@ export function compareDeclarations(first: System, second: Block, budget = new B
   return { kind: 'undecided', reason: open?.verdict === 'unread' ? open.reason : 'no state decided it' };
 }
 
+/**
+ * Whether two systems in the same coordinates are bound to the same motions: each one's constraints hold wherever the
+ * other's do. Undefined where they are, and the energies decide.
+ */
+function compareConstraints(
+  a: Derived,
+  b: Derived,
+  equal: (pairs: readonly { found: Expr; expected: Expr }[], derived: Derived) => readonly Decision[],
+): Equivalence | undefined {
+  const counts = [a, b].map((d) => d.system.constraints.length);
+  if (counts[0] !== counts[1]) {
+    return { kind: 'undecided', reason: `one has ${counts[0]} constraints on these coordinates, the other ${counts[1]}` };
+  }
+  const g = a.system.graph;
+  for (const [bound, free] of [[a, b], [b, a]] as const) {
+    const conditions = [...free.system.constraints.map((c) => c.expr), ...free.velocityConstraints];
+    const met = equal(conditions.map((found) => ({ found, expected: g.zero })), bound);
+    if (met.every((d) => d.verdict === 'holds')) continue;
+    const open = met.find((d) => d.verdict === 'unread');
+    if (open?.verdict === 'unread') return { kind: 'undecided', reason: open.reason };
+    return { kind: 'undecided', reason: 'they are constrained to different motions, which are not compared any further' };
+  }
+  return undefined;
+}
+
 /** The first system rewritten in the coordinates of the second. */
 function inCoordinatesOf(first: System, other: System): { readonly system: System } | { readonly reason: string } {
   const g = first.graph;
@@ -92,7 +123,8 @@ function inCoordinatesOf(first: System, other: System): { readonly system: Syste
     // The same coordinates, perhaps in another order.
     const order = other.coordinates.map((c) => first.coordinates.findIndex((d) => d.symbol === c.symbol));
     if (order.includes(-1)) return { reason: `the coordinates of ${first.name} and ${other.name} have different names` };
-    return { system: { ...first, coordinates: other.coordinates, Q: order.map((i) => first.Q[i]!) } };
+    const constraints = first.constraints.map((c) => ({ ...c, gradient: order.map((i) => c.gradient[i]!) }));
+    return { system: { ...first, coordinates: other.coordinates, Q: order.map((i) => first.Q[i]!), constraints } };
   }
   for (const c of first.coordinates) {
     const value = replaced.get(c.symbol);
@@ -102,5 +134,31 @@ function inCoordinatesOf(first: System, other: System): { readonly system: Syste
   // Virtual work is the same in any coordinates.
   const positions = first.coordinates.map((c) => replaced.get(c.symbol) ?? c.symbol);
   const forces = gradient(g, positions, Q, other.coordinates.map((c) => c.symbol));
-  return { system: { ...first, L, D, T: undefined, V: undefined, Q: forces, coordinates: other.coordinates } };
+  const system: System = { ...first, L, D, T: undefined, V: undefined, Q: forces, coordinates: other.coordinates, constraints: [] };
+  if (first.constraints.length === 0) return { system };
+  return withoutMet(first, other, system, replaced);
+}
+
+/**
+ * Coordinates that meet the constraints by themselves need none: a holonomic constraint does no work in them
+ * (L. D. Landau, E. M. Lifshitz, Mechanics, section 38).
+ */
+function withoutMet(
+  first: System,
+  other: System,
+  system: System,
+  replaced: ReadonlyMap<Expr, Expr>,
+): { readonly system: System } | { readonly reason: string } {
+  const g = first.graph;
+  const moved = substitute(g, first.constraints.map((c) => c.expr), replaced);
+  const pairs = moved.map((found) => ({ found, expected: g.zero }));
+  const free = new Derived({ ...system, constraints: [] });
+  const met = decide({ derived: free, pairs, assumed: [], budget: new Budget(), placeOf: () => undefined });
+  const left = met.filter((d) => d.verdict !== 'holds').length;
+  if (left > 0) return { reason: `the coordinates of ${other.name} do not meet the constraints of ${first.name} by themselves` };
+  const n = first.coordinates.length - first.constraints.length;
+  if (n !== other.coordinates.length) {
+    return { reason: `${first.name} has ${n} degrees of freedom, ${other.name} ${other.coordinates.length} coordinates` };
+  }
+  return { system };
 }

@@ -1,8 +1,9 @@
 import type { Graph } from '../expression/graph';
 import type { Expr, SymbolData } from '../expression/node';
-import { normalForm, simplify, toExpr } from '../expression/normal-form';
-import { symbolsOf } from '../expression/reach';
+import { collected, normalForm, simplify, toExpr } from '../expression/normal-form';
+import { reachable, symbolsOf } from '../expression/reach';
 import type { Rational } from '../expression/rational';
+import { Tape } from '../expression/tape';
 import type { Derived } from './lagrange';
 import type { Coordinate } from './system';
 
@@ -15,6 +16,10 @@ export interface Equation {
 
 /** Rows longer than this are shown as they were built. */
 const MOST_TERMS = 120;
+/** Terms that are taken together afterwards may be more. */
+const MOST_COLLECTED = 400;
+/** Beyond this many nodes even trying to tidy a row takes longer than a hover may. */
+const MOST_NODES = 1500;
 
 /** The equations of motion, one per coordinate: M q'' + Coriolis + gravity + damping = Q. */
 export function equationsOfMotion(derived: Derived): Equation[] {
@@ -24,7 +29,7 @@ export function equationsOfMotion(derived: Derived): Equation[] {
     const force = system.Q[i]!;
     const left = g.add(derived.residuals[i]!, force);
     const ties = system.constraints.map((c) => g.multiply(c.multiplier, c.gradient[i]!));
-    return { coordinate, left: tidy(g, left), right: tidy(g, g.sum([force, ...ties])) };
+    return { coordinate, left: tidyRow(g, left), right: tidyRow(g, g.sum([force, ...ties])) };
   });
 }
 
@@ -36,6 +41,8 @@ export function solvedAccelerations(derived: Derived): readonly { coordinate: Co
   const { coordinates, graph: g } = derived.system;
   const n = coordinates.length;
   if (derived.system.constraints.length > 0) return undefined;
+  const nonzero = certainlyNonzero(derived.massMatrix);
+  if (n > 2 && nonzero.some((x, k) => x && Math.floor(k / n) !== k % n)) return undefined;
   const M = derived.massMatrix.map((e) => tidy(g, e));
   const f = derived.rightSides.map((e) => tidy(g, e));
   const diagonal = coordinates.every((_, i) => coordinates.every((_, j) => i === j || M[i * n + j] === g.zero));
@@ -56,6 +63,13 @@ export function solvedAccelerations(derived: Derived): readonly { coordinate: Co
 export function tidy(g: Graph, e: Expr): Expr {
   const form = normalForm(g, e, MOST_TERMS);
   return form ? toExpr(g, form) : simplify(g, e, MOST_TERMS);
+}
+
+/** Terms with the same moving part taken together: (M + m)*x''. */
+function tidyRow(g: Graph, e: Expr): Expr {
+  if (reachable([e]).length > MOST_NODES) return e;
+  const form = normalForm(g, e, MOST_COLLECTED);
+  return form ? collected(g, form.terms) : simplify(g, e, MOST_TERMS);
 }
 
 /** Term by term where the divisor is a single product, so that common factors go. */
@@ -98,17 +112,39 @@ export function conserved(derived: Derived): { readonly name: string; readonly e
   const free = system.coordinates.map(
     (_, i) => derived.damping[i] === g.zero && system.Q[i] === g.zero && system.constraints.every((c) => c.gradient[i] === g.zero),
   );
-  // Constraints at rest do no work: they bind momenta, not the energy.
-  const idle = system.coordinates.every((_, i) => derived.damping[i] === g.zero && system.Q[i] === g.zero);
+  // Constraints at rest do no work: they bind momenta, not the energy. One that prescribes a speed does.
+  const homogeneous = system.constraints.every((c) => {
+    if (c.kind === 'holonomic') return true;
+    const linear = g.sum(c.gradient.map((a, i) => g.multiply(a, system.coordinates[i]!.velocity)));
+    return tidy(g, g.subtract(c.expr, linear)) === g.zero;
+  });
+  const idle = homogeneous && system.coordinates.every((_, i) => derived.damping[i] === g.zero && system.Q[i] === g.zero);
   const scleronomic = symbolsOf(...system.constraints.map((c) => c.expr)).every((s) => !isMoving(s));
+  const pushed = certainlyNonzero(derived.coordinateForces);
   system.coordinates.forEach((c, i) => {
-    if (!free[i] || tidy(g, derived.coordinateForces[i]!) !== g.zero) return;
+    if (!free[i] || pushed[i] || tidy(g, derived.coordinateForces[i]!) !== g.zero) return;
     out.push({ name: `p[${c.name}]`, expr: tidy(g, derived.momenta[i]!), why: `${c.name} does not appear in the energies` });
   });
   if (idle && scleronomic && !symbolsOf(system.L).some(isMoving)) {
     out.push({ name: 'E', expr: tidy(g, derived.energy), why: 'nothing depends on time, and no force takes energy out or puts it in' });
   }
   return out;
+}
+
+/**
+ * Which expressions are not zero everywhere, by their values at two plain states: much sooner than by their form. False says
+ * nothing.
+ */
+function certainlyNonzero(exprs: readonly Expr[]): boolean[] {
+  const tape = new Tape(exprs);
+  const states = 2;
+  const registers = tape.run((s) => {
+    const k = tape.symbols.indexOf(s) + 1;
+    return { values: Float64Array.from({ length: states }, (_, i) => 0.6 + (((i + 2) * k * 0.618034) % 1)) };
+  }, states);
+  return exprs.map((e) =>
+    [0, 1].some((s) => Math.abs(registers.value(e, s)) > 1e-9 + 100 * registers.error(e, s)),
+  );
 }
 
 function isMoving(symbol: Expr): boolean {

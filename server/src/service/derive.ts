@@ -5,11 +5,14 @@ import { symbolsOf } from '../expression/reach';
 import { findEquilibria, type Equilibrium } from '../comparison/equilibria';
 import { conserved, equationsOfMotion, solvedAccelerations, tidy } from '../mechanics/equations';
 import type { Derived } from '../mechanics/lagrange';
+import type { DeclarationProblem } from '../mechanics/system';
 import type { Budget } from '../text/budget';
 import type { Document } from '../workspace/documents';
 import { declares } from '../workspace/systems';
 import type { DeriveForm, DerivedSystem } from './api';
 import type { Project } from './check';
+
+const LONGEST_ENTRY = 48;
 
 const STYLES = { typescript, python } as const;
 
@@ -24,12 +27,12 @@ export async function deriveSystems(
     if (!declares(block)) continue;
     const lookup = await project.systems.lookup(document, block, budget);
     if (lookup.kind !== 'found') continue;
-    const { derived } = lookup.entry;
+    const { derived, problems } = lookup.entry;
     const { blocked } = derived.system;
     const body = blocked
       ? `not derived: ${blocked.reason}`
       : as === 'text'
-        ? asText(derived)
+        ? asText(derived, problems)
         : as === 'tex'
           ? asTex(derived)
           : accelerationFunction(derived, STYLES[as]);
@@ -38,7 +41,7 @@ export async function deriveSystems(
   return out;
 }
 
-function asText(derived: Derived): string {
+function asText(derived: Derived, problems: readonly DeclarationProblem[]): string {
   const lines: string[] = ['equations of motion'];
   for (const e of equationsOfMotion(derived)) lines.push(`  ${equationText(e.left, e.right)}`);
   const solved = solvedAccelerations(derived);
@@ -46,6 +49,14 @@ function asText(derived: Derived): string {
     lines.push('accelerations');
     for (const { coordinate, expr } of solved) lines.push(`  ${coordinate.name}'' = ${text(expr)}`);
   }
+  const { constraints } = derived.system;
+  if (constraints.length > 0) {
+    const { graph } = derived.system;
+    lines.push('constraints');
+    for (const c of constraints) lines.push(`  ${equationText(tidy(graph, c.expr), graph.zero)}    force ${c.multiplierName}`);
+  }
+  const matrix = massMatrix(derived);
+  if (matrix.length > 0) lines.push('mass matrix', ...matrix);
   const constant = conserved(derived);
   if (constant.length > 0) {
     lines.push('constant along the motion');
@@ -56,11 +67,31 @@ function asText(derived: Derived): string {
     lines.push('equilibria at rest');
     for (const e of equilibria) lines.push(`  ${equilibriumText(derived, e)}`);
   }
-  const { coordinates, constraints } = derived.system;
-  const n = coordinates.length - constraints.length;
-  const bound = constraints.length > 0 ? ` (${coordinates.length} coordinates, ${constraints.length} constraints)` : '';
-  lines.push(`${n === 1 ? '1 degree' : `${n} degrees`} of freedom${bound}`);
+  const doubt = problems.find((p) => p.code === 'singular' || p.code === 'inconsistent');
+  lines.push(doubt ? doubt.message : freedom(derived));
   return lines.join('\n');
+}
+
+/** Every independent constraint takes away one degree of freedom; of coordinates only if it is holonomic. */
+function freedom({ system: { coordinates, constraints } }: Derived): string {
+  const count = (n: number, word: string) => `${n} ${word}${n === 1 ? '' : 's'}`;
+  const n = coordinates.length - constraints.length;
+  const head = `${n} degree${n === 1 ? '' : 's'} of freedom`;
+  if (constraints.length === 0) return head;
+  const held = constraints.filter((c) => c.kind === 'velocity').length;
+  const on = held === 0 ? '' : held === constraints.length ? ' on velocities' : `, ${held} of them on velocities`;
+  return `${head}: ${count(coordinates.length, 'coordinate')} less ${count(constraints.length, 'constraint')}${on}`;
+}
+
+/** What the accelerations are multiplied to, where it is more than a list of masses and short enough to read. */
+function massMatrix(derived: Derived): string[] {
+  const { graph, coordinates } = derived.system;
+  const n = coordinates.length;
+  if (n < 2 || n > 4) return [];
+  const entries = derived.massMatrix.map((e) => text(tidy(graph, e)));
+  if (entries.some((e) => e.length > LONGEST_ENTRY)) return [];
+  const width = coordinates.map((_, j) => Math.max(...coordinates.map((_, i) => entries[i * n + j]!.length)));
+  return coordinates.map((_, i) => `  ${coordinates.map((_, j) => entries[i * n + j]!.padEnd(width[j]!)).join('   ').trimEnd()}`);
 }
 
 /** `th = 0: stable, small oscillations with omega^2 = g/l` */

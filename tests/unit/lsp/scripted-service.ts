@@ -76,6 +76,10 @@ export class ScriptedService implements Service {
     return [];
   }
 
+  async compare(): Promise<{ readonly comparisons: readonly [] }> {
+    return { comparisons: [] };
+  }
+
   private textOf(file: string): string {
     return this.texts.get(file) ?? this.files.read(file) ?? '';
   }
