@@ -1,6 +1,10 @@
-import type { Argument, Expression, Field } from '../../program/form';
-import { type Context, name, nameText, opaque, spanOf, textOf } from './context';
+import type { Argument, BinaryOperator, Expression, Field, FunctionNode, Statement } from '../../program/form';
+import { type Context, name, namePattern, nameText, opaque, spanOf, textOf } from './context';
+import { subscript } from './subscripts';
 import { child, namedChildren, type Node } from './syntax';
+
+/** What the library table calls the copy of an array; no source can spell it. */
+const COPY = 'copy of array';
 
 /** Calls, and the few whose meaning is in their syntax: `super()`, `dict(a=1)`, `params.get("m", 1.0)`, `isinstance`. */
 
@@ -36,7 +40,7 @@ function positional(node: Node): Node[] {
   return list ? namedChildren(list) : [];
 }
 
-type Special = 'super' | 'super-init' | 'base-init' | 'dict' | 'get' | 'isinstance' | 'pass-through';
+type Special = 'updated' | 'super' | 'super-init' | 'base-init' | 'dict' | 'get' | 'isinstance' | 'pass-through';
 
 function specialOf(c: Context, node: Node): Special | undefined {
   const callee = child(node, 'function');
@@ -61,6 +65,11 @@ function specialOf(c: Context, node: Node): Special | undefined {
     const [first] = positional(node);
     if (first?.type === 'identifier' && c.bindings.isReceiver(textOf(c, first))) return 'base-init';
   }
+  if (UPDATES[text] !== undefined && object.type === 'subscript' && positional(node).length === 1) {
+    const whole = child(object, 'value');
+    const at = whole?.type === 'attribute' ? child(whole, 'attribute') : undefined;
+    if (at && textOf(c, at) === 'at') return 'updated';
+  }
   if (text === 'get') {
     const args = positional(node);
     if (args[0]?.type === 'string' && args.length <= 2 && args.every((a) => a.type !== 'keyword_argument')) return 'get';
@@ -84,6 +93,8 @@ function special(c: Context, node: Node): Expression {
       const [left, right] = args.map((a) => c.expression(a)) as [Expression, Expression];
       return { kind: 'binary', op: 'instanceof', left, right, opSpan: span, span };
     }
+    case 'updated':
+      return updated(c, node);
     case 'get':
       return entry(c, node, args);
     case 'pass-through':
@@ -91,6 +102,32 @@ function special(c: Context, node: Node): Expression {
     default:
       return opaque('a call of this kind', span);
   }
+}
+
+/** What `x.at[i].set(v)` and its like do to the copy they give. */
+const UPDATES: Readonly<Record<string, BinaryOperator | ''>> = { set: '', add: '+', subtract: '-', multiply: '*', mul: '*', divide: '/' };
+
+/** `x.at[i].add(v)` is a copy of x in which `x[i] += v` was done. */
+function updated(c: Context, node: Node): Expression {
+  const span = spanOf(node);
+  const callee = child(node, 'function')!;
+  const method = textOf(c, child(callee, 'attribute')!);
+  const place = child(callee, 'object')!;
+  const copy = namePattern('copy that is updated', span);
+  const object = c.expression(child(child(place, 'value')!, 'object')!);
+  const value = c.expression(positional(node)[0]!);
+  const local = name('copy that is updated', span);
+  const target = subscript(c, place, local);
+  const op = UPDATES[method];
+  const write: Expression = { kind: 'assign', target: { kind: 'place', target, span }, ...(op ? { op } : {}), value, yields: 'new', span };
+  const made: Expression = { kind: 'call', callee: name(COPY, span), args: [{ value: object }], span };
+  const body: Statement[] = [
+    { kind: 'declare', mutable: true, scope: 'function', target: copy, value: made, span },
+    { kind: 'expression', value: write, span },
+    { kind: 'return', value: local, span },
+  ];
+  const f: FunctionNode = { name: method, nameSpan: span, parameters: [], body, inheritsSelf: true, span, bodySpan: span };
+  return { kind: 'call', callee: { kind: 'function', node: f, span }, args: [], span };
 }
 
 /** `params.get("m", 1.0)`: the entry, or the default where there is none. */

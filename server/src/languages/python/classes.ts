@@ -1,15 +1,17 @@
-import type { ClassNode, Expression, Member, Parameter, Statement } from '../../program/form';
+import type { ClassNode, Expression, Member, Parameter, Statement, TypeNote } from '../../program/form';
 import type { Span } from '../../text/span';
 import { Bindings } from './bindings';
 import { type Context, namePattern, nameText, spanOf, textOf } from './context';
 import { decorated } from './decorators';
 import { madeFunction } from './functions';
 import { child, namedChildren, nodesOf, type Node } from './syntax';
+import { noteOf } from './type-notes';
 
 interface Field {
   readonly name: string;
   readonly nameSpan: Span;
   readonly isTyped: boolean;
+  readonly note: TypeNote | undefined;
   readonly value: Expression | undefined;
   readonly span: Span;
 }
@@ -66,9 +68,10 @@ function addMember(c: Context, node: Node, members: Member[], fields: Field[]): 
   const right = child(statement, 'right');
   if (left?.type !== 'identifier') return;
   const value = right ? defaultOf(c, right) : undefined;
-  const isTyped = child(statement, 'type') !== undefined;
+  const type = child(statement, 'type');
+  const isTyped = type !== undefined;
   c.bindings.classNames?.add(nameText(c, left));
-  fields.push({ name: nameText(c, left), nameSpan: spanOf(left), isTyped, value, span });
+  fields.push({ name: nameText(c, left), nameSpan: spanOf(left), isTyped, note: noteOf(c, type), value, span });
 }
 
 /** `field(default=1.0)` and `field(default_factory=lambda: ...)` stand for the value itself. */
@@ -104,9 +107,9 @@ function method(c: Context, node: Node): Member[] {
 
 /** A name of the class body: an attribute of the class that instances see too. */
 function classAttribute(c: Context, f: Field, isRecord: boolean): Member[] {
-  const common = { kind: 'field', name: f.name, span: f.span } as const;
+  const common = { kind: 'field', name: f.name, span: f.span, ...(f.note ? { note: f.note } : {}) } as const;
   const value = f.value ? { value: f.value } : {};
-  if (isRecord && f.isTyped) return [{ ...common, isStatic: false }];
+  if (isRecord && f.isTyped) return [{ ...common, isStatic: false }, ...(f.value ? [{ ...common, isStatic: true, ...value }] : [])];
   const isConstant = !assignsMember(c, f.name);
   return [
     { ...common, isStatic: false, ...value, isConstant },
@@ -121,7 +124,7 @@ function assignsMember(c: Context, name: string): boolean {
 /** The constructor of a dataclass or named tuple; of a tuple also its places by number. */
 function recordMembers(fields: readonly Field[], members: readonly Member[], isTuple: boolean, span: Span): Member[] {
   const parameters = fields.map(
-    (f): Parameter => ({ pattern: namePattern(f.name, f.nameSpan), field: true, ...(f.value ? { initial: f.value } : {}) }),
+    (f): Parameter => ({ pattern: namePattern(f.name, f.nameSpan), field: true, ...(f.value ? { initial: f.value } : {}), ...(f.note ? { note: f.note } : {}) }),
   );
   const self: Expression = { kind: 'self', span };
   const body: Statement[] = [];

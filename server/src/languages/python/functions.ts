@@ -1,10 +1,11 @@
-import type { Expression, FunctionNode, Parameter, Pattern, Statement } from '../../program/form';
+import type { FunctionNode, Parameter, Pattern, Statement, TypeNote } from '../../program/form';
 import type { Span } from '../../text/span';
 import { Bindings, outerNames } from './bindings';
 import { type Context, type FunctionOptions, namePattern, nameText, spanOf, textOf } from './context';
 import { decorated } from './decorators';
 import { child, namedChildren, nodesOf, type Node } from './syntax';
 import { boundNames } from './targets';
+import { noteOf } from './type-notes';
 
 /** What functions without a name are called. */
 export const ANONYMOUS = '<anonymous>';
@@ -99,12 +100,12 @@ function parameter(c: Context, node: Node): Parameter | undefined {
       const name = child(node, 'name');
       const value = child(node, 'value');
       if (!name) return undefined;
-      return { pattern: c.target(name), ...(value ? { initial: c.expression(value) } : {}), ...typeOf(c, child(node, 'type')) };
+      return { pattern: c.target(name), ...(value ? { initial: c.expression(value) } : {}), ...noted(c, child(node, 'type')) };
     }
     case 'typed_parameter': {
       const inner = namedChildren(node).find((n) => n.field !== 'type');
       const made = inner && parameter(c, inner);
-      return made && { ...made, ...typeOf(c, child(node, 'type')) };
+      return made && { ...made, ...noted(c, child(node, 'type')) };
     }
     case 'list_splat_pattern':
     case 'dictionary_splat_pattern': {
@@ -118,15 +119,9 @@ function parameter(c: Context, node: Node): Parameter | undefined {
   }
 }
 
-/** The class a type hint names: `Crane`, `"Crane"`, `rig.Crane`; nothing for types of more parts. */
-function typeOf(c: Context, type: Node | undefined): { type?: Expression } {
-  const text = type ? textOf(c, type).trim().replace(/^(["'])(.*)\1$/, '$2') : '';
-  if (!type || !/^[\p{L}_][\p{L}\p{N}_]*(?:\.[\p{L}_][\p{L}\p{N}_]*)*$/u.test(text)) return {};
-  const span: Span = spanOf(type);
-  const [first, ...rest] = text.split('.');
-  let e: Expression = { kind: 'name', name: first!, span };
-  for (const part of rest) e = { kind: 'member', object: e, name: part, nameSpan: span, span };
-  return { type: e };
+function noted(c: Context, type: Node | undefined): { note?: TypeNote } {
+  const note = noteOf(c, type);
+  return note ? { note } : {};
 }
 
 /** A function that no source spells out: the constructor of a dataclass. */

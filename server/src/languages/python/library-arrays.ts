@@ -2,7 +2,7 @@ import { ARRAY_PREFIXES, LINALG_PREFIXES } from './library-modules';
 
 /** Functions of arrays by their last name -> the shared operation they mean. */
 const FUNCTIONS: Readonly<Record<string, string>> = {
-  array: 'list-array',
+  array: 'array-copy',
   asarray: 'list-array',
   asfarray: 'list-array',
   ascontiguousarray: 'list-array',
@@ -144,6 +144,7 @@ const SINGLE: readonly (readonly [path: string, intrinsic: string])[] = [
   ['float', 'number-same'],
   ['bool', 'to-condition'],
   ['dict of pairs', 'record-from-entries'],
+  ['copy of array', 'array-copy'],
 ];
 
 /** Functions with richer arguments than numbers, by dotted path. */
