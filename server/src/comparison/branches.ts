@@ -1,8 +1,9 @@
-import type { Expr } from '../expression/node';
+import type { Domain, Expr } from '../expression/node';
 import type { Rational } from '../expression/rational';
 import { reachable } from '../expression/reach';
 import type { Registers } from '../expression/tape';
 import type { Unvisited } from './pair';
+import { isRuledOut } from './ruled-out';
 
 /** The conditions that choose values in each group of expressions. */
 export function conditionsOfEach(groups: readonly (readonly Expr[])[]): Expr[][] {
@@ -70,7 +71,10 @@ function isSize(e: Expr): boolean {
 export class Visits {
   private readonly seen = new Map<Expr, [boolean, boolean]>();
 
-  constructor(readonly conditions: readonly Expr[]) {
+  constructor(
+    readonly conditions: readonly Expr[],
+    private readonly domains: ReadonlyMap<Expr, Domain>,
+  ) {
     for (const c of conditions) this.seen.set(c, [false, false]);
   }
 
@@ -89,11 +93,15 @@ export class Visits {
     return fresh;
   }
 
+  private isAsked(condition: Expr, side: boolean): boolean {
+    return !isThin(condition, side) && !isRuledOut(condition, side, this.domains);
+  }
+
   get missing(): Unvisited[] {
     const out: Unvisited[] = [];
     for (const [condition, [no, yes]] of this.seen) {
-      if (!yes && !isThin(condition, true)) out.push({ condition, side: true });
-      if (!no && !isThin(condition, false)) out.push({ condition, side: false });
+      if (!yes && this.isAsked(condition, true)) out.push({ condition, side: true });
+      if (!no && this.isAsked(condition, false)) out.push({ condition, side: false });
     }
     return out;
   }

@@ -54,7 +54,7 @@ function decideTogether(request: DecideRequest, motion: Motion, decisions: (Deci
   const claims = system.coordinates.map((c) => pairs.findIndex((p) => p.expected === c.acceleration));
   if (claims.length === 0 || claims.includes(-1)) return;
   const found = claims.map((i) => pairs[i]!.found);
-  const visits = new Visits(conditionsOf(found));
+  const visits = new Visits(conditionsOf(found), system.domains);
   const tape = new Tape([...found, ...assumed, ...visits.conditions]);
   const accelerations = new Set(system.coordinates.map((c) => c.acceleration));
   if (tape.symbols.some((s) => accelerations.has(s))) return;
@@ -120,7 +120,7 @@ function decideEach(request: DecideRequest, motion: Motion, groups: readonly (re
     agrees: true,
     worst: 0,
     best: undefined,
-    visits: new Visits(choices[i]!),
+    visits: new Visits(choices[i]!, derived.system.domains),
   }));
   const conditions = [...new Set(tallies.flatMap((t) => t.visits.conditions))];
   const prober = new Prober(motion, groups, [...assumed, ...conditions]);
