@@ -4,7 +4,7 @@ import type { Span } from '../text/span';
 import type { Candidate } from './search/candidates/candidate';
 import { trimmed, type Edit } from './search/edits';
 import { Search } from './search/search';
-import { isRepair, type Recheck } from './verify';
+import { isProgress, isRepair, type Recheck } from './verify';
 
 /** One thing that is wrong with the code of a function. */
 export interface Fault {
@@ -25,23 +25,81 @@ export interface Diagnosis {
 
 const MOST_TRIES = 8;
 const MOST_UNTRIED = 6;
+const MOST_FIRST_STEPS = 3;
 
 /** Looks for what is wrong with a function whose claims differ, and for an edit that makes them right. */
 export async function diagnose(request: SubjectRequest, result: SubjectResult, source: string, recheck: Recheck): Promise<Diagnosis | undefined> {
   if (!result.claims.some((c) => c.decision.verdict === 'differs')) return undefined;
-  const found = Search.start(request, result, source);
-  if (!found) return undefined;
-  for (const stage of [() => found.known(), () => found.open(), () => found.untried.slice(0, MOST_UNTRIED)]) {
-    for (const c of distinct(stage()).slice(0, MOST_TRIES)) {
-      if (!request.budget.look()) break;
-      if (await isRepair(result, c.edits, recheck)) return repaired([c], source);
-    }
-  }
-  for (const { first, second } of found.pairs().slice(0, MOST_TRIES)) {
+  const search = Search.start(request, result, source);
+  if (!search) return undefined;
+  const verify = (edits: readonly Edit[]) => isRepair(result, edits, recheck);
+  const single = await firstOf(request, oneEdit(search), verify);
+  if (single) return repaired([single], source);
+  const steps = await inSteps(request, search, result, recheck);
+  if (steps) return repaired(steps, source);
+  for (const { first, second } of search.pairs().slice(0, MOST_TRIES)) {
     if (!request.budget.look()) break;
-    if (await isRepair(result, [...first.edits, ...second.edits], recheck)) return repaired([first, second], source);
+    if (await verify([...first.edits, ...second.edits])) return repaired([first, second], source);
   }
-  return { faults: [], edits: undefined, place: found.places[0]?.span };
+  return { faults: [], edits: undefined, place: search.places[0]?.span };
+}
+
+function* oneEdit(search: Search): Generator<Candidate> {
+  yield* distinct(search.known()).slice(0, MOST_TRIES);
+  yield* distinct(search.open()).slice(0, MOST_TRIES);
+  yield* distinct(search.untried).slice(0, MOST_UNTRIED);
+}
+
+async function firstOf(
+  request: SubjectRequest,
+  candidates: Iterable<Candidate>,
+  verify: (edits: readonly Edit[]) => Promise<boolean>,
+): Promise<Candidate | undefined> {
+  for (const c of candidates) {
+    if (!request.budget.look()) return undefined;
+    if (await verify(c.edits)) return c;
+  }
+  return undefined;
+}
+
+/** Two faults that different claims show: one is mended first, then the other is searched for in what that gives. */
+async function inSteps(request: SubjectRequest, search: Search, result: SubjectResult, recheck: Recheck): Promise<Candidate[] | undefined> {
+  for (const first of distinct(search.partial()).slice(0, MOST_FIRST_STEPS)) {
+    if (!request.budget.look()) return undefined;
+    const half = await recheck(first.edits);
+    if (!half || !isProgress(result, half.result)) continue;
+    const next = Search.start(half.request, half.result, half.source);
+    if (!next) continue;
+    // The second edit is made in the text before the first one, so that both can be told together.
+    const both = (c: Candidate): Candidate | undefined => moved(c, first.edits);
+    const shifted = [...distinct(next.known()).slice(0, MOST_TRIES), ...distinct(next.open()).slice(0, MOST_TRIES)].flatMap((c) => both(c) ?? []);
+    const second = await firstOf(request, shifted, (edits) => isRepair(result, [...first.edits, ...edits], recheck));
+    if (second) return [first, second];
+  }
+  return undefined;
+}
+
+/** A candidate found in an edited text, with its places in the text before; undefined where the edits meet. */
+function moved(c: Candidate, before: readonly Edit[]): Candidate | undefined {
+  const back = (span: Span): Span | undefined => {
+    let shift = 0;
+    let grown = 0;
+    for (const e of [...before].sort((a, b) => a.span.start - b.span.start)) {
+      const by = e.text.length - (e.span.end - e.span.start);
+      const start = e.span.start + shift;
+      const end = start + e.text.length;
+      if (span.end <= start && span.start < start) break;
+      if (span.start >= end) shift += by;
+      else if (span.start <= start && span.end >= end && !(span.start === start && span.end === end)) grown += by;
+      else return undefined;
+    }
+    return { start: span.start - shift, end: span.end - shift - grown };
+  };
+  const edits = c.edits.map((e) => ({ text: e.text, span: back(e.span) }));
+  const span = back(c.place ?? c.site.span) ?? back(c.site.span);
+  // An edit around the first one would bring back what that one took away.
+  const safe = c.edits.every((e, i) => edits[i]!.span && e.span.end - e.span.start === edits[i]!.span!.end - edits[i]!.span!.start);
+  return span && safe ? { ...c, place: span, edits: edits.map((e) => ({ text: e.text, span: e.span! })) } : undefined;
 }
 
 function repaired(candidates: readonly Candidate[], source: string): Diagnosis {

@@ -1,4 +1,4 @@
-import type { SubjectResult } from '../comparison/subject';
+import type { SubjectRequest, SubjectResult } from '../comparison/subject';
 import type { Edit } from './search/edits';
 
 /** Reads the file again with some edits made; undefined where that can't be done. */
@@ -7,8 +7,16 @@ export type Recheck = (edits: readonly Edit[]) => Promise<Rechecked | undefined>
 export interface Rechecked {
   /** The function in question. */
   readonly result: SubjectResult;
+  readonly request: SubjectRequest;
+  readonly source: string;
   /** The other declarations of the file, now and after; asked for only when the function itself is right. */
   others(): Promise<{ readonly before: readonly SubjectResult[]; readonly after: readonly SubjectResult[] }>;
+}
+
+/** Whether with these edits more claims hold, and none is worse off. */
+export function isProgress(before: SubjectResult, after: SubjectResult): boolean {
+  const holding = (r: SubjectResult) => r.claims.filter((c) => c.decision.verdict === 'holds').length;
+  return isNoWorse(before, after) && holding(after) > holding(before);
 }
 
 /** Whether with these edits every claim of the function holds, and nothing else in the file got worse. */

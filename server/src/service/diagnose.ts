@@ -62,6 +62,8 @@ async function recheckWith(
   if (!own.result) return undefined;
   return {
     result: own.result,
+    request: subjectRequest(project, edited, edited.blocks[index]!, own.entry!, budget),
+    source: edited.text,
     others: async () => {
       const before = outcomes.filter((o, k) => k !== index && o.result);
       const after = [];

@@ -9,8 +9,11 @@ import type { Evaluation } from './tagged';
 export type Needed =
   /** These values, and no others, do it; NaN at states where the claims don't depend on the place. */
   | { readonly kind: 'values'; readonly need: Float64Array }
-  /** The claims depend on the place in a way that was not solved: candidates have to be tried. */
-  | { readonly kind: 'open' }
+  /**
+   * The claims depend on the place in a way that was not solved, or that several values solve, `guess` among them:
+   * candidates have to be tried.
+   */
+  | { readonly kind: 'open'; readonly guess?: Float64Array }
   /** No value does it; `fixes` are claims that would be right with the values `need`, while no other gets worse. */
   | { readonly kind: 'none'; readonly partial: { readonly need: Float64Array; readonly fixes: readonly Target[] } | undefined };
 
@@ -70,7 +73,7 @@ export function solvePlace(model: Model, site: Site, evaluations: readonly Evalu
       for (let s = 0; s < n; s++) {
         if (touched.every((t) => isSame(t, probes[0]!.get(t)!, s) && isSame(t, probes[1]!.get(t)!, s))) need[s] = NaN;
       }
-      return { kind: 'values', need };
+      return exact === 'several' ? { kind: 'open', guess: need } : { kind: 'values', need };
     }
     if (exact === 'several') isOpen = true;
     if (!harm && fixes.length > (partial?.fixes.length ?? 0)) partial = { need, fixes };

@@ -9,7 +9,7 @@ export class LogFit<B> {
     bases: readonly { readonly expr: B; readonly value: Float64Array }[],
     private readonly n: number,
   ) {
-    this.bases = bases.filter((b) => b.value.every((x) => Math.abs(x) > 1e-9) && !b.value.every((x) => x === b.value[0])).slice(0, n - 5);
+    this.bases = independent(bases.filter((b) => b.value.every((x) => Math.abs(x) > 1e-9)), n);
     this.rows = Array.from({ length: n }, (_, s) => [1, ...this.bases.map((b) => Math.log(Math.abs(b.value[s]!)))]);
     const m = this.bases.length + 1;
     const normal = Array.from({ length: m }, (_, i) => Array.from({ length: m }, (_, j) => this.rows.reduce((t, r) => t + r[i]! * r[j]!, 0)));
@@ -43,6 +43,32 @@ export class LogFit<B> {
     const pick = (x: Float64Array): Float64Array => Float64Array.from(states, (s) => x[s]!);
     return new LogFit(this.bases.map((b) => ({ expr: b.expr, value: pick(b.value) })), states.length).product(pick(column));
   }
+}
+
+/** Those whose logarithms no others before them (and no constant) make up; the first count. */
+function independent<T extends { readonly value: Float64Array }>(bases: readonly T[], n: number): T[] {
+  const basis: Float64Array[] = [new Float64Array(n).fill(1 / Math.sqrt(n))];
+  const out: T[] = [];
+  for (const b of bases) {
+    if (out.length >= n - 5) break;
+    const rest = b.value.map((x) => Math.log(Math.abs(x)));
+    const size = norm(rest);
+    for (let k = 0; k < 2; k++) {
+      for (const q of basis) {
+        const dot = rest.reduce((t, x, s) => t + x * q[s]!, 0);
+        for (let s = 0; s < n; s++) rest[s] = rest[s]! - dot * q[s]!;
+      }
+    }
+    const left = norm(rest);
+    if (!(left > 1e-6 * (1 + size))) continue;
+    basis.push(rest.map((x) => x / left));
+    out.push(b);
+  }
+  return out;
+}
+
+function norm(x: Float64Array): number {
+  return Math.sqrt(x.reduce((t, y) => t + y * y, 0));
 }
 
 function invert(matrix: readonly (readonly number[])[]): number[][] | undefined {

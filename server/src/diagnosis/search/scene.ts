@@ -40,8 +40,9 @@ export function makeScene(request: SubjectRequest, model: Model, map: SourceMap,
       if (value) add({ text: entry.text, values: [value], from: 0, owner: subject });
     }
   }
-  addMembers(request, model, withoutComments(source, request), [...atoms.values()], add);
-  addFunctions(model, source, functions, [...atoms.values()], add);
+  const code = withoutComments(source, request);
+  addMembers(request, model, code, [...atoms.values()], add);
+  addFunctions(model, code, functions, [...atoms.values()], add);
   const valuesOf = (e: Expression, evaluations: readonly Evaluation[]): readonly Float64Array[] | undefined => {
     const own = model.tagged.evaluations.get(map.byNode.get(e)!);
     if (own?.length === evaluations.length) {
@@ -55,6 +56,7 @@ export function makeScene(request: SubjectRequest, model: Model, map: SourceMap,
     model,
     program: request.program,
     source,
+    code,
     atoms: [...atoms.values()],
     siteOf: (e) => map.byNode.get(e),
     valuesOf,
@@ -110,17 +112,23 @@ function withoutComments(source: string, request: SubjectRequest): string {
 }
 
 /** `Math.sin(th)` where the derived equations have it, written as this file writes its functions. */
-function addFunctions(model: Model, source: string, functions: readonly Expr[], atoms: readonly Atom[], add: (atom: Atom) => void): void {
-  const prefix = /((?:\w+(?:\.|::))*)\b(?:sin|cos|tan|sqrt)\s*\(/.exec(source)?.[1];
-  if (prefix === undefined) return;
+function addFunctions(model: Model, code: string, functions: readonly Expr[], atoms: readonly Atom[], add: (atom: Atom) => void): void {
   for (const f of functions.slice(0, 24)) {
     const inner = f.args[0]!;
+    const prefix = prefixFor(code, f.op);
+    if (prefix === undefined) continue;
     const value = columnOf(model, f);
     const argument = columnOf(model, inner);
     if (!value || !argument || atoms.some((a) => a.values.length === 1 && agree(a.values[0]!, value, 1e-12))) continue;
     const known = atoms.filter((a) => a.values.length === 1 && agree(a.values[0]!, argument, 1e-12));
     for (const a of known.slice(0, 4)) add({ text: `${prefix}${f.op}(${a.text})`, values: [value], from: a.from, owner: a.owner });
   }
+}
+
+/** What stands before the name of a function in this file: `Math.`, or nothing where the bare name is in use. */
+export function prefixFor(code: string, name: string): string | undefined {
+  if (new RegExp(`(?<![.:\\w])${name}\\s*\\(`).test(code)) return '';
+  return /((?:\w+(?:\.|::))+)(?:sin|cos|tan|sqrt|pow|abs)\s*\(/.exec(code)?.[1];
 }
 
 /** Values at the sampled states of an expression of declared symbols. */

@@ -56,7 +56,7 @@ export class Search {
       if (evaluations.length === 0 || !this.valuesOf(evaluations)) continue;
       this.needs.set(site, solvePlace(model, site, evaluations));
     }
-    for (const [site, needed] of this.needs) if (needed.kind === 'values') this.places.push(site);
+    for (const [site, needed] of this.needs) if (needed.kind === 'values' || (needed.kind === 'open' && needed.guess)) this.places.push(site);
     this.places.sort((a, b) => a.span.end - a.span.start - (b.span.end - b.span.start));
   }
 
@@ -89,6 +89,27 @@ export class Search {
     return passed.sort(byCost);
   }
 
+  /** Edits that make some claims right and none worse, where one place can't mend all; most claims first. */
+  partial(): Candidate[] {
+    const out: { candidate: Candidate; fixes: number }[] = [];
+    for (const [site, needed] of this.needs) {
+      if (needed.kind !== 'none' || !needed.partial || !this.request.budget.look()) continue;
+      const { need, fixes } = needed.partial;
+      const spot = this.spotOf(site, need);
+      for (const make of this.makers) {
+        make(this.scene, spot, (c) => {
+          if (c.values && agree(c.values[0]!, need)) out.push({ candidate: c, fixes: fixes.length });
+        });
+      }
+    }
+    return out.sort((a, b) => b.fixes - a.fixes || byCost(a.candidate, b.candidate)).map((x) => x.candidate);
+  }
+
+  private spotOf(site: Site, need: Float64Array | undefined): Spot {
+    const evaluations = this.model.evaluations(site);
+    return { site, evaluations, values: this.valuesOf(evaluations)!, text: this.source.slice(site.span.start, site.span.end), need };
+  }
+
   /** Two edits at once; after `known` and `open`. */
   pairs(): CandidatePair[] {
     return findPairs(this.model, this.all, (c) => changeOf(this.model, c), this.request.budget);
@@ -106,14 +127,7 @@ export class Search {
 
   /** Makes the candidates of a place; returned are those worth trying. */
   private make(site: Site, needed: Needed): Candidate[] {
-    const evaluations = this.model.evaluations(site);
-    const spot: Spot = {
-      site,
-      evaluations,
-      values: this.valuesOf(evaluations)!,
-      text: this.source.slice(site.span.start, site.span.end),
-      need: needed.kind === 'values' ? needed.need : undefined,
-    };
+    const spot = this.spotOf(site, needed.kind === 'values' ? needed.need : undefined);
     const worth: Candidate[] = [];
     const from = this.all.length;
     const give = (c: Candidate): void => {
@@ -122,6 +136,7 @@ export class Search {
       else if (needed.kind === 'values' ? agree(c.values[0]!, needed.need) : needed.kind === 'open') worth.push(c);
     };
     for (const make of this.makers) make(this.scene, spot, give);
+    if (needed.kind === 'open' && needed.guess) for (const make of this.makers) make(this.scene, { ...spot, need: needed.guess }, give);
     if (spot.text.length <= 60) this.remember(spot.text, this.all.slice(from));
     return worth;
   }

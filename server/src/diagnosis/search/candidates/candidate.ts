@@ -42,6 +42,8 @@ export interface Scene {
   readonly model: Model;
   readonly program: Program;
   readonly source: string;
+  /** The source with its comments blank: what shows that a name is there to be used. */
+  readonly code: string;
   readonly atoms: readonly Atom[];
   /** Sites of the same owner, by node. */
   siteOf(e: Expression): Site | undefined;

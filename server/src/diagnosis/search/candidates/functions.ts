@@ -55,6 +55,8 @@ export const functions: Maker = (scene, spot, give) => {
   const inside = source.slice(node.callee.span.end, node.span.end);
   for (const [other, f] of Object.entries(family)) {
     if (f === own) continue;
+    // A bare name must be in use, or nothing says that it means anything.
+    if (match[1] === '' && !new RegExp(`(?<![.:\\w])${other}\\b`).test(scene.code)) continue;
     const renamed = match[1]! + match[2]!.replace(name.startsWith('a') && name.length === 4 ? match[2]! : name.replace(/f$/, ''), other);
     give({
       site,
@@ -123,7 +125,7 @@ export const powers: Maker = (scene, spot, give) => {
   if (!isShort && isInnerFactor(spot)) return;
   if (node.kind === 'number' || !(isShort || bindingOf(node) <= Binding.product)) return;
   const least = isShort ? text : bracket(text);
-  const square = squareText(scene.source, least);
+  const square = squareText(scene.code, least);
   give({
     site,
     edits: [replaceSite(site, source, square.text, square.binding)],
@@ -137,9 +139,9 @@ export const powers: Maker = (scene, spot, give) => {
 };
 
 /** The way this file writes squares. */
-function squareText(source: string, base: string): { text: string; binding: Binding } {
-  if (/[\w)\]] ?\*\* ?2\b/.test(source)) return { text: `${base} ** 2`, binding: Binding.power };
-  const call = /\b((?:Math\.)?pow)\(/.exec(source);
+function squareText(code: string, base: string): { text: string; binding: Binding } {
+  if (/[\w)\]] ?\*\* ?2\b/.test(code)) return { text: `${base} ** 2`, binding: Binding.power };
+  const call = /\b((?:Math\.)?pow)\(/.exec(code);
   if (call) return { text: `${call[1]}(${base}, 2)`, binding: Binding.atom };
   return { text: `${base} * ${base}`, binding: Binding.product };
 }

@@ -6,6 +6,7 @@ import type { Expr, SymbolData } from '../../../expression/node';
 import { Binding, bindingOf, bracket, replaceSite } from '../edits';
 import { LogFit } from '../log-fit';
 import type { Model } from '../model';
+import { prefixFor } from '../scene';
 import { agree, map2, seenAt, type Maker, type Scene } from './candidate';
 import { isSum } from './operators';
 import { commonOf, isInnerFactor, writeNice } from './numbers';
@@ -230,9 +231,9 @@ class TermPrinter {
     const found = this.atoms.filter((a) => agree(a.value, value, 1e-9)).sort((a, b) => a.text.length - b.text.length)[0];
     if (found) return found.text;
     if (e.args.length === 1) {
-      const call = new RegExp(`((?:[\\w]+[.:]+)*)\\b(?:sin|cos|tan)\\(`).exec(this.scene.source);
+      const prefix = prefixFor(this.scene.code, e.op);
       const inner = this.textOf(e.args[0]!);
-      if (call && inner) return `${call[1]}${e.op}(${inner})`;
+      if (prefix !== undefined && inner) return `${prefix}${e.op}(${inner})`;
     }
     if (e.op === 'sum') {
       const parts = e.args.map((a) => this.textOf(a));
