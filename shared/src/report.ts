@@ -49,11 +49,16 @@ export interface ReportClaim {
 }
 
 export interface Evidence {
+  /** `identity`: proved by exact arithmetic at random points; `numeric`: equal at the states, within rounding. */
   readonly kind: 'numeric' | 'identity';
   /** States that voted. */
   readonly states: number;
   /** Largest relative difference over the voting states. */
   readonly worst: number;
+  /** Of an identity: the chance that different formulas would have passed. */
+  readonly chance?: number;
+  /** Of a numeric one that holds: what kept the exact test from deciding. */
+  readonly inexact?: string;
 }
 
 export interface Witness {

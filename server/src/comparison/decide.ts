@@ -4,6 +4,7 @@ import type { Derived } from '../mechanics/lagrange';
 import type { Budget } from '../text/budget';
 import type { Place } from '../text/span';
 import { conditionsOf, conditionsOfEach, Visits } from './branches';
+import { prove } from './identity';
 import { Motion } from './motion';
 import { expand } from './near';
 import type { Decision, Pair, Unvisited } from './pair';
@@ -27,6 +28,8 @@ export interface DecideRequest {
   readonly budget: Budget;
   /** Where a condition was read, for the reason of an unread claim. */
   placeOf(condition: Expr): Place | undefined;
+  /** Leaves out the exact test, where only the verdict is wanted. */
+  readonly withoutProof?: boolean;
 }
 
 /** Decides every pair, by states; the same states every time. */
@@ -40,7 +43,17 @@ export function decide(request: DecideRequest): Decision[] {
     const groups = expand(derived, rest.map((i) => pairs[i]!));
     decideEach(request, motion, groups).forEach((d, k) => (decisions[rest[k]!] = d));
   }
-  return decisions as Decision[];
+  return withProofs(request, decisions as Decision[]);
+}
+
+/** What holds at all states is put to the exact test. */
+function withProofs(request: DecideRequest, decisions: Decision[]): Decision[] {
+  const { derived, pairs, budget } = request;
+  const held = decisions.flatMap((d, i) => (d.verdict === 'holds' && !d.rounded ? [i] : []));
+  if (request.withoutProof || held.length === 0 || !budget.look()) return decisions;
+  const proofs = prove(derived, expand(derived, held.map((i) => pairs[i]!)));
+  held.forEach((i, k) => (decisions[i] = { ...decisions[i]!, proof: proofs[k]! } as Decision));
+  return decisions;
 }
 
 /**

@@ -21,7 +21,13 @@ export interface RoundedConstant {
 }
 
 export type Decision =
-  | { readonly verdict: 'holds'; readonly states: number; readonly worst: number; readonly rounded?: RoundedConstant }
+  | {
+      readonly verdict: 'holds';
+      readonly states: number;
+      readonly worst: number;
+      readonly rounded?: RoundedConstant;
+      readonly proof?: Proof;
+    }
   | {
       readonly verdict: 'differs';
       readonly states: number;
@@ -30,6 +36,12 @@ export type Decision =
       readonly rounded?: RoundedConstant;
     }
   | { readonly verdict: 'unread'; readonly reason: string; readonly place?: Place | undefined };
+
+export type Proof =
+  /** Both sides are the same function, but for this chance. */
+  | { readonly kind: 'identity'; readonly chance: number }
+  /** What kept the exact test from deciding. */
+  | { readonly kind: 'none'; readonly stopped: string };
 
 export interface WitnessState {
   /** Every symbol that either side depends on. */

@@ -1,4 +1,5 @@
-import type { Problem, ReportClaim, Witness } from '@visviva/shared';
+import type { Evidence, Problem, ReportClaim, Witness } from '@visviva/shared';
+import type { Decision } from '../comparison/pair';
 import { checkSubject, type ClaimResult, type SubjectRequest, type SubjectResult } from '../comparison/subject';
 import type { Diagnosis } from '../diagnosis/diagnose';
 import { describeClaim, type RawFinding } from '../diagnosis/findings';
@@ -186,7 +187,7 @@ function reportClaim(document: Document, outcome: BlockOutcome, index: number): 
   const { claims } = outcome.result!;
   const claim = claims[index]!;
   const here = { file, span: claim.span };
-  const findings = describeClaim(derived, claims, index, here, outcome.diagnosis).map((f) => reportFinding(document, f, claim));
+  const findings = describeClaim(derived, claims, index, here, outcome.diagnosis, { reading: outcome.result!.reading, language: document.language }).map((f) => reportFinding(document, f, claim));
   const { decision } = claim;
   return {
     file,
@@ -199,7 +200,7 @@ function reportClaim(document: Document, outcome: BlockOutcome, index: number): 
     verdict: decision.verdict,
     ...(decision.verdict === 'unread'
       ? {}
-      : { evidence: { kind: 'numeric' as const, states: decision.states, worst: decision.worst } }),
+      : { evidence: evidenceOf(decision) }),
     ...(decision.verdict === 'differs' ? { witness: reportWitness(system, decision.witness) } : {}),
     findings,
   };
@@ -229,6 +230,13 @@ function unresolvedClaims(document: Document, { placed, problems }: BlockOutcome
       findings: [{ code: 'unread', message: `${name} is not checked: ${reason}.`, range: lines.range(claim.span) }],
     }));
   });
+}
+
+function evidenceOf(decision: Exclude<Decision, { readonly verdict: 'unread' }>): Evidence {
+  const { states, worst } = decision;
+  const proof = decision.verdict === 'holds' ? decision.proof : undefined;
+  if (proof?.kind === 'identity') return { kind: 'identity', states, worst, chance: proof.chance };
+  return { kind: 'numeric', states, worst, ...(proof ? { inexact: proof.stopped } : {}) };
 }
 
 function reportFinding(document: Document, f: RawFinding, claim: ClaimResult): ReportClaim['findings'][number] {

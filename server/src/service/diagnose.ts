@@ -42,9 +42,11 @@ export async function diagnoseOutcomes(
 
 function movedDiagnosis(d: Diagnosis, relocate: Relocate): Diagnosis {
   return {
+    ...d,
     faults: d.faults.map((f) => ({ ...f, span: relocate(f.span) })),
     edits: d.edits?.map((e) => ({ ...e, span: relocate(e.span) })),
     place: d.place && relocate(d.place),
+    declaration: d.declaration,
   };
 }
 

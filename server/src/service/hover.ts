@@ -95,6 +95,7 @@ function claimLine(o: BlockOutcome, claim: ClaimResult): string {
   const head = `\`${claim.output}\` = \`${claim.quantity}\``;
   switch (decision.verdict) {
     case 'holds':
+      if (decision.proof?.kind === 'identity') return `${head} holds: identity, failure chance below 1e-15`;
       return `${head} holds: ${decision.states} states, worst relative difference ${formatNumber(decision.worst, 1)}`;
     case 'unread':
       return `${head} is not checked: ${decision.reason}`;
