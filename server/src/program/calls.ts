@@ -101,10 +101,14 @@ export function argumentValues(m: Machine, scope: Scope, args: readonly Argument
     const data = dataOf(m, value);
     if (items) values.push(...items.map((v) => ({ value: v })));
     else if (data?.kind === 'record') for (const [name, v] of data.members) values.push({ value: v, name });
+    else if (data?.kind === 'generic' && a.name === ENTRIES) values.push({ value, name: ENTRIES });
     else problem ??= value.kind === 'unread' ? value : unread('arguments spread from a list whose length is not known', place);
   }
   return problem ?? values;
 }
+
+/** The name of an argument whose entries are given by their names: Python's `**params`. */
+const ENTRIES = '**';
 
 function isProblem(x: ArgumentValue[] | Unread): x is Unread {
   return !Array.isArray(x);
@@ -375,6 +379,7 @@ function resultsOf(m: Machine, scope: Scope): Value {
 function bindParameters(m: Machine, scope: Scope, parameters: readonly Parameter[], args: readonly ArgumentValue[], self: Value | undefined, takesSelf: boolean): void {
   const positional = args.filter((a) => a.name === undefined).map((a) => a.value);
   const named = new Map(args.filter((a) => a.name !== undefined).map((a) => [a.name!, a.value]));
+  const entries = named.get(ENTRIES);
   const list = [...parameters];
   if (takesSelf) {
     const first = list.shift();
@@ -382,7 +387,7 @@ function bindParameters(m: Machine, scope: Scope, parameters: readonly Parameter
   }
   for (const parameter of list) {
     if (parameter.restNamed) {
-      bindParameter(m, scope, parameter, m.object({ kind: 'record', members: new Map(named) }));
+      bindParameter(m, scope, parameter, entries ?? m.object({ kind: 'record', members: new Map(named) }));
     } else if (parameter.rest) {
       bindParameter(m, scope, parameter, m.list(positional.splice(0)));
     } else {
@@ -392,6 +397,7 @@ function bindParameters(m: Machine, scope: Scope, parameters: readonly Parameter
         value = named.get(name)!;
         named.delete(name);
       } else if (!parameter.keywordOnly && positional.length > 0) value = positional.shift()!;
+      else if (name !== undefined && entries) value = readMember(m, scope.frame.module, entries, name, m.place(scope, parameter.pattern.span));
       bindParameter(m, scope, parameter, value);
     }
   }

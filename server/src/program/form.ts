@@ -98,6 +98,7 @@ export interface ComprehensionLoop {
 
 export interface Argument {
   readonly value: Expression;
+  /** `**` with `spread`: its entries are given by their names. */
   readonly name?: string;
   readonly spread?: boolean;
 }

@@ -22,7 +22,7 @@ export function binary(m: Machine, module: Module, op: BinaryOperator, a: Value,
     case '>=':
     case '==':
     case '!=':
-      return compare(m, op, a, b, place);
+      return compareVectors(m, module, op, a, b, place) ?? compare(m, op, a, b, place);
     case 'in':
       return contains(m, a, b, place);
     case 'instanceof':
@@ -48,6 +48,15 @@ export function binary(m: Machine, module: Module, op: BinaryOperator, a: Value,
   if (isUnread(q)) return q;
   const r = arithmetic(m, op, p, q, place);
   return isUnread(r) ? r : { kind: 'scalar', expr: r, place };
+}
+
+/** Comparisons of numeric vectors are made item by item where the language has them apart from plain lists. */
+function compareVectors(m: Machine, module: Module, op: BinaryOperator, a: Value, b: Value, place: Place): Value | undefined {
+  if (!module.program.listConcat) return undefined;
+  const x = listOf(m, a);
+  const y = listOf(m, b);
+  if (!(x?.array && !x.outside) && !(y?.array && !y.outside)) return undefined;
+  return elementwiseOperation(m, module, op, a, b, x, y, place);
 }
 
 function listOf(m: Machine, v: Value): ListData | undefined {

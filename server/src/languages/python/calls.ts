@@ -27,8 +27,10 @@ function argumentsOf(c: Context, node: Node): Argument[] {
         return { value: c.expression(value), name: nameText(c, key) };
       }
       case 'list_splat':
-      case 'dictionary_splat':
-        return { value: inner ? c.expression(inner) : opaque('an unfinished argument', spanOf(n)), spread: true };
+      case 'dictionary_splat': {
+        const value = inner ? c.expression(inner) : opaque('an unfinished argument', spanOf(n));
+        return { value, spread: true, ...(n.type === 'dictionary_splat' ? { name: '**' } : {}) };
+      }
       default:
         return { value: c.expression(n) };
     }
