@@ -31,6 +31,8 @@ export interface SubjectRequest {
   readonly subject: Subject;
   readonly importFile: ReadRequest['importFile'];
   readonly budget: Budget;
+  /** For texts that are only tried out: verdicts without the exact test. */
+  readonly withoutProof?: boolean;
   readonly tag?: ReadRequest['tag'];
   readonly isNumber?: ReadRequest['isNumber'];
   /** Outputs to read beside those of the claims; their values come last in the reading. */
@@ -70,7 +72,7 @@ export function checkSubject(request: SubjectRequest): SubjectResult {
   if (!reading || pending.length === 0) return { claims, problems, ambiguities, reading };
   const places = new Map(reading.conditions.map((c) => [c.expr, c.place]));
   const assumed = reading.assumed.filter((a) => !freeSymbol(a));
-  const decisions = decide({ derived, pairs: pending, assumed, budget, placeOf: (c) => places.get(c) });
+  const decisions = decide({ derived, pairs: pending, assumed, budget, placeOf: (c) => places.get(c), ...(request.withoutProof ? { withoutProof: true } : {}) });
   const decided = [...claims];
   pending.forEach((p, i) => (decided[p.at] = { ...claims[p.at]!, decision: decisions[i]! }));
   return { claims: decided, problems, ambiguities, reading };

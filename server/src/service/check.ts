@@ -79,7 +79,7 @@ export async function checkBlock(
   const { entry } = lookup;
   await project.imports.prepare(document);
   let remembered = results?.find(document, placed, entry.derived);
-  const result = remembered?.result ?? checkSubject(subjectRequest(project, document, placed, entry, budget));
+  const result = remembered?.result ?? checkSubject({ ...subjectRequest(project, document, placed, entry, budget), withoutProof: !results });
   // What a budget cut short is no result to keep.
   if (!remembered && !budget.why) remembered = results?.add(document, placed, entry.derived, result);
   const own = declares(block)
