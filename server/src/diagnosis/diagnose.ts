@@ -4,6 +4,7 @@ import type { Span } from '../text/span';
 import type { Candidate } from './search/candidates/candidate';
 import { trimmed, type Edit } from './search/edits';
 import { Search } from './search/search';
+import { findDeclarationChange } from './declaration';
 import { isProgress, isRepair, type Recheck } from './verify';
 
 /** One thing that is wrong with the code of a function. */
@@ -21,6 +22,8 @@ export interface Diagnosis {
   readonly edits: readonly Edit[] | undefined;
   /** Where no repair was found: the smallest place at which some value would make every claim right. */
   readonly place: Span | undefined;
+  /** A change of the declaration with which the code would be right. */
+  readonly declaration: string | undefined;
 }
 
 const MOST_TRIES = 8;
@@ -34,14 +37,16 @@ export async function diagnose(request: SubjectRequest, result: SubjectResult, s
   if (!search) return undefined;
   const verify = (edits: readonly Edit[]) => isRepair(result, edits, recheck);
   const single = await firstOf(request, oneEdit(search), verify);
-  if (single) return repaired([single], source);
+  if (single) return repaired([single], source, undefined);
+  // Where one edit of the code does not do, one of the declaration may.
+  const declaration = findDeclarationChange(request.derived, result.claims);
   const steps = await inSteps(request, search, result, recheck);
-  if (steps) return repaired(steps, source);
+  if (steps) return repaired(steps, source, declaration);
   for (const { first, second } of search.pairs().slice(0, MOST_TRIES)) {
     if (!request.budget.look()) break;
-    if (await verify([...first.edits, ...second.edits])) return repaired([first, second], source);
+    if (await verify([...first.edits, ...second.edits])) return repaired([first, second], source, declaration);
   }
-  return { faults: [], edits: undefined, place: search.places[0]?.span };
+  return { faults: [], edits: undefined, place: search.places[0]?.span, declaration };
 }
 
 function* oneEdit(search: Search): Generator<Candidate> {
@@ -102,11 +107,12 @@ function moved(c: Candidate, before: readonly Edit[]): Candidate | undefined {
   return span && safe ? { ...c, place: span, edits: edits.map((e) => ({ text: e.text, span: e.span! })) } : undefined;
 }
 
-function repaired(candidates: readonly Candidate[], source: string): Diagnosis {
+function repaired(candidates: readonly Candidate[], source: string, declaration: string | undefined): Diagnosis {
   return {
     faults: candidates.map((c) => ({ code: c.code, span: c.place ?? c.site.span, old: c.old, new: c.new })),
     edits: candidates.flatMap((c) => c.edits.map((e) => trimmed(e, source))),
     place: undefined,
+    declaration,
   };
 }
 

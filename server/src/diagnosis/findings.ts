@@ -1,7 +1,9 @@
 import type { FindingCode } from '@visviva/shared';
 import type { Diagnosis } from './diagnose';
 import type { Edit } from './search/edits';
-import { faultText, NO_EXPLANATION, repairTitle, termAndFault } from './messages';
+import { declarationText, derivedText, faultText, NO_EXPLANATION, repairTitle, termAndFault } from './messages';
+import { expectedInCode } from './own-names';
+import type { Reading } from '../program/reading';
 import type { ClaimResult } from '../comparison/subject';
 import type { Expr } from '../expression/node';
 import type { Rational } from '../expression/rational';
@@ -20,12 +22,18 @@ export interface RawFinding {
   readonly repair?: { readonly title: string; readonly edits: readonly Edit[] };
 }
 
+/** The code that a claim is about. */
+export interface Context {
+  readonly reading: Reading | undefined;
+  readonly language: string;
+}
+
 /**
  * Says what is wrong with a claim.
  * @param claims all claims of the function, for what they tell about each other
  * @param here where to point when nothing better is known: the claim itself
  */
-export function describeClaim(derived: Derived, claims: readonly ClaimResult[], index: number, here: Place, diagnosis?: Diagnosis): RawFinding[] {
+export function describeClaim(derived: Derived, claims: readonly ClaimResult[], index: number, here: Place, diagnosis?: Diagnosis, context?: Context): RawFinding[] {
   const claim = claims[index]!;
   const { system } = derived;
   const { decision } = claim;
@@ -45,16 +53,20 @@ export function describeClaim(derived: Derived, claims: readonly ClaimResult[], 
       const [found, expected] = formatPair(witness.found, witness.expected);
       const numbers = `${state ? `At ${state} the` : 'The'} code gives ${found}, the declared energies give ${expected}.`;
       const where = claim.place ?? here;
-      const finish = (code: FindingCode, what: string): RawFinding[] => [
-        { code, message: `${claim.quantity}: ${what}. ${numbers}${conventionText(system, claim)}`, place: where },
-      ];
+      const other = diagnosis?.declaration ? ` ${declarationText(diagnosis.declaration)}` : '';
+      const last = `${numbers}${conventionText(system, claim)}${other}`;
+      const finish = (code: FindingCode, what: string): RawFinding[] => {
+        const place = diagnosis?.place ? { file: here.file, span: diagnosis.place } : where;
+        const own = expectedInCode(derived, claim, context?.reading, context?.language ?? '');
+        return [{ code, message: `${claim.quantity}: ${what}. ${last}${own ? ` ${derivedText(own)}` : ''}`, place }];
+      };
       if (rounded) return finish('rounded-constant', roundedText(rounded));
       if (diagnosis && diagnosis.faults.length > 0) {
         const term = diagnosis.faults.length === 1 ? findTermFault(derived, claims, index) : undefined;
         const repair = diagnosis.edits && { title: repairTitle(diagnosis.faults), edits: diagnosis.edits };
         return diagnosis.faults.map((f) => ({
           code: f.code,
-          message: `${claim.quantity}: ${term ? termAndFault(termText(term), f) : faultText(f)}. ${numbers}${conventionText(system, claim)}`,
+          message: `${claim.quantity}: ${term ? termAndFault(termText(term), f) : faultText(f)}. ${last}`,
           place: { file: here.file, span: f.span },
           ...(repair ? { repair } : {}),
         }));

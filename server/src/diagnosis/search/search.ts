@@ -112,6 +112,12 @@ export class Search {
 
   /** Two edits at once; after `known` and `open`. */
   pairs(): CandidatePair[] {
+    // What a place needs alone says nothing about what it needs together with another: everything is thought of again.
+    for (const [site, needed] of this.needs) {
+      if (needed.kind !== 'values' || !this.request.budget.look()) continue;
+      const spot = this.spotOf(site, undefined);
+      for (const make of this.makers) make(this.scene, spot, (c) => this.all.push(c));
+    }
     return findPairs(this.model, this.all, (c) => changeOf(this.model, c), this.request.budget);
   }
 
