@@ -52,6 +52,19 @@ function isTiny(e: Expr): boolean {
   return e.op === 'number' && Math.abs((e.data as Rational).toNumber()) <= 1e-3;
 }
 
+/** A comparison of the sizes of two things that both vary, without a threshold: every relation of them has been drawn. */
+function isContest(condition: Expr): boolean {
+  if (condition.op === 'not') return isContest(condition.args[0]!);
+  return (condition.op === 'less' || condition.op === 'lessEqual') && condition.args.every((a) => isMagnitude(a, 0));
+}
+
+function isMagnitude(e: Expr, depth: number): boolean {
+  if (e.op === 'abs') return e.args[0]!.op !== 'number';
+  if (depth > 64) return false;
+  if (e.op === 'select') return e.args.slice(1).every((a) => isMagnitude(a, depth + 1));
+  return e.op === 'max' && e.args.every((a) => isMagnitude(a, depth + 1));
+}
+
 /** Never negative: an absolute value, a root, a square, or sums and products of such. */
 function isSize(e: Expr): boolean {
   if (e.op === 'abs') return true;
@@ -91,6 +104,11 @@ export class Visits {
       }
     }
     return fresh;
+  }
+
+  /** The same, after many states: which of two sizes is larger, as in the choice of a pivot, may never change. */
+  get missingForGood(): Unvisited[] {
+    return this.missing.filter(({ condition }) => !isContest(condition));
   }
 
   private isAsked(condition: Expr, side: boolean): boolean {

@@ -202,7 +202,7 @@ function conclude(request: DecideRequest, motion: Motion, group: readonly Pair[]
         : `only ${t.votes} of ${tried} states gave finite numbers on both sides: give narrower \`ranges\``;
     return { verdict: 'unread', reason };
   }
-  const missing = t.visits.missing[0];
+  const missing = t.visits.missingForGood[0];
   if (missing) return { verdict: 'unread', reason: unvisitedReason(missing), place: placeOf(missing.condition) };
   return { verdict: 'holds', states: t.votes, worst: t.worst };
 }

@@ -27,7 +27,7 @@ function take(m: Machine, scope: Scope, e: Expression, holds: boolean): void {
     m.given.set(path, truth);
     return;
   }
-  if (e.kind === 'binary' && (e.op === '==' || e.op === '!=') && takeKind(m, e, (e.op === '==') === holds)) return;
+  if (e.kind === 'binary' && (e.op === '==' || e.op === '!=') && takeKind(m, scope, e, (e.op === '==') === holds)) return;
   const c = conditionOf(m, scope, e);
   // The shape just noted must not answer for the condition itself.
   void c;
@@ -39,13 +39,26 @@ function take(m: Machine, scope: Scope, e: Expression, holds: boolean): void {
   if (expr !== m.graph.true && expr !== m.graph.false) m.assumed.push(expr);
 }
 
-function takeKind(m: Machine, e: Expression & { kind: 'binary' }, equal: boolean): boolean {
+/** `Mode.Driven` */
+function evaluateQuietly(m: Machine, scope: Scope, e: Expression): Value {
+  m.quiet++;
+  const value = m.evaluate(scope, e);
+  m.quiet--;
+  return value;
+}
+
+function takeKind(m: Machine, scope: Scope, e: Expression & { kind: 'binary' }, equal: boolean): boolean {
   for (const [place, value] of [
     [e.left, e.right],
     [e.right, e.left],
   ] as const) {
     const path = pathOf(place);
     if (path === undefined) continue;
+    const named = value.kind === 'member' && equal ? evaluateQuietly(m, scope, value) : undefined;
+    if (named?.kind === 'string') {
+      m.given.set(path, named);
+      return true;
+    }
     if (value.kind === 'string' && equal) {
       m.given.set(path, { kind: 'string', value: value.value });
       return true;

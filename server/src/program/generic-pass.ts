@@ -1,8 +1,10 @@
+import type { SymbolData } from '../expression/node';
 import type { Place } from '../text/span';
 import type { Statement } from './form';
 import { genericAt } from './generics';
 import { DEAD, type Machine } from './machine';
-import { memberPath } from './paths';
+import { scalarOf } from './numbers';
+import { memberPath, pathOf } from './paths';
 import { nodesOf, patternNames, placesOf } from './scan';
 import type { Scope, Variable } from './scope';
 import type { Outcome } from './statements';
@@ -138,6 +140,44 @@ export function startsFromLiteralState(m: Machine, scope: Scope, bodies: readonl
     }
     return false;
   });
+}
+
+/**
+ * True for the sub-steps of an integrator, where all that is claimed is increments: the body carries the state on from
+ * itself and does not ask which pass it is. Such a claim is about one step, however many there are.
+ */
+export function isSubsteps(m: Machine, scope: Scope, s: Statement & { kind: 'loop' }): boolean {
+  const { outputs } = m.request;
+  if (outputs.length === 0 || !outputs.every((o) => o.increment)) return false;
+  const counters = new Set([...s.initial, ...s.update].flatMap((x) => (x.kind === 'declare' ? patternNames(x.target) : [])));
+  const carried: { readonly path: string; readonly e: Expression & { kind: 'assign' } }[] = [];
+  for (const node of nodesOf(s.body, false)) {
+    const e = node as Expression;
+    if (e.kind === 'name' && 'name' in e && counters.has(e.name)) return false;
+    if (e.kind !== 'assign' || !('target' in e)) continue;
+    const places: Expression[] = [...placesOf(e.target), ...patternNames(e.target).map((name): Expression => ({ kind: 'name', name, span: e.span }))];
+    for (const place of places) {
+      const path = pathOf(place);
+      if (path !== undefined && isStateNow(m, scope, place)) carried.push({ path, e });
+    }
+  }
+  const paths = new Set(carried.map((c) => c.path));
+  return carried.some(({ path, e }) => {
+    for (const node of nodesOf(e.value)) {
+      const x = node as Expression;
+      const mentioned = x.kind === 'name' || x.kind === 'member' || x.kind === 'index' ? pathOf(x) : undefined;
+      if (mentioned !== undefined && mentioned !== path && paths.has(mentioned)) return true;
+    }
+    return false;
+  });
+}
+
+function isStateNow(m: Machine, scope: Scope, place: Expression): boolean {
+  m.quiet++;
+  const value = m.evaluate(scope, place);
+  m.quiet--;
+  const expr = scalarOf(m, value);
+  return expr?.op === 'symbol' && (expr.data as SymbolData).role === 'coordinate';
 }
 
 function literalMember(m: Machine, scope: Scope, place: Expression): boolean {

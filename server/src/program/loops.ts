@@ -3,7 +3,7 @@ import { conditionOf } from './conditions';
 import { evaluate } from './expressions';
 import type { Pattern, Statement } from './form';
 import { genericAt } from './generics';
-import { genericPass, startsFromLiteralState, type PassStart } from './generic-pass';
+import { genericPass, isSubsteps, startsFromLiteralState, type PassStart } from './generic-pass';
 import { isWrap } from './limits';
 import type { Machine } from './machine';
 import { apply } from './merging';
@@ -30,7 +30,7 @@ export function loop(m: Machine, scope: Scope, s: LoopStatement, place: Place, l
   const first = execute(m, outer, s.initial);
   if (!first.normal) return first;
   if (m.request.withinLimits && isWrap(s)) return { exits: [], normal: true };
-  if (startsFromLiteralState(m, outer, [s.body, s.update])) return pass(m, outer, s, place, label);
+  if (isSubsteps(m, outer, s) || startsFromLiteralState(m, outer, [s.body, s.update])) return pass(m, outer, s, place, label);
   const base = m.store;
   const traced = m.trace.length;
   m.store = base.child();
