@@ -1,6 +1,7 @@
 import type { ClassNode, Comment, Subject } from '../../program/form';
 import { type Context, nameText, textOf } from './context';
 import { ANONYMOUS } from './functions';
+import type { Lost } from './recover';
 import { child, namedChildren, nodesOf, type Node, type Syntax } from './syntax';
 
 const MARK = '@visviva';
@@ -80,8 +81,28 @@ function placesIn(c: Context, root: Node): Places {
 
 /** What follows directly, where that is a function or class; else what is around. */
 function subjectOf(c: Context, places: Places, span: Range): Subject {
+  const lost = lostAt(c, span);
+  if (lost) return lostFunction(lost);
   const next = nextDefinition(c, places, span);
   return next ? named(c, places, next) : ownerOf(c, places, span);
+}
+
+/** A function that could not be parsed at all, in which the comment stands or which follows it. */
+function lostAt(c: Context, span: Range): Lost | undefined {
+  return c.lost.find(
+    (l) => (l.start <= span.start && span.end <= l.end) || (span.end <= l.start && isBlank(c.text.slice(span.end, l.start))),
+  );
+}
+
+function isBlank(text: string): boolean {
+  return text.split('\n').every((l) => /^\s*(?:#|$)/.test(l));
+}
+
+function lostFunction(lost: Lost): Subject {
+  const span = { start: lost.start, end: lost.end };
+  const name = lost.name ?? ANONYMOUS;
+  const opaque = 'not finished: it has a syntax error';
+  return { kind: 'function', path: name, node: { name, nameSpan: span, parameters: [], body: [], opaque, inheritsSelf: false, span, bodySpan: span } };
 }
 
 function nextDefinition(c: Context, places: Places, span: Range): Node | undefined {

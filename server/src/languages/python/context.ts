@@ -1,6 +1,7 @@
 import type { ClassNode, Expression, FunctionNode, Pattern, Statement } from '../../program/form';
 import type { Span } from '../../text/span';
 import type { Bindings } from './bindings';
+import type { Lost } from './recover';
 import type { Node } from './syntax';
 
 /**
@@ -22,6 +23,8 @@ export interface Context {
   readonly innerImports: Statement[];
   /** Offsets at which functions begin that the parser could not make sense of. */
   readonly broken: ReadonlySet<number>;
+  /** Those of which not even the name is in the tree. */
+  readonly lost: readonly Lost[];
   readonly errors: { readonly message: string; readonly span: Span }[];
 
   expression(node: Node): Expression;

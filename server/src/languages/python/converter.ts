@@ -5,6 +5,7 @@ import { classNode } from './classes';
 import type { Context, FunctionOptions } from './context';
 import { expression } from './expressions';
 import { functionNode } from './functions';
+import type { Lost } from './recover';
 import { block, statements } from './statements';
 import type { Node } from './syntax';
 import { target } from './targets';
@@ -22,6 +23,7 @@ export class Converter implements Context {
     readonly text: string,
     readonly isPython2: boolean,
     readonly broken: ReadonlySet<number>,
+    readonly lost: readonly Lost[],
     changing: ReadonlySet<string>,
   ) {
     this.bindings = new Bindings(undefined, [], new Set(), undefined, changing);

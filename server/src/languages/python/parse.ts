@@ -7,9 +7,9 @@ import { namedChildren, type Node } from './syntax';
 
 /** A module in program form. `comments` holds only those comments and docstrings that contain `@visviva`. */
 export function programOf(recovered: Recovered): Program {
-  const { syntax, broken, errors } = recovered;
+  const { syntax, broken, lost, errors } = recovered;
   const { root } = syntax;
-  const converter = new Converter(recovered.text, isPython2(recovered.text, root), broken, changingNames(recovered.text, root));
+  const converter = new Converter(recovered.text, isPython2(recovered.text, root), broken, lost, changingNames(recovered.text, root));
   const body = converter.statements(root.children);
   const known = new Set(body.flatMap(importedNames));
   const inner = converter.innerImports.filter((s) => importedNames(s).some((n) => !known.has(n)));

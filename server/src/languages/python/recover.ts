@@ -8,7 +8,13 @@ export interface Recovered {
   readonly text: string;
   /** Where functions begin that could not be parsed. */
   readonly broken: ReadonlySet<number>;
+  /** Functions of which not even the name fitted into the mended text. */
+  readonly lost: readonly Lost[];
   readonly errors: readonly { readonly message: string; readonly span: Span }[];
+}
+
+export interface Lost extends Span {
+  readonly name: string | undefined;
 }
 
 export type Parse = (text: string) => Syntax;
@@ -24,25 +30,29 @@ const MOST_PIECES = 400;
 export function recover(text: string, parse: Parse): Recovered {
   const syntax = parse(text);
   const dots = danglingDots(text, syntax.root);
-  if (!syntax.root.isBroken && dots.length === 0) return { syntax, text, broken: new Set(), errors: [] };
+  if (!syntax.root.isBroken && dots.length === 0) return { syntax, text, broken: new Set(), lost: [], errors: [] };
   const errors: { message: string; span: Span }[] = [];
   const broken = new Set<number>();
+  const lost: Lost[] = [];
   let mended = text;
   for (const piece of pieces(text)) {
     if (!isWrong(piece, text, dots, parse)) continue;
     const made = blank(piece, text);
     mended = mended.slice(0, piece.start) + made.text + mended.slice(piece.end);
-    if (piece.kind === 'function') broken.add(piece.head);
+    if (piece.kind === 'function') {
+      if (made.isNamed) broken.add(piece.head);
+      else lost.push({ start: piece.start, end: piece.end, name: piece.name });
+    }
     const what = piece.name === undefined ? 'This' : `\`${piece.name}\``;
     errors.push({ message: `${what} has a syntax error; it is not read until that is mended.`, span: made.span });
   }
   const again = mended === text ? syntax : parse(mended);
   if (errors.length === 0) errors.push(...leftovers(again.root));
-  return { syntax: again, text: mended, broken, errors };
+  return { syntax: again, text: mended, broken, lost, errors };
 }
 
 interface Piece {
-  readonly kind: 'function' | 'lines';
+  readonly kind: 'function' | 'class' | 'lines';
   readonly start: number;
   readonly end: number;
   /** Where `def` stands. */
@@ -77,7 +87,10 @@ function pieces(text: string): Piece[] {
       open = { kind: 'function', start: decorated ?? start, end: start, head, indent, name: def[1] };
       decorated = undefined;
     } else if (isDecorator) decorated ??= start;
-    else if (isClass) decorated = undefined;
+    else if (isClass) {
+      decorated = undefined;
+      found.push({ kind: 'class', start, end: start + line.length, head: start + indent, indent, name: /^class[ \t]+([\p{L}_][\p{L}\p{N}_]*)/u.exec(rest)?.[1] });
+    }
     else open ??= { kind: 'lines', start: decorated ?? start, end: start, head: start + indent, indent, name: undefined };
   }
   close(text.length);
@@ -87,24 +100,36 @@ function pieces(text: string): Piece[] {
 function isWrong(piece: Piece, text: string, dots: readonly number[], parse: Parse): boolean {
   if (dots.some((d) => piece.start <= d && d < piece.end)) return true;
   const source = text.slice(piece.start, piece.end);
+  if (piece.kind === 'class') return isOpenHead(source);
   const { root } = parse(piece.indent > 0 ? `if 1:\n${source}` : source);
   return root.isBroken;
 }
 
+/** A class's first line that neither ends in a colon nor goes on in brackets over the next lines. */
+function isOpenHead(line: string): boolean {
+  const code = line.replace(/#.*/, '').trim();
+  if (/:$|:\s*\S/.test(code)) return false;
+  return !/[(,]$/.test(code);
+}
+
 /** As many characters and lines, of which only comments and the docstring are left, after a head without a body. */
-function blank(piece: Piece, text: string): { text: string; span: Span } {
+function blank(piece: Piece, text: string): { text: string; span: Span; isNamed: boolean } {
   const source = text.slice(piece.start, piece.end);
   const at = piece.head - piece.start;
   const lineEnd = source.indexOf('\n', at) < 0 ? source.length : source.indexOf('\n', at);
   const out = source.replace(/[^\n]*/g, (l) => (/^\s*#/.test(l) ? l : ' '.repeat(l.length)));
   const docstring = piece.kind === 'function' ? docstringIn(source, at) : undefined;
-  let head = piece.kind === 'function' && piece.name !== undefined ? `def ${piece.name}():${docstring ? '' : '0'}` : 'pass';
-  if (head.length > lineEnd - at) head = lineEnd - at >= 4 ? 'pass' : '';
+  const heads =
+    piece.kind === 'class'
+      ? // What it is built on is not known any more.
+        [`class ${piece.name ?? '_'}(_):`, `class ${piece.name ?? '_'}:`, 'if 1:']
+      : [...(piece.kind === 'function' && piece.name !== undefined ? [`def ${piece.name}():${docstring ? '' : '0'}`] : []), 'pass'];
+  const head = heads.find((h) => h.length <= lineEnd - at) ?? '';
   let made = out.slice(0, at) + head + out.slice(at + head.length);
   if (docstring && head.startsWith('def')) {
     made = made.slice(0, docstring.start) + source.slice(docstring.start, docstring.end) + made.slice(docstring.end);
   }
-  return { text: made, span: { start: piece.head, end: piece.start + lineEnd } };
+  return { text: made, span: { start: piece.head, end: piece.start + lineEnd }, isNamed: head.startsWith('def') };
 }
 
 function docstringIn(source: string, from: number): Span | undefined {
