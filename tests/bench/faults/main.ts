@@ -87,6 +87,24 @@ function table(title: string, list: readonly Outcome[]): string[] {
   ];
 }
 
+function usualTests(): string[] {
+  const row = (name: string, of: (o: Outcome) => boolean | undefined): string => {
+    const able = single.filter((o) => of(o) !== undefined);
+    return `| ${name} | ${able.length} | ${share(able, (o) => of(o)!)} | ${share(single, (o) => of(o) === true)} | ${share(able, (o) => o.detected)} |`;
+  };
+  return [
+    '## The usual tests on the same single faults',
+    '',
+    'Runge-Kutta integration over two seconds at default parameters (all 1, no damping, no inputs).',
+    '',
+    '| test | mutants it applies to | detected of these | detected of all | Visviva detects of these |',
+    '|---|---|---|---|---|',
+    row('energy drift above 1e-4', (o) => o.energy),
+    row('golden trajectory', (o) => o.golden),
+    '',
+  ];
+}
+
 const commit = (() => {
   try {
     return execFileSync('git', ['rev-parse', '--short', 'HEAD'], { encoding: 'utf8' }).trim();
@@ -103,6 +121,7 @@ const text = [
   '',
   ...table('One fault', single),
   ...table('Two faults', pairs),
+  ...usualTests(),
 ].join('\n');
 console.log(text);
 if (only === undefined) writeFileSync('tests/bench/faults/results.md', text);

@@ -2,6 +2,7 @@ import type { FileResult } from '../../../server/src/service/api';
 import { checkText } from '../../support/check';
 import type { Fixture, Section } from '../../support/fixtures';
 import { Judge } from '../../support/judge';
+import { Baselines } from './baselines';
 import type { Mutation } from './mutations';
 
 /** What became of one mutant. */
@@ -13,11 +14,15 @@ export interface Outcome {
   readonly repaired: boolean;
   readonly wrong: boolean;
   readonly milliseconds: number;
+  /** What the usual tests make of it; undefined where they can't be made. */
+  readonly energy: boolean | undefined;
+  readonly golden: boolean | undefined;
   readonly note: string;
 }
 
 export class Bench {
   private readonly judge: Judge;
+  private readonly baselines: Baselines;
 
   constructor(
     readonly fixture: Fixture,
@@ -25,6 +30,7 @@ export class Bench {
     private readonly others: ReadonlyMap<string, string>,
   ) {
     this.judge = new Judge(fixture, section, others);
+    this.baselines = new Baselines(fixture, section, others);
   }
 
   /** Largest relative difference of a claim, by the tests' own judge; undefined where the code does not run. */
@@ -54,17 +60,22 @@ export class Bench {
     const wrong = claims.filter((c) => c.verdict === 'differs');
     const findings = wrong.flatMap((c) => c.findings);
     const repair = findings.find((f) => f.repair)?.repair;
+    const usual = this.baselines.detects(text);
+    const { applies } = this.baselines;
     const places = placesOf(text, mutations);
     const fixed = repair && withEdits(text, repair.edits);
     const after = fixed === undefined ? undefined : this.worst(fixed);
     const isRight = after !== undefined && after <= 1e-6;
     return {
       operators: mutations.map((m) => m.operator),
-      detected: wrong.length > 0,
+      // What was right and can no longer be read is not passed over either.
+      detected: claims.some((c) => c.verdict !== 'holds'),
       line: places.every((p) => findings.some((f) => f.range.start.line <= p.line && p.line <= f.range.end.line && f.range.end.line - f.range.start.line <= 3)),
       expression: places.every((p) => findings.some((f) => meets(text, f.range, p) || f.repair?.edits.some((e) => meets(text, e.range, p)))),
       repaired: isRight,
       wrong: repair !== undefined && !isRight,
+      energy: applies.energy ? usual.energy : undefined,
+      golden: applies.golden ? usual.golden : undefined,
       milliseconds: (used.user + used.system) / 1000,
       note: repair ? repair.title : wrong.length > 0 ? `no repair (${findings[0]?.code})` : claims.map((c) => `${c.verdict} ${c.findings[0]?.message ?? ''}`).join('; '),
     };
