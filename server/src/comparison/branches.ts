@@ -1,3 +1,4 @@
+import type { Graph } from '../expression/graph';
 import type { Domain, Expr } from '../expression/node';
 import type { Rational } from '../expression/rational';
 import { reachable } from '../expression/reach';
@@ -5,11 +6,35 @@ import type { Registers } from '../expression/tape';
 import type { Unvisited } from './pair';
 import { isRuledOut } from './ruled-out';
 
-/** The conditions that choose values in each group of expressions. */
-export function conditionsOfEach(groups: readonly (readonly Expr[])[]): Expr[][] {
+/** The choices that expressions make: conditions of branches, and kinks of clips and absolute values. */
+export interface Choices {
+  readonly conditions: readonly Expr[];
+  readonly kinks: readonly Expr[];
+}
+
+export function choicesOf(graph: Graph, roots: readonly Expr[]): Choices {
+  return { conditions: conditionsOf(roots), kinks: kinksOf(graph, roots) };
+}
+
+/** The same for each group of expressions. */
+export function choicesOfEach(graph: Graph, groups: readonly (readonly Expr[])[]): Choices[] {
   // Most code has none at all: one look at everything together settles that.
-  if (conditionsOf(groups.flat()).length === 0) return groups.map(() => []);
-  return groups.map(conditionsOf);
+  const all = choicesOf(graph, groups.flat());
+  if (all.conditions.length + all.kinks.length === 0) return groups.map(() => all);
+  return groups.map((g) => choicesOf(graph, g));
+}
+
+/** Conditions that say on which side of a kink a value lies; those that can have one side only are left out. */
+function kinksOf(graph: Graph, roots: readonly Expr[]): Expr[] {
+  const out = new Set<Expr>();
+  for (const node of reachable(roots)) {
+    const [a, b] = node.args;
+    if (node.op === 'min' || node.op === 'max') out.add(graph.lessEqual(a!, b!));
+    else if ((node.op === 'abs' || node.op === 'sign') && !isSize(a!)) out.add(graph.less(a!, graph.zero));
+  }
+  out.delete(graph.true);
+  out.delete(graph.false);
+  return [...out];
 }
 
 /** The conditions that choose values of these expressions. */
@@ -84,11 +109,17 @@ function isSize(e: Expr): boolean {
 export class Visits {
   private readonly seen = new Map<Expr, [boolean, boolean]>();
 
+  readonly conditions: readonly Expr[];
+  private readonly kinks: ReadonlySet<Expr>;
+
   constructor(
-    readonly conditions: readonly Expr[],
+    choices: Choices,
     private readonly domains: ReadonlyMap<Expr, Domain>,
   ) {
-    for (const c of conditions) this.seen.set(c, [false, false]);
+    this.conditions = [...new Set([...choices.conditions, ...choices.kinks])];
+    const branches = new Set(choices.conditions);
+    this.kinks = new Set(choices.kinks.filter((k) => !branches.has(k)));
+    for (const c of this.conditions) this.seen.set(c, [false, false]);
   }
 
   /** True when the state is the first on some side. */
@@ -115,9 +146,25 @@ export class Visits {
     return !isThin(condition, side) && !isRuledOut(condition, side, this.domains);
   }
 
+  /** How many sides of branches and kinks are worth looking for still. */
+  get wanted(): number {
+    let count = this.missing.length;
+    for (const kink of this.kinks) {
+      const [no, yes] = this.seen.get(kink)!;
+      if (!yes && this.isAsked(kink, true)) count++;
+      if (!no && this.isAsked(kink, false)) count++;
+    }
+    return count;
+  }
+
+  /**
+   * Sides of branches that have to be seen. Those of kinks need not: a clip at a value that nothing reaches within the
+   * declared ranges is no branch of its own.
+   */
   get missing(): Unvisited[] {
     const out: Unvisited[] = [];
     for (const [condition, [no, yes]] of this.seen) {
+      if (this.kinks.has(condition)) continue;
       if (!yes && this.isAsked(condition, true)) out.push({ condition, side: true });
       if (!no && this.isAsked(condition, false)) out.push({ condition, side: false });
     }

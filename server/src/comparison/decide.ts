@@ -3,7 +3,7 @@ import { Tape, type Column } from '../expression/tape';
 import type { Derived } from '../mechanics/lagrange';
 import type { Budget } from '../text/budget';
 import type { Place } from '../text/span';
-import { conditionsOf, conditionsOfEach, Visits } from './branches';
+import { choicesOf, choicesOfEach, Visits } from './branches';
 import { prove } from './identity';
 import { Motion } from './motion';
 import { expand } from './near';
@@ -67,7 +67,7 @@ function decideTogether(request: DecideRequest, motion: Motion, decisions: (Deci
   const claims = system.coordinates.map((c) => pairs.findIndex((p) => p.expected === c.acceleration));
   if (claims.length === 0 || claims.includes(-1)) return;
   const found = claims.map((i) => pairs[i]!.found);
-  const visits = new Visits(conditionsOf(found), system.domains);
+  const visits = new Visits(choicesOf(system.graph, found), system.domains);
   const tape = new Tape([...found, ...assumed, ...visits.conditions]);
   const accelerations = new Set(system.coordinates.map((c) => c.acceleration));
   if (tape.symbols.some((s) => accelerations.has(s))) return;
@@ -103,7 +103,7 @@ function decideTogether(request: DecideRequest, motion: Motion, decisions: (Deci
     // Values are there, but guaranteed bounds say nothing of them: estimate the bounds from here on.
     if (votes - before < STATES / 2) sampled = true;
   }
-  if (votes < FEWEST || visits.missing.length > 0 || singular(motion, symbols, sampler)) return;
+  if (votes < FEWEST || visits.wanted > 0 || singular(motion, symbols, sampler)) return;
   for (const i of claims) decisions[i] = { verdict: 'holds', states: votes, worst };
 }
 
@@ -126,7 +126,7 @@ interface Tally {
 
 function decideEach(request: DecideRequest, motion: Motion, groups: readonly (readonly Pair[])[]): Decision[] {
   const { derived, assumed, budget } = request;
-  const choices = conditionsOfEach(groups.map((group) => group.flatMap((p) => [p.found, p.expected])));
+  const choices = choicesOfEach(derived.system.graph, groups.map((group) => group.flatMap((p) => [p.found, p.expected])));
   const tallies: Tally[] = groups.map((_, i) => ({
     votes: 0,
     missing: 0,
@@ -144,8 +144,8 @@ function decideEach(request: DecideRequest, motion: Motion, groups: readonly (re
   for (let batch = 0; batch < MOST_BATCHES; batch++) {
     // Usual states first; unusual ones only to fill branches not reached and votes not given.
     const wide = batch >= 3;
-    const open = tallies.filter((t) => t.votes < STATES || t.visits.missing.length > 0);
-    if (open.length === 0 || (wide && tallies.every((t) => t.votes >= FEWEST && t.visits.missing.length === 0))) break;
+    const open = tallies.filter((t) => t.votes < STATES || t.visits.wanted > 0);
+    if (open.length === 0 || (wide && tallies.every((t) => t.votes >= FEWEST && t.visits.wanted === 0))) break;
     if (!budget.look()) break;
     const { registers, columns } = prober.run(sampler.draw(symbols, STATES, wide), STATES, bounds);
     tried += STATES;
