@@ -75,19 +75,21 @@ function binary(c: Context, node: Node, left: Expression): Expression {
   const right = operand(c, node, 'right');
   const op = BINARY[sign?.type ?? ''] ?? 'bit';
   const opSpan = sign ? spanOf(sign) : spanOf(node);
-  const dropsRest = op === '/' && c.isPython2 && isInteger(left) && isInteger(right);
+  const dropsRest = op === '/' && c.isPython2 && isInteger(c, left) && isInteger(c, right);
   return { kind: 'binary', op: dropsRest ? 'floor-divide' : op, left, right, opSpan, span: spanOf(node) };
 }
 
-/** True for an expression that is an integer whatever its variables are. */
-export function isInteger(e: Expression): boolean {
+/** True for an expression that is an integer whatever its variables from outside are. */
+export function isInteger(c: Context, e: Expression): boolean {
   switch (e.kind) {
     case 'number':
       return e.integer;
+    case 'name':
+      return c.bindings.isInteger(e.name);
     case 'unary':
-      return (e.op === '-' || e.op === '+') && isInteger(e.operand);
+      return (e.op === '-' || e.op === '+') && isInteger(c, e.operand);
     case 'binary':
-      return /^(?:[-+*%]|\*\*|floor-divide|remainder-floor)$/.test(e.op) && isInteger(e.left) && isInteger(e.right);
+      return /^(?:[-+*%]|\*\*|floor-divide|remainder-floor)$/.test(e.op) && isInteger(c, e.left) && isInteger(c, e.right);
     case 'call':
       return e.callee.kind === 'name' && (e.callee.name === 'len' || e.callee.name === 'int');
     default:

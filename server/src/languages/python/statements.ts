@@ -1,6 +1,7 @@
 import type { Expression, Pattern, Statement } from '../../program/form';
 import { enumMembers, isEnum } from './classes';
 import { type Context, DEEPEST, namePattern, nameText, opaque, spanOf, textOf } from './context';
+import { isInteger } from './expressions';
 import { conditionals, loopFor, loopWhile, tries, withs } from './control';
 import { importFrom, importModules } from './imports';
 import { matches } from './match';
@@ -160,6 +161,7 @@ function named(c: Context, left: Node, right: Node): Expression {
 
 export function assign(c: Context, target: Pattern, value: Expression, span: Statement['span']): Statement[] {
   const names = boundNames(target);
+  if (c.isPython2) for (const n of names) noteInteger(c, n.name, target.kind === 'name' && isInteger(c, value));
   if (isPlain(target)) {
     const fresh = names.filter((n) => c.bindings.bind(n.name));
     if (fresh.length === names.length && names.length > 0) {
@@ -169,6 +171,11 @@ export function assign(c: Context, target: Pattern, value: Expression, span: Sta
     return [...fresh.map((n) => empty(n)), { kind: 'expression', value: { kind: 'assign', target, value, yields: 'new', span }, span }];
   }
   return [...announce(c, target), { kind: 'expression', value: { kind: 'assign', target, value, yields: 'new', span }, span }];
+}
+
+/** A name counts as an integer while every assignment to it was one. */
+function noteInteger(c: Context, name: string, value: boolean): void {
+  c.bindings.noteInteger(name, value && (!c.bindings.isBound(name) || c.bindings.isInteger(name)));
 }
 
 /** Makes the new names of a target known as variables of the function. */
@@ -204,7 +211,9 @@ function augmentation(c: Context, node: Node): Statement[] {
   const sign = child(node, 'operator');
   if (!left || !right || !sign) return [{ kind: 'opaque', reason: 'an unfinished assignment', span }];
   const target = c.target(left);
-  const value: Expression = { kind: 'assign', target, op: augmented(textOf(c, sign)), value: c.expression(right), yields: 'new', span };
+  const given = c.expression(right);
+  if (target.kind === 'name' && !isInteger(c, given)) c.bindings.noteInteger(target.name, false);
+  const value: Expression = { kind: 'assign', target, op: augmented(textOf(c, sign)), value: given, yields: 'new', span };
   return [...announced(c, right, span), { kind: 'expression', value, span }];
 }
 
