@@ -117,6 +117,11 @@ export class Model {
 
   readonly firstStates = FIRST_STATES;
 
+  /** What the search has cost so far, the same on every machine. */
+  get work(): number {
+    return this.tape.work + this.first.work;
+  }
+
   /** The same at the first few states only. */
   firstLook(changes: readonly Change[], use: (change: number, found: (target: Target) => Float64Array) => void): void {
     this.run(this.first, FIRST_STATES, FIRST_BLOCKS, changes, use);

@@ -19,6 +19,9 @@ import { mapSource, type Site, type SourceMap } from './sites';
 import { makeScene } from './scene';
 import { MODES, readTagged, type Evaluation } from './tagged';
 
+/** Operations of trials; some seconds. */
+const MOST_WORK = 600_000;
+
 const BASIC: readonly Maker[] = [signs, assignments, operators, drops, groupings, brackets, names, constants, functions, powers];
 
 /** The search for an edit that makes all claims of a function right, in stages from cheap to dear. */
@@ -51,7 +54,7 @@ export class Search {
     });
     this.makers = [...BASIC, insertions(terms, new LogFit(bases, model.n))];
     for (const site of map.sites) {
-      if (!request.budget.look()) break;
+      if (!this.mayGoOn) break;
       const evaluations = model.evaluations(site);
       if (evaluations.length === 0 || !this.valuesOf(evaluations)) continue;
       this.needs.set(site, solvePlace(model, site, evaluations));
@@ -84,7 +87,7 @@ export class Search {
     const swaps: Candidate[] = [];
     exchanges(this.scene, this.map.siblings, (s) => this.model.evaluations(s), (c) => swaps.push(c));
     this.all.push(...swaps);
-    passed.push(...confirmed(this.model, swaps), ...everywhere(this.model, this.repeated));
+    if (this.mayGoOn) passed.push(...confirmed(this.model, swaps), ...everywhere(this.model, this.repeated));
     this.untried.sort(byCost);
     return passed.sort(byCost);
   }
@@ -93,7 +96,7 @@ export class Search {
   partial(): Candidate[] {
     const out: { candidate: Candidate; fixes: number }[] = [];
     for (const [site, needed] of this.needs) {
-      if (needed.kind !== 'none' || !needed.partial || !this.request.budget.look()) continue;
+      if (needed.kind !== 'none' || !needed.partial || !this.mayGoOn) continue;
       const { need, fixes } = needed.partial;
       const spot = this.spotOf(site, need);
       for (const make of this.makers) {
@@ -114,18 +117,24 @@ export class Search {
   pairs(): CandidatePair[] {
     // What a place needs alone says nothing about what it needs together with another: everything is thought of again.
     for (const [site, needed] of this.needs) {
-      if (needed.kind !== 'values' || !this.request.budget.look()) continue;
+      if (needed.kind !== 'values' || !this.mayGoOn) continue;
       const spot = this.spotOf(site, undefined);
       for (const make of this.makers) make(this.scene, spot, (c) => this.all.push(c));
     }
+    if (!this.mayGoOn) return [];
     return findPairs(this.model, this.all, (c) => changeOf(this.model, c), this.request.budget);
+  }
+
+  /** Bounded by work, so that what is found does not depend on how fast the machine is. */
+  private get mayGoOn(): boolean {
+    return this.model.work < MOST_WORK && this.request.budget.look();
   }
 
   private at(kind: Needed['kind']): Candidate[] {
     const passed: Candidate[] = [];
     for (const [site, needed] of this.needs) {
       if (needed.kind !== kind) continue;
-      if (!this.request.budget.look()) break;
+      if (!this.mayGoOn) break;
       passed.push(...confirmed(this.model, this.make(site, needed)));
     }
     return passed;

@@ -14,6 +14,8 @@ export class TrialTape {
   private readonly e: Float64Array;
   private readonly base: Float64Array;
   private readonly users = new Map<Expr, Int32Array>();
+  /** Operations done in trials so far, all states of one counted once. */
+  work = 0;
 
   constructor(
     roots: readonly Expr[],
@@ -65,6 +67,7 @@ export class TrialTape {
     for (const { symbol, values } of known) this.v.set(values, this.slot.get(symbol)!);
     const touched = known.length === 1 ? this.usersOf(known[0]!.symbol) : this.merged(known.map((k) => k.symbol));
     for (const i of touched) this.evaluate(i);
+    this.work += touched.length + 1;
     const result = use();
     for (const { symbol } of known) this.restore(this.slot.get(symbol)!, this.n);
     for (const i of touched) {
