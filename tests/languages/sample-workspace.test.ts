@@ -39,6 +39,7 @@ const SAMPLES: readonly { file: string; run?: string; wrong?: string; unread?: s
   },
   { file: 'rides/half-pipe.ts', run: "trough([x, x'], P, m, a, g)" },
   { file: 'rides/drop-tower.ts', unread: 'zDotDot' },
+  { file: 'rides/big-wheel.py' },
 ];
 
 const root = new URL('../../sample-workspace/', import.meta.url);
