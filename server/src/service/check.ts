@@ -5,6 +5,7 @@ import type { Diagnosis } from '../diagnosis/diagnose';
 import { describeClaim, type RawFinding } from '../diagnosis/findings';
 import { inOrder } from '../diagnosis/describe';
 import { symbolText, type SymbolData } from '../expression/node';
+import { symbolsOf } from '../expression/reach';
 import { checkDimensions } from '../mechanics/dimensions';
 import { printFormula } from '../notation';
 import { findUnused } from '../mechanics/unused';
@@ -144,7 +145,11 @@ function withUnused(document: Document, outcomes: BlockOutcome[]): BlockOutcome[
     if (!claimed || document.language === 'visviva') return o;
     const shift = o.placed.block.span.start - system.block.span.start;
     const family = outcomes.flatMap((x) => (x.placed.block.name === system.name && x.entry ? [...x.entry.derived.system.scope.used] : []));
-    const unused = findUnused(system, new Set(family)).map((p) => ({ ...p, span: { start: p.span.start + shift, end: p.span.end + shift } }));
+    // Stabilising terms vanish on the constraints: what claims that hold depend on is in use, though no energy has it.
+    const right = outcomes.flatMap((x) =>
+      x.placed.block.name === system.name ? (x.result?.claims ?? []).filter((c) => c.decision.verdict === 'holds').flatMap((c) => (c.found ? symbolsOf(c.found) : [])) : [],
+    );
+    const unused = findUnused(system, new Set([...family, ...right])).map((p) => ({ ...p, span: { start: p.span.start + shift, end: p.span.end + shift } }));
     return unused.length > 0 ? { ...o, problems: [...o.problems, ...unused] } : o;
   });
 }
