@@ -1,7 +1,7 @@
 import type { Place } from '../text/span';
 import { findMember } from './class-members';
 import { callSuper, construct } from './classes';
-import { damage, unknownCall } from './damage';
+import { changesReceiver, damage, unknownCall, unknownMethod } from './damage';
 import { evaluate } from './expressions';
 import type { Argument, Expression, Parameter } from './form';
 import { childOf, copyOfGeneric, fallbackOf, fieldValue, genericAt, hasWritesBelow, valueOf } from './generics';
@@ -60,6 +60,9 @@ export function evaluateCall(m: Machine, scope: Scope, e: Expression & { kind: '
       if (f === o) return forward(m, scope, name, o, args, place);
       const copy = args.length === 0 ? copyOf(m, o, name) : undefined;
       if (copy) return copy;
+      if (args.length === 0 && changesReceiver(m, e, name, f, o)) {
+        return unknownMethod(m, o, args, place, wordsOf(e.callee));
+      }
       return callValue(m, scope, f, o, args, place, wordsOf(e.callee), e.isNew);
     });
   }
@@ -156,13 +159,13 @@ export function callValue(
     case 'method':
       return runIntrinsic(m, scope.frame.module, callee.intrinsic, callee.self, args, place);
     case 'object':
-      return callObject(m, scope, callee, args, place, words);
+      return callObject(m, scope, callee, self, args, place, words);
     default:
       return unknownCall(m, args, place, callee.kind === 'nothing' ? words : `${words}\`, a ${describe(callee)}, \`(...)`);
   }
 }
 
-function callObject(m: Machine, scope: Scope, callee: Value & { kind: 'object' }, args: readonly ArgumentValue[], place: Place, words: string): Value {
+function callObject(m: Machine, scope: Scope, callee: Value & { kind: 'object' }, self: Value | undefined, args: readonly ArgumentValue[], place: Place, words: string): Value {
   const data = dataOf(m, callee)!;
   if (data.kind === 'record' && data.info) {
     const found = findMember(data.info, '__call__');
@@ -189,7 +192,7 @@ function callObject(m: Machine, scope: Scope, callee: Value & { kind: 'object' }
   if (list !== undefined) {
     return unknownCall(m, args, place, words, `can't read the call \`${words}(...)\`: how many items \`${list}\` has is not known; bind it as a whole, \`reads ${list} = [...]\``);
   }
-  return unknownCall(m, args, place, words);
+  return unknownMethod(m, self, args, place, words);
 }
 
 /** `carts` of `carts.map`, where `map` is a method of lists. */
@@ -326,8 +329,10 @@ export function invoke(m: Machine, f: FunctionValue, self: Value | undefined, ar
     ...(home ? { home } : {}),
   };
   const scope = new Scope(f.scope, frame, true);
-  bindParameters(m, scope, node.parameters, args, node.selfParameter ? receiver : undefined, node.selfParameter === true);
-  const value = runBody(m, scope, base, place);
+  const value = m.meaning(frame.module, place, () => {
+    bindParameters(m, scope, node.parameters, args, node.selfParameter ? receiver : undefined, node.selfParameter === true);
+    return runBody(m, scope, base, place);
+  });
   m.calls--;
   return value;
 }

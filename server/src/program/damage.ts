@@ -1,9 +1,11 @@
 import type { Place } from '../text/span';
 import type { ArgumentValue } from './calls';
+import type { Expression } from './form';
 import type { Machine } from './machine';
+import { fallbackOf } from './generics';
 import { assignments } from './scan';
 import { write } from './variables';
-import { unread, type Unread } from './values';
+import { unread, type Unread, type Value } from './values';
 
 /** What a call that can't be read may have done. */
 
@@ -37,4 +39,23 @@ export function damage(m: Machine, args: readonly ArgumentValue[], why: Unread):
       if (own.kind === 'generic') for (const key of [...own.members.keys()]) own.members.set(key, why);
     }
   }
+}
+
+const MUTATORS = /^(?:normali[sz]e|negate|invert|reset|clear|update|step|advance|integrate|zero|wrap|clamp|limit)$/i;
+
+/** True for a call without arguments of a method that is not known and that is called for what it does. */
+export function changesReceiver(m: Machine, e: Expression & { kind: 'call' }, name: string, f: Value, receiver: Value): boolean {
+  if (f.kind !== 'object' || receiver.kind !== 'object' || e.optional) return false;
+  const [callee, object] = [m.store.data(f.id), m.store.data(receiver.id)];
+  if (callee.kind !== 'generic' || object.kind !== 'generic' || m.naming.hasRead(`${callee.generic.path}()`)) return false;
+  if (fallbackOf(m, callee.generic)) return false;
+  return m.discarded === e || MUTATORS.test(name);
+}
+
+/** A method that is not known may change what it is called on. */
+export function unknownMethod(m: Machine, self: Value | undefined, args: readonly ArgumentValue[], place: Place, words: string): Unread {
+  const data = self?.kind === 'object' ? m.store.data(self.id) : undefined;
+  const why = unknownCall(m, self ? [...args, { value: self }] : args, place, words);
+  if (self?.kind === 'object' && data?.kind === 'generic' && data.generic.path !== 'this') m.breakObject(self.id, why);
+  return why;
 }

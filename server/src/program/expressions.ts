@@ -35,6 +35,7 @@ export function evaluate(m: Machine, scope: Scope, e: Expression): Value {
 
 /** Notes a number's place, and puts in its stead what the caller asked for. */
 function placed(m: Machine, e: Expression, place: Place, value: Value): Value {
+  if (m.callSite) return value.kind === 'scalar' && !m.keepPlaces ? { ...value, place: m.callSite } : value;
   const { override } = m.request;
   if (override && override.span.start === e.span.start && override.span.end === e.span.end && override.file === place.file) {
     const n = value.kind === 'unread' ? value : numeric(m, value, place);

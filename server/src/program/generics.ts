@@ -1,6 +1,6 @@
 import { childNames } from './children';
 import type { Machine } from './machine';
-import { lastName } from './paths';
+import { lastName, memberPath } from './paths';
 import { typeFacts, typeOfMember } from './type-notes';
 import type { Meaning } from './reading';
 import { isUnread, unread, type Generic, type GenericData, type ObjectValue, type Scalar, type Value } from './values';
@@ -229,7 +229,12 @@ function generalise(m: Machine, id: number, generic: Generic, depth: number) {
   const data = m.store.data(id);
   const base = m.request.program.indexBase;
   const one = (v: Value, key: string): Value => {
-    if (v.kind === 'scalar' && m.naming.containsDeclared(v.expr)) return v;
+    if (v.kind === 'scalar' && m.naming.containsDeclared(v.expr)) {
+      // What is state begins with this value, and has another later.
+      const path = memberPath(generic.path, key);
+      const isState = m.naming.hasRead(path) || m.naming.isState(key) || m.isAssignedMember(key);
+      return isState ? childOf(m, -id, generic, key, generic.place) : v;
+    }
     const isCode = v.kind === 'function' || v.kind === 'class' || v.kind === 'library' || v.kind === 'method' || v.kind === 'module';
     if (isCode || depth > 8) return v;
     const constant = generic.constant && data.kind === 'record' && !m.isAssignedMember(key);

@@ -2,6 +2,12 @@ import type { Expr } from '../expression/node';
 import type { Graph } from '../expression/graph';
 import type { Program } from './form';
 
+/** A package that is read by what it means: code in program form that says so, of which nothing is shown or mended. */
+export interface Meaning {
+  readonly name: string;
+  readonly program: Program;
+}
+
 /**
  * A language's numeric library, as a table of meanings. A language folder fills one in; the executor looks names up in it
  * after the names of the program itself.
@@ -24,6 +30,10 @@ export interface Library {
    * global style -> `Math.sin`, or the reason why it is not known what it gives.
    */
   bare?(name: string, program: Program): string | { readonly unread: string } | undefined;
+  /** What an imported package means, where that is said in program form. */
+  packageMeaning?(from: string): Meaning | undefined;
+  /** The same of a name that a page knows without an import; `exported` is the export it is, else it is the whole. */
+  globalMeaning?(name: string): { readonly of: Meaning; readonly exported?: string } | undefined;
   /** Calls that can be left out when their value is not used: `console.log`. */
   readonly ignorable: ReadonlySet<string>;
 }

@@ -50,6 +50,10 @@ export class Machine {
   /** Set while an output is read, so that values keep the place that made them. */
   keepPlaces = false;
   calls = 0;
+  /** The expression of the statement that is being run, whose value goes nowhere. */
+  discarded: Expression | undefined;
+  /** The call in the project's own code under which a package's meaning is being worked out. */
+  callSite: Place | undefined;
   readonly classes = new Map<ClassNode, ClassInfo>();
   /** The instance that a constructor is making from generic arguments: what its fields mean by `reads` or name, they are. */
   constructing: number | undefined;
@@ -80,7 +84,9 @@ export class Machine {
   }
 
   place(scope: Scope, span: Span): Place {
-    return { file: scope.frame.module.file, span };
+    const { module } = scope.frame;
+    if (module.isMeaning) return this.callSite ?? { file: this.request.file, span: { start: 0, end: 0 } };
+    return { file: module.file, span };
   }
 
   /** The reason why nothing more is read, once the budget is spent. */
@@ -203,6 +209,18 @@ export class Machine {
   isAssignedMember(name: string): boolean {
     for (const module of this.modules.values()) if (memberIsAssigned(module.program, name)) return true;
     return false;
+  }
+
+  /** Works out what a package means by a call, of whose parts nothing is recorded. */
+  meaning<T>(module: Module, place: Place, body: () => T): T {
+    if (!module.isMeaning) return body();
+    const before = this.callSite;
+    this.callSite = before ?? place;
+    try {
+      return body();
+    } finally {
+      this.callSite = before;
+    }
   }
 
   /** Does something on a branch on which a condition holds. */

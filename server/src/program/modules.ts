@@ -3,11 +3,11 @@ import { classInfo } from './classes';
 import { evaluate } from './expressions';
 import type { Expression, Program, Statement, TypeNote } from './form';
 import { genericAt } from './generics';
-import type { Library } from './library';
+import type { Library, Meaning } from './library';
 import type { Machine } from './machine';
 import { libraryMember, readMember } from './members';
 import { bindPattern } from './patterns';
-import { assignments, patternNames, writtenThings } from './scan';
+import { assignments, firstMade, patternNames, writtenThings } from './scan';
 import { Scope, type Frame, type Module } from './scope';
 import { enumValue } from './statements';
 import { typeFacts } from './type-notes';
@@ -17,13 +17,13 @@ import type { Variable } from './scope';
 
 /** Files: their top-level names, imports and exports. Nothing at the top level runs until something asks for it. */
 
-export function loadModule(m: Machine, file: string, program: Program, library: Library): Module {
+export function loadModule(m: Machine, file: string, program: Program, library: Library, isMeaning = false): Module {
   const known = m.modules.get(file);
   if (known) return known;
   const names = m.atRoot(() => m.store.add({ kind: 'record', members: new Map() }));
   const frame = { names, depth: 0 } as { -readonly [K in keyof Frame]: Frame[K] };
   const scope = new Scope(undefined, frame, true);
-  const module: Module = { file, program, library, scope, touched: new Set(), exports: new Map(), everythingOf: [], imports: [] };
+  const module: Module = { file, program, library, ...(isMeaning ? { isMeaning } : {}), scope, touched: new Set(), exports: new Map(), everythingOf: [], imports: [] };
   frame.module = module;
   m.modules.set(file, module);
   for (const s of program.body) addTopLevel(m, module, scope, s);
@@ -117,9 +117,10 @@ function arrival(scope: Scope, name: string, place: Place): Arrival {
  */
 function topLevelValue(m: Machine, module: Module, scope: Scope, name: string, value: Expression | undefined, mutable: boolean, at?: Place, note?: TypeNote): Value {
   const place = value ? m.place(scope, value.span) : (at ?? m.place(scope, { start: 0, end: 0 }));
-  const initial = (): Value | undefined => (value ? evaluate(m, scope, value) : undefined);
+  const made = value && value.kind !== 'nothing' ? value : firstMade(module.program, name);
+  const initial = (): Value | undefined => (made ? evaluate(m, scope, made) : undefined);
   const changes = mutable && assignments(module.program).assigned.has(name);
-  if (!changes) {
+  if (!changes && value) {
     const v = initial();
     if (v && v.kind !== 'object') return arrive(m, name, v, arrival(scope, name, place));
     if (v?.kind === 'object') {
@@ -201,6 +202,7 @@ function importedWhole(m: Machine, module: Module, from: string, local: string, 
   if (prefix !== undefined) return { kind: 'library', path: prefix.replace(/\.$/, ''), module };
   const other = open(m, module, from);
   if (!other) return genericAt(m, local, place);
+  if (other.isMeaning && other.exports.has('default')) return exportOf(m, other, 'default', place);
   return other.whole ? evaluate(m, other.scope, other.whole) : { kind: 'module', module: other };
 }
 
@@ -210,9 +212,16 @@ export function requireModule(m: Machine, scope: Scope, from: string, place: Pla
 
 function open(m: Machine, module: Module, from: string): Module | undefined {
   const found = m.request.importFile(from, module.file);
-  if (!found) return undefined;
+  if (!found) {
+    const meaning = module.library.packageMeaning?.(from);
+    return meaning && loadMeaning(m, meaning, module.library);
+  }
   m.files.add(found.file);
   return loadModule(m, found.file, found.program, found.library);
+}
+
+function loadMeaning(m: Machine, meaning: Meaning, library: Library): Module {
+  return loadModule(m, `package ${meaning.name}`, meaning.program, library, true);
 }
 
 function addExport(m: Machine, module: Module, s: Statement & { kind: 'export' }): void {
@@ -271,6 +280,11 @@ export function unknownName(m: Machine, scope: Scope, name: string, place: Place
   const bare = module.library.bare?.(name, module.program);
   if (typeof bare === 'string') return libraryMember(m, module, bare, place);
   if (bare) return unread(bare.unread, place);
+  const known = module.isMeaning ? undefined : module.library.globalMeaning?.(name);
+  if (known) {
+    const other = loadMeaning(m, known.of, module.library);
+    return known.exported === undefined ? { kind: 'module', module: other } : exportOf(m, other, known.exported, place);
+  }
   let found = m.globals.get(name);
   if (!found) m.globals.set(name, (found = genericAt(m, name, place)));
   return found;

@@ -101,6 +101,23 @@ function isConstantLike(e: Expression): boolean {
   }
 }
 
+/**
+ * The thing a variable without a first value is given where it is set up: `pos = new Vec(0, 0)`, `pos = createVector()`. It
+ * says of what kind the variable is; undefined where it is given anything else as well.
+ */
+export function firstMade(program: Program, name: string): Expression | undefined {
+  if (!assignments(program).assigned.has(name)) return undefined;
+  let made: Expression | undefined;
+  for (const n of nodesOf(program.body)) {
+    const e = n as Expression;
+    if (e.kind !== 'assign' || !('target' in e) || e.target.kind !== 'name' || e.target.name !== name || e.op) continue;
+    const isMaking = e.value.kind === 'call' && (e.value.isNew === true || (e.value.callee.kind === 'name' && /^create[A-Z]/.test(e.value.callee.name)));
+    if (!isMaking) return undefined;
+    made ??= e.value;
+  }
+  return made;
+}
+
 const membersOf = new WeakMap<Program, { assigned: Set<string>; used: Set<string> }>();
 
 function memberScan(program: Program): { assigned: Set<string>; used: Set<string> } {

@@ -58,6 +58,8 @@ export interface Module {
   readonly file: string;
   readonly program: Program;
   readonly library: Library;
+  /** True for what a package means, which is no file of anybody's. */
+  readonly isMeaning?: boolean;
   readonly scope: Scope;
   /** Top-level names that were looked up. */
   readonly touched: Set<string>;

@@ -85,6 +85,7 @@ function run(m: Machine, scope: Scope, s: Statement, place: Place): Outcome {
       executeDeclare(m, scope, s);
       return GOES_ON;
     case 'expression':
+      m.discarded = s.value;
       evaluate(m, scope, s.value);
       return GOES_ON;
     case 'return':

@@ -54,6 +54,7 @@ export function arrivalOf(scope: Scope, name: string, place: Place): Arrival {
  * says the name means; else the value.
  */
 export function arrive(m: Machine, name: string, value: Value, arrival: Arrival): Value {
+  if (m.callSite) return value;
   if (value.kind === 'object') {
     if (meansAnother(m, value, name)) return genericAt(m, name, arrival.place);
     addAlias(m, value, name);
@@ -89,6 +90,7 @@ function symbolOf(m: Machine, name: string): Expr | undefined {
  * other value was there before: `let m; if (heavy) m = 2; else m = 1`, not `let x = s[0]; if (x < 0) x = 0`.
  */
 export function arriveAt(m: Machine, scope: Scope, variable: Variable, value: Value, place: Place): Value {
+  if (m.callSite) return value;
   const before = m.store.value(variable.location);
   const isFirst = (before === undefined && !variable.lazy) || before?.kind === 'nothing' || variable.standsForSymbol === true;
   if (!isFirst || variable.scope.frame !== scope.frame) {
@@ -102,6 +104,7 @@ export function arriveAt(m: Machine, scope: Scope, variable: Variable, value: Va
 
 /** The same for a place with a path: a static field, a member of a constant record. */
 export function settleName(m: Machine, name: string, path: string, value: Value, place: Place): Value {
+  if (m.callSite) return value;
   if (value.kind === 'object') return settleMembers(m, path, value, place, 0);
   if (value.kind !== 'scalar' && value.kind !== 'unread') return value;
   if (value.kind === 'scalar' && m.naming.containsDeclared(value.expr)) return value;

@@ -1,6 +1,7 @@
 import type { Library } from '../../program/library';
 import { PACKAGE_CONSTANTS, PACKAGE_INTRINSICS, PACKAGE_MODULES, PACKAGE_SCALARS } from './library-packages';
 import { CONSTANTS, SCALARS } from './library-scalars';
+import { meaningOfGlobal, meaningOfPackage } from './vectors/packages';
 import { SKETCH_CONSTANTS, SKETCH_INTRINSICS, SKETCH_SCALARS, bareName } from './library-sketch';
 
 /**
@@ -40,6 +41,8 @@ export const typescriptLibrary: Library = {
   ]),
   modules: new Map(PACKAGE_MODULES),
   bare: bareName,
+  packageMeaning: meaningOfPackage,
+  globalMeaning: meaningOfGlobal,
   ignorable: new Set([
     ...'log info warn error debug trace assert table group groupEnd time timeEnd timeLog count'.split(' ').map((n) => `console.${n}`),
     'alert',
