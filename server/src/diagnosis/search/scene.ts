@@ -2,7 +2,7 @@ import { readsBindings, type SubjectRequest } from '../../comparison/subject';
 import type { Expr } from '../../expression/node';
 import { symbolsOf } from '../../expression/reach';
 import { Tape } from '../../expression/tape';
-import type { Expression } from '../../program/form';
+import type { Expression, FunctionNode } from '../../program/form';
 import type { Meaning } from '../../program/reading';
 import type { Atom, Scene } from './candidates/candidate';
 import { agree } from './candidates/candidate';
@@ -90,19 +90,33 @@ function addMembers(request: SubjectRequest, model: Model, code: string, atoms: 
     seen.add(key);
     for (const d of declared) {
       const value = model.column(d.symbol);
-      if (value && isMember(code, head, member[2]!, d.name)) add({ text: head + d.name, values: [value], from: atom.from, owner: atom.owner });
+      if (value && isMember(code, request, atom.owner, head, member[2]!, d.name)) add({ text: head + d.name, values: [value], from: atom.from, owner: atom.owner });
     }
   }
 }
 
-/** Whether the code itself shows that there is such a member: used as one, or listed beside one that is. */
-function isMember(code: string, head: string, sibling: string, name: string): boolean {
+/**
+ * Whether the code itself shows that there is such a member: listed beside one that is, in the type of the parameter it
+ * belongs to, or used by the class whose `this` it is. A name that merely would agree with the declaration is none.
+ */
+function isMember(code: string, request: SubjectRequest, owner: FunctionNode | undefined, head: string, sibling: string, name: string): boolean {
   if (!/^[\p{L}_][\p{L}\p{N}_]*$/u.test(name)) return false;
-  const used = new RegExp(`${head.replace(/[^\w]/g, '\\$&')}${name}(?![\\w(])`, 'u');
-  if (used.test(code)) return true;
-  if (/^(this|self)\W/.test(head)) return false;
-  const key = (n: string) => new RegExp(`[{,;\\s]${n}\\s*\\??\\s*[:,;}]`, 'u');
-  return [...code.matchAll(/\{[^{}]*\}/g)].some(([group]) => key(sibling).test(group) && key(name).test(group));
+  const { subject } = request;
+  if (/^(this|self)\W/.test(head)) {
+    const { span } = (subject.kind === 'function' ? subject.owner : subject.kind === 'class' ? subject.node : undefined) ?? { span: undefined };
+    if (!span) return false;
+    const used = new RegExp(`${head.replace(/[^\w]/g, '\\$&')}${name}(?![\\w(])`, 'u');
+    return used.test(code.slice(span.start, span.end));
+  }
+  const root = /^[\p{L}_$][\p{L}\p{N}_$]*(?=\W$)/u.exec(head)?.[0];
+  if (!owner || root === undefined) return false;
+  const signature = code.slice(owner.span.start, owner.bodySpan.start);
+  const annotation = new RegExp(`(?<![\\w.])${root.replace(/\$/g, '\\$')}\\??\\s*:\\s*(?:(\\w+)|(\\{[^{}]*\\}))`, 'u').exec(signature);
+  if (!annotation) return false;
+  const type = annotation[1];
+  const group = type === undefined ? annotation[2] : new RegExp(`\\b(?:interface|type)\\s+${type}\\b[^{}]*(\\{[^{}]*\\})`, 'u').exec(code)?.[1];
+  const key = (n: string) => new RegExp(`[{,;\\s]${n}\\s*\\??\\s*[:,;]`, 'u');
+  return group !== undefined && key(sibling).test(group) && key(name).test(group);
 }
 
 function withoutComments(source: string, request: SubjectRequest): string {
