@@ -57,7 +57,8 @@ export const signs: Maker = (scene, spot, give) => {
     site,
     edits: [replaceSite(site, source, signed, Binding.sign)],
     code: 'sign',
-    cost: bindingOf(node) < Binding.product ? 1.3 : 1.1,
+    // A sign is lost where a value is made, sooner than where it is used.
+    cost: bindingOf(node) < Binding.product ? 1.3 : bindingOf(node) === Binding.atom ? 1.15 : 1.08,
     values: map1(values, (x) => -x),
     label: 'sign',
     old: text,
