@@ -1,6 +1,6 @@
 import type { Expression, Statement } from '../../program/form';
 import { type Context, namePattern, opaque, spanOf, textOf } from './context';
-import { announce, announced, assign } from './statements';
+import { announce, announced, assign } from './assignments';
 import { child, children, namedChildren, nodesOf, type Node } from './syntax';
 
 /** `if`, `elif`, `else`. What runs only as a script (`if __name__ == "__main__"`) or for type checkers is left out. */

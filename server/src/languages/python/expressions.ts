@@ -1,7 +1,9 @@
-import type { Element, Expression } from '../../program/form';
+import type { Expression } from '../../program/form';
 import { call } from './calls';
 import { comprehension } from './comprehensions';
 import { type Context, DEEPEST, bare, name, nameText, opaque, spanOf, textOf } from './context';
+import { elements } from './elements';
+import { isInteger } from './integers';
 import { literalValue } from './numbers';
 import { BINARY, COMPARISONS } from './operators';
 import { subscript } from './subscripts';
@@ -77,24 +79,6 @@ function binary(c: Context, node: Node, left: Expression): Expression {
   const opSpan = sign ? spanOf(sign) : spanOf(node);
   const dropsRest = op === '/' && c.isPython2 && isInteger(c, left) && isInteger(c, right);
   return { kind: 'binary', op: dropsRest ? 'floor-divide' : op, left, right, opSpan, span: spanOf(node) };
-}
-
-/** True for an expression that is an integer whatever its variables from outside are. */
-export function isInteger(c: Context, e: Expression): boolean {
-  switch (e.kind) {
-    case 'number':
-      return e.integer;
-    case 'name':
-      return c.bindings.isInteger(e.name);
-    case 'unary':
-      return (e.op === '-' || e.op === '+') && isInteger(c, e.operand);
-    case 'binary':
-      return /^(?:[-+*%]|\*\*|floor-divide|remainder-floor)$/.test(e.op) && isInteger(c, e.left) && isInteger(c, e.right);
-    case 'call':
-      return e.callee.kind === 'name' && (e.callee.name === 'len' || e.callee.name === 'int');
-    default:
-      return false;
-  }
 }
 
 function leaf(c: Context, node: Node): Expression {
@@ -176,14 +160,6 @@ function number(c: Context, node: Node): Expression {
   if (!value) return opaque(/[jJ]$/.test(source) ? 'a complex number' : 'a number too large for a double', spanOf(node));
   const integer = node.type === 'integer' || /^[\d_]+[lL]?$/.test(source);
   return { kind: 'number', value, text: source, integer, span: spanOf(node) };
-}
-
-export function elements(c: Context, nodes: readonly Node[]): Element[] {
-  return nodes.map((n) => {
-    if (n.type !== 'list_splat' && n.type !== 'list_splat_pattern') return { value: c.expression(n) };
-    const inner = namedChildren(n)[0];
-    return { value: inner ? c.expression(inner) : opaque('an unfinished expression', spanOf(n)), spread: true };
-  });
 }
 
 function unary(c: Context, node: Node): Expression {

@@ -1,8 +1,7 @@
 import type { Expression, Statement } from '../../program/form';
 import { type Context, identifierOf, opaque, spanOf, textOf } from './context';
-import { expression } from './expressions';
 import { child, children, namedChildren, type Node } from './syntax';
-import { assign } from './statements';
+import { assign } from './assignments';
 
 /**
  * `match` on literals, dotted names, alternatives of these, and a last case that takes everything. Patterns that look into
@@ -73,6 +72,6 @@ function literal(c: Context, node: Node, span: Expression['span'], whole = ''): 
   const at = node.type === 'case_pattern' ? (namedChildren(node)[0] ?? node) : node;
   if (at.type === 'dotted_name') return identifierOf(c, at);
   if (!/^(?:integer|float|string|concatenated_string|true|false|none)$/.test(at.type)) return opaque('a case of this kind', span);
-  const value = expression(c, at);
+  const value = c.expression(at);
   return whole.trim().startsWith('-') ? { kind: 'unary', op: '-', operand: value, span } : value;
 }

@@ -1,6 +1,6 @@
 import type { Expression } from '../../program/form';
 import { type Context, opaque, spanOf } from './context';
-import { elements } from './expressions';
+import { elements } from './elements';
 import { children, namedChildren, type Node } from './syntax';
 
 /** `x[i]`, `x[1:-1, 0]`, `np.r_[a, b]` */
