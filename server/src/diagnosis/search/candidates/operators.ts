@@ -1,5 +1,6 @@
 import type { Expression } from '../../../program/form';
 import { Binding, bindingOf, bracket, replaceSite, sourceOf } from '../edits';
+import { isInnerFactor } from './numbers';
 import { map1, map2, type Maker, type Scene, type Spot } from './candidate';
 
 type Binary = Expression & { readonly kind: 'binary' };
@@ -58,7 +59,7 @@ export const signs: Maker = (scene, spot, give) => {
     edits: [replaceSite(site, source, signed, Binding.sign)],
     code: 'sign',
     // A sign is lost where a value is made, sooner than where it is used.
-    cost: bindingOf(node) < Binding.product ? 1.3 : bindingOf(node) === Binding.atom ? 1.15 : 1.08,
+    cost: bindingOf(node) < Binding.product ? 1.3 : bindingOf(node) === Binding.atom ? 1.15 : isInnerFactor(spot) ? 1.12 : 1.08,
     values: map1(values, (x) => -x),
     label: 'sign',
     old: text,
