@@ -6,6 +6,7 @@ import { check, describe, type CheckOptions, type Outcome } from './check';
 import { derive, deriveAgainst, DERIVE_FORMS, type DeriveForm } from './derive';
 import { explain } from './explain';
 import { UsageError, type Io, type Status } from './io';
+import { suggest } from './suggest';
 import { jsonReport } from './report/json';
 import { textReport } from './report/text';
 
@@ -86,6 +87,14 @@ function createProgram(io: Io, finish: (status: Status | undefined) => void): Co
       if (options.against !== undefined) finish(await deriveAgainst(file, options.against, options.system, io));
       else finish(await derive(file, options.as, options.system, io));
     });
+
+  program
+    .command('suggest')
+    .description('propose a first declaration for each function that looks like dynamics and has none')
+    .argument('<file>')
+    .option('--function <name>', 'only for this function')
+    .addHelpText('after', '\nA proposal is a guess from names: complete the energies and read it before it counts.')
+    .action(async (file: string, options: { function?: string }) => finish(await suggest(file, options.function, io)));
 
   program
     .command('serve')

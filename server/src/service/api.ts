@@ -27,12 +27,22 @@ export interface Service {
   symbols(file: string): Promise<readonly DocumentSymbol[]>;
   /** The derived equations of every system a file declares. */
   derive(file: string, as: DeriveForm, budget: Budget): Promise<readonly DerivedSystem[]>;
+  /** First declarations for functions that look like dynamics and have none, to be completed by a person. */
+  suggest(file: string, budget: Budget): Promise<readonly SuggestedDeclaration[]>;
   /**
    * Compares declarations as mechanics. Those of `file` are paired with those of `other`: by name, or the only ones.
    * With `name` instead of a file, the other declarations of the same file are compared with the one of that name.
    * @param system only this one of `file`
    */
   compare(file: string, against: { readonly file: string } | { readonly name: string }, system: string | undefined, budget: Budget): Promise<ComparisonResult>;
+}
+
+export interface SuggestedDeclaration {
+  readonly function: string;
+  /** Where it belongs: an empty range before the function. */
+  readonly range: ReportRange;
+  /** The declaration as a comment of the file's language, without a line end. */
+  readonly text: string;
 }
 
 export type ComparisonResult =

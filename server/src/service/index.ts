@@ -11,6 +11,7 @@ import { diagnoseOutcomes } from './diagnose';
 import { deriveSystems } from './derive';
 import { hoverAt } from './hover';
 import { ResultCache } from './result-cache';
+import { suggestedComments } from './suggested-comments';
 import { symbolsOf } from './symbols';
 
 export type * from './api';
@@ -61,6 +62,11 @@ export function createService(files: Files): Service {
     async derive(file, as, budget) {
       const document = await load(file);
       return document ? deriveSystems(project, document, as, budget) : [];
+    },
+
+    async suggest(file) {
+      const document = await load(file);
+      return document ? suggestedComments(document) : [];
     },
 
     async compare(file, against, system, budget) {

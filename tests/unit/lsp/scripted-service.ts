@@ -76,6 +76,10 @@ export class ScriptedService implements Service {
     return [];
   }
 
+  async suggest(): Promise<readonly []> {
+    return [];
+  }
+
   async compare(): Promise<{ readonly comparisons: readonly [] }> {
     return { comparisons: [] };
   }
