@@ -57,7 +57,7 @@ test('the command and the editor say the same of every file of the sample worksp
           line: d.range.start.line + 1,
           column: d.range.start.character + 1,
           code: String(d.code),
-          message: d.message,
+          message: typeof d.message === 'string' ? d.message : d.message.value,
         })),
       );
       return JSON.stringify(now) === JSON.stringify(wanted) ? now : undefined;
