@@ -8,7 +8,7 @@ import { components, dot, isMisfit, matrix, rowsOf, vector, type Misfit, type Qu
  * Rotation matrices take body components to space components. The elementary ones give every sequence of Euler angles by
  * multiplication: `Rz(phi)*Rx(th)*Rz(psi)`.
  */
-export const ROTATION_FUNCTIONS = ['Rx', 'Ry', 'Rz', 'Rq', 'bodyrates', 'spacerates'] as const;
+export const ROTATION_FUNCTIONS = ['Rx', 'Ry', 'Rz', 'Rq', 'Rv', 'bodyrates', 'spacerates'] as const;
 
 export function rotationFunction(g: Graph, name: string, args: readonly Quantity[]): Quantity | Misfit {
   switch (name) {
@@ -23,6 +23,11 @@ export function rotationFunction(g: Graph, name: string, args: readonly Quantity
       const flat = args.length === 1 ? components(args[0]!) : components({ kind: 'list', items: args });
       if (!flat || flat.length !== 4) return { misfit: '`Rq` takes a quaternion: w, x, y, z' };
       return matrix(fromQuaternion(g, flat));
+    }
+    case 'Rv': {
+      const flat = args.length === 1 ? components(args[0]!) : components({ kind: 'list', items: args });
+      if (!flat || flat.length !== 3) return { misfit: '`Rv` takes a rotation vector: three components' };
+      return matrix(fromVector(g, flat));
     }
     default: {
       const R = args.length === 1 ? rowsOf(args[0]!) : undefined;
@@ -52,6 +57,26 @@ function fromQuaternion(g: Graph, [w, x, y, z]: readonly Expr[]): Expr[][] {
     [two(g.add(p(x, y), p(w, z))), diagonal(x, z), two(g.subtract(p(y, z), p(w, x)))],
     [two(g.subtract(p(x, z), p(w, y))), two(g.add(p(y, z), p(w, x))), diagonal(x, y)],
   ];
+}
+
+/**
+ * Of a rotation vector, axis times angle (O. Rodrigues, Journal de Mathématiques Pures et Appliquées 5, 1840): cos(a) I +
+ * sin(a)/a [v] + (1 - cos(a))/a^2 v v^T. It has no value at the vector zero.
+ */
+function fromVector(g: Graph, v: readonly Expr[]): Expr[][] {
+  const square = g.sum(v.map((x) => g.square(x)));
+  const angle = g.power(square, g.number(Rational.HALF));
+  const c = g.apply('cos', [angle]);
+  const turn = v.map((x) => g.multiply(g.divide(g.apply('sin', [angle]), angle), x));
+  const along = g.divide(g.subtract(g.one, c), square);
+  return [0, 1, 2].map((i) =>
+    [0, 1, 2].map((j) => {
+      const entry = g.multiply(along, v[i]!, v[j]!);
+      if (i === j) return g.add(c, entry);
+      const third = turn[3 - i - j]!;
+      return (j - i + 3) % 3 === 1 ? g.subtract(entry, third) : g.add(entry, third);
+    }),
+  );
 }
 
 /** Components along body axes from R^T R', along space axes from R' R^T, whose off-diagonal entries they are. */
