@@ -46,7 +46,6 @@ export function evaluateCall(m: Machine, scope: Scope, e: Expression & { kind: '
     return from?.kind === 'string' ? requireModule(m, scope, from.value, place) : unread('`require` of a name that is not known', place);
   }
   let self: Value | undefined;
-  let callee: Value;
   if (e.callee.kind === 'member' && e.callee.object.kind !== 'super') {
     const object = evaluate(m, scope, e.callee.object);
     if (object.kind === 'nothing' && (e.callee.optional || e.optional)) return NOTHING;
@@ -66,7 +65,7 @@ export function evaluateCall(m: Machine, scope: Scope, e: Expression & { kind: '
       return callValue(m, scope, f, o, args, place, wordsOf(e.callee), e.isNew);
     });
   }
-  callee = evaluate(m, scope, e.callee);
+  const callee = evaluate(m, scope, e.callee);
   if (callee.kind === 'nothing' && e.optional) return NOTHING;
   if (callee.kind === 'unread') return consume(m, scope, e, callee);
   const args = argumentValues(m, scope, e.args, place);

@@ -248,8 +248,10 @@ function equality(m: Machine, a: Value, b: Value, place: Place): Expr | Unread {
       return g.or(g.and(c.expr, t), g.and(g.not(c.expr), g.not(t)));
     }
   }
-  const isThing = (v: Value): boolean => v.kind === 'object' && m.store.data(v.id).kind !== 'generic';
-  if (isThing(x) || isThing(y)) return g.false;
+  const isMade = (v: Value): boolean => v.kind === 'object' && m.store.data(v.id).kind !== 'generic';
+  if (isMade(x) || isMade(y)) return g.false;
+  // Two things from outside that go by different names are not the same one.
+  if (isOutsideThing(m, x) && isOutsideThing(m, y)) return g.false;
   const p = numeric(m, x, place);
   if (isUnread(p)) return p;
   const q = numeric(m, y, place);
@@ -257,6 +259,12 @@ function equality(m: Machine, a: Value, b: Value, place: Place): Expr | Unread {
   if (p.op === 'nan' || q.op === 'nan') return g.false;
   const split = splitSelect(m, p, q, (r, s) => ({ kind: 'condition', expr: g.equal(r, s) }));
   return split ?? g.equal(p, q);
+}
+
+function isOutsideThing(m: Machine, v: Value): boolean {
+  if (v.kind !== 'object') return false;
+  const data = m.store.data(v.id);
+  return data.kind === 'generic' && (data.generic.info !== undefined || data.members.size > 0 || isThing(m, data.generic));
 }
 
 function textEquality(m: Machine, text: string, thing: Value, place: Place): Expr | Unread {

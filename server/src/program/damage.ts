@@ -3,16 +3,31 @@ import type { ArgumentValue } from './calls';
 import type { Expression } from './form';
 import type { Machine } from './machine';
 import { fallbackOf } from './generics';
-import { assignments } from './scan';
+import { lastName } from './paths';
+import { assignments, isUsedAsThing } from './scan';
 import { write } from './variables';
 import { unread, type Unread, type Value } from './values';
 
 /** What a call that can't be read may have done. */
 
 export function unknownCall(m: Machine, args: readonly ArgumentValue[], place: Place, words: string, why?: string): Unread {
+  const isDiscarded = m.discarded?.kind === 'call' && m.discarded.span.start === place.span.start && m.discarded.span.end === place.span.end;
+  const forEffect = isDiscarded && !HARMLESS.test(lastName(words) ?? words);
   const reason = unread(why ?? `can't read the call \`${words}(...)\`: no function of that name is in this project or in the library tables`, place);
   damage(m, args, reason);
+  if (forEffect) for (const { value } of args) breakOutside(m, value, reason);
   return reason;
+}
+
+/** What is called for its effect by these names shows, keeps or tests things and leaves them as they are. */
+const HARMLESS = /^(?:assert|check|validate|verify|log|debug|trace|warn|error|info|report|print|plot|draw|paint|render|show|display|emit|notify|record|invariant|expect)(?![a-z])/;
+
+function breakOutside(m: Machine, value: Value, why: Unread): void {
+  if (value.kind !== 'object') return;
+  const data = m.store.data(value.id);
+  if (data.kind !== 'generic' || data.generic.path === 'this') return;
+  const paths = [data.generic.path, ...data.generic.aliases];
+  if (data.generic.info || paths.some((p) => m.naming.hasReadBelow(p) || isUsedAsThing(m.request.program, p))) m.breakObject(value.id, why);
 }
 
 /** Things made here that an unknown call was given may be changed by it. */
@@ -55,7 +70,8 @@ export function changesReceiver(m: Machine, e: Expression & { kind: 'call' }, na
 /** A method that is not known may change what it is called on. */
 export function unknownMethod(m: Machine, self: Value | undefined, args: readonly ArgumentValue[], place: Place, words: string): Unread {
   const data = self?.kind === 'object' ? m.store.data(self.id) : undefined;
-  const why = unknownCall(m, self ? [...args, { value: self }] : args, place, words);
-  if (self?.kind === 'object' && data?.kind === 'generic' && data.generic.path !== 'this') m.breakObject(self.id, why);
+  const harmless = HARMLESS.test(lastName(words) ?? words);
+  const why = unknownCall(m, self && !harmless ? [...args, { value: self }] : args, place, words);
+  if (self?.kind === 'object' && data?.kind === 'generic' && data.generic.path !== 'this' && !harmless) m.breakObject(self.id, why);
   return why;
 }

@@ -15,6 +15,8 @@ export interface Context {
   readonly owners: WeakMap<ts.Node, ClassNode>;
   /** False where the text has no `.prototype`, which spares a search. */
   readonly hasPrototypes: boolean;
+  /** False where the text has no `eval(`, which spares a search. */
+  readonly callsEval: boolean;
   /** The base of the class written with prototypes whose functions are being converted. */
   base: string | undefined;
   /** Where the syntax errors are, in ascending order. */

@@ -13,6 +13,7 @@ export class Converter implements Context {
   readonly classes = new WeakMap<ts.Node, ClassNode>();
   readonly owners = new WeakMap<ts.Node, ClassNode>();
   readonly hasPrototypes: boolean;
+  readonly callsEval: boolean;
   base: string | undefined = undefined;
   private types: Map<string, ts.InterfaceDeclaration | ts.TypeAliasDeclaration> | undefined;
 
@@ -21,6 +22,7 @@ export class Converter implements Context {
     readonly exported: Set<string>,
     readonly errorsAt: readonly number[],
   ) {
+    this.callsEval = /\beval\s*\(/.test(source.text);
     this.hasPrototypes = source.text.includes('.prototype');
   }
 

@@ -1,7 +1,7 @@
 import ts from 'typescript';
 import type { Pattern, Statement } from '../../program/form';
 import type { Span } from '../../text/span';
-import { type Context, hasModifier, nameOf, nameText, opaque, spanOf } from './context';
+import { type Context, hasModifier, isFunctionSyntax, nameOf, nameText, opaque, spanOf } from './context';
 import { enumeration } from './enums';
 import { exportAssignment, exportDeclaration, exportList, exportedValue, importDeclaration, importEquals } from './modules';
 import { namespaceValue } from './namespaces';
@@ -31,6 +31,10 @@ export function branch(c: Context, node: ts.Statement): Statement[] {
 function statement(c: Context, node: ts.Statement, siblings: readonly ts.Statement[], made: Statement[]): void {
   if (hasModifier(node, K.DeclareKeyword)) return;
   const span = spanOf(c, node);
+  if (callsEval(c, node)) {
+    made.push({ kind: 'opaque', reason: '`eval`, which may change anything', span });
+    return;
+  }
   if (ts.isVariableStatement(node)) {
     made.push(...declarations(c, node.declarationList, span));
     if (hasModifier(node, K.ExportKeyword)) made.push(exportList(node.declarationList.declarations.map((d) => d.name), span));
@@ -51,6 +55,17 @@ function statement(c: Context, node: ts.Statement, siblings: readonly ts.Stateme
   else if (ts.isExportDeclaration(node)) made.push(...exportDeclaration(node, span));
   else if (ts.isExportAssignment(node)) made.push(...exportAssignment(c, node, span));
   else made.push(...plain(c, node, span));
+}
+
+/** True for a plain statement that hands text to `eval`, which sees and changes the variables around it. */
+function callsEval(c: Context, node: ts.Statement): boolean {
+  if (!c.callsEval || !(ts.isExpressionStatement(node) || ts.isVariableStatement(node) || ts.isReturnStatement(node))) return false;
+  const stack: ts.Node[] = [node];
+  for (let at = stack.pop(); at; at = stack.pop()) {
+    if (ts.isCallExpression(at) && ts.isIdentifier(at.expression) && at.expression.text === 'eval') return true;
+    if (!isFunctionSyntax(at)) ts.forEachChild(at, (child) => void stack.push(child));
+  }
+  return false;
 }
 
 /** A declaration, followed by its export where it has one. */
