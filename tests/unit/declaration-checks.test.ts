@@ -16,6 +16,10 @@ describe('a declaration by itself', () => {
   test.each([
     [PENDULUM, []],
     ["coordinates x, y\nparameters m > 0\nT = 1/2*m*x'^2", ['singular']],
+    [`${PENDULUM}\nT = 1/2*m*l^2*th'^2`, ['inconsistent']],
+    [`${PENDULUM}\nT = 1/24*m*l^2*th'^2`, []],
+    [`${PENDULUM}\nV = -m*g*l*cos(th)`, ['inconsistent']],
+    ['coordinates x\nparameters m, k > 0\npoint a: mass m at (x, 0)\nspring k between (0, 0) and (x, 0)\nV = 1/2*k*x^2', ['inconsistent']],
     ["coordinates x, y\nparameters m > 0\nT = 1/2*m*(x' + y')^2", ['singular']],
     ["coordinates x\nparameters m > 0\nT = -1/2*m*x'^2", ['not-quadratic']],
     ["coordinates x\nparameters m > 0\nT = 1/2*m*x'^3", ['not-quadratic']],

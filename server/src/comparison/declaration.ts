@@ -30,6 +30,7 @@ export function checkDeclaration(derived: Derived): DeclarationProblem[] {
   const problem = (code: DeclarationProblem['code'], message: string, severity: DeclarationProblem['severity']) =>
     out.push({ code, message, span: system.block.nameSpan, severity });
 
+  out.push(...countedTwice(derived, sampler));
   const { constraints } = system;
   if (constraints.length > 0) {
     const span = constraints[constraints.length - 1]!.span;
@@ -60,6 +61,23 @@ export function checkDeclaration(derived: Derived): DeclarationProblem[] {
     problem('not-quadratic', 'T is not a quadratic form in the velocities: check their powers', 'warning');
   }
   return out;
+}
+
+const WORDS = { T: 'kinetic energy', V: 'potential energy', D: 'dissipation function' } as const;
+
+/** An energy typed by hand that says once more what points, bodies, springs or dampers say already. */
+function countedTwice(derived: Derived, sampler: Sampler): DeclarationProblem[] {
+  return (derived.system.doubled ?? []).flatMap(({ which, difference, value, span }) => {
+    const tape = new Tape([difference, value]);
+    const columns = sampler.draw(tape.symbols, STATES);
+    const registers = tape.run((s) => columns.get(s), STATES);
+    for (let s = 0; s < STATES; s++) {
+      const bound = 8 * registers.error(difference, s) + 1e-12 * Math.abs(registers.value(value, s));
+      if (!(Math.abs(registers.value(difference, s)) <= bound) || registers.value(value, s) === 0) return [];
+    }
+    const message = `${which} is the ${WORDS[which]} that the points and bodies give already, and both count: take one of them out`;
+    return [{ code: 'inconsistent' as const, message, span, severity: 'warning' as const }];
+  });
 }
 
 /** Rank of the constraints' gradients, at states off the constraints: there it can only be larger. */

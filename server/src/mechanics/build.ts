@@ -104,7 +104,7 @@ function defineShorthands(statements: readonly Statement[], scope: Scope, proble
   }
 }
 
-interface Energies {
+interface Energies extends Pick<System, 'doubled'> {
   readonly T: Expr | undefined;
   readonly V: Expr | undefined;
   readonly L: Expr;
@@ -119,12 +119,16 @@ function gatherEnergies(
 ): Energies {
   const g = context.scope.graph;
   const sums = { T: [...geometry.T], V: [...geometry.V], D: [...geometry.D] };
+  const byHand: { which: 'T' | 'V' | 'D'; expr: Expr; span: Statement['span'] }[] = [];
   const typed = { T: false, V: false };
   for (const s of statements) {
     if (s.kind !== 'energy' || s.which === 'L') continue;
     forEachMember(s.over ?? [], context, (c) => {
       const e = evaluateScalar(s.value, c);
-      if (e) sums[s.which as 'T' | 'V' | 'D'].push(e);
+      if (e) {
+        sums[s.which as 'T' | 'V' | 'D'].push(e);
+        byHand.push({ which: s.which as 'T' | 'V' | 'D', expr: e, span: s.span });
+      }
       if (s.which !== 'D') typed[s.which as 'T' | 'V'] = true;
     });
   }
@@ -134,6 +138,9 @@ function gatherEnergies(
   }
   const T = g.sum(sums.T);
   const V = g.sum(sums.V);
+  const doubled = byHand
+    .filter((t) => geometry[t.which].length > 0)
+    .map((t) => ({ which: t.which, difference: g.subtract(t.expr, g.sum(geometry[t.which])), value: t.expr, span: t.span }));
   let usesTV = false;
   context.scope.quantities = (name) => {
     if (name !== 'T' && name !== 'V') return undefined;
@@ -150,10 +157,10 @@ function gatherEnergies(
   if (fromCode) lagrangians.push(fromCode);
   context.scope.quantities = () => undefined;
   const D = g.sum(sums.D);
-  if (lagrangians.length === 0) return { T, V, L: g.subtract(T, V), D };
+  if (lagrangians.length === 0) return { T, V, L: g.subtract(T, V), D, doubled };
   const onlyL = !usesTV && sums.T.length === 0 && sums.V.length === 0;
   const L = usesTV ? g.sum(lagrangians) : g.sum([...lagrangians, T, g.negate(V)]);
-  return { T: onlyL ? undefined : T, V: onlyL ? undefined : V, L, D };
+  return { T: onlyL ? undefined : T, V: onlyL ? undefined : V, L, D, doubled };
 }
 
 function gatherRanges(statements: readonly Statement[], context: FormulaContext, declared: Declarations): void {

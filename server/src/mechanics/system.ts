@@ -75,6 +75,13 @@ export interface System {
   /** What keeps every claim of the system from being decided: errors, or statements not supported. */
   readonly blocked: { readonly reason: string; readonly span: Span } | undefined;
   readonly problems: readonly DeclarationProblem[];
+  /** Energies typed beside geometry that gives such an energy too, less what the geometry gives. */
+  readonly doubled?: readonly {
+    readonly which: 'T' | 'V' | 'D';
+    readonly difference: Expr;
+    readonly value: Expr;
+    readonly span: Span;
+  }[];
   /** Names positions of `point` statements go by. */
   readonly points: ReadonlyMap<string, readonly Expr[]>;
 }
