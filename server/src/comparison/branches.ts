@@ -51,16 +51,17 @@ export function conditionsOf(roots: readonly Expr[]): Expr[] {
  * Whether a side of a condition is too thin for random states to hit: an equality between reals, or a guard against
  * dividing by almost nothing. Such a side is not asked for.
  */
-export function isThin(condition: Expr, side: boolean): boolean {
+export function isThin(condition: Expr, side: boolean, equalities = true): boolean {
+  const thin = (c: Expr, s: boolean): boolean => isThin(c, s, equalities);
   switch (condition.op) {
     case 'not':
-      return isThin(condition.args[0]!, !side);
+      return thin(condition.args[0]!, !side);
     case 'equal':
-      return side;
+      return side && equalities;
     case 'and':
-      return side ? condition.args.some((c) => isThin(c, true)) : condition.args.every((c) => isThin(c, false));
+      return side ? condition.args.some((c) => thin(c, true)) : condition.args.every((c) => thin(c, false));
     case 'or':
-      return side ? condition.args.every((c) => isThin(c, true)) : condition.args.some((c) => isThin(c, false));
+      return side ? condition.args.every((c) => thin(c, true)) : condition.args.some((c) => thin(c, false));
     case 'less':
     case 'lessEqual': {
       const [a, b] = condition.args as [Expr, Expr];
@@ -120,6 +121,11 @@ export class Visits {
     const branches = new Set(choices.conditions);
     this.kinks = new Set(choices.kinks.filter((k) => !branches.has(k)));
     for (const c of this.conditions) this.seen.set(c, [false, false]);
+  }
+
+  /** True for a state inside a guard against dividing by almost nothing: what the code does there is no physics. */
+  isGuarded(registers: Registers, sample: number): boolean {
+    return this.conditions.some((c) => registers.error(c, sample) === 0 && isThin(c, registers.value(c, sample) === 1, false));
   }
 
   /** True when the state is the first on some side. */

@@ -160,6 +160,7 @@ function decideEach(request: DecideRequest, motion: Motion, groups: readonly (re
           if (c.blurred) blurred++;
           return;
         }
+        if (t.visits.isGuarded(registers, s)) return;
         const fresh = t.visits.note(registers, s);
         if (wide && !fresh && t.votes >= FEWEST) return;
         t.votes++;
