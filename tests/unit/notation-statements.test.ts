@@ -21,6 +21,7 @@ describe('symbols', () => {
   reads('parameters M   [kg]   > 0', 'parameters M [kg] > 0');
   reads('parameters c [N·m·s/rad], J [kg·m²], k [N m⁻¹]', 'parameters c [N·m·s/rad]; J [kg·m²]; k [N m⁻¹]');
   reads('coordinates th[i] [rad] over i in 1..3', 'coordinates th[i] [rad] over i in 1..3');
+  reads('coordinates x [m]    in the turning frame', 'coordinates x [m] "in the turning frame"');
   reads('parameters m[i], l[i] [m] > 0 over i in 1..n', 'parameters m[i] [m] > 0; l[i] [m] > 0 over i in 1..n');
   reads('inputs F [N]  # the push', 'inputs F [N] "the push"');
   reads('inputs τ₁, τ₂ [N m]', 'inputs τ₁ [N m]; τ₂ [N m]');
