@@ -68,7 +68,11 @@ describe('the built server, over standard input and output', () => {
     await client.initialize(rich);
     const wrong = right.replace('- p.g * sine)', '+ p.g * sine)');
     client.open(uri, wrong);
-    const { diagnostics } = await client.diagnostics(uri, 1);
+    // The verdict comes first, the place of the fault and its repair after a pause.
+    const diagnostics = await client.until(() => {
+      const shown = client.shown(uri)?.diagnostics;
+      return shown?.some((d) => d.code === 'sign') ? shown : undefined;
+    }, 'a diagnostic that names the wrong sign');
     const [action] = await client.request<CodeAction[]>('textDocument/codeAction', {
       textDocument: { uri },
       range: diagnostics[0]!.range,
