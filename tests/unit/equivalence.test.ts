@@ -25,6 +25,9 @@ describe('two declarations of one system', () => {
     const polar = "coordinates r > 0, phi\nparameters m, k > 0\nwhere x = r*cos(phi), y = r*sin(phi)\nT = 1/2*m*(r'^2 + r^2*phi'^2)\nV = 1/2*k*r^2";
     expect(compare(cartesian, polar)).toBe('same');
     expect(compare(cartesian, polar.replace('r^2*phi', 'r*phi'))).toBe('differ');
+    // A radius is positive in both, though only one declares it.
+    const [flat, round] = [cartesian, polar].map((d) => d.replace(/V = .*/, ''));
+    expect(compare(`${flat}V = -k/sqrt(x^2 + y^2)`, `${round}V = -k/r`)).toBe('same');
     expect(compare(cartesian, polar.replace('where x = r*cos(phi), y = r*sin(phi)', ''))).toBe('undecided');
   });
 

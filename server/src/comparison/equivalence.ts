@@ -32,7 +32,8 @@ export function compareDeclarations(first: System, second: Block, budget = new B
   for (const s of [first, other]) {
     if (s.blocked) return { kind: 'undecided', reason: `${s.name}: ${s.blocked.reason}` };
   }
-  const moved = inCoordinatesOf(first, other);
+  // Both declarations say where their symbols lie: a radius of the second is one in the first, too.
+  const moved = inCoordinatesOf({ ...first, domains: new Map([...first.domains, ...other.domains]) }, other);
   if ('reason' in moved) return { kind: 'undecided', reason: moved.reason };
   const a = new Derived(moved.system);
   const b = new Derived(other);
