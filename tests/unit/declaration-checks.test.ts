@@ -48,6 +48,12 @@ V = -m*g*R*cos(th)`;
     expect(equilibria(hoop)[1]).toMatch(/^pi unstable/);
   });
 
+  test('what turning holds up is not called unstable', () => {
+    const turning = "coordinates x, y\nparameters m, w > 0\nL = 1/2*m*((x' - w*y)^2 + (y' + w*x)^2) - 1/4*m*w^2*(x^2 + y^2)";
+    expect(equilibria(turning)[0]).toMatch(/ undecided/);
+    expect(equilibria("coordinates x\nparameters m, k, b > 0\nT = 1/2*m*x'^2\nV = 1/2*k*x^2\nQ[x] = b*x'")[0]).toMatch(/ undecided/);
+  });
+
   test('conserved quantities', () => {
     const kepler = "coordinates r > 0, phi [rad]\nparameters m, k > 0\nT = 1/2*m*(r'^2 + r^2*phi'^2)\nV = -k/r";
     expect(conserved(new Derived(systemOf(kepler))).map((c) => c.name)).toEqual(['p[phi]', 'E']);

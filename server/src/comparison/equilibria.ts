@@ -56,13 +56,28 @@ export function findEquilibria(derived: Derived): Equilibrium[] {
     const stiffness = derived.rightSides.flatMap((f) => system.coordinates.map((c) => tidy(g, rest(g.negate(derivative(g, f, c.symbol))))));
     out.push({
       point,
-      stability: stabilityOf(derived, mass, stiffness),
+      stability: judged(derived, stabilityOf(derived, mass, stiffness), rest),
       squaredFrequency: n === 1 ? tidy(g, g.divide(stiffness[0]!, mass[0]!)) : undefined,
       mass,
       stiffness,
     });
   }
   return out;
+}
+
+/**
+ * Stiffness alone does not tell where forces depend on the motion in other ways than damping: gyroscopic forces can hold
+ * what would fall (W. Thomson, P. G. Tait, Treatise on Natural Philosophy, section 345), and applied ones do as they like.
+ */
+function judged(derived: Derived, stability: Equilibrium['stability'], rest: (e: Expr) => Expr): Equilibrium['stability'] {
+  const { graph: g, coordinates, Q } = derived.system;
+  if (symbolsOf(...Q).some((s) => (s.data as SymbolData).role === 'coordinate')) return 'undecided';
+  if (stability === 'stable' || coordinates.length < 2) return stability;
+  const rates = derived.rightSides.map((f) => coordinates.map((c) => derivative(g, f, c.velocity)));
+  const gyroscopic = coordinates.some((_, i) =>
+    coordinates.some((_, j) => j > i && tidy(g, rest(g.subtract(rates[i]![j]!, rates[j]![i]!))) !== g.zero),
+  );
+  return gyroscopic ? 'undecided' : stability;
 }
 
 function vanish(derived: Derived, forces: readonly Expr[]): boolean {
