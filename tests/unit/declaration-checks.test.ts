@@ -57,6 +57,12 @@ V = -m*g*R*cos(th)`;
   test('conserved quantities', () => {
     const kepler = "coordinates r > 0, phi [rad]\nparameters m, k > 0\nT = 1/2*m*(r'^2 + r^2*phi'^2)\nV = -k/r";
     expect(conserved(new Derived(systemOf(kepler))).map((c) => c.name)).toEqual(['p[phi]', 'E']);
+    // Not T + V where a motor keeps the hoop turning, or where V depends on velocities.
+    const names = (d: string) => conserved(new Derived(systemOf(d))).map((c) => `${c.name} ${text(c.expr)}`);
+    expect(names("coordinates th\nparameters m, w > 0\nT = 1/2*m*(th'^2 + w^2*sin(th)^2)")).toEqual(["H 1/2*m*th'^2 - 1/2*m*w^2*sin(th)^2"]);
+    expect(names("coordinates x, y\nparameters m, B > 0\nT = 1/2*m*(x'^2 + y'^2)\nV = B*y*x' + x^2")).toEqual([
+      expect.stringMatching(/^p\[y\]|^H/),
+    ]);
     expect(conserved(new Derived(systemOf(`${kepler}\nD = 1/2*m*r'^2`))).map((c) => c.name)).toEqual(['p[phi]']);
   });
 });

@@ -126,7 +126,12 @@ export function conserved(derived: Derived): { readonly name: string; readonly e
     out.push({ name: `p[${c.name}]`, expr: tidy(g, derived.momenta[i]!), why: `${c.name} does not appear in the energies` });
   });
   if (idle && scleronomic && !symbolsOf(system.L).some(isMoving)) {
-    out.push({ name: 'E', expr: tidy(g, derived.energy), why: 'nothing depends on time, and no force takes energy out or puts it in' });
+    // Jacobi's integral; it is T + V only where T is quadratic in the velocities and V without them.
+    const plain = tidy(g, g.subtract(derived.hamiltonian, derived.energy)) === g.zero;
+    const why = plain
+      ? 'nothing depends on time, and no force takes energy out or puts it in'
+      : "Jacobi's integral, not T + V: nothing depends on time, and no force does work";
+    out.push({ name: plain ? 'E' : 'H', expr: tidy(g, plain ? derived.energy : derived.hamiltonian), why });
   }
   return out;
 }
