@@ -28,7 +28,8 @@ export async function isRepair(before: SubjectResult, edits: readonly Edit[], re
   return others.before.length === others.after.length && others.before.every((b, i) => isNoWorse(b, others.after[i]!));
 }
 
-function isNoWorse(before: SubjectResult, after: SubjectResult): boolean {
+/** Whether with these edits no claim is worse off. */
+export function isNoWorse(before: SubjectResult, after: SubjectResult): boolean {
   if (before.claims.length !== after.claims.length) return false;
   if (after.ambiguities.length > before.ambiguities.length) return false;
   return before.claims.every((c, i) => {

@@ -1,5 +1,5 @@
 import { CodeActionKind, type CodeAction, type Diagnostic, type Range, type TextEdit } from 'vscode-languageserver';
-import type { FileResult } from '../service/api';
+import type { FileResult, OutputRewrite } from '../service/api';
 import { toRange } from './ranges';
 
 /** The verified repairs of findings that touch a range, as quick fixes; one edit is offered once. */
@@ -30,6 +30,15 @@ export function toCodeActions(
   // Several repairs are alternatives: none of them is the one to take unseen.
   const offered = [...actions.values()];
   return offered.length > 1 ? offered.map((action) => ({ ...action, isPreferred: false })) : offered;
+}
+
+/** Outputs written anew: a way out that is offered beside the repairs, never before them. */
+export function toRewriteActions(rewrites: readonly OutputRewrite[], uri: string): CodeAction[] {
+  return rewrites.map(({ title, edits }) => ({
+    title,
+    kind: CodeActionKind.RefactorRewrite,
+    edit: { changes: { [uri]: edits.map((edit) => ({ range: toRange(edit.range), newText: edit.text })) } },
+  }));
 }
 
 function touches(a: Range, b: Range): boolean {

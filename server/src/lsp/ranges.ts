@@ -13,3 +13,7 @@ export function toPosition(position: ReportPosition): Position {
 export function fromPosition(position: Position): ReportPosition {
   return { line: position.line + 1, column: position.character + 1 };
 }
+
+export function fromRange(range: Range): ReportRange {
+  return { start: fromPosition(range.start), end: fromPosition(range.end) };
+}

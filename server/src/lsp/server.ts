@@ -22,10 +22,10 @@ import type { Files, Service } from '../service/api';
 import { Budget } from '../text/budget';
 import { Addresses } from './addresses';
 import { Checker, describe } from './checker';
-import { toCodeActions } from './code-actions';
+import { toCodeActions, toRewriteActions } from './code-actions';
 import { plainText } from './hover';
 import { OpenFiles } from './open-files';
-import { fromPosition, toRange } from './ranges';
+import { fromPosition, fromRange, toRange } from './ranges';
 import { toFlatSymbols, toSymbols } from './symbols';
 
 /** Kinds of files whose change on disk can change a result. */
@@ -70,7 +70,7 @@ export function serve(connection: Connection, createService: (files: Files) => S
         textDocumentSync: { openClose: true, change: TextDocumentSyncKind.Incremental },
         hoverProvider: true,
         documentSymbolProvider: true,
-        codeActionProvider: { codeActionKinds: [CodeActionKind.QuickFix] },
+        codeActionProvider: { codeActionKinds: [CodeActionKind.QuickFix, CodeActionKind.RefactorRewrite] },
         workspace: { workspaceFolders: { supported: true, changeNotifications: true } },
       },
     };
@@ -189,12 +189,21 @@ export function serve(connection: Connection, createService: (files: Files) => S
   );
 
   connection.onCodeAction(
-    guarded('code actions', null, ({ textDocument, range, context }) => {
+    guarded('code actions', null, async ({ textDocument, range, context }, token) => {
       const open = files.get(textDocument.uri);
       // Edits of an older text would land in the wrong place.
-      if (!open?.result || open.result.version !== open.document.version || !settings.enable) return null;
-      if (context.only && !context.only.some((kind) => `${CodeActionKind.QuickFix}.`.startsWith(`${kind}.`))) return null;
-      return toCodeActions(open.result.result, range, context.diagnostics, (file) => addresses.uriOf(file));
+      const isCurrent = (): boolean => open?.result?.version === open?.document.version;
+      if (!open?.result || !isCurrent() || !settings.enable) return null;
+      const { result } = open.result;
+      const wants = (offered: string): boolean => !context.only || context.only.some((kind) => `${offered}.`.startsWith(`${kind}.`));
+      const uriOf = (file: string): string => addresses.uriOf(file);
+      const actions = wants(CodeActionKind.QuickFix) ? toCodeActions(result, range, context.diagnostics, uriOf) : [];
+      if (wants(CodeActionKind.RefactorRewrite) && result.claims.some((claim) => claim.verdict === 'differs')) {
+        const rewrites = await service.rewrites(open.file, fromRange(range), budgetFor(token));
+        if (isCurrent()) actions.push(...toRewriteActions(rewrites, uriOf(open.file)));
+        else return null;
+      }
+      return actions;
     }),
   );
 

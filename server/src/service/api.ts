@@ -23,6 +23,11 @@ export interface Service {
   check(file: string, budget: Budget, depth?: 'verdicts' | 'repairs'): Promise<FileResult>;
   /** How many functions were read so far, remembered results not counted. */
   readonly readings: number;
+  /**
+   * Whole outputs written anew as the declaration has them, for differing claims that a range touches. Each was read again
+   * from text: it makes its claim hold and no other claim of the file worse.
+   */
+  rewrites(file: string, range: ReportRange, budget: Budget): Promise<readonly OutputRewrite[]>;
   hover(file: string, position: ReportPosition, budget: Budget): Promise<Hover | undefined>;
   symbols(file: string): Promise<readonly DocumentSymbol[]>;
   /** The derived equations of every system a file declares. */
@@ -35,6 +40,11 @@ export interface Service {
    * @param system only this one of `file`
    */
   compare(file: string, against: { readonly file: string } | { readonly name: string }, system: string | undefined, budget: Budget): Promise<ComparisonResult>;
+}
+
+export interface OutputRewrite {
+  readonly title: string;
+  readonly edits: readonly { readonly range: ReportRange; readonly text: string }[];
 }
 
 export interface SuggestedDeclaration {

@@ -50,7 +50,8 @@ function movedDiagnosis(d: Diagnosis, relocate: Relocate): Diagnosis {
   };
 }
 
-async function recheckWith(
+/** Reads a document's declaration again with some edits made. */
+export async function recheckWith(
   project: Project,
   document: Document,
   outcomes: readonly BlockOutcome[],

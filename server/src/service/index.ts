@@ -11,6 +11,7 @@ import { diagnoseOutcomes } from './diagnose';
 import { deriveSystems } from './derive';
 import { hoverAt } from './hover';
 import { ResultCache } from './result-cache';
+import { rewritesAt } from './rewrites';
 import { suggestedComments } from './suggested-comments';
 import { symbolsOf } from './symbols';
 
@@ -46,6 +47,13 @@ export function createService(files: Files): Service {
       }
       const outcomes = await checkDocument(project, document, budget);
       return fileResult(document, await diagnoseOutcomes(project, document, outcomes, budget, depth));
+    },
+
+    async rewrites(file, range, budget) {
+      const document = await load(file);
+      if (!document || document.blocks.length === 0) return [];
+      const outcomes = await diagnoseOutcomes(project, document, await checkDocument(project, document, budget), budget, 'verdicts');
+      return rewritesAt(project, document, outcomes, range, budget);
     },
 
     async hover(file, position, budget) {

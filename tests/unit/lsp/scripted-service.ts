@@ -72,6 +72,10 @@ export class ScriptedService implements Service {
     return [{ name: 'crane', detail: 'system', kind: 'system', range, nameRange: range, children: [leaf] }];
   }
 
+  async rewrites(): Promise<readonly []> {
+    return [];
+  }
+
   async derive(): Promise<readonly []> {
     return [];
   }
