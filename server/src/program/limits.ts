@@ -43,11 +43,11 @@ export function unclip(e: Expr): Expr {
   return bounds.min && bounds.max && areSwapped(bounds.max, bounds.min) ? e : x;
 }
 
-/** True for a lower bound that is above the upper one as far as one can see: nothing passes between them. */
+/** True for a lower bound that is at or above the upper one as far as one can see: nothing passes between them. */
 export function areSwapped(low: Expr, high: Expr): boolean {
   const [l, h] = [factorOf(low), factorOf(high)];
-  if (low.op === 'number' && high.op === 'number') return l.factor > h.factor;
-  return l.rest === h.rest && l.factor > 0 && h.factor < 0;
+  if (low.op === 'number' && high.op === 'number') return l.factor >= h.factor;
+  return l.rest === h.rest && (l.factor === h.factor || (l.factor > 0 && h.factor < 0));
 }
 
 /** -2*a as -2 and what remains. */
