@@ -1,6 +1,5 @@
 import type { Place } from '../text/span';
 import { settleField } from './classes';
-import { evaluate } from './expressions';
 import type { Expression, Pattern } from './form';
 import { clipsVariable } from './limits';
 import type { Machine } from './machine';
@@ -20,7 +19,7 @@ export function assign(m: Machine, scope: Scope, e: Expression & { kind: 'assign
   if (target.kind === 'name') return assignName(m, scope, e, target.name, place);
   if (target.kind === 'place') return assignPlace(m, scope, e, target.target, place);
   if (e.op) return unread('an operator on several targets', place);
-  const value = evaluate(m, scope, e.value);
+  const value = m.evaluate(scope, e.value);
   bindPattern(m, scope, target, value, (s, p, v) => assignTo(m, s, p, v));
   return value;
 }
@@ -28,7 +27,7 @@ export function assign(m: Machine, scope: Scope, e: Expression & { kind: 'assign
 function assignName(m: Machine, scope: Scope, e: Expression & { kind: 'assign' }, name: string, place: Place): Value {
   const known = scope.find(name);
   const old = e.op ? (known ? readVariable(m, known, place) : unread(`\`${name}\` is used before it has a value`, place)) : NOTHING;
-  const given = evaluate(m, scope, e.value);
+  const given = m.evaluate(scope, e.value);
   const variable = known ?? scope.find(name) ?? declare(m, scope.functionScope, name);
   const at = m.place(scope, e.value.span);
   let value: Value;
@@ -65,7 +64,7 @@ function inPlace(m: Machine, old: Value & { kind: 'object' }, value: Value & { k
 function assignPlace(m: Machine, scope: Scope, e: Expression & { kind: 'assign' }, target: Expression, place: Place): Value {
   const { module } = scope.frame;
   if (target.kind === 'member') {
-    const object = evaluate(m, scope, target.object);
+    const object = m.evaluate(scope, target.object);
     const maker = !e.op && e.value.kind === 'number' && target.object.kind === 'self' ? constructorOf(m, scope) : undefined;
     const settled = (v: Value): Value => (maker ? settleField(m, maker, target.name, v, place) : v);
     return through(
@@ -79,15 +78,15 @@ function assignPlace(m: Machine, scope: Scope, e: Expression & { kind: 'assign' 
     );
   }
   if (target.kind === 'index') {
-    let object = evaluate(m, scope, target.object);
+    let object = m.evaluate(scope, target.object);
     if (target.indices.some((i) => i.kind === 'slice')) return assignSlice(m, scope, e, target, object, place);
-    const keys = target.indices.map((i) => evaluate(m, scope, i));
+    const keys = target.indices.map((i) => m.evaluate(scope, i));
     for (const k of keys.slice(0, -1)) object = readElement(m, module, object, k, place);
     const key = keys[keys.length - 1]!;
     return through(m, scope, e, object, place, (o) => readElement(m, module, o, key, place), (o, v) => writeElement(m, module, o, key, v, place));
   }
   if (target.kind === 'name') return assignName(m, scope, e, target.name, place);
-  evaluate(m, scope, e.value);
+  m.evaluate(scope, e.value);
   return unread('an assignment to something that is no variable, member or element', place);
 }
 
@@ -108,12 +107,12 @@ function through(
   put: (object: Value, value: Value) => void,
 ): Value {
   if (object.kind === 'unread') {
-    evaluate(m, scope, e.value);
+    m.evaluate(scope, e.value);
     return object;
   }
   return withEach(m, object, place, (o) => {
     const old = e.op ? read(o) : NOTHING;
-    const given = evaluate(m, scope, e.value);
+    const given = m.evaluate(scope, e.value);
     let value = e.op ? joined(m, scope, e, old, given, place) : given;
     if (!e.op && m.request.withinLimits && given.kind === 'scalar') {
       const before = read(o);
@@ -125,7 +124,7 @@ function through(
 }
 
 function assignSlice(m: Machine, scope: Scope, e: Expression & { kind: 'assign' }, target: Expression & { kind: 'index' }, object: Value, place: Place): Value {
-  const value = evaluate(m, scope, e.value);
+  const value = m.evaluate(scope, e.value);
   const targets = sliceTargets(m, scope, object, target.indices, value, place);
   if ('kind' in targets) {
     if (object.kind === 'object') m.breakObject(object.id, targets);
@@ -149,10 +148,10 @@ export function assignTo(m: Machine, scope: Scope, pattern: Pattern, value: Valu
     const { module } = scope.frame;
     const place = m.place(scope, pattern.span);
     const t = pattern.target;
-    if (t.kind === 'member') writeMember(m, module, evaluate(m, scope, t.object), t.name, value, place);
+    if (t.kind === 'member') writeMember(m, module, m.evaluate(scope, t.object), t.name, value, place);
     else if (t.kind === 'index') {
-      let object = evaluate(m, scope, t.object);
-      const keys = t.indices.map((i) => evaluate(m, scope, i));
+      let object = m.evaluate(scope, t.object);
+      const keys = t.indices.map((i) => m.evaluate(scope, i));
       for (const k of keys.slice(0, -1)) object = readElement(m, module, object, k, place);
       writeElement(m, module, object, keys[keys.length - 1]!, value, place);
     }

@@ -2,24 +2,23 @@ import type { Place } from '../text/span';
 import { findMember } from './class-members';
 import { callSuper, construct } from './classes';
 import { changesReceiver, damage, unknownCall, unknownMethod } from './damage';
-import { evaluate } from './expressions';
 import type { Argument, Expression, Parameter } from './form';
 import { childOf, copyOfGeneric, fallbackOf, fieldValue, genericAt, hasWritesBelow, valueOf } from './generics';
 import { runIntrinsic } from './intrinsics/table';
 import type { ScalarFunction } from './library';
-import { unclip } from './limits';
 import type { Machine } from './machine';
 import { readMember, writeMember } from './members';
 import { apply, mergeEndings, withEach, type Ending } from './merging';
 import { requireModule } from './modules';
-import { dataOf, describe, itemsOf, numeric } from './numbers';
+import { dataOf, describe, itemsOf } from './numbers';
 import { bindItem } from './patterns';
 import { lastName, pathOf } from './paths';
 import { hoistedNames } from './scan';
+import { applyScalar } from './scalar-call';
 import { Scope, type Frame, type Module } from './scope';
-import { execute, type Exit } from './statements';
+import type { Exit } from './flow';
 import { arrivalOf, arrive, declare, readVariable } from './variables';
-import { NOTHING, isUnread, unread, type FunctionValue, type LibraryValue, type Unread, type Value } from './values';
+import { NOTHING, unread, type FunctionValue, type LibraryValue, type Unread, type Value } from './values';
 
 /** Calls: of the code's own functions, by running them; of the library, by its table; of anything else, not at all. */
 
@@ -47,7 +46,7 @@ export function evaluateCall(m: Machine, scope: Scope, e: Expression & { kind: '
   }
   let self: Value | undefined;
   if (e.callee.kind === 'member' && e.callee.object.kind !== 'super') {
-    const object = evaluate(m, scope, e.callee.object);
+    const object = m.evaluate(scope, e.callee.object);
     if (object.kind === 'nothing' && (e.callee.optional || e.optional)) return NOTHING;
     if (object.kind === 'unread') return consume(m, scope, e, object);
     const { name } = e.callee;
@@ -65,7 +64,7 @@ export function evaluateCall(m: Machine, scope: Scope, e: Expression & { kind: '
       return callValue(m, scope, f, o, args, place, wordsOf(e.callee), e.isNew);
     });
   }
-  const callee = evaluate(m, scope, e.callee);
+  const callee = m.evaluate(scope, e.callee);
   if (callee.kind === 'nothing' && e.optional) return NOTHING;
   if (callee.kind === 'unread') return consume(m, scope, e, callee);
   const args = argumentValues(m, scope, e.args, place);
@@ -94,7 +93,7 @@ export function argumentValues(m: Machine, scope: Scope, args: readonly Argument
   const values: ArgumentValue[] = [];
   let problem: Unread | undefined;
   for (const a of args) {
-    const value = evaluate(m, scope, a.value);
+    const value = m.evaluate(scope, a.value);
     if (!a.spread) {
       values.push({ value, ...(a.name !== undefined ? { name: a.name } : {}) });
       continue;
@@ -262,30 +261,6 @@ function callScalar(m: Machine, module: Module, f: ScalarFunction, args: readonl
   return out;
 }
 
-/** A scalar function; over the items of a numeric vector where it is given one. */
-export function applyScalar(m: Machine, f: NonNullable<ReturnType<LibraryValue['module']['library']['scalars']['get']>>, args: readonly Value[], place: Place): Value {
-  const choice = args.findIndex((a) => a.kind === 'choice');
-  if (choice >= 0) {
-    return withEach(m, args[choice]!, place, (v) => applyScalar(m, f, args.map((a, k) => (k === choice ? v : a)), place));
-  }
-  const lists = args.map((a) => itemsOf(m, a));
-  const length = lists.find((l) => l)?.length;
-  if (length !== undefined) {
-    if (lists.some((l) => l && l.length !== length)) return unread('lists of different length', place);
-    const items = Array.from({ length }, (_, k) => applyScalar(m, f, args.map((a, i) => lists[i]?.[k] ?? a), place));
-    return m.list(items, true);
-  }
-  const exprs = [];
-  for (const a of args) {
-    const n = numeric(m, a, place);
-    if (isUnread(n)) return n;
-    exprs.push(n);
-  }
-  const r = f(m.graph, exprs);
-  if ('unread' in r) return unread(r.unread, place);
-  return m.scalar(m.request.withinLimits ? unclip(r) : r, place);
-}
-
 /** `new F(...)` of a plain function: JavaScript before classes. */
 function constructPlain(m: Machine, f: FunctionValue, args: readonly ArgumentValue[], place: Place): Value {
   const prototype = readMember(m, f.scope.frame.module, f, 'prototype', place);
@@ -350,7 +325,7 @@ export function runBody(m: Machine, scope: Scope, base: Machine['store'], place:
   if (!node) return NOTHING;
   for (const name of hoistedNames(node.body)) if (!scope.variables.has(name)) declare(m, scope, name, undefined);
   for (const r of node.results ?? []) if (!scope.variables.has(r.name)) declare(m, scope, r.name, undefined);
-  const { exits, normal } = execute(m, scope, node.body);
+  const { exits, normal } = m.execute(scope, node.body);
   const endings: Ending[] = exits.map((x) => endingOf(m, scope, x, base));
   if (normal || endings.length === 0) {
     endings.push({ guard: m.graph.true, changes: m.store.changesSince(base), value: resultsOf(m, scope) });

@@ -1,7 +1,6 @@
 import type { Place } from '../text/span';
-import { invoke, type ArgumentValue } from './calls';
+import type { ArgumentValue } from './calls';
 import { findMember } from './class-members';
-import { evaluate } from './expressions';
 import type { ClassNode, Member } from './form';
 import { fieldValue, genericAt, valueOf } from './generics';
 import type { Machine } from './machine';
@@ -23,7 +22,7 @@ export function classInfo(m: Machine, scope: Scope, node: ClassNode): ClassInfo 
     base: () => {
       if (base === null) {
         base = undefined;
-        const value = node.base ? evaluate(m, scope, node.base) : NOTHING;
+        const value = node.base ? m.evaluate(scope, node.base) : NOTHING;
         base = value.kind === 'class' ? value.info : node.base ? 'unknown' : undefined;
       }
       return base;
@@ -46,11 +45,11 @@ export function staticMember(m: Machine, info: ClassInfo, key: string, place: Pl
   const self: Value = { kind: 'class', info: found.info };
   if (member.node) {
     const f: FunctionValue = { kind: 'function', node: member.node, scope: found.info.scope, self, home: found.info };
-    return member.kind === 'getter' ? invoke(m, f, self, [], place) : f;
+    return member.kind === 'getter' ? m.invoke(f, self, [], place) : f;
   }
   if (!member.value) return NOTHING;
   const value = m.atRoot(() => {
-    const v = evaluate(m, bodyScope(m, found.info, self), member.value!);
+    const v = m.evaluate(bodyScope(m, found.info, self), member.value!);
     return settleName(m, key, `${info.node.name}.${key}`, v, m.place(found.info.scope, member.span));
   });
   m.atRoot(() => {
@@ -97,7 +96,7 @@ export function initialise(m: Machine, info: ClassInfo, self: ObjectValue, args:
   }
   if (!constructor) return undefined;
   const f: FunctionValue = { kind: 'function', node: constructor.node!, scope: info.scope, self, home: info };
-  const result = invoke(m, f, self, args, place);
+  const result = m.invoke(f, self, args, place);
   return result.kind === 'unread' ? result : undefined;
 }
 
@@ -127,7 +126,7 @@ function setFields(m: Machine, info: ClassInfo, self: ObjectValue): void {
   const scope = bodyScope(m, info, self);
   for (const member of info.node.members) {
     if (member.kind !== 'field' || member.isStatic || !member.value) continue;
-    const value = evaluate(m, scope, member.value);
+    const value = m.evaluate(scope, member.value);
     const place = m.place(scope, member.span);
     const settled = m.constructing === self.id ? fieldValue(m, member.name, value, place) : settleField(m, info, member.name, value, place);
     const data = m.store.writable(self.id);
@@ -154,7 +153,7 @@ export function instanceField(
   const found = findMember(info, key, 'field');
   const field = found && found !== 'unknown' ? found : undefined;
   if (field?.member.value?.kind === 'function') {
-    return { function: evaluate(m, bodyScope(m, field.info, object), field.member.value) };
+    return { function: m.evaluate(bodyScope(m, field.info, object), field.member.value) };
   }
   const constant = field?.member.isConstant === true;
   const fallback = (): Value | undefined => {
@@ -198,7 +197,7 @@ function genericArguments(m: Machine, info: ClassInfo): ArgumentValue[] {
           const place = m.place(info.scope, p.pattern.span);
           const meaning = name === '' ? undefined : m.naming.read([name], place);
           const { initial } = p;
-          const fallback = initial ? { fallback: () => evaluate(m, info.scope, initial) } : {};
+          const fallback = initial ? { fallback: () => m.evaluate(info.scope, initial) } : {};
           return { value: meaning ? valueOf(m, meaning, place) : genericAt(m, name, place, fallback) };
         });
     }

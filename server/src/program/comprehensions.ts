@@ -1,6 +1,5 @@
 import type { Place } from '../text/span';
 import { conditionOf } from './conditions';
-import { evaluate } from './expressions';
 import type { Expression } from './form';
 import type { Machine } from './machine';
 import { itemsOf } from './numbers';
@@ -15,10 +14,10 @@ export function comprehend(m: Machine, scope: Scope, e: Expression & { kind: 'co
   const visit = (inner: Scope, k: number): Unread | undefined => {
     const l = e.loops[k];
     if (!l) {
-      items.push(evaluate(m, inner, e.body));
+      items.push(m.evaluate(inner, e.body));
       return undefined;
     }
-    const over = evaluate(m, inner, l.over);
+    const over = m.evaluate(inner, l.over);
     const list = itemsOf(m, over);
     if (!list) return over.kind === 'unread' ? over : unread('a comprehension over a list that is not known', place);
     for (const item of [...list]) {

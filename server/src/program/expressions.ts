@@ -1,15 +1,16 @@
 import type { Place } from '../text/span';
 import { assign } from './assignment';
-import { evaluateCall, invoke } from './calls';
+import { evaluateCall } from './calls';
 import { findMember } from './class-members';
 import { classInfo } from './classes';
 import { comprehend } from './comprehensions';
-import { conditionOf, isOpenFlag, isThing, settle, truthOf } from './conditions';
+import { conditionOf, isOpenFlag, isThing, truthOf } from './conditions';
 import type { Expression, Field } from './form';
 import { clipped } from './limits';
 import { childOf, copyOfGeneric, valueOf } from './generics';
 import { indexValue } from './indexing';
 import type { Machine } from './machine';
+import { settle } from './settle';
 import { readMember } from './members';
 import { fork, spoilWritten, withEach } from './merging';
 import { unknownName } from './modules';
@@ -141,7 +142,7 @@ function superMember(m: Machine, scope: Scope, name: string, place: Place): Valu
     home: found.info,
     ...(self ? { self } : {}),
   };
-  return found.member.kind === 'getter' ? invoke(m, f, self, [], place) : f;
+  return found.member.kind === 'getter' ? m.invoke(f, self, [], place) : f;
 }
 
 function unary(m: Machine, scope: Scope, e: Expression & { kind: 'unary' }, place: Place): Value {

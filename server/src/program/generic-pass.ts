@@ -7,7 +7,7 @@ import { scalarOf } from './numbers';
 import { memberPath, pathOf } from './paths';
 import { nodesOf, patternNames, placesOf } from './scan';
 import type { Scope, Variable } from './scope';
-import type { Outcome } from './statements';
+import type { Outcome } from './flow';
 import type { Expression } from './form';
 import { readVariable } from './variables';
 import { isData, type Content, type Value } from './values';

@@ -1,5 +1,4 @@
 import type { Place } from '../text/span';
-import { evaluate } from './expressions';
 import type { Expression } from './form';
 import type { Machine } from './machine';
 import { readElement } from './members';
@@ -13,7 +12,7 @@ import { NOTHING, type Value, type ViewItem } from './values';
 
 export function indexValue(m: Machine, scope: Scope, e: Expression & { kind: 'index' }, place: Place): Value {
   const { module } = scope.frame;
-  const object = evaluate(m, scope, e.object);
+  const object = m.evaluate(scope, e.object);
   if (object.kind === 'nothing' && e.optional) return NOTHING;
   return indexWith(m, scope, object, e.indices, place, module.program.indexBase);
 }
@@ -33,7 +32,7 @@ function indexWith(m: Machine, scope: Scope, object: Value, indices: readonly Ex
     if (rest.length === 0) return partOf(m, scope, object, first, items, place);
     return viewOfRows(m, scope, items, rest, place) ?? m.list(items.map((row) => indexWith(m, scope, row, rest, place, base)), true);
   }
-  const key = evaluate(m, scope, first);
+  const key = m.evaluate(scope, first);
   if (key.kind === 'nothing' && scope.frame.module.program.listConcat) return m.list([indexWith(m, scope, object, rest, place, base)], true);
   const list = itemsOf(m, key);
   if (list) {
@@ -69,7 +68,7 @@ function viewOfRows(m: Machine, scope: Scope, rows: readonly Value[], rest: read
   const { listConcat, negativeIndex, indexBase } = scope.frame.module.program;
   const [only, ...more] = rest;
   if (!listConcat || !only || more.length > 0 || only.kind === 'slice') return undefined;
-  const k = countOf(m, evaluate(m, scope, only), place);
+  const k = countOf(m, m.evaluate(scope, only), place);
   if (k === undefined) return undefined;
   const items: Value[] = [];
   const view: ViewItem[] = [];

@@ -1,6 +1,5 @@
 import type { Place } from '../text/span';
 import { conditionOf } from './conditions';
-import { evaluate } from './expressions';
 import type { Pattern, Statement } from './form';
 import { genericAt } from './generics';
 import { genericPass, isSubsteps, startsFromLiteralState, type PassStart } from './generic-pass';
@@ -12,7 +11,7 @@ import { bindPattern } from './patterns';
 import { pathOf } from './paths';
 import { Scope } from './scope';
 import { assignTo } from './assignment';
-import { execute, join, split, type Exit, type Outcome } from './statements';
+import { join, split, type Exit, type Outcome } from './flow';
 import { typeFacts } from './type-notes';
 import { declare, readVariable, write } from './variables';
 import { NOTHING, isUnread, unread, type Value } from './values';
@@ -27,7 +26,7 @@ type ForEach = Statement & { kind: 'for-each' };
 
 export function loop(m: Machine, scope: Scope, s: LoopStatement, place: Place, label?: string): Outcome {
   const outer = new Scope(scope, scope.frame);
-  const first = execute(m, outer, s.initial);
+  const first = m.execute(outer, s.initial);
   if (!first.normal) return first;
   if (m.request.withinLimits && isWrap(s)) return { exits: [], normal: true };
   if (isSubsteps(m, outer, s) || startsFromLiteralState(m, outer, [s.body, s.update])) return pass(m, outer, s, place, label);
@@ -85,10 +84,10 @@ function unroll(m: Machine, outer: Scope, s: LoopStatement, place: Place, label:
     const stopped = m.spend(() => place);
     if (stopped) return { exits: [{ kind: 'return', value: stopped, store: m.store, guard: m.graph.true }], normal: false };
     const at = scope;
-    const goesOn = runPass(m, () => execute(m, new Scope(at, at.frame), s.body), label, ways, place);
+    const goesOn = runPass(m, () => m.execute(new Scope(at, at.frame), s.body), label, ways, place);
     if (!goesOn) return finish(m, base, ways, false, label, place);
     scope = freshCopy(m, outer, scope);
-    execute(m, scope, s.update);
+    m.execute(scope, s.update);
   }
 }
 
@@ -113,16 +112,16 @@ function pass(m: Machine, outer: Scope, s: LoopStatement, place: Place, label: s
     const base = m.store;
     const ways: Exit[] = [];
     const scope = new Scope(outer, outer.frame);
-    const goesOn = runPass(m, () => execute(m, scope, s.body), label, ways, place);
+    const goesOn = runPass(m, () => m.execute(scope, s.body), label, ways, place);
     const outcome = finish(m, base, ways, goesOn, label, place);
-    if (outcome.normal) execute(m, new Scope(outer, outer.frame), s.update);
+    if (outcome.normal) m.execute(new Scope(outer, outer.frame), s.update);
     return outcome;
   };
   return genericPass(m, outer, start, run);
 }
 
 export function forEach(m: Machine, scope: Scope, s: ForEach, place: Place, label?: string): Outcome {
-  const over = evaluate(m, scope, s.over);
+  const over = m.evaluate(scope, s.over);
   const items = s.keys ? keysOf(m, scope, over) : passesOf(m, over);
   const bindTo = (inner: Scope, value: Value): void => bindTarget(m, inner, s, value);
   if (!items || items.length > MOST_PASSES || startsFromLiteralState(m, scope, [s.body])) {
@@ -133,7 +132,7 @@ export function forEach(m: Machine, scope: Scope, s: ForEach, place: Place, labe
       const ways: Exit[] = [];
       const inner = new Scope(scope, scope.frame);
       bindTo(inner, one);
-      const goesOn = runPass(m, () => execute(m, inner, s.body), label, ways, place);
+      const goesOn = runPass(m, () => m.execute(inner, s.body), label, ways, place);
       return finish(m, base, ways, goesOn, label, place);
     });
   }
@@ -147,7 +146,7 @@ export function forEach(m: Machine, scope: Scope, s: ForEach, place: Place, labe
   for (let k = 0; k < Math.min(length(), MOST_PASSES); k++) {
     const inner = new Scope(scope, scope.frame);
     bindTo(inner, (s.keys ? undefined : itemsOf(m, over)?.[k]) ?? items[k] ?? NOTHING);
-    goesOn = runPass(m, () => execute(m, new Scope(inner, inner.frame), s.body), label, ways, place);
+    goesOn = runPass(m, () => m.execute(new Scope(inner, inner.frame), s.body), label, ways, place);
     if (!goesOn) break;
   }
   const outcome = finish(m, start, ways, goesOn, label, place);

@@ -1,7 +1,9 @@
 import type { Graph } from '../expression/graph';
 import type { Expr } from '../expression/node';
 import type { Place, Span } from '../text/span';
-import type { ClassNode, Expression, FunctionNode } from './form';
+import type { ArgumentValue } from './calls';
+import type { Outcome } from './flow';
+import type { ClassNode, Expression, FunctionNode, Statement } from './form';
 import type { ClassInfo, Module, Scope } from './scope';
 import type { Library } from './library';
 import type { Ambiguity, BindingMade, ReadRequest, TraceEntry } from './reading';
@@ -44,7 +46,17 @@ export class Machine {
   /** Above zero where a count is wanted: fields that hold a literal give it. */
   counting = 0;
   /** Set at the start of a reading, so that what is below the evaluator can ask for a value. */
+  /**
+   * What the files of the executor ask of one another in circles; `read` fills it in, so that none has to import a file
+   * that needs it.
+   */
   evaluate: (scope: Scope, e: Expression) => Value = () => unread('an expression', undefined);
+  execute: (scope: Scope, body: readonly Statement[]) => Outcome = () => ({ exits: [], normal: true });
+  invoke: (f: FunctionValue, self: Value | undefined, args: readonly ArgumentValue[], place: Place) => Value = () =>
+    unread('a call', undefined);
+  callFunction: (module: Module, f: Value, args: readonly Value[], place: Place) => Value = () => unread('a call', undefined);
+  exportOf: (module: Module, name: string, place: Place) => Value = () => unread('an import', undefined);
+  readElement: (module: Module, object: Value, key: Value, place: Place) => Value = () => unread('an element', undefined);
   /** Runs a function of the file on generic arguments, from the state at the subject's entry. */
   runSeparately: (f: FunctionValue) => Value = () => unread('a call', undefined);
   /** Set while an output is read, so that values keep the place that made them. */

@@ -1,5 +1,4 @@
 import type { Place } from '../text/span';
-import { invoke } from './calls';
 import { isChoiceOfNumbers } from './conditions';
 import { findMember } from './class-members';
 import { instanceField, staticMember } from './classes';
@@ -7,7 +6,6 @@ import { childOf, fieldValue } from './generics';
 import { runIntrinsic } from './intrinsics/table';
 import type { Machine } from './machine';
 import { withEach } from './merging';
-import { exportOf } from './modules';
 import { countOf, dataOf, describe, scalarOf } from './numbers';
 import type { ClassInfo, Module } from './scope';
 import { NOTHING, unread, type FunctionValue, type GenericData, type ListData, type ObjectValue, type RecordData, type Value } from './values';
@@ -25,7 +23,7 @@ export function readMember(m: Machine, module: Module, object: Value, key: strin
     case 'library':
       return libraryMember(m, object.module, `${object.path}.${key}`, place);
     case 'module':
-      return exportOf(m, object.module, key, place);
+      return m.exportOf(object.module, key, place);
     case 'class':
       return staticMember(m, object.info, key, place);
     case 'function':
@@ -92,7 +90,7 @@ function recordMember(m: Machine, module: Module, object: ObjectValue, data: Rec
   const own = data.members.get(key);
   if (own) return own;
   const getter = data.getters?.get(key);
-  if (getter) return invoke(m, getter, object, [], place);
+  if (getter) return m.invoke(getter, object, [], place);
   if (data.info) {
     const found = fromClass(m, data.info, object, key, place);
     if (found) return found;
@@ -112,7 +110,7 @@ function fromClass(m: Machine, info: ClassInfo, object: ObjectValue, key: string
   if (found === 'unknown') return unread(`\`.${key}\` of a class whose base is not read`, place);
   if (!found?.member.node) return undefined;
   const f: FunctionValue = { kind: 'function', node: found.member.node, scope: found.info.scope, self: object, home: found.info };
-  if (found.member.kind === 'getter') return invoke(m, f, object, [], place);
+  if (found.member.kind === 'getter') return m.invoke(f, object, [], place);
   return found.member.kind === 'method' ? f : undefined;
 }
 
@@ -232,7 +230,7 @@ function callSetter(m: Machine, info: ClassInfo, object: ObjectValue, key: strin
   const found = findMember(info, key, 'setter');
   if (!found || found === 'unknown' || !found.member.node) return false;
   const f: FunctionValue = { kind: 'function', node: found.member.node, scope: found.info.scope, self: object, home: found.info };
-  invoke(m, f, object, [{ value }], place);
+  m.invoke(f, object, [{ value }], place);
   return true;
 }
 

@@ -1,7 +1,7 @@
+import { settle } from './settle';
 import type { Expr } from '../expression/node';
 import type { Place } from '../text/span';
 import { childOf, numberOf } from './generics';
-import { settle } from './conditions';
 import { DEAD, type Machine } from './machine';
 import type { Store } from './store';
 import { NOTHING, isData, isUnread, unread, type Content, type Data, type Unread, type Value } from './values';

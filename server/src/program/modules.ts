@@ -1,6 +1,5 @@
 import type { Place } from '../text/span';
 import { classInfo } from './classes';
-import { evaluate } from './expressions';
 import type { Expression, Program, Statement, TypeNote } from './form';
 import { genericAt } from './generics';
 import type { Library, Meaning } from './library';
@@ -98,7 +97,7 @@ function addVariables(m: Machine, module: Module, scope: Scope, s: Statement & {
     lazy(m, scope, name, () => {
       if (!done && s.value) {
         done = true;
-        bindPattern(m, scope, s.target, evaluate(m, scope, s.value), (_, p, v) => {
+        bindPattern(m, scope, s.target, m.evaluate(scope, s.value), (_, p, v) => {
           if (p.kind === 'name') values.set(p.name, arrive(m, p.name, v, arrival(scope, p.name, m.place(scope, p.span))));
         });
       }
@@ -118,7 +117,7 @@ function arrival(scope: Scope, name: string, place: Place): Arrival {
 function topLevelValue(m: Machine, module: Module, scope: Scope, name: string, value: Expression | undefined, mutable: boolean, at?: Place, note?: TypeNote): Value {
   const place = value ? m.place(scope, value.span) : (at ?? m.place(scope, { start: 0, end: 0 }));
   const made = value && value.kind !== 'nothing' ? value : firstMade(module.program, name);
-  const initial = (): Value | undefined => (made ? evaluate(m, scope, made) : undefined);
+  const initial = (): Value | undefined => (made ? m.evaluate(scope, made) : undefined);
   const changes = mutable && assignments(module.program).assigned.has(name);
   if (!changes && value) {
     const v = initial();
@@ -203,7 +202,7 @@ function importedWhole(m: Machine, module: Module, from: string, local: string, 
   const other = open(m, module, from);
   if (!other) return genericAt(m, local, place);
   if (other.isMeaning && other.exports.has('default')) return exportOf(m, other, 'default', place);
-  return other.whole ? evaluate(m, other.scope, other.whole) : { kind: 'module', module: other };
+  return other.whole ? m.evaluate(other.scope, other.whole) : { kind: 'module', module: other };
 }
 
 export function requireModule(m: Machine, scope: Scope, from: string, place: Place): Value {
@@ -247,7 +246,7 @@ function addExport(m: Machine, module: Module, s: Statement & { kind: 'export' }
   if (s.value) {
     const { value } = s;
     if (s.names.length === 0) module.whole = value;
-    for (const n of s.names) module.exports.set(n.exported, () => evaluate(m, module.scope, value));
+    for (const n of s.names) module.exports.set(n.exported, () => m.evaluate(module.scope, value));
   }
 }
 
@@ -261,7 +260,7 @@ export function exportOf(m: Machine, module: Module, name: string, place: Place,
     if (value && value.kind !== 'unread' && value.kind !== 'nothing') return value;
   }
   if (module.whole) {
-    const whole = evaluate(m, module.scope, module.whole);
+    const whole = m.evaluate(module.scope, module.whole);
     return name === 'default' ? whole : readMember(m, module, whole, name, place);
   }
   if (name === 'default' && module.exports.size > 0 && !/\.m?[jt]sx?$/.test(module.file)) return { kind: 'module', module };

@@ -1,5 +1,4 @@
 import type { Place } from '../text/span';
-import { evaluate } from './expressions';
 import type { Pattern, PatternItem } from './form';
 import type { Machine } from './machine';
 import { readElement, readMember } from './members';
@@ -38,7 +37,7 @@ export function bindPattern(m: Machine, scope: Scope, pattern: Pattern, value: V
 
 export function bindItem(m: Machine, scope: Scope, item: PatternItem, value: Value, put: Put): void {
   if (value.kind === 'nothing' && item.initial) {
-    bindPattern(m, scope, item.pattern, evaluate(m, scope, item.initial), put, true);
+    bindPattern(m, scope, item.pattern, m.evaluate(scope, item.initial), put, true);
   } else bindPattern(m, scope, item.pattern, value, put);
 }
 

@@ -1,14 +1,15 @@
 import type { Rational } from '../expression/rational';
 import type { Place } from '../text/span';
 import { assume } from './assumptions';
-import { runBody } from './calls';
+import { callFunctionValue, invoke, runBody } from './calls';
 import { classInfo } from './classes';
 import { enter } from './entry';
 import { evaluate } from './expressions';
 import { genericAt } from './generics';
 import { Machine } from './machine';
 import { apply, mergeEndings, type Ending } from './merging';
-import { loadModule } from './modules';
+import { readElement } from './members';
+import { exportOf, loadModule } from './modules';
 import { readOutputs, type Ended } from './outputs';
 import type { ClassNode, Expression } from './form';
 import type { Ambiguity, OutputValue, ReadRequest, Reading } from './reading';
@@ -73,6 +74,11 @@ function readOnce(m: Machine): OutputValue[] {
   }
   for (const o of request.outputs) if (o.expression.kind === 'name') m.claimedNames.add(o.expression.name);
   m.evaluate = (scope, e) => evaluate(m, scope, e);
+  m.execute = (scope, body) => execute(m, scope, body);
+  m.invoke = (f, self, args, place) => invoke(m, f, self, args, place);
+  m.callFunction = (module, f, args, place) => callFunctionValue(m, module, f, args, place);
+  m.exportOf = (module, name, place) => exportOf(m, module, name, place);
+  m.readElement = (module, object, key, place) => readElement(m, module, object, key, place);
   const module = loadModule(m, request.file, request.program, request.library);
   m.naming.settle((e) => constantIndex(m, module, e));
   const ended = request.subject.kind === 'function' ? runFunction(m, module) : runTop(m, module);

@@ -1,5 +1,4 @@
 import type { Place } from '../text/span';
-import { evaluate } from './expressions';
 import type { Expression } from './form';
 import type { Machine } from './machine';
 import { readElement } from './members';
@@ -16,7 +15,7 @@ type Slice = Expression & { kind: 'slice' };
 export function positions(m: Machine, scope: Scope, s: Slice, length: number, place: Place): number[] | undefined {
   const { indexBase, negativeIndex } = scope.frame.module.program;
   const bound = (e: Expression | undefined, otherwise: number): number | undefined =>
-    e ? countOf(m, evaluate(m, scope, e), place) : otherwise;
+    e ? countOf(m, m.evaluate(scope, e), place) : otherwise;
   const step = bound(s.step, 1);
   if (step === undefined || step === 0) return undefined;
   const inclusive = indexBase === 1;
@@ -44,7 +43,7 @@ export function sliceItems(m: Machine, scope: Scope, object: Value, s: Slice, pl
   // A part of a list from outside, with both ends in sight.
   if (dataOf(m, object)?.kind === 'generic' && s.to) {
     const { indexBase } = scope.frame.module.program;
-    const to = countOf(m, evaluate(m, scope, s.to), place);
+    const to = countOf(m, m.evaluate(scope, s.to), place);
     if (to !== undefined && to >= 0 && to < 10_000) {
       const picked = positions(m, scope, s, to + (indexBase === 1 ? 0 : 0), place);
       if (picked) return picked.map((k) => readElement(m, scope.frame.module, object, m.scalar(m.graph.number(k + indexBase)), place));
@@ -71,7 +70,7 @@ export function sliceTargets(m: Machine, scope: Scope, object: Value, indices: r
     return sliceTargets(m, scope, object, [...ranges, ...rest], value, place);
   }
   if (first.kind !== 'slice') {
-    const key = evaluate(m, scope, first);
+    const key = m.evaluate(scope, first);
     if (rest.length === 0) return [{ object, key, value }];
     return sliceTargets(m, scope, readElement(m, module, object, key, place), rest, value, place);
   }
@@ -80,7 +79,7 @@ export function sliceTargets(m: Machine, scope: Scope, object: Value, indices: r
   let picked: number[] | undefined;
   if (items) picked = positions(m, scope, first, items.length, place);
   else if (values && rest.length === 0) {
-    const start = first.from ? countOf(m, evaluate(m, scope, first.from), place) : indexBase;
+    const start = first.from ? countOf(m, m.evaluate(scope, first.from), place) : indexBase;
     if (start !== undefined) picked = values.map((_, k) => start - indexBase + k);
   }
   if (!picked) return unread('an assignment to a slice whose bounds are not known', place);

@@ -1,35 +1,21 @@
 import type { Expr } from '../expression/node';
 import type { Place } from '../text/span';
 import { classInfo } from './classes';
-import { compare, conditionOf, settle } from './conditions';
-import { evaluate } from './expressions';
+import { compare, conditionOf } from './conditions';
+import { join, split, type Exit, type Outcome } from './flow';
 import type { Pattern, Statement } from './form';
 import { isClipGuard } from './limits';
 import { forEach, loop } from './loops';
 import type { Machine } from './machine';
-import { apply, mergeEndings, mergePair, spoilWritten, type Ending } from './merging';
+import { settle } from './settle';
+import { apply, mergePair, spoilWritten } from './merging';
 import { bindPattern } from './patterns';
 import { Scope } from './scope';
-import type { Store } from './store';
 import { annotate } from './type-notes';
 import { arriveAt, declare, write } from './variables';
 import { NOTHING, isUnread, unread, type Unread, type Value } from './values';
 
-/** Statements. A way out of a block that is taken only under some condition is kept with its guard and its own store. */
-export interface Exit {
-  readonly kind: 'return' | 'break' | 'continue' | 'throw';
-  readonly label?: string;
-  readonly value: Value;
-  readonly store: Store;
-  /** Taken when this holds and no earlier exit was taken. */
-  readonly guard: Expr;
-}
 
-export interface Outcome {
-  readonly exits: readonly Exit[];
-  /** True where control can reach the end; the machine's store is then the one that goes on. */
-  readonly normal: boolean;
-}
 
 const GOES_ON: Outcome = { exits: [], normal: true };
 
@@ -86,10 +72,10 @@ function run(m: Machine, scope: Scope, s: Statement, place: Place): Outcome {
       return GOES_ON;
     case 'expression':
       m.discarded = s.value;
-      evaluate(m, scope, s.value);
+      m.evaluate(scope, s.value);
       return GOES_ON;
     case 'return':
-      return exit(m, 'return', s.value ? evaluate(m, scope, s.value) : NOTHING);
+      return exit(m, 'return', s.value ? m.evaluate(scope, s.value) : NOTHING);
     case 'if':
       return executeIf(m, scope, s, place);
     case 'loop':
@@ -104,7 +90,7 @@ function run(m: Machine, scope: Scope, s: Statement, place: Place): Outcome {
     case 'labelled':
       return executeLabelled(m, scope, s, place);
     case 'throw':
-      if (s.value) evaluate(m, scope, s.value);
+      if (s.value) m.evaluate(scope, s.value);
       return exit(m, 'throw', NOTHING);
     case 'try':
       return executeTry(m, scope, s, place);
@@ -140,7 +126,7 @@ function executeDeclare(m: Machine, scope: Scope, s: Statement & { kind: 'declar
     }
     return;
   }
-  const value = evaluate(m, scope, s.value);
+  const value = m.evaluate(scope, s.value);
   if (s.note && s.target.kind === 'name') annotate(m, value, { note: s.note, scope });
   bindPattern(m, scope, s.target, value, (_, pattern, v) => {
     if (pattern.kind !== 'name') return;
@@ -211,31 +197,6 @@ export function branch(m: Machine, c: Expr, conditionPlace: Place, place: Place,
   return { exits, normal: a.normal || b.normal };
 }
 
-/** Ends that go on together: those of `taken`, and the current store where `normal`. Others stay outside. */
-export function join(m: Machine, base: Store, taken: readonly Exit[], normal: boolean, keepsBase: boolean, place: Place): boolean {
-  const endings: Ending[] = taken.map((x) => ({ guard: x.guard, changes: x.store.changesSince(base), value: NOTHING }));
-  if (normal) endings.push({ guard: m.graph.true, changes: m.store.changesSince(base), value: NOTHING });
-  if (endings.length === 0) return false;
-  const merged = mergeEndings(m, base, endings, place);
-  m.store = keepsBase ? base.child() : base;
-  apply(m.store, merged.changes);
-  return true;
-}
-
-/** Those of the ways out that end here, and the others, which are taken only where none of the first was before. */
-export function split(m: Machine, exits: readonly Exit[], isMine: (x: Exit) => boolean): { mine: Exit[]; others: Exit[] } {
-  const mine: Exit[] = [];
-  const others: Exit[] = [];
-  let open = m.graph.true;
-  for (const x of exits) {
-    if (isMine(x)) {
-      mine.push(x);
-      open = m.graph.and(open, m.graph.not(x.guard));
-    } else others.push({ ...x, guard: m.graph.and(open, x.guard) });
-  }
-  return { mine, others };
-}
-
 function executeLabelled(m: Machine, scope: Scope, s: Statement & { kind: 'labelled' }, place: Place): Outcome {
   const base = m.store;
   m.store = base.child();
@@ -247,7 +208,7 @@ function executeLabelled(m: Machine, scope: Scope, s: Statement & { kind: 'label
 
 function executeSwitch(m: Machine, scope: Scope, s: Statement & { kind: 'switch' }): Outcome {
   const place = m.place(scope, s.span);
-  const value = evaluate(m, scope, s.value);
+  const value = m.evaluate(scope, s.value);
   const inner = new Scope(scope, scope.frame);
   hoist(m, inner, s.cases.flatMap((c) => c.body));
   const base = m.store;
@@ -268,7 +229,7 @@ function fromCase(m: Machine, scope: Scope, s: Statement & { kind: 'switch' }, v
   }
   const test = s.cases[at]!.test!;
   const place = m.place(scope, test.span);
-  const same = compare(m, '==', value, evaluate(m, scope, test), place);
+  const same = compare(m, '==', value, m.evaluate(scope, test), place);
   if (same.kind !== 'condition') return spoil(m, same.kind === 'unread' ? same : unread('a case', place));
   return branch(
     m,
@@ -333,7 +294,7 @@ export function enumValue(m: Machine, scope: Scope, s: Statement & { kind: 'enum
   const inner = new Scope(scope, scope.frame);
   let next: Value = m.scalar(m.graph.zero);
   for (const member of s.members) {
-    const value = member.value ? evaluate(m, inner, member.value) : next;
+    const value = member.value ? m.evaluate(inner, member.value) : next;
     members.set(member.name, value);
     declare(m, inner, member.name, value);
     next = value.kind === 'scalar' ? m.scalar(m.graph.add(value.expr, m.graph.one)) : unread('an enum member after one that is no number', m.place(scope, member.span));

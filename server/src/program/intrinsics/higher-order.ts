@@ -1,6 +1,5 @@
 import { truthOf } from '../conditions';
 import type { Machine } from '../machine';
-import { callFunctionValue, invoke } from '../calls';
 import { damage } from '../damage';
 import { countOf, dataOf, itemsOf } from '../numbers';
 import { isUnread, unread, type Unread, type Value } from '../values';
@@ -12,8 +11,8 @@ import type { Call, IntrinsicTable } from './table';
 function apply(m: Machine, call: Call, f: Value | undefined, args: readonly Value[]): Value {
   if (!f) return unread('a function that is not given', call.place);
   if (f.kind === 'unread') return f;
-  if (f.kind === 'function') return invoke(m, f, f.self, args.map((value) => ({ value })), call.place);
-  return callFunctionValue(m, call.module, f, args, call.place);
+  if (f.kind === 'function') return m.invoke(f, f.self, args.map((value) => ({ value })), call.place);
+  return m.callFunction(call.module, f, args, call.place);
 }
 
 /** An item as it is now: the function may have changed the list. */

@@ -1,6 +1,5 @@
 import { truthOf } from '../conditions';
 import type { Machine } from '../machine';
-import { readElement } from '../members';
 import { binary } from '../operators';
 import { countOf, dataOf, itemsOf, numeric } from '../numbers';
 import { NOTHING, isUnread, unread, type ListData, type Value } from '../values';
@@ -230,7 +229,7 @@ export const LISTS: IntrinsicTable = {
   },
   'list-element': (m, call) => {
     let v = call.args[0]!;
-    for (const key of call.args.slice(1)) v = readElement(m, call.module, v, key, call.place);
+    for (const key of call.args.slice(1)) v = m.readElement(call.module, v, key, call.place);
     return v;
   },
   'list-length': (m, call) => {
@@ -363,7 +362,7 @@ function genericSlice(m: Machine, call: Call, object: Value): Value {
   }
   const base = call.module.program.indexBase;
   const items = Array.from({ length: to - from }, (_, k) =>
-    readElement(m, call.module, object, m.scalar(m.graph.number(from + k + base)), call.place),
+    m.readElement(call.module, object, m.scalar(m.graph.number(from + k + base)), call.place),
   );
   return m.list(items);
 }

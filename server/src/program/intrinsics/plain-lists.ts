@@ -1,5 +1,4 @@
 import { truthOf } from '../conditions';
-import { callFunctionValue } from '../calls';
 import type { Machine } from '../machine';
 import { binary } from '../operators';
 import { countOf, dataOf, itemsOf } from '../numbers';
@@ -85,7 +84,7 @@ export const PLAIN_LISTS: IntrinsicTable = {
     if (!isItems(items) || !f) return isItems(items) ? missing(call) : items;
     const all = start ? [start, ...items] : items;
     if (all.length === 0) return unread('the reduction of an empty list', call.place);
-    return all.reduce((a, b) => callFunctionValue(m, call.module, f, [a, b], call.place));
+    return all.reduce((a, b) => m.callFunction(call.module, f, [a, b], call.place));
   },
   'list-pop-at': (m, call) => {
     const [list, at] = call.args;

@@ -1,8 +1,9 @@
 import type { Place } from '../../text/span';
-import { applyScalar, type ArgumentValue } from '../calls';
+import type { ArgumentValue } from '../calls';
 import type { Machine } from '../machine';
 import { withEach } from '../merging';
 import { scalarOf } from '../numbers';
+import { applyScalar } from '../scalar-call';
 import type { Module } from '../scope';
 import { unread, type Value } from '../values';
 import { ARRAY_NUMBERS } from './array-numbers';
