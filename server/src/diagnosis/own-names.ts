@@ -46,10 +46,22 @@ export function inOwnNames(
 /** The symbols that the code must have names for. */
 export function symbolsExpected(derived: Derived, claim: ClaimResult): readonly string[] {
   const expr = closedForm(derived, claim);
-  return expr ? symbolsOf(expr).map((s) => symbolText(s.data as SymbolData)) : [];
+  return expr ? symbolNames(expr) : [];
 }
 
-function closedForm(derived: Derived, { expected }: ClaimResult): Expr | undefined {
+/** The symbols of an expression, as the declaration writes them. */
+export function symbolNames(expr: Expr): string[] {
+  return symbolsOf(expr).map((s) => symbolText(s.data as SymbolData));
+}
+
+/** An expression as code, in one piece. */
+export function inCode(expr: Expr, names: ReadonlyMap<string, string>, language: string, source: string): string | undefined {
+  const printed = code(styleOf(language, source), [expr], { names, limit: Infinity });
+  return printed.statements.length > 0 ? undefined : printed.values[0];
+}
+
+/** What a claim should compute, accelerations solved for; undefined where there is no closed form. */
+export function closedForm(derived: Derived, { expected }: ClaimResult): Expr | undefined {
   if (!expected || derived.system.near || derived.system.constraints.length > 0) return undefined;
   const solved = solvedAccelerations(derived)?.find((s) => s.coordinate.acceleration === expected)?.expr;
   if (solved) return solved;

@@ -63,7 +63,7 @@ export function findRowPattern(derived: Derived, claims: readonly ClaimResult[],
   // Right at all these states: it differs only in a branch that few states reach.
   if (constant !== undefined && Math.abs(constant - 1) < 1e-6) return undefined;
   if (constant !== undefined) {
-    return { code: 'factor', message: `gives ${factorText(constant)} times the right value` };
+    return { code: 'factor', message: `gives ${factorText(constant)} times the right value${angleText(constant)}` };
   }
   return symbolFactor(derived, columns, votes, (s) => found(s) / expected(s));
 }
@@ -87,6 +87,14 @@ export function factorText(x: number): string {
     if (Math.abs(x / value - 1) < 1e-9) return text;
   }
   return formatNumber(x);
+}
+
+/** The likeliest reason for a factor between degrees and radians. */
+function angleText(x: number): string {
+  const is = (value: number): boolean => Math.abs(Math.abs(x) / value - 1) < 1e-9;
+  if (is(Math.PI / 180)) return ': an angle in radians taken for degrees';
+  if (is(180 / Math.PI)) return ': an angle in degrees where the declaration has radians';
+  return '';
 }
 
 function symbolFactor(

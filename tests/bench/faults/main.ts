@@ -1,5 +1,5 @@
 import { execFileSync } from 'node:child_process';
-import { writeFileSync } from 'node:fs';
+import { readFileSync, writeFileSync } from 'node:fs';
 import { loadFixtures } from '../../support/fixtures';
 import { Bench, type Outcome } from './measure';
 import { mutationsOf, type Mutation } from './mutations';
@@ -124,4 +124,30 @@ const text = [
   ...usualTests(),
 ].join('\n');
 console.log(text);
-if (only === undefined) writeFileSync('tests/bench/faults/results.md', text);
+if (only === undefined) {
+  writeFileSync('tests/bench/faults/results.md', text);
+  const readme = readFileSync('README.md', 'utf8');
+  const block = /(<!-- faults:begin -->\n)[^]*?(<!-- faults:end -->)/;
+  writeFileSync('README.md', readme.replace(block, (_, begin: string, end: string) => `${begin}${summary()}\n${end}`));
+}
+
+/** What the README shows: all single faults, all pairs, and the usual tests. */
+function summary(): string {
+  const row = (name: string, o: readonly Outcome[]): string =>
+    `| ${name} | ${o.length} | ${share(o, (x) => x.detected)} | ${share(o, (x) => x.line)} | ${share(o, (x) => x.expression)} | ${share(o, (x) => x.repaired)} | ${o.filter((x) => x.wrong).length} | ${time(o, 0.5)} | ${time(o, 0.95)} |`;
+  const usual = (name: string, of: (o: Outcome) => boolean | undefined): string =>
+    `| ${name} | ${single.length} | ${share(single, (o) => of(o) === true)} | - | - | - | - | | |`;
+  return [
+    '| on the same mutants | mutants | detected | right line | right expression | repaired | wrong repairs | median | p95 |',
+    '|---|---|---|---|---|---|---|---|---|',
+    row('Visviva, one fault', single),
+    row('Visviva, two faults', pairs),
+    usual('energy drift above 1e-4, one fault', (o) => o.energy),
+    usual('golden trajectory, one fault', (o) => o.golden),
+    '',
+    `${new Date().toISOString().slice(0, 10)}, commit ${commit}: ${functions} correct functions, ${every === 1 ? 'every mutant' : `one mutant in ${every}`};`,
+    `false alarms on the functions as they are: ${alarms}. The usual tests run at default parameters (all 1, no damping, no`,
+    `inputs); where they cannot run, they detect nothing. Written by \`npm run bench:faults\`; by kind in`,
+    '[results.md](tests/bench/faults/results.md).',
+  ].join('\n');
+}
