@@ -3,10 +3,12 @@ import { symbolText, type Expr, type SymbolData } from '../expression/node';
 import type { Pattern } from '../program/form';
 import type { Reading } from '../program/reading';
 import type { Site, SourceMap } from './search/sites';
+import { localsOf } from './search/tagged';
 
 /**
  * What the code calls the symbols of the declaration at a place: local names that hold them first, then what was read
- * for them, parameters of the functions around, and last members beside those that are known. Only names that the text has.
+ * for them, parameters and locals of the function around, and last members that the text has somewhere. Only names that the text has: a member
+ * that an object does not have would be read by its name all the same.
  */
 export function namesAt(request: SubjectRequest, reading: Reading | undefined, map: SourceMap, site: Site, source: string): Map<string, string> {
   const names = new Map<string, string>();
@@ -26,13 +28,13 @@ export function namesAt(request: SubjectRequest, reading: Reading | undefined, m
   for (const t of local) add(t.expr, t.text);
   const read = (reading?.bindings ?? []).filter((b) => b.place.file === request.file && has(/^[\p{L}_$][\p{L}\p{N}_$]*/u.exec(b.code)?.[0] ?? b.code));
   for (const b of [...read].sort((x, y) => short(x.code, y.code))) add(b.meaning, b.code);
-  for (const name of parametersOf(site)) {
+  for (const name of [...parametersOf(site), ...(site.owner ? localsOf(site.owner, site.span.start) : [])]) {
     const meanings = request.spellings.byName(name);
     if (meanings.length === 1) add(meanings[0]!.expr, name);
   }
   const { parameters, inputs } = request.derived.system;
   const objects = new Set([...names.values()].flatMap((n) => /^(.*)\.\w+$/.exec(n)?.[1] ?? []));
-  for (const object of objects) for (const p of [...parameters, ...inputs]) if (has(p.name)) add(p.symbol, `${object}.${p.name}`);
+  for (const object of objects) for (const p of [...parameters, ...inputs]) if (has(`${object}.${p.name}`)) add(p.symbol, `${object}.${p.name}`);
   return names;
 }
 

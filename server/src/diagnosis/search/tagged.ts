@@ -130,12 +130,15 @@ function namesOf(request: SubjectRequest): string[] {
   return [...out].slice(0, 60);
 }
 
-function localsOf(node: FunctionNode): string[] {
+/** Names that a function declares, as far as its declarations end before a position. */
+export function localsOf(node: FunctionNode, before = Infinity): string[] {
   const out: string[] = [];
   const visit = (x: unknown, depth: number): void => {
     if (depth > 12 || typeof x !== 'object' || x === null) return;
     if (Array.isArray(x)) x.forEach((y) => visit(y, depth + 1));
-    else if ('kind' in x && x.kind === 'declare' && 'target' in x) out.push(...patternNames(x.target as never));
+    else if ('kind' in x && x.kind === 'declare' && 'target' in x) {
+      if ((x as unknown as { span: { end: number } }).span.end <= before) out.push(...patternNames(x.target as never));
+    }
     else if ('body' in x || 'whenTrue' in x) Object.values(x).forEach((y) => visit(y, depth + 1));
   };
   visit(node.body, 0);
