@@ -1,4 +1,4 @@
-import { statusNotification, version, type FileStatus } from '@visviva/shared';
+import { statusNotification, suggestRequest, version, type FileStatus, type SuggestParams, type Suggestion } from '@visviva/shared';
 import * as vscode from 'vscode';
 import {
   CloseAction,
@@ -54,6 +54,12 @@ export class CheckerClient {
         if (newState === State.Running) status.running();
       }),
     );
+  }
+
+  /** A first declaration for the function at a place; undefined where there is nothing to suggest. */
+  async suggest(uri: vscode.Uri, position: vscode.Position): Promise<Suggestion | undefined> {
+    const params: SuggestParams = { textDocument: { uri: uri.toString() }, position: { line: position.line, character: position.character } };
+    return (await this.client.sendRequest<Suggestion | null>(suggestRequest, params)) ?? undefined;
   }
 
   async start(): Promise<void> {

@@ -1,5 +1,6 @@
 import * as vscode from 'vscode';
 import { CheckerClient } from './checker-client';
+import { insertSuggestion } from './suggest';
 import { StatusItem } from './status-item';
 
 let client: CheckerClient | undefined;
@@ -14,6 +15,7 @@ export async function activate(context: vscode.ExtensionContext): Promise<void> 
     status,
     vscode.commands.registerCommand('visviva.restart', () => checker.restart()),
     vscode.commands.registerCommand('visviva.showOutput', () => output.show(true)),
+    vscode.commands.registerTextEditorCommand('visviva.suggest', (editor) => void insertSuggestion(editor, checker)),
   );
   await checker.start();
 }

@@ -15,6 +15,25 @@ export interface FileStatus {
   readonly reason?: string;
 }
 
+/** Asks for a first declaration of the function at a place; answered with null where nothing looks like dynamics. */
+export const suggestRequest = 'visviva/suggest';
+
+export interface SuggestParams {
+  readonly textDocument: { readonly uri: string };
+  /** Lines and characters from 0, as in the protocol. */
+  readonly position: { readonly line: number; readonly character: number };
+}
+
+export interface Suggestion {
+  readonly function: string;
+  /** The document version it was made from. */
+  readonly version: number;
+  /** The line (from 0) before which it belongs. */
+  readonly line: number;
+  /** A comment of the file's language, without a line end. */
+  readonly text: string;
+}
+
 export interface FileCounts {
   readonly systems: number;
   readonly holds: number;

@@ -11,6 +11,7 @@ import {
   type DocumentSymbol,
   type Hover,
 } from 'vscode-languageserver-protocol/node';
+import { suggestRequest, type Suggestion } from '@visviva/shared';
 import { afterEach, beforeEach, describe, expect, test } from 'vitest';
 import { built, builtServer, TestClient } from './support/client';
 
@@ -128,6 +129,17 @@ describe('the built server, over standard input and output', () => {
       expect(selectionRange.start.line).toBeGreaterThanOrEqual(range.start.line);
       expect(selectionRange.end.line).toBeLessThanOrEqual(range.end.line);
     }
+  });
+
+  test('a first declaration for the function at the cursor', async () => {
+    await client.initialize(rich);
+    const code = 'export function swing(th, thDot, m, l, g) {\n  return [thDot, -g / l * Math.sin(th)];\n}\n';
+    client.open(uri, `const a = 1;\n${code}`);
+    const suggestion = await client.request<Suggestion>(suggestRequest, { textDocument: { uri }, position: { line: 2, character: 4 } });
+    expect(suggestion).toMatchObject({ function: 'swing', version: 1, line: 1 });
+    expect(suggestion.text).toMatch(/@visviva[^]*coordinates\s+th/);
+    const none = await client.request(suggestRequest, { textDocument: { uri: 'file:///yard/none.ts' }, position: { line: 0, character: 0 } });
+    expect(none).toBeNull();
   });
 
   test('closing clears', async () => {

@@ -1,4 +1,4 @@
-import { defaultSettings, readSettings, type Settings } from '@visviva/shared';
+import { defaultSettings, readSettings, suggestRequest, type Settings, type SuggestParams, type Suggestion } from '@visviva/shared';
 import {
   CodeActionKind,
   DidChangeConfigurationNotification,
@@ -26,6 +26,7 @@ import { toCodeActions, toRewriteActions } from './code-actions';
 import { plainText } from './hover';
 import { OpenFiles } from './open-files';
 import { fromPosition, fromRange, toRange } from './ranges';
+import { nearestSuggestion } from './suggest';
 import { toFlatSymbols, toSymbols } from './symbols';
 
 /** Kinds of files whose change on disk can change a result. */
@@ -185,6 +186,19 @@ export function serve(connection: Connection, createService: (files: Files) => S
       return capabilities.textDocument?.documentSymbol?.hierarchicalDocumentSymbolSupport
         ? toSymbols(symbols)
         : toFlatSymbols(symbols, textDocument.uri);
+    }),
+  );
+
+  connection.onRequest(
+    suggestRequest,
+    guarded('suggestion', null, async ({ textDocument, position }: SuggestParams, token: CancellationToken): Promise<Suggestion | null> => {
+      const open = files.get(textDocument.uri);
+      if (!open || !service.handles(open.file)) return null;
+      const version = open.document.version;
+      await service.prepare(open.file);
+      const all = await service.suggest(open.file, budgetFor(token));
+      const best = nearestSuggestion(all, position.line + 1);
+      return best ? { function: best.function, version, line: best.range.start.line - 1, text: best.text } : null;
     }),
   );
 
