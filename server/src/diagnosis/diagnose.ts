@@ -5,7 +5,6 @@ import type { Candidate } from './search/candidates/candidate';
 import { trimmed, type Edit } from './search/edits';
 import { Search } from './search/search';
 import { findDeclarationChange } from './declaration';
-import { solvedPlaces } from './solved';
 import { isProgress, isRepair, type Recheck } from './verify';
 
 /** One thing that is wrong with the code of a function. */
@@ -47,8 +46,6 @@ export async function diagnose(request: SubjectRequest, result: SubjectResult, s
     if (!request.budget.look()) break;
     if (await verify([...first.edits, ...second.edits])) return repaired([first, second], source, declaration);
   }
-  const solved = await firstOf(request, solvedPlaces(request, result, search, source), verify);
-  if (solved) return repaired([solved], source, declaration);
   return { faults: [], edits: undefined, place: search.places[0]?.span, declaration };
 }
 

@@ -1,4 +1,4 @@
-import { describe, expect, test } from 'vitest';
+import { expect, test } from 'vitest';
 import { checkText } from '../../support/check';
 import { applied, cart, faults, findings, pendulum, RIGHT_CART } from './support';
 
@@ -73,24 +73,4 @@ export const two = (th: number, m: number, g: number, l: number) => torque(th, m
   const repair = result.claims[1]!.findings[0]!.repair!;
   const after = await checkText('yard/code.ts', applied(shared, repair.edits));
   expect(after.claims.map((c) => c.verdict)).toEqual(['holds', 'holds']);
-});
-
-describe('a factor that the code no longer has', () => {
-  test('is written anew by solving the equation for the place', async () => {
-    const source = `/**
- * @visviva buffer
- * coordinates x [m]
- * parameters  m [kg] > 0, k [N/m] > 0, L0 [m] > 0
- * T = 1/2*m*x'^2
- * V = 1/2*k*(x - L0)^2
- * checks return = x''
- */
-export function slide(x: number, m: number, k: number, L0: number): number {
-  return -k / m;
-}
-`;
-    const [found] = await faults(source);
-    expect(found).toMatchObject({ code: 'differs', repair: 'return -(k * x - k * L0) / m;' });
-    expect(await repairedClaims(source)).toEqual(['holds']);
-  });
 });
