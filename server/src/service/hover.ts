@@ -1,3 +1,4 @@
+import { findEquilibria } from '../comparison/equilibria';
 import type { ClaimResult } from '../comparison/subject';
 import { symbolText, type SymbolData } from '../expression/node';
 import { formatNumber, formatPair } from '../expression/print/number';
@@ -8,6 +9,7 @@ import { contains, type Span } from '../text/span';
 import type { Document } from '../workspace/documents';
 import type { Hover } from './api';
 import { subjectName, type BlockOutcome } from './check';
+import { equilibriumText } from './derive';
 
 /** Longer equations say nothing in a pop-up. */
 const LONGEST = 600;
@@ -80,6 +82,8 @@ function describeOutcome(o: BlockOutcome): string {
     lines.push('```', '');
     const constant = conserved(derived).map((c) => `${c.name} = ${text(c.expr)} (${c.why})`);
     if (constant.length > 0) lines.push('Constant along the motion', '', '```text', ...constant, '```', '');
+    const rest = findEquilibria(derived).map((e) => equilibriumText(derived, e));
+    if (rest.length > 0) lines.push('Equilibria at rest', '', '```text', ...rest, '```', '');
   }
   const claims = o.result?.claims ?? [];
   if (claims.length > 0) lines.push('Claims', '', ...claims.map((c) => `- ${claimLine(o, c)}`), '');
