@@ -94,12 +94,40 @@ function massMatrix(derived: Derived): string[] {
   return coordinates.map((_, i) => `  ${coordinates.map((_, j) => entries[i * n + j]!.padEnd(width[j]!)).join('   ').trimEnd()}`);
 }
 
+/** What the squared angular frequencies of several coordinates are: each by itself, or the roots of a determinant. */
+function modesText(derived: Derived, e: Equilibrium): string {
+  const { graph: g, coordinates } = derived.system;
+  const n = coordinates.length;
+  const at = (entries: readonly Expr[], i: number, j: number) => entries[i * n + j]!;
+  const apart = coordinates.every((_, i) =>
+    coordinates.every((__, j) => i === j || (at(e.mass, i, j) === g.zero && at(e.stiffness, i, j) === g.zero)),
+  );
+  if (apart) {
+    return coordinates
+      .map((c, i) => `omega^2 = ${text(tidy(g, g.divide(at(e.stiffness, i, i), at(e.mass, i, i))))} (${c.name})`)
+      .join(', ');
+  }
+  if (n === 2) {
+    const product = (a: Expr, b: Expr) => g.multiply(a, b);
+    const [m11, m12, , m22] = e.mass as readonly [Expr, Expr, Expr, Expr];
+    const [k11, k12, , k22] = e.stiffness as readonly [Expr, Expr, Expr, Expr];
+    const a = g.subtract(product(m11, m22), g.square(m12));
+    const b = g.add(product(m11, k22), product(m22, k11), g.multiply(g.number(-2), m12, k12));
+    const c = g.subtract(product(k11, k22), g.square(k12));
+    const [p, q, r] = [a, b, c].map((x) => text(tidy(g, x)));
+    return `omega^2 = w, the roots of (${p})*w^2 - (${q})*w + (${r}) = 0`;
+  }
+  const rows = (entries: readonly Expr[]) =>
+    `[${coordinates.map((_, i) => `[${coordinates.map((__, j) => text(at(entries, i, j))).join(', ')}]`).join(', ')}]`;
+  return `omega^2 = w, the roots of det(K - w*M) = 0 with K = ${rows(e.stiffness)}, M = ${rows(e.mass)}`;
+}
+
 /** `th = 0: stable, small oscillations with omega^2 = g/l` */
 export function equilibriumText(derived: Derived, e: Equilibrium): string {
   const g = derived.system.graph;
   const at = derived.system.coordinates.map((c, i) => `${c.name} = ${text(e.point[i]!)}`).join(', ');
   const head = `${at}: ${e.stability}`;
-  if (!e.squaredFrequency) return head;
+  if (!e.squaredFrequency) return e.stability === 'stable' ? `${head}, small oscillations with ${modesText(derived, e)}` : head;
   if (e.stability === 'stable') return `${head}, small oscillations with omega^2 = ${text(e.squaredFrequency)}`;
   if (e.stability === 'unstable') return `${head}, leaves with rate^2 = ${text(tidy(g, g.negate(e.squaredFrequency)))}`;
   return `${head}, omega^2 = ${text(e.squaredFrequency)}`;
