@@ -104,7 +104,7 @@ describe('expressions', () => {
         if (!Number.isFinite(want) || !Number.isFinite(got!.value) || !Number.isFinite(got!.error)) return;
         expect(Math.abs(got!.value - want)).toBeLessThanOrEqual(2 * got!.error + 1e-300);
       }),
-      { numRuns: 600 },
+      { numRuns: 600, seed: 20261201 },
     );
   });
 
@@ -125,9 +125,12 @@ describe('expressions', () => {
         const [coarse, fine] = [slope(2e-5), slope(1e-5)];
         // A kink, a step or a pole near the point: differences settle nothing there.
         if (!Number.isFinite(fine) || Math.abs(coarse - fine) > 1e-5 * (1 + Math.abs(fine))) return;
+        const here = plain(r, at);
+        const side = (h: number) => (plain(r, { ...at, [name]: at[name] + h }) - here) / h;
+        if (!(Math.abs(side(1e-6) - side(-1e-6)) <= 1e-3 * (1 + Math.abs(fine)))) return;
         expect(Math.abs(f!.value - fine)).toBeLessThanOrEqual(1e-3 * (1 + Math.abs(fine)));
       }),
-      { numRuns: 600 },
+      { numRuns: 600, seed: 20261201 },
     );
   });
 
@@ -139,7 +142,7 @@ describe('expressions', () => {
         expect(substitute(g, [e], new Map())[0]).toBe(e);
         expect(g.rebuild(e, e.args)).toBe(e);
       }),
-      { numRuns: 300 },
+      { numRuns: 300, seed: 20261201 },
     );
   });
 
