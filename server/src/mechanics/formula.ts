@@ -1,27 +1,15 @@
 import { timeDerivatives } from '../expression/differentiate';
 import type { Graph } from '../expression/graph';
-import type { Expr, FunctionName, SymbolData } from '../expression/node';
+import type { Expr, SymbolData } from '../expression/node';
 import type { Rational } from '../expression/rational';
 import type { Family, Formula } from '../notation/tree';
 import type { Span } from '../text/span';
+import { applyFunction, FUNCTION_NAMES, isFunctionName } from './formula-functions';
 import { canonicalName } from './names';
-import { ROTATION_FUNCTIONS, rotationFunction } from './rotation';
 import type { FormulaError, Scope } from './scope';
 import {
-  addQuantities, components, cross, determinant, dot, flatten, isMisfit, map, matrix, multiplyQuantities, rowsOf, scalar,
-  shapeText, type Misfit, type Quantity,
+  addQuantities, components, flatten, isMisfit, map, multiplyQuantities, scalar, shapeText, type Misfit, type Quantity,
 } from './value';
-
-const FUNCTIONS: ReadonlyMap<string, FunctionName> = new Map(
-  (['sin', 'cos', 'tan', 'asin', 'acos', 'atan', 'sinh', 'cosh', 'tanh', 'exp', 'log', 'abs', 'sign'] as const).map((n) => [n, n]),
-);
-const OTHER_FUNCTIONS = new Set<string>([
-  ...ROTATION_FUNCTIONS,
-  'sqrt', 'atan2', 'min', 'max', 'dot', 'cross', 'norm', 'transpose', 'det', 'sum']);
-
-export function isFunctionName(name: string): boolean {
-  return FUNCTIONS.has(name) || OTHER_FUNCTIONS.has(name);
-}
 
 export interface FormulaContext {
   readonly scope: Scope;
@@ -257,7 +245,7 @@ function evaluateCall(f: Formula & { kind: 'call' }, context: FormulaContext): Q
   const name = f.callee.name;
   if (!isFunctionName(name)) {
     if (context.scope.has(name)) return fail(`\`${name}\` is not a function: write \`*\` to multiply`);
-    return fail(`there is no function \`${name}\`: the functions are ${[...FUNCTIONS.keys(), ...OTHER_FUNCTIONS].join(' ')}`);
+    return fail(`there is no function \`${name}\`: the functions are ${FUNCTION_NAMES.join(' ')}`);
   }
   const args: Quantity[] = [];
   for (const arg of f.args) {
@@ -265,49 +253,8 @@ function evaluateCall(f: Formula & { kind: 'call' }, context: FormulaContext): Q
     if (!q) return undefined;
     args.push(q);
   }
-  const [a, b] = args;
-  if ((ROTATION_FUNCTIONS as readonly string[]).includes(name)) {
-    const value = args.length > 0 ? rotationFunction(g, name, args) : { misfit: `\`${name}\` takes an argument` };
-    return isMisfit(value) ? fail(value.misfit) : value;
-  }
-  const arity = ['atan2', 'dot', 'cross'].includes(name) ? 2 : name === 'min' || name === 'max' ? undefined : 1;
-  if (!a || (arity !== undefined && args.length !== arity)) {
-    return fail(`\`${name}\` takes ${arity === 2 ? 'two arguments' : 'one argument'}, not ${args.length}`);
-  }
-  const scalars = args.map((q) => (q.kind === 'scalar' ? q.expr : undefined));
-  const plain = scalars.every((s) => s !== undefined) ? scalars : undefined;
-  const fn = FUNCTIONS.get(name);
-  let value: Quantity | Misfit | Expr;
-  if (fn) value = plain ? g.apply(fn, plain) : { misfit: `\`${name}\` takes a number, not ${shapeText(a)}` };
-  else if (name === 'sqrt') value = plain ? g.sqrt(plain[0]!) : { misfit: '`sqrt` takes a number' };
-  else if (name === 'atan2') value = plain ? g.apply('atan2', plain) : { misfit: '`atan2` takes two numbers' };
-  else if (name === 'min' || name === 'max') value = plain ? g.apply(name, plain) : { misfit: `\`${name}\` takes numbers` };
-  else value = vectorFunction(g, name, a, b);
-  if ('misfit' in value) return fail(value.misfit);
-  return 'op' in value ? scalar(value) : value;
-}
-
-function vectorFunction(g: Graph, name: string, a: Quantity, b: Quantity | undefined): Quantity | Misfit | Expr {
-  const va = components(a);
-  const vb = b && components(b);
-  switch (name) {
-    case 'dot':
-      return va && vb ? dot(g, va, vb) : { misfit: '`dot` takes two vectors' };
-    case 'cross':
-      return va && vb ? cross(g, va, vb) : { misfit: '`cross` takes two vectors' };
-    case 'norm':
-      return va ? g.sqrt(g.sum(va.map((x) => g.square(x)))) : { misfit: '`norm` takes a vector' };
-    case 'sum':
-      return va ? g.sum(va) : { misfit: '`sum` takes a vector, or `sum(f over i in 1..n)`' };
-    case 'transpose': {
-      const rows = rowsOf(a);
-      return rows ? matrix(rows[0]!.map((_, j) => rows.map((r) => r[j]!))) : { misfit: '`transpose` takes a matrix' };
-    }
-    default: {
-      const rows = rowsOf(a);
-      return rows ? determinant(g, rows) : { misfit: '`det` takes a matrix' };
-    }
-  }
+  const value = applyFunction(g, name, args);
+  return isMisfit(value) ? fail(value.misfit) : value;
 }
 
 function evaluateIndex(f: Formula & { kind: 'index' }, context: FormulaContext): Quantity | undefined {
