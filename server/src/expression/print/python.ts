@@ -1,8 +1,8 @@
 import type { FunctionName } from '../node';
 import { Rational } from '../rational';
+import { above, atom, number, product, tight } from './code-parts';
 import type { CodeStyle } from './code-style';
-import { joined, Level, type Part, type Written } from './layout';
-import { writeRational } from './number';
+import { joined, Level } from './layout';
 
 const RESERVED = new Set(
   ('False None True and as assert async await break class continue def del elif else except finally for from global if import in ' +
@@ -43,11 +43,7 @@ export function pythonStyle(names: PythonNames): CodeStyle {
     and: 'and',
     or: 'or',
     equal: '==',
-    number(value) {
-      const n = writeRational(value);
-      if (n.kind === 'fraction') return { text: `${n.top} / ${n.bottom}`, level: Level.product };
-      return atom(n.text);
-    },
+    number,
     product,
     power(base, exponent) {
       if (exponent.equals(Rational.HALF)) return atom(`${names.prefix}sqrt(${base.text})`);
@@ -90,36 +86,4 @@ export const python: CodeStyle = pythonStyle({ prefix: 'np.', isNumpy: true, arr
 function snakeCase(words: string): string {
   const name = words.replace(/[^A-Za-z0-9]+/g, '_').replace(/^_+|_+$/g, '').toLowerCase();
   return /^\d/.test(name) ? `f_${name}` : name;
-}
-
-function atom(text: string): Written {
-  return { text, level: Level.atom };
-}
-
-function tight(w: Written): string {
-  return w.level >= Level.atom ? w.text : `(${w.text})`;
-}
-
-function above(w: Written, level: Level): string {
-  return w.level > level ? w.text : `(${w.text})`;
-}
-
-/** A factor of a product: products need no brackets there, quotients do when they are divided by. */
-function product(coefficient: Rational, top: readonly Part[], bottom: readonly Part[]): Written {
-  const n = writeRational(coefficient);
-  const numerator: string[] = top.map((p) => above(p, Level.product));
-  const denominator: string[] = bottom.map((p) => above(p, Level.product));
-  if (n.kind === 'fraction') {
-    if (denominator.length === 0) numerator.unshift(`(${n.top} / ${n.bottom})`);
-    else {
-      if (n.top !== '1' || numerator.length === 0) numerator.unshift(n.top);
-      denominator.unshift(n.bottom);
-    }
-  } else if (!coefficient.isOne || numerator.length === 0) numerator.unshift(n.text);
-  if (denominator.length === 0) {
-    if (numerator.length === 1 && top.length === 1) return top[0]!;
-    return { text: joined(numerator, ' * '), level: Level.product };
-  }
-  const below = denominator.length === 1 ? denominator[0]! : `(${joined(denominator, ' * ')})`;
-  return { text: `${joined(numerator, ' * ')} / ${below}`, level: Level.product };
 }

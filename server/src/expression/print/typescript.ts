@@ -1,8 +1,8 @@
 import type { FunctionName } from '../node';
 import { Rational } from '../rational';
+import { above, atom, number, product, tight } from './code-parts';
 import type { CodeStyle } from './code-style';
-import { joined, Level, type Part, type Written } from './layout';
-import { writeRational } from './number';
+import { joined, Level, type Part } from './layout';
 
 const RESERVED = new Set(
   ('break case catch class const continue debugger default delete do else enum export extends false finally for function if ' +
@@ -40,12 +40,8 @@ export const typescript: CodeStyle = {
   and: '&&',
   or: '||',
   equal: '===',
-  number(value) {
-    const n = writeRational(value);
-    if (n.kind === 'fraction') return { text: `${n.top} / ${n.bottom}`, level: Level.product };
-    return atom(n.text);
-  },
-  product,
+  number,
+  product: (coefficient, top, bottom) => product(coefficient, top, bottom, isPlainSquare),
   power(base, exponent) {
     if (exponent.equals(Rational.HALF)) return atom(`Math.sqrt(${base.text})`);
     if (exponent.equals(Rational.of(2)) && isName(base.text)) {
@@ -93,40 +89,8 @@ function camelCase(words: string): string {
   return words.replace(/[^A-Za-z0-9]+(.)?/g, (_, c: string | undefined) => (c ? c.toUpperCase() : ''));
 }
 
-function atom(text: string): Written {
-  return { text, level: Level.atom };
-}
-
 function isName(text: string): boolean {
   return text.length < 80 && /^[\p{ID_Start}$_][\p{ID_Continue}$.]*$/u.test(text);
-}
-
-function tight(w: Written): string {
-  return w.level >= Level.atom ? w.text : `(${w.text})`;
-}
-
-function above(w: Written, level: Level): string {
-  return w.level > level ? w.text : `(${w.text})`;
-}
-
-/** A factor of a product: products need no brackets there, quotients do when they are divided by. */
-function product(coefficient: Rational, top: readonly Part[], bottom: readonly Part[]): Written {
-  const n = writeRational(coefficient);
-  const numerator: string[] = top.map((p) => (isPlainSquare(p) ? p.text : above(p, Level.product)));
-  const denominator: string[] = bottom.map((p) => (isPlainSquare(p) && bottom.length > 1 ? p.text : above(p, Level.product)));
-  if (n.kind === 'fraction') {
-    if (denominator.length === 0) numerator.unshift(`(${n.top} / ${n.bottom})`);
-    else {
-      if (n.top !== '1' || numerator.length === 0) numerator.unshift(n.top);
-      denominator.unshift(n.bottom);
-    }
-  } else if (!coefficient.isOne || numerator.length === 0) numerator.unshift(n.text);
-  if (denominator.length === 0) {
-    if (numerator.length === 1 && top.length === 1) return top[0]!;
-    return { text: joined(numerator, ' * '), level: Level.product };
-  }
-  const below = denominator.length === 1 ? denominator[0]! : `(${joined(denominator, ' * ')})`;
-  return { text: `${joined(numerator, ' * ')} / ${below}`, level: Level.product };
 }
 
 /** `l * l` among other factors. */
