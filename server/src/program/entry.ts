@@ -17,9 +17,10 @@ export interface Entry {
   readonly info?: ClassInfo;
 }
 
-/** A scope for running `node` on generic arguments. */
-export function enter(m: Machine, module: Module, node: FunctionNode, owner?: ClassNode): Entry {
-  const around = surroundings(m, module, node);
+/** A scope for running `node` on generic arguments; `made` is where it closes over what a run has computed. */
+export function enter(m: Machine, module: Module, node: FunctionNode, owner?: ClassNode, made?: Scope): Entry {
+  // At the root, where what is found later about the names of these scopes is kept.
+  const around = made ?? m.atRoot(() => surroundings(m, module, node));
   const info = owner ? classInfo(m, around, owner) : undefined;
   const self = receiver(m, module, around, node, info);
   const names = m.store.add({ kind: 'record', members: new Map() });
@@ -100,7 +101,7 @@ function surroundings(m: Machine, module: Module, node: FunctionNode): Scope {
     const names = m.store.add({ kind: 'record', members: new Map() });
     m.frameNames.add(names);
     const self = f.inheritsSelf ? scope.frame.self : undefined;
-    scope = new Scope(scope, { module, node: f, names, depth: 0, ...(self ? { self } : {}) }, true);
+    scope = new Scope(scope, { module, node: f, names, depth: 0, isAround: true, ...(self ? { self } : {}) }, true);
     for (const p of f.parameters) enterParameter(m, scope, p);
     for (const s of f.body) addTopLevel(m, module, scope, s);
   }

@@ -85,24 +85,32 @@ function claimScope(m: Machine, ended: Ended, store: Store, atExit: boolean): Sc
 
 function runSeparately(m: Machine, ended: Ended, f: FunctionValue, run: number): Value {
   const here = m.store;
-  const before = ended.before;
+  const made = madeIn(f);
+  // A function the run has made knows what it left behind; any other meets the state the run began with.
+  const before = made ? here : ended.before;
   m.store = before.child();
   m.keepPlaces = false;
   const runBefore = m.naming.run;
   m.naming.run = run;
   const owner = f.home?.node;
-  const entry = enter(m, f.scope.frame.module, f.node, owner);
+  const entry = enter(m, f.scope.frame.module, f.node, owner, made);
   const base = m.store;
   m.store = base.child();
   const inside = m.store;
   const value = f.node.opaque !== undefined ? unread(`can't read \`${f.node.name}\`: it is ${f.node.opaque}`, undefined) : runBody(m, entry.scope, inside, m.place(entry.scope, f.node.nameSpan));
-  const made = m.store.changesSince(before);
+  const changes = m.store.changesSince(before);
   m.naming.run = runBefore;
   m.keepPlaces = true;
   m.store = here;
   // What the run made is known here too; what it changed is not.
-  for (const [location, content] of made) if (here.get(location) === undefined) here.set(location, content);
+  for (const [location, content] of changes) if (here.get(location) === undefined) here.set(location, content);
   return value;
+}
+
+/** The scope a function closes over, if a run has filled it. */
+export function madeIn(f: FunctionValue): Scope | undefined {
+  const { frame } = f.scope;
+  return frame.node && !frame.isAround ? f.scope : undefined;
 }
 
 function outputOf(m: Machine, scope: Scope, e: Expression): OutputValue {
@@ -143,6 +151,10 @@ function toOutput(m: Machine, value: Value, place: Place | undefined, isComputed
     }
     case 'object':
       return objectOutput(m, value, place, isComputed, depth);
+    case 'function': {
+      const name = value.node.name ? `\`${value.node.name}\`` : 'a function';
+      return lost(value.node.opaque !== undefined ? `this is ${name}, which is ${value.node.opaque}` : `this is ${name}, not what it returns`);
+    }
     default:
       return lost('this is no number, list or record');
   }

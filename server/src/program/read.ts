@@ -3,14 +3,14 @@ import type { Place } from '../text/span';
 import { assume } from './assumptions';
 import { callFunctionValue, invoke, runBody } from './calls';
 import { classInfo } from './classes';
-import { enter } from './entry';
+import { enter, type Entry } from './entry';
 import { evaluate } from './expressions';
 import { genericAt } from './generics';
 import { Machine } from './machine';
 import { apply, mergeEndings, type Ending } from './merging';
 import { readElement } from './members';
 import { exportOf, loadModule } from './modules';
-import { readOutputs, type Ended } from './outputs';
+import { madeIn, readOutputs, type Ended } from './outputs';
 import type { ClassNode, Expression } from './form';
 import type { Ambiguity, OutputValue, ReadRequest, Reading } from './reading';
 import { Scope, type Module } from './scope';
@@ -18,6 +18,8 @@ import { execute } from './statements';
 import { NOTHING, type Value } from './values';
 
 const MOST_ROUNDS = 5;
+/** How many functions may be made one inside the other. */
+const MOST_MADE = 4;
 
 /**
  * Reads a function (or the methods of a class, or a file's top level) by symbolic execution: from generic arguments and
@@ -131,15 +133,25 @@ function namesMethod(e: Expression, node: ClassNode): boolean {
 function runFunction(m: Machine, module: Module): Ended {
   const { subject } = m.request;
   if (subject.kind !== 'function') return runTop(m, module);
-  const { node, owner } = subject;
-  const entry = enter(m, module, node, owner);
+  let ended = runEntered(m, module, enter(m, module, subject.node, subject.owner));
+  // What stands above the maker of a function is about the function that is made.
+  for (let k = 0; ended.returned.kind === 'function' && k < MOST_MADE; k++) {
+    const f = ended.returned;
+    const made = madeIn(f);
+    if (f.node.opaque !== undefined || !made) break;
+    ended = runEntered(m, f.scope.frame.module, enter(m, f.scope.frame.module, f.node, f.home?.node, made));
+  }
+  return ended;
+}
+
+function runEntered(m: Machine, module: Module, entry: Entry): Ended {
   const { scope } = entry;
   for (const a of m.request.assumptions) assume(m, scope, a);
   const before = m.store;
   m.store = before.child();
   const base = m.store;
-  const place = m.place(scope, node.nameSpan);
-  const returned = runBody(m, scope, base, place);
+  const { node } = scope.frame;
+  const returned = runBody(m, scope, base, m.place(scope, node ? node.nameSpan : { start: 0, end: 0 }));
   return {
     module,
     outer: scope.parent ?? module.scope,

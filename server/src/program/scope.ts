@@ -24,6 +24,8 @@ export interface Frame {
   /** The record that holds the last value of every local by name. */
   readonly names: number;
   readonly depth: number;
+  /** A function around the one that is read, entered on generic arguments; its own statements have not run. */
+  readonly isAround?: boolean;
 }
 
 export class Scope {
