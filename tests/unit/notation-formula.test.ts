@@ -157,6 +157,8 @@ describe('remarks', () => {
 describe('errors', () => {
   test.each([
     ['2 m', 'an operator is missing before `m`: a product is written `2*m`'],
+    ['cos x', 'the argument of a function stands in brackets: `cos(x)`'],
+    ['1 + |x|', 'a magnitude is written `norm(...)`, or `abs(...)` of a number'],
     ['2m', 'a product is written `2*m`'],
     ['a (b + c)(d)', 'an operator is missing before `(`'],
     ['sin^2(x)', 'a power of a function is written after its argument: `sin(...)^n`'],

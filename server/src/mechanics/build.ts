@@ -61,7 +61,7 @@ export function buildSystem(block: Block, graph: Graph, energies: CodeEnergies =
 /** Resolution can leave errors in formulas that no claim needs, but a system with any is not to be trusted. */
 function blocker(block: Block, problems: readonly DeclarationProblem[], declared: Declarations): System['blocked'] {
   const error = problems.find((p) => p.severity === 'error');
-  if (error) return { reason: `the declaration has an error: ${error.message}`, span: error.span };
+  if (error) return { reason: `the declaration has an error: ${error.message.replace(/[?.]$/, '')}`, span: error.span };
   if (declared.coordinates.length === 0) return { reason: 'no coordinates are declared', span: block.nameSpan };
   return undefined;
 }

@@ -67,7 +67,7 @@ function addPoint(
   if (field.length !== at.length) {
     problems.push({
       code: 'syntax',
-      message: `gravity has ${field.length} components, this point ${at.length}: give both the same number`,
+      message: `gravity has ${countOf(field.length)}, this point ${at.length}: give both the same number, as in ${at.length === 3 ? '`gravity (0, 0, -g)`' : '`gravity (0, -g)`'}`,
       span: s.at.span,
       severity: 'error',
     });
@@ -75,6 +75,10 @@ function addPoint(
   }
   const height = dot(g, field, at);
   if (!isMisfit(height)) out.V.push(g.negate(g.multiply(mass, height)));
+}
+
+function countOf(n: number): string {
+  return n === 1 ? 'one component' : `${n} components`;
 }
 
 function addElement(s: Statement, context: FormulaContext, coordinates: readonly Coordinate[], out: Contributions): void {

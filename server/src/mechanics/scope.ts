@@ -57,6 +57,9 @@ export class Scope {
   near(name: string): string | undefined {
     const all = [...this.symbols.keys(), ...this.families.keys(), ...this.shorthands.keys(), ...this.points.keys()];
     const key = canonicalName(name).toLowerCase();
+    const rate = /^(.+?)_?(d{1,2})ot$/.exec(key);
+    const moving = rate && all.find((n) => n.toLowerCase() === rate[1]);
+    if (moving) return moving + "'".repeat(rate[2]!.length);
     return all.find((n) => n.toLowerCase() === key) ?? all.find((n) => n.length > 2 && distanceIsOne(n.toLowerCase(), key));
   }
 }

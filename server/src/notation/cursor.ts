@@ -34,6 +34,8 @@ export class Cursor {
   /** Open brackets around the cursor, for messages and the depth limit. */
   depth = 0;
   tooDeep = false;
+  /** True once an operator was missing: the rest of the statement will be written alike. */
+  saidJuxtaposed = false;
 
   constructor(
     readonly text: string,

@@ -54,20 +54,29 @@ export function parseExpression(c: Cursor, level: number = LEVEL.or): Formula {
     if (level > LEVEL.product || !juxtaposed(c)) return left;
     if (c.full) return overflow(c);
     const token = c.peek();
-    const words = c.text.slice(Math.max(left.span.start, left.span.end - 40), left.span.end);
-    c.error(
-      left.kind === 'binary' && left.op === '^' && isFunctionName(left.left) && token.text === '('
-        ? `a power of a function is written after its argument: \`${words.split(/[\^*²³]/)[0]}(...)^n\``
-        : `an operator is missing before ${c.describeNext()}: a product is written \`${shorten(words)}*${shorten(c.text.slice(token.span.start, token.span.end))}\`; a remark begins after two spaces`,
-      token.span,
-    );
+    // One such message is enough for a statement that is written so throughout.
+    if (!c.saidJuxtaposed) c.error(juxtapositionWords(c, left), token.span);
+    c.saidJuxtaposed = true;
     left = binary(c, '*', left, parseExpression(c, LEVEL.sign));
   }
 }
 
+function juxtapositionWords(c: Cursor, left: Formula): string {
+  const token = c.peek();
+  const before = c.text.slice(Math.max(left.span.start, left.span.end - 40), left.span.end);
+  const after = shorten(c.text.slice(token.span.start, token.span.end));
+  if (left.kind === 'binary' && left.op === '^' && isFunctionName(left.left) && token.text === '(') {
+    return `a power of a function is written after its argument: \`${before.split(/[\^*²³]/)[0]}(...)^n\``;
+  }
+  const last = left.kind === 'binary' ? left.right : left;
+  if (isFunctionName(last)) return `the argument of a function stands in brackets: \`${before.slice(last.span.start - left.span.end)}(${after})\``;
+  return `an operator is missing before ${c.describeNext()}: a product is written \`${shorten(before)}*${after}\`; a remark begins after two spaces`;
+}
+
 function parseOperand(c: Cursor, level: number, after: string): Formula {
   if (startsOperand(c)) return parseExpression(c, level);
-  return hole(c, `a formula is expected after \`${after}\`, before ${c.describeNext()}`);
+  const bars = c.is('|') ? ': a magnitude is written `norm(...)`, or `abs(...)` of a number' : '';
+  return hole(c, `a formula is expected after \`${after}\`, before ${c.describeNext()}${bars}`);
 }
 
 function binary(c: Cursor, op: BinaryOperator, left: Formula, right: Formula): Formula {

@@ -1,10 +1,10 @@
 import { nearest } from './suggest';
-import { ENERGY_WORDS, LONG_WORDS } from './words';
+import { ENERGY_WORDS, LONG_WORDS, SINGULARS } from './words';
 
 /** What a line of a comment looks like from outside, before it is parsed. */
 export type Shape =
   | { readonly kind: 'statement'; readonly word: string }
-  /** A statement whose word is misspelt: `coordinate`, `Parameters`. */
+  /** A statement whose word is misspelt: `cordinates`, `Parameters`. */
   | { readonly kind: 'misspelt'; readonly word: string; readonly typed: string }
   /** `U = ...`: nothing that a declaration knows. */
   | { readonly kind: 'unknown'; readonly typed: string }
@@ -14,6 +14,8 @@ export type Shape =
 
 const KEYWORDS = new Set('at on over in with between and or not rest mass inertia centre center angle rotation order within limits of by to'.split(' '));
 const PROSE = new Set('the is are was were that which an from for if when this these it its has have should must will can'.split(' '));
+/** What follows the word of these is a name of one's own, and a colon ends it. */
+export const NAMED: ReadonlySet<string> = new Set(['point', 'body']);
 const EQUATIONS = new Set(['where', 'reads', 'checks', 'near', 'constraint']);
 
 export function shapeOf(line: string): Shape {
@@ -23,6 +25,8 @@ export function shapeOf(line: string): Shape {
   const head = /^[\p{L}_$][\p{L}\p{M}\p{Nd}_$\u2080-\u2089]*/u.exec(line)?.[0];
   if (!head) return { kind: 'prose' };
   const rest = line.slice(head.length);
+  const whole = SINGULARS.get(head);
+  if (whole && beginsStatement(whole, rest) && looksFormal(whole, rest.replace(/^:/, ''))) return { kind: 'statement', word: whole };
   if (ENERGY_WORDS.has(head)) {
     if (rest.trim() === '' || /^\s*(?:\([^()]*\)\s*)?:?=/.test(rest) || /^\s*[-+]=/.test(rest)) return { kind: 'statement', word: head };
   } else if (head === 'Q') {
@@ -43,7 +47,8 @@ export function shapeOf(line: string): Shape {
 /** True unless what follows the word makes it a word of a sentence, or a variable of a formula. */
 function beginsStatement(word: string, rest: string): boolean {
   if (rest === '') return true;
-  if (!/^\s/.test(rest)) return word === 'point' || word === 'body' ? rest.startsWith(':') : rest.startsWith('(') && !/=/.test(rest);
+  if (/^:\s+\S/.test(rest) && !NAMED.has(word)) return !isProse(word, rest.slice(1).trim()) && looksFormal(word, rest.slice(1));
+  if (!/^\s/.test(rest)) return NAMED.has(word) ? rest.startsWith(':') : rest.startsWith('(') && !/=/.test(rest);
   const body = rest.trim();
   if (body === '') return true;
   if (/^(?:=|[*/^)\],;.]|[-+]\s)/.test(body)) return false;

@@ -4,6 +4,7 @@ import { LEVEL, hole } from './building';
 import { type Content, reading, skipLabel, withStops } from './content';
 import { parseExpression } from './formula';
 import { parseBody, parseDamper, parsePoint, parseSpring } from './geometry';
+import { NAMED } from './shape';
 import { parseInterval, parseSymbols } from './symbols';
 import type { Claim, Equation, Formula, Statement } from './tree';
 import { ENERGY_WORDS, LONG_WORDS } from './words';
@@ -14,6 +15,8 @@ export function parseStatements(c: Cursor, word?: string): Statement[] {
   let first = c.take();
   let head = word ?? first.text;
   for (;;) {
+    // `coordinates: x, th`
+    if (c.is(':') && !NAMED.has(head)) c.take();
     const contents = parseContent(c, head);
     const over = c.isWord('over') || c.isWord('for') ? parseFamilies(c, parseExpression) : undefined;
     c.skipRemark();

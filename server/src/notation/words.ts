@@ -32,6 +32,14 @@ export const STATEMENT_WORDS: readonly StatementWord[] = [
   { word: 'defines', description: 'The function below is the declaration of this energy.', snippet: 'defines ${1:T}' },
 ];
 
+/** One coordinate reads better in the singular. */
+export const SINGULARS: ReadonlyMap<string, string> = new Map([
+  ['coordinate', 'coordinates'],
+  ['parameter', 'parameters'],
+  ['input', 'inputs'],
+  ['range', 'ranges'],
+]);
+
 /** Words that begin a statement and are long enough to be misspelt recognisably. */
 export const LONG_WORDS: ReadonlySet<string> = new Set(STATEMENT_WORDS.map((w) => w.word).filter((w) => w.length >= 4));
 
