@@ -24,6 +24,7 @@ import { Addresses } from './addresses';
 import { Checker, describe } from './checker';
 import { toCodeActions, toRewriteActions } from './code-actions';
 import { plainText } from './hover';
+import { languageCapabilities, registerLanguageFeatures } from './language-features';
 import { OpenFiles } from './open-files';
 import { fromPosition, fromRange, toRange } from './ranges';
 import { nearestSuggestion } from './suggest';
@@ -71,6 +72,7 @@ export function serve(connection: Connection, createService: (files: Files) => S
         textDocumentSync: { openClose: true, change: TextDocumentSyncKind.Incremental },
         hoverProvider: true,
         documentSymbolProvider: true,
+        ...languageCapabilities,
         codeActionProvider: { codeActionKinds: [CodeActionKind.QuickFix, CodeActionKind.RefactorRewrite] },
         workspace: { workspaceFolders: { supported: true, changeNotifications: true } },
       },
@@ -159,6 +161,17 @@ export function serve(connection: Connection, createService: (files: Files) => S
 
   const budgetFor = (token: CancellationToken): Budget =>
     new Budget({ milliseconds: settings.timeLimit }, clock, () => token.isCancellationRequested);
+
+  registerLanguageFeatures({
+    connection,
+    service,
+    addresses,
+    files,
+    guarded,
+    budgetFor,
+    enabled: () => settings.enable,
+    snippets: () => capabilities.textDocument?.completion?.completionItem?.snippetSupport === true,
+  });
 
   connection.onHover(
     guarded('hover', null, async ({ textDocument, position }, token) => {

@@ -30,6 +30,23 @@ export interface Service {
   rewrites(file: string, range: ReportRange, budget: Budget): Promise<readonly OutputRewrite[]>;
   hover(file: string, position: ReportPosition, budget: Budget): Promise<Hover | undefined>;
   symbols(file: string): Promise<readonly DocumentSymbol[]>;
+  /** Symbols of all files that declare something, whose name has the letters of the query in their order. */
+  workspaceSymbols(query: string): Promise<readonly { readonly file: string; readonly symbol: DocumentSymbol; readonly system: string }[]>;
+  /** What may be typed at a place of a declaration. */
+  complete(file: string, position: ReportPosition): Promise<readonly Completion[]>;
+  signature(file: string, position: ReportPosition): Promise<Signature | undefined>;
+  folds(file: string): Promise<readonly { readonly startLine: number; readonly endLine: number }[]>;
+  /** The words of declarations and what they are, in order; each within a line. */
+  tokens(file: string): Promise<readonly SemanticToken[]>;
+  /** Where the name at a place is declared; for the code side of a claim, where the code makes the output. */
+  definition(file: string, position: ReportPosition, budget: Budget): Promise<FileRange | undefined>;
+  /** Every place of a name in declarations and in the code that was taken for it, declarations first. */
+  references(file: string, position: ReportPosition, budget: Budget): Promise<References | undefined>;
+  /**
+   * The edits that rename what stands at a place, everywhere. What agreed by name in the code is renamed too, or bound by
+   * `reads`, so that every verdict stays; a failure says why there is no such edit.
+   */
+  rename(file: string, position: ReportPosition, name: string, budget: Budget): Promise<{ readonly edits: readonly FileEdit[] } | { readonly failure: string }>;
   /** The derived equations of every system a file declares. */
   derive(file: string, as: DeriveForm, budget: Budget): Promise<readonly DerivedSystem[]>;
   /** First declarations for functions that look like dynamics and have none, to be completed by a person. */
@@ -40,6 +57,45 @@ export interface Service {
    * @param system only this one of `file`
    */
   compare(file: string, against: { readonly file: string } | { readonly name: string }, system: string | undefined, budget: Budget): Promise<ComparisonResult>;
+}
+
+export interface FileRange {
+  readonly file: string;
+  readonly range: ReportRange;
+}
+
+export interface FileEdit extends FileRange {
+  readonly text: string;
+}
+
+export interface References {
+  /** The name under the cursor. */
+  readonly range: ReportRange;
+  readonly name: string;
+  readonly places: readonly (FileRange & { readonly side: 'declaration' | 'code'; readonly isDeclaration: boolean })[];
+}
+
+export interface Completion {
+  readonly label: string;
+  readonly kind: 'statement' | 'symbol' | 'function' | 'quantity' | 'unit' | 'code';
+  readonly detail: string;
+  /** With `$1`, `${2:x}` as places to fill in; the label where absent. */
+  readonly snippet?: string;
+  /** What it replaces. */
+  readonly range: ReportRange;
+}
+
+export interface Signature {
+  readonly label: string;
+  readonly description: string;
+  readonly parameters: readonly string[];
+  readonly active: number;
+}
+
+export interface SemanticToken {
+  readonly range: ReportRange;
+  readonly kind: 'keyword' | 'system' | 'coordinate' | 'parameter' | 'input' | 'shorthand' | 'function' | 'number' | 'unit' | 'code';
+  readonly isDeclaration: boolean;
 }
 
 export interface OutputRewrite {

@@ -9,6 +9,7 @@ import type { Comparison, Files, FileResult, Service } from './api';
 import { checkDocument, fileResult, type BlockOutcome, type Project } from './check';
 import { diagnoseOutcomes } from './diagnose';
 import { deriveSystems } from './derive';
+import { editingService } from './editing';
 import { hoverAt } from './hover';
 import { ResultCache } from './result-cache';
 import { rewritesAt } from './rewrites';
@@ -30,7 +31,13 @@ export function createService(files: Files): Service {
     return documents.get(file);
   };
 
+  const tryOut = (texts: ReadonlyMap<string, string>, file: string, budget: Budget): Promise<FileResult> => {
+    const changed: Files = { read: (f) => texts.get(f) ?? documents.text(f), declarations: () => files.declarations() };
+    return createService(changed).check(file, budget, 'verdicts');
+  };
+
   return {
+    ...editingService(project, files, load, tryOut),
     update: (file, text) => documents.update(file, text),
     close: (file) => documents.close(file),
     invalidate: (file) => documents.invalidate(file),

@@ -72,6 +72,32 @@ export class ScriptedService implements Service {
     return [{ name: 'crane', detail: 'system', kind: 'system', range, nameRange: range, children: [leaf] }];
   }
 
+  async workspaceSymbols(): Promise<readonly []> {
+    return [];
+  }
+
+  async complete(): Promise<readonly []> {
+    return [];
+  }
+
+  async signature(): Promise<undefined> {}
+
+  async folds(): Promise<readonly []> {
+    return [];
+  }
+
+  async tokens(): Promise<readonly []> {
+    return [];
+  }
+
+  async definition(): Promise<undefined> {}
+
+  async references(): Promise<undefined> {}
+
+  async rename(): Promise<{ readonly failure: string }> {
+    return { failure: 'scripted' };
+  }
+
   async rewrites(): Promise<readonly []> {
     return [];
   }
