@@ -4,13 +4,13 @@ import type { Fixture, Section } from '../../support/fixtures';
 import { Judge } from '../../support/judge';
 import { Baselines } from './baselines';
 import type { Mutation } from './mutations';
+import { placed, withEdits, type Placement } from './placement';
 
 /** What became of one mutant. */
 export interface Outcome {
   readonly operators: readonly string[];
   readonly detected: boolean;
-  readonly line: boolean;
-  readonly expression: boolean;
+  readonly placement: Placement;
   readonly repaired: boolean;
   readonly wrong: boolean;
   readonly milliseconds: number;
@@ -43,16 +43,20 @@ export class Bench {
     }
   }
 
+  private differs(text: string): boolean {
+    const worst = this.worst(text);
+    return worst !== undefined && worst > 1e-5;
+  }
+
   async check(text: string): Promise<FileResult> {
     return checkText(this.fixture.file, text, this.others);
   }
 
-  /** Undefined for mutants that do not run, or compute the same. */
+  /** Undefined for mutants that do not run, or compute the same; of several faults, each must change something. */
   async measure(mutations: readonly Mutation[]): Promise<Outcome | undefined> {
     const { text: original } = this.fixture;
     const text = mutated(original, mutations);
-    const worst = this.worst(text);
-    if (worst === undefined || !(worst > 1e-5)) return undefined;
+    if (!this.differs(text) || (mutations.length > 1 && !mutations.every((m) => this.differs(mutated(original, [m]))))) return undefined;
     const start = process.cpuUsage();
     const result = await this.check(text);
     const used = process.cpuUsage(start);
@@ -62,7 +66,6 @@ export class Bench {
     const repair = findings.find((f) => f.repair)?.repair;
     const usual = this.baselines.detects(text);
     const { applies } = this.baselines;
-    const places = placesOf(text, mutations);
     const fixed = repair && withEdits(text, repair.edits);
     const after = fixed === undefined ? undefined : this.worst(fixed);
     const isRight = after !== undefined && after <= 1e-6;
@@ -70,8 +73,7 @@ export class Bench {
       operators: mutations.map((m) => m.operator),
       // What was right and can no longer be read is not passed over either.
       detected: claims.some((c) => c.verdict !== 'holds'),
-      line: places.every((p) => findings.some((f) => f.range.start.line <= p.line && p.line <= f.range.end.line && f.range.end.line - f.range.start.line <= 3)),
-      expression: places.every((p) => findings.some((f) => meets(text, f.range, p) || f.repair?.edits.some((e) => meets(text, e.range, p)))),
+      placement: placed(original, text, mutations, mutations.length > 1 ? findings : (wrong[0]?.findings ?? []), isRight),
       repaired: isRight,
       wrong: repair !== undefined && !isRight,
       energy: applies.energy ? usual.energy : undefined,
@@ -82,48 +84,6 @@ export class Bench {
   }
 }
 
-interface MutatedPlace {
-  readonly line: number;
-  readonly start: number;
-  readonly end: number;
-}
-
 export function mutated(text: string, mutations: readonly Mutation[]): string {
   return [...mutations].sort((a, b) => b.start - a.start).reduce((t, m) => t.slice(0, m.start) + m.text + t.slice(m.end), text);
-}
-
-function placesOf(text: string, mutations: readonly Mutation[]): MutatedPlace[] {
-  let shift = 0;
-  return [...mutations]
-    .sort((a, b) => a.start - b.start)
-    .map((m) => {
-      const start = m.start + shift;
-      shift += m.text.length - (m.end - m.start);
-      return { line: text.slice(0, start).split('\n').length, start, end: start + m.text.length };
-    });
-}
-
-interface Range {
-  readonly start: { readonly line: number; readonly column: number };
-  readonly end: { readonly line: number; readonly column: number };
-}
-
-function offset(text: string, p: { readonly line: number; readonly column: number }): number {
-  let at = 0;
-  for (let line = 1; line < p.line; line++) at = text.indexOf('\n', at) + 1;
-  return at + p.column - 1;
-}
-
-/** Inside, around by not much, or touching. */
-function meets(text: string, range: Range, place: MutatedPlace): boolean {
-  const start = offset(text, range.start);
-  const end = offset(text, range.end);
-  return start <= place.end && place.start <= end && end - start <= 40 + 3 * (place.end - place.start);
-}
-
-function withEdits(text: string, edits: readonly { readonly range: Range; readonly text: string }[]): string {
-  return [...edits]
-    .map((e) => ({ start: offset(text, e.range.start), end: offset(text, e.range.end), text: e.text }))
-    .sort((a, b) => b.start - a.start)
-    .reduce((t, e) => t.slice(0, e.start) + e.text + t.slice(e.end), text);
 }
