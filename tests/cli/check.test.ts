@@ -14,6 +14,7 @@ describe('visviva check', () => {
     expect(r.out).toBe(
       [
         'rope-weight  rates  2 claims hold   src/rope.ts:7',
+        '  holds: identity, failure chance below 1e-15',
         '',
         '1 file, 1 system, 2 claims: all hold.',
         'A claim that holds means that code and declaration agree, not that the model is right or a machine safe.',

@@ -21,7 +21,7 @@ describe('the example of the README', () => {
   it('holds with the sign put right', () => {
     using f = new Folder({ 'src/crane.ts': example.replace('(xdd * cos + g * sin)', '-(xdd * cos + g * sin)') });
     const r = f.run('check');
-    expect(readme).toContain(r.out.split('\n')[0]!);
+    expect(readme).toContain(r.out.split('\n').slice(0, 2).join('\n'));
     expect(r.status).toBe(0);
   });
 

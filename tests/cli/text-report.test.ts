@@ -41,6 +41,19 @@ describe('the report for people', () => {
     );
   });
 
+  it('says what claims that hold rest on, once for all of one kind', () => {
+    const held = (output: string, evidence: ReportClaim['evidence']): ReportClaim => ({ ...claim, output, verdict: 'holds', evidence, findings: [] });
+    const proved = { kind: 'identity', states: 64, worst: 3e-16, chance: 1e-20 } as const;
+    const numeric = (worst: number) => ({ kind: 'numeric', states: 64, worst, inexact: 'a branch' }) as const;
+    expect(shown(report([held('return[0]', proved), held('return[1]', proved)]))).toContain('a.ts:3\n  holds: identity, failure chance below 1e-15\n');
+    const mixed = shown(report([held('return[0]', proved), held('return[1]', numeric(3e-14)), held('return[2]', numeric(1e-15))]));
+    expect(mixed).toContain(
+      '  return[0] holds: identity, failure chance below 1e-15\n' +
+        '  return[1], return[2] hold: 64 states, worst relative difference 3e-14; not proved exactly: a branch\n',
+    );
+    expect(JSON.parse(jsonReport(report([held('y', proved), held('z', numeric(0.5))]))).claims.map((c: ReportClaim) => c.evidence)).toEqual([proved, numeric(0.5)]);
+  });
+
   it('gives the witness where the message does not', () => {
     const differs: ReportClaim = { ...claim, verdict: 'differs', findings: [], witness: { state: { th: 0.5, "th'": 1 }, expected: 4.2055, found: -4.2055 } };
     expect(shown(report([differs]))).toContain("At th = 0.5, th' = 1 the code gives -4.2055, the declared energies give 4.2055.");

@@ -63,3 +63,34 @@ describe('identities', () => {
     expect(proof(`${PENDULUM}\nnear th = 0, order 3`, "th''", '-g/l*(th - th^3/6)')).toBe('identity');
   });
 });
+
+describe('a literal that is rounded too little to be seen in numbers', () => {
+  test.each([
+    ['-g/l*sin(th)*3.14159265358979/pi', 'the number 3.14159265358979, which is pi rounded'],
+    ['-g/l*sin(th)*1.41421356237310/sqrt(2)', 'the number 1.4142135623731, which is sqrt(2) rounded'],
+    ['-g/l*sin(th)*(cos(th)^2*0.333333333333333 + sin(th)^2/3)*3', 'the number 0.333333333333333, which is 1/3 rounded'],
+  ])('%s', (code, stopped) => expect(proof(PENDULUM, "th''", code)).toBe(stopped));
+
+  test('with the exact value it is proved', () => {
+    expect(proof(PENDULUM, "th''", '-g/l*sin(th)*sqrt(2)^2/2')).toBe('identity');
+    expect(proof(PENDULUM, "th''", '-g/l*sin(th)*sqrt(8)/(2*sqrt(2))')).toBe('identity');
+  });
+});
+
+describe('roots', () => {
+  const ROPE = `
+coordinates x, y
+parameters  m, k, l > 0
+point p: mass m at (x, y)
+spring k, rest l between (0, 0) and (x, y)`;
+  test('a spring between points', () => {
+    expect(proof(ROPE, "x''", '-k/m*(1 - l/sqrt(x^2 + y^2))*x')).toBe('identity');
+    expect(proof(ROPE, "x''", '-k/m*(x - l*x*sqrt(x^2 + y^2)/(x^2 + y^2))')).toBe('identity');
+  });
+
+  test('a root that is right for positive values only is no identity', () => {
+    const declaration = ROPE.replace('coordinates x, y', 'coordinates x, y\nranges x in [1, 2]');
+    expect(proof(declaration, "x''", '-k/m*(1 - l/sqrt(x^2 + y^2))*sqrt(x^2)')).not.toBe('nothing');
+    expect(proof(ROPE.replace('coordinates x, y', 'coordinates x, y\nranges x in [-2, -1]'), "x''", '-k/m*(1 - l/sqrt(x^2 + y^2))*(-sqrt(x^2))')).toMatch(/rounded|root/);
+  });
+});

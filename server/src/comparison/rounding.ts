@@ -11,6 +11,7 @@ import { Prober } from './prober';
 import { Sampler } from './sampling';
 
 const TRIED_STATES = 8;
+const MOST_CANDIDATES = 24;
 
 /**
  * A decimal literal of the code that stands for something exact, such as 3.1416 for pi or 0.333 for 1/3: found when the
@@ -22,20 +23,7 @@ export function findRounded(
   group: readonly Pair[],
   state: ReadonlyMap<Expr, number>,
 ): RoundedConstant | undefined {
-  const { graph } = system;
-  const candidates: RoundedConstant[] = [];
-  for (const node of reachable(group.map((p) => p.found))) {
-    if (node.op !== 'number') continue;
-    // The sign belongs to the formula around the literal.
-    const r = node.data as Rational;
-    for (const meant of exactMeanings(r.sign < 0 ? r.negate() : r)) {
-      const exact = r.sign < 0 ? graph.negate(meant.build(graph)) : meant.build(graph);
-      candidates.push({ literal: node, exact, exactText: meant.text });
-    }
-  }
-  for (const candidate of candidates.slice(0, 24)) {
-    const map = new Map([[candidate.literal, candidate.exact]]);
-    const exact = group.map((p) => ({ found: substitute(graph, [p.found], map)[0]!, expected: p.expected }));
+  return firstMeaning(system.graph, group, (exact) => {
     const prober = new Prober(motion, [exact]);
     const n = TRIED_STATES;
     const columns = new Map<Expr, Column>(new Sampler(system).draw(prober.symbols, n));
@@ -49,9 +37,26 @@ export function findRounded(
       votes++;
       if (!c.agrees && c.difference > 1e-13 * c.size) agrees = false;
     }
-    if (agrees && votes >= 4) return candidate;
+    return agrees && votes >= 4;
+  });
+}
+
+/** The first literal of a claim's code, with what it stands for, that `holds` accepts the claim with. */
+export function firstMeaning(graph: Graph, group: readonly Pair[], holds: (exact: readonly Pair[]) => boolean): RoundedConstant | undefined {
+  const candidates: RoundedConstant[] = [];
+  for (const node of reachable(group.map((p) => p.found))) {
+    if (node.op !== 'number') continue;
+    // The sign belongs to the formula around the literal.
+    const r = node.data as Rational;
+    for (const meant of exactMeanings(r.sign < 0 ? r.negate() : r)) {
+      const exact = r.sign < 0 ? graph.negate(meant.build(graph)) : meant.build(graph);
+      candidates.push({ literal: node, exact, exactText: meant.text });
+    }
   }
-  return undefined;
+  return candidates.slice(0, MOST_CANDIDATES).find(({ literal, exact }) => {
+    const map = new Map([[literal, exact]]);
+    return holds(group.map((p) => ({ found: substitute(graph, [p.found], map)[0]!, expected: p.expected })));
+  });
 }
 
 interface Meaning {

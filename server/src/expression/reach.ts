@@ -57,3 +57,16 @@ export function firstSymbols(roots: readonly Expr[], wanted: (symbol: Expr) => b
   }
   return roots.map((r) => first.get(r));
 }
+
+/** Marks, by id, which nodes depend on one of some symbols; `nodes` in order, arguments before users. */
+export function dependents(nodes: readonly Expr[], symbols: ReadonlySet<Expr>): Uint8Array {
+  const marks = new Uint8Array(nodes.length > 0 ? nodes[nodes.length - 1]!.id + 1 : 0);
+  for (const node of nodes) {
+    if (symbols.has(node)) marks[node.id] = 1;
+    else for (const arg of node.args) if (marks[arg.id]) {
+      marks[node.id] = 1;
+      break;
+    }
+  }
+  return marks;
+}

@@ -46,7 +46,13 @@ function claimJson(c: ReportClaim): object {
 }
 
 function evidenceJson(e: Evidence): object {
-  return { kind: e.kind, states: e.states, worst: e.worst };
+  return {
+    kind: e.kind,
+    states: e.states,
+    worst: e.worst,
+    ...(e.chance === undefined ? {} : { chance: e.chance }),
+    ...(e.inexact === undefined ? {} : { inexact: e.inexact }),
+  };
 }
 
 function findingJson(f: Finding): object {

@@ -2,6 +2,7 @@ import type { Finding, Problem, Report, ReportClaim, ReportRange, Witness } from
 import pc from 'picocolors';
 import { LineIndex } from '../../text/line-index';
 import { formatNumber, formatPair } from '../../text/number';
+import { evidenceLines } from './evidence';
 import { excerpt } from './excerpt';
 import { harmless, textWidth } from './width';
 
@@ -39,6 +40,7 @@ export function textReport(report: Report, options: TextReportOptions): string {
     const worst = worstOf(group);
     const paint = worst === 'differs' ? colours.red : worst === 'unread' ? colours.yellow : colours.green;
     out.push(`${colours.bold(cells[0]!)}  ${cells[1]!}  ${paint(cells[2]!)}   ${colours.dim(place)}`);
+    for (const line of evidenceLines(group.claims)) for (const part of wrapped(line)) out.push(colours.dim(`  ${part}`));
     for (const s of storiesOf(group)) story(s);
     previousWasQuiet = isWell;
   }

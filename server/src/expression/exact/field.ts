@@ -1,11 +1,12 @@
 import type { Rational } from '../rational';
 
 /**
- * Arithmetic modulo a prime small enough that products of residues are exact in doubles. The prime is 3 modulo 4, so that
- * of the two square roots of a square exactly one is a square itself: taking that one makes roots multiply as positive
- * reals do.
+ * Arithmetic modulo a prime small enough that products of residues are exact in doubles, at as many points as the wanted
+ * certainty takes. Per bit of certainty that is as fast as 31-bit residues in integers and 50 times as fast as 61 bits in
+ * BigInt (`npm run bench modular`). The prime is 3 modulo 4, so that of the two square roots of a square exactly one is a
+ * square itself: taking that one makes roots multiply as positive reals do. 2, 3, 5, 7, 11 and 13 are squares modulo it.
  */
-export const PRIME = 2 ** 26 - 5;
+export const PRIME = 2 ** 26 - 593;
 const INVERSE = 1 / PRIME;
 const BIG_PRIME = BigInt(PRIME);
 
