@@ -103,7 +103,7 @@ export class ExactRun {
           break;
         case 'sum': {
           let a = register[args[0]!.id]! * points;
-          let b = register[args[1]!.id]! * points;
+          const b = register[args[1]!.id]! * points;
           for (let p = 0; p < points; p++) v[out + p] = add(v[a + p]!, v[b + p]!);
           for (let k = 2; k < args.length; k++) {
             a = register[args[k]!.id]! * points;
@@ -113,7 +113,7 @@ export class ExactRun {
         }
         case 'product': {
           let a = register[args[0]!.id]! * points;
-          let b = register[args[1]!.id]! * points;
+          const b = register[args[1]!.id]! * points;
           for (let p = 0; p < points; p++) v[out + p] = multiply(v[a + p]!, v[b + p]!);
           for (let k = 2; k < args.length; k++) {
             a = register[args[k]!.id]! * points;
