@@ -1,13 +1,13 @@
 import type { Expr } from '../expression/node';
 import { Tape, type Column } from '../expression/tape';
 import type { Derived } from '../mechanics/lagrange';
-import type { Budget } from '../text/budget';
+import { BudgetSpent, type Budget } from '../text/budget';
 import type { Place } from '../text/span';
 import { choicesOf, choicesOfEach, Visits } from './branches';
 import { prove } from './identity';
 import { Motion } from './motion';
 import { expand } from './near';
-import type { Decision, Pair, Unvisited } from './pair';
+import type { Decision, Pair, Proof, Unvisited } from './pair';
 import { Prober, SAFETY, type Comparison } from './prober';
 import { findRounded } from './rounding';
 import { Sampler } from './sampling';
@@ -50,10 +50,19 @@ export function decide(request: DecideRequest): Decision[] {
 function withProofs(request: DecideRequest, decisions: Decision[]): Decision[] {
   const { derived, pairs, budget } = request;
   const held = decisions.flatMap((d, i) => (d.verdict === 'holds' && !d.rounded ? [i] : []));
-  if (request.withoutProof || held.length === 0 || !budget.look()) return decisions;
-  const proofs = prove(derived, expand(derived, held.map((i) => pairs[i]!)));
+  if (request.withoutProof || held.length === 0) return decisions;
+  const proofs = proofsOf(budget, () => prove(derived, expand(derived, held.map((i) => pairs[i]!))), held.length);
   held.forEach((i, k) => (decisions[i] = { ...decisions[i]!, proof: proofs[k]! } as Decision));
   return decisions;
+}
+
+function proofsOf(budget: Budget, prove: () => Proof[], n: number): Proof[] {
+  try {
+    return budget.run('the exact test', prove);
+  } catch (error) {
+    if (!(error instanceof BudgetSpent)) throw error;
+    return new Array<Proof>(n).fill({ kind: 'none', stopped: 'the time for it ran out' });
+  }
 }
 
 /**
@@ -181,7 +190,7 @@ function decideEach(request: DecideRequest, motion: Motion, groups: readonly (re
 
 function conclude(request: DecideRequest, motion: Motion, group: readonly Pair[], t: Tally, tried: number): Decision {
   const { budget, placeOf, derived } = request;
-  if (budget.why === 'cancelled') return { verdict: 'unread', reason: 'cancelled' };
+  if (budget.why === 'cancelled') return { verdict: 'unread', reason: budget.reason };
   if (!t.agrees && t.best) {
     const rounded = t.worst < 0.05 ? findRounded(derived.system, motion, group, t.best.state) : undefined;
     // A literal with so many digits is meant as its exact value; it is named, but nothing is wrong with the physics.
@@ -195,7 +204,7 @@ function conclude(request: DecideRequest, motion: Motion, group: readonly Pair[]
     const witness = shrinkWitness(derived.system, motion, group, t.best.state, request.assumed);
     return { verdict: 'differs', states: t.votes, worst: t.worst, witness, ...(rounded ? { rounded } : {}) };
   }
-  if (budget.why) return { verdict: 'unread', reason: 'budget: the time for this check ran out before it was decided' };
+  if (budget.why) return { verdict: 'unread', reason: budget.reason };
   if (t.votes < FEWEST) {
     const reason =
       t.votes === 0

@@ -12,11 +12,11 @@ import type { Expression, Program, Subject } from '../program/form';
 import type { Library } from '../program/library';
 import { read } from '../program/read';
 import type { Meaning, Meanings, OutputRequest, ReadRequest, Reading, ReadsBinding } from '../program/reading';
-import type { Budget } from '../text/budget';
+import { BudgetSpent, type Budget } from '../text/budget';
 import type { Place, Span } from '../text/span';
 import { evaluateLeft, freeSymbol, freeSymbols, isFamilyName, pairUp, prepareClaims } from './claims';
 import { codeExpression } from './code-path';
-import { decide } from './decide';
+import { decide, type DecideRequest } from './decide';
 import type { Decision } from './pair';
 import type { Spellings } from './spellings';
 
@@ -68,14 +68,25 @@ export interface SubjectReading extends SubjectResult {
 /** Reads what a block is about and decides all its claims. */
 export function checkSubject(request: SubjectRequest): SubjectResult {
   const { derived, budget } = request;
-  const { claims, problems, ambiguities, reading, pending } = readClaims(request);
+  const { claims, problems, ambiguities, reading, pending } = budget.run('reading the code', () => readClaims(request));
   if (!reading || pending.length === 0) return { claims, problems, ambiguities, reading };
   const places = new Map(reading.conditions.map((c) => [c.expr, c.place]));
   const assumed = reading.assumed.filter((a) => !freeSymbol(a));
-  const decisions = decide({ derived, pairs: pending, assumed, budget, placeOf: (c) => places.get(c), ...(request.withoutProof ? { withoutProof: true } : {}) });
-  const decided = [...claims];
-  pending.forEach((p, i) => (decided[p.at] = { ...claims[p.at]!, decision: decisions[i]! }));
-  return { claims: decided, problems, ambiguities, reading };
+  const question = { derived, pairs: pending, assumed, budget, placeOf: (c: Expr) => places.get(c), withoutProof: request.withoutProof === true };
+  const decisions = decided(question, (at) => claims[pending[at]!.at]!.place);
+  const all = [...claims];
+  pending.forEach((p, i) => (all[p.at] = { ...claims[p.at]!, decision: decisions[i]! }));
+  return { claims: all, problems, ambiguities, reading };
+}
+
+/** The decisions, or for each that the time ran out. */
+function decided(question: DecideRequest, placeOf: (at: number) => Place | undefined): Decision[] {
+  try {
+    return question.budget.run('comparing at states', () => decide(question));
+  } catch (error) {
+    if (!(error instanceof BudgetSpent)) throw error;
+    return question.pairs.map((_, i) => ({ verdict: 'unread', reason: question.budget.reason, place: placeOf(i) }));
+  }
 }
 
 /** Reads what a block is about, and puts every claim beside what it must equal. */

@@ -1,4 +1,5 @@
 import type { Data, Expr, FunctionName, OpName, SymbolData } from './node';
+import { work } from '../text/budget';
 import { foldFunction } from './fold';
 import { Rational } from './rational';
 
@@ -294,6 +295,7 @@ export class Graph {
   }
 
   private append(op: OpName, args: readonly Expr[], data: Data): Expr {
+    work(30);
     const node: Expr = { id: this.nodes.length, op, args, data };
     this.nodes.push(node);
     return node;

@@ -1,3 +1,4 @@
+import { work } from '../text/budget';
 import type { Expr } from './node';
 import { operators, ULP } from './operators';
 import { reachable } from './reach';
@@ -155,6 +156,7 @@ export class Tape {
         else e.fill(0, out, out + n);
         continue;
       }
+      work(node.op === 'solve' ? 4 * n * args[i]!.length * (node.data as number) : n * args[i]!.length);
       operators[node.op].evaluate(v, e, out, args[i]!, n, node.data);
       if (disturb && !isCondition(node)) disturb(v, out, out + n * (node.op === 'solve' ? (node.data as number) : 1));
     }

@@ -109,8 +109,7 @@ export class Machine {
   spend(place: () => Place): Unread | undefined {
     if (this.stop) return this.stop;
     if (this.request.budget.spend()) return undefined;
-    const why = this.request.budget.why === 'time' ? 'the time for it ran out' : 'the budget for it is spent';
-    this.stop = unread(`this function is too long to read: ${why} here`, place());
+    this.stop = unread(`${this.request.budget.reason}; reading had come to this place`, place());
     return this.stop;
   }
 

@@ -12,7 +12,7 @@ import { findUnused } from '../mechanics/unused';
 import type { DeclarationProblem, System } from '../mechanics/system';
 import type { Subject } from '../program/form';
 import type { Block, Statement } from '../notation/tree';
-import type { Budget } from '../text/budget';
+import { BudgetSpent, type Budget } from '../text/budget';
 import type { Place } from '../text/span';
 import type { Document, Documents, PlacedBlock } from '../workspace/documents';
 import type { Imports } from '../workspace/imports';
@@ -30,6 +30,8 @@ export interface BlockOutcome {
   readonly diagnosis?: Diagnosis;
   /** The result as it is kept for the next time. */
   readonly remembered?: Remembered<Diagnosis>;
+  /** Why the block was left before its claims were read. */
+  readonly cut?: string;
   /** Findings about the code itself: ambiguous names. */
   readonly ambiguities: readonly { readonly message: string; readonly place: Place }[];
 }
@@ -52,6 +54,21 @@ export async function checkDocument(project: Project, document: Document, budget
 
 /** @param results where to look for what is known already; none for a text that is only tried out */
 export async function checkBlock(
+  project: Project,
+  document: Document,
+  placed: PlacedBlock,
+  budget: Budget,
+  results?: ResultCache<Diagnosis>,
+): Promise<BlockOutcome> {
+  try {
+    return await outcomeOf(project, document, placed, budget, results);
+  } catch (error) {
+    if (!(error instanceof BudgetSpent)) throw error;
+    return { placed, entry: undefined, result: undefined, problems: [], ambiguities: [], cut: budget.reason };
+  }
+}
+
+async function outcomeOf(
   project: Project,
   document: Document,
   placed: PlacedBlock,
@@ -211,12 +228,12 @@ function reportClaim(document: Document, outcome: BlockOutcome, index: number): 
   };
 }
 
-/** The claims of a block whose system was not found: none of them passes in silence. */
-function unresolvedClaims(document: Document, { placed, problems }: BlockOutcome): ReportClaim[] {
+/** The claims of a block whose system was not found, or was left: none of them passes in silence. */
+function unresolvedClaims(document: Document, { placed, problems, cut }: BlockOutcome): ReportClaim[] {
   const { lines, file, program } = document;
   const { block, subject } = placed;
   const items = block.statements.flatMap((s) => (s.kind === 'checks' ? s.items : []));
-  const reason = problems[problems.length - 1]!.message;
+  const reason = cut ?? problems[problems.length - 1]!.message;
   return items.flatMap((claim) => {
     const listed = claim.right.kind === 'list' || claim.right.kind === 'tuple' ? claim.right.items : undefined;
     const output = printFormula(claim.left);

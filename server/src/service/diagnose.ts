@@ -3,7 +3,7 @@ import { applyEdits, type Edit } from '../diagnosis/search/edits';
 import type { Rechecked } from '../diagnosis/verify';
 import { findBlocks } from '../notation';
 import { LineIndex } from '../text/line-index';
-import type { Budget } from '../text/budget';
+import { BudgetSpent, type Budget } from '../text/budget';
 import type { Document } from '../workspace/documents';
 import { checkBlock, subjectRequest, type BlockOutcome, type Project } from './check';
 import type { Relocate } from './result-cache';
@@ -33,11 +33,21 @@ export async function diagnoseOutcomes(
     }
     const request = subjectRequest(project, document, o.placed, o.entry, budget);
     const recheck = (edits: readonly Edit[]) => recheckWith(project, document, outcomes, i, edits, budget);
-    const diagnosis = await diagnose(request, o.result, document.text, recheck);
+    const diagnosis = await found(() => diagnose(request, o.result!, document.text, recheck));
     if (diagnosis && !budget.why) o.remembered?.keep(diagnosis);
     out.push(diagnosis ? { ...o, diagnosis } : o);
   }
   return out;
+}
+
+/** Nothing, where the time ran out on the way. */
+async function found<T>(search: () => Promise<T>): Promise<T | undefined> {
+  try {
+    return await search();
+  } catch (error) {
+    if (!(error instanceof BudgetSpent)) throw error;
+    return undefined;
+  }
 }
 
 function movedDiagnosis(d: Diagnosis, relocate: Relocate): Diagnosis {

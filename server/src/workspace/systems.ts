@@ -111,8 +111,8 @@ export class Systems {
     const key = [document.file, block.name, text, definers.length > 0 ? document.text : ''].join('\u0000');
     const known = this.kept.get(key);
     if (known && known.derived.system.graph.nodes.length < MOST_NODES) return moved(known, block);
-    const entry = this.build(document, block, definers, budget);
-    this.keep(key, entry);
+    const entry = budget.run('the declaration', () => this.build(document, block, definers, budget));
+    if (!budget.why) this.keep(key, entry);
     return entry;
   }
 

@@ -1,3 +1,4 @@
+import { work } from '../../text/budget';
 import type { Expr } from '../node';
 import type { Rational } from '../rational';
 import { reachable } from '../reach';
@@ -91,6 +92,7 @@ export class ExactRun {
     for (const node of nodes) {
       const out = register[node.id]! * points;
       const { args } = node;
+      work(points * (node.op === 'solve' ? args.length * (node.data as number) : 1 + args.length));
       switch (node.op) {
         case 'symbol':
         case 'component':
