@@ -44,7 +44,7 @@ export const directions = {
   },
   'server/src/cli': {
     from: ['text', 'service', 'host', 'diagnosis', 'lsp', 'shared'],
-    packages: ['commander', 'picocolors', 'tinyglobby', 'ignore'],
+    packages: ['commander', 'picocolors', 'tinyglobby', 'ignore', 'mathjax-full', 'sarif'],
     node: true,
   },
 

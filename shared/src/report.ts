@@ -8,6 +8,27 @@ export interface Report {
   readonly problems: readonly Problem[];
   /** Files left out, and why: not an error. */
   readonly skipped: readonly { readonly file: string; readonly reason: string }[];
+  /** Findings that a baseline accepts and that are there no more. */
+  readonly gone?: readonly KnownFinding[];
+}
+
+/** A finding as a baseline file lists it: enough to find it again, and for a person to see what it is. */
+export interface KnownFinding {
+  readonly fingerprint: string;
+  readonly file: string;
+  readonly code: string;
+  readonly system?: string;
+  readonly function?: string;
+  readonly output?: string;
+  readonly message: string;
+}
+
+export type Severity = 'error' | 'warning' | 'note';
+
+/** Why a finding does not count: a comment in the code says so, with its reason, or it was there when a baseline was written. */
+export interface Acceptance {
+  readonly by: 'comment' | 'baseline';
+  readonly reason?: string;
 }
 
 export interface Summary {
@@ -18,6 +39,8 @@ export interface Summary {
   readonly differs: number;
   readonly unread: number;
   readonly problems: number;
+  /** Findings that are told and do not count; absent where there are none. */
+  readonly accepted?: number;
 }
 
 /** Lines and columns start at 1; columns count UTF-16 units. */
@@ -82,6 +105,11 @@ export interface Finding {
   /** The file of the range, where it is not the claim's own. */
   readonly file?: string;
   readonly repair?: Repair;
+  /** The same for the same finding in any later run, wherever its lines have moved. */
+  readonly fingerprint?: string;
+  /** Set where the configuration says so; else it follows from the verdict. */
+  readonly severity?: Severity;
+  readonly accepted?: Acceptance;
 }
 
 export interface Repair {
@@ -97,5 +125,7 @@ export interface Problem {
   readonly message: string;
   readonly range: ReportRange;
   /** Problems that do not keep a claim from being decided are notes. */
-  readonly severity: 'error' | 'warning';
+  readonly severity: Severity;
+  readonly fingerprint?: string;
+  readonly accepted?: Acceptance;
 }

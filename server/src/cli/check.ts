@@ -1,13 +1,15 @@
 import { declarationMark, version, type Problem, type Report, type ReportClaim } from '@visviva/shared';
 import { createDiskFiles } from '../host/files';
-import { shown } from '../host/paths';
+import { absolute, shown, toSlashes } from '../host/paths';
+import { repositoryOf, seenFrom } from '../host/repository';
 import { readTextFile } from '../host/text-file';
-import type { FileResult, Service } from '../service/api';
+import type { FileDetails, FileResult, Service } from '../service/api';
 import { createService } from '../service/index';
 import { Budget } from '../text/budget';
 import { fixFiles } from './fix';
 import { byPath, findInputs, type Skipped } from './inputs';
 import { UsageError, type Io, type Status } from './io';
+import { withFingerprints } from './report/fingerprint';
 
 export interface CheckOptions {
   readonly requireClaims?: boolean;
@@ -19,6 +21,8 @@ export interface CheckOptions {
 
 export interface Outcome {
   readonly report: Report;
+  /** Equations and terms behind the claims of a file of the report. */
+  readonly details: (file: string) => Promise<FileDetails | undefined>;
   /** The repairs as a diff, where only that was asked for. */
   readonly diff?: string;
   readonly status: Status;
@@ -51,8 +55,16 @@ export async function check(paths: readonly string[], options: CheckOptions, io:
       io.log(`Internal failure while checking ${shown(file, io.folder)}: ${describe(error)}`);
     }
   }
-  const report = assemble(results, skipped, read, options, io.folder);
-  return { report, status: failed ? 2 : statusOf(report, options), ...(options.fix && options.dryRun ? { diff } : {}) };
+  const report = withFingerprints(assemble(results, skipped, read, options, io.folder), (file) => textOf(absolute(file, io.folder)), (file) =>
+    seenFrom(repositoryOf(io.folder), io.folder, file),
+  );
+  const details = (file: string) => service.details(toSlashes(absolute(file, io.folder)), budget());
+  return { report, details, status: failed ? 2 : statusOf(report, options), ...(options.fix && options.dryRun ? { diff } : {}) };
+}
+
+function textOf(file: string): string | undefined {
+  const read = readTextFile(file);
+  return 'text' in read ? read.text : undefined;
 }
 
 export function openService(paths: readonly string[], io: Io): { service: Service; inputs: ReturnType<typeof findInputs> } {

@@ -1,27 +1,11 @@
 import { Command, CommanderError, Option } from 'commander';
 import { version } from '@visviva/shared';
-import { readTextFile } from '../host/text-file';
-import { absolute } from '../host/paths';
-import { check, describe, type CheckOptions, type Outcome } from './check';
+import { describe } from './check';
+import { addCheck } from './check-command';
 import { derive, deriveAgainst, DERIVE_FORMS, type DeriveForm } from './derive';
 import { explain } from './explain';
 import { UsageError, type Io, type Status } from './io';
 import { suggest } from './suggest';
-import { jsonReport } from './report/json';
-import { textReport } from './report/text';
-
-/** How a report is written, by the name that `--format` takes. */
-const writers: Record<string, (outcome: Outcome, io: Io) => string> = {
-  text: ({ report }, io) =>
-    textReport(report, {
-      colour: io.colour,
-      read(file) {
-        const text = readTextFile(absolute(file, io.folder));
-        return 'text' in text ? text.text : undefined;
-      },
-    }),
-  json: ({ report }) => jsonReport(report),
-};
 
 /**
  * Runs the command with its arguments (without the program's own name).
@@ -51,23 +35,7 @@ function createProgram(io: Io, finish: (status: Status | undefined) => void): Co
     .configureOutput({ writeOut: (s) => io.out(s), writeErr: (s) => io.log(s.replace(/\n$/, '')) })
     .showHelpAfterError('visviva --help tells how the command is used.');
 
-  program
-    .command('check')
-    .description('check every claim in the given files and folders')
-    .argument('[path...]', 'files and folders; the current folder when none is given')
-    .addOption(new Option('--format <format>', 'how the report is written').choices(Object.keys(writers)).default('text'))
-    .option('--require-claims', 'end with status 1 when nothing is claimed')
-    .option('--function <name>', 'only claims about this function')
-    .option('--system <name>', 'only this system')
-    .option('--fix', 'make the repairs that were verified, then report')
-    .option('--dry-run', 'with --fix: print the repairs as a diff and change nothing')
-    .addHelpText('after', '\nExit status: 0 every claim holds, 1 something differs, is unread or wrongly declared, 2 failure.')
-    .action(async (paths: string[], options: CheckOptions & { format: string }) => {
-      if (options.dryRun && !options.fix) throw new UsageError('--dry-run says how --fix is to work: give both.');
-      const outcome = await check(paths, options, io);
-      io.out(outcome.diff ?? writers[options.format]!(outcome, io));
-      finish(outcome.status);
-    });
+  addCheck(program, io, finish);
 
   program
     .command('explain')

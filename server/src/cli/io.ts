@@ -6,6 +6,7 @@ export interface Io {
   log(text: string): void;
   readonly folder: string;
   readonly colour: boolean;
+  readonly environment: Readonly<Record<string, string | undefined>>;
 }
 
 /** 0: every claim holds. 1: something differs, is unread or wrongly declared. 2: usage, configuration, internal failure. */

@@ -12,6 +12,7 @@ const status = await run(process.argv.slice(2), {
   out: (text) => process.stdout.write(text),
   log: (text) => process.stderr.write(`${text}\n`),
   folder: process.cwd(),
+  environment: process.env,
   colour: pc.isColorSupported && process.stdout.isTTY === true,
 });
 if (status !== undefined) process.exitCode = status;

@@ -49,6 +49,8 @@ export interface Service {
   rename(file: string, position: ReportPosition, name: string, budget: Budget): Promise<{ readonly edits: readonly FileEdit[] } | { readonly failure: string }>;
   /** The derived equations of every system a file declares. */
   derive(file: string, as: DeriveForm, budget: Budget): Promise<readonly DerivedSystem[]>;
+  /** What stands behind the claims of a file: equations, terms and curves, for reports that show them. */
+  details(file: string, budget: Budget): Promise<FileDetails>;
   /** First declarations for functions that look like dynamics and have none, to be completed by a person. */
   suggest(file: string, budget: Budget): Promise<readonly SuggestedDeclaration[]>;
   /**
@@ -144,6 +146,66 @@ export interface FileResult {
   readonly problems: readonly Problem[];
   /** Other files that were read for it: a change there makes the result stale. */
   readonly dependsOn: readonly string[];
+}
+
+export interface FileDetails {
+  /** Those that the file declares or names. */
+  readonly systems: readonly SystemDetails[];
+  /** For claims that differ. */
+  readonly claims: readonly ClaimDetails[];
+}
+
+export interface Written {
+  readonly text: string;
+  readonly tex: string;
+}
+
+/** A declared system as a reader of a report needs it. */
+export interface SystemDetails {
+  readonly name: string;
+  /** `x [m]`, with the convention where one is stated. */
+  readonly coordinates: readonly { readonly name: string; readonly unit?: string; readonly remark?: string }[];
+  /** T, V, L, D where they are declared, and the generalized forces. */
+  readonly energies: readonly (Written & { readonly name: string })[];
+  readonly equations: readonly (Written & { readonly coordinate: string })[];
+  readonly accelerations: readonly (Written & { readonly coordinate: string })[];
+  /** Why there are no equations. */
+  readonly blocked?: string;
+}
+
+/** A claim that differs, looked at closely. */
+export interface ClaimDetails {
+  readonly line: number;
+  readonly system: string;
+  readonly output: string;
+  readonly quantity: string;
+  /** The witness with the values of all symbols that either side depends on. */
+  readonly state: readonly { readonly name: string; readonly value: number }[];
+  readonly terms?: TermTable;
+  readonly curve?: Curve;
+}
+
+/** The terms of what the claim must equal, at the witness. */
+export interface TermTable {
+  /** What the terms are of: an equation whose terms add up to zero, or the quantity itself. */
+  readonly of: Written;
+  readonly isEquation: boolean;
+  readonly rows: readonly (Written & {
+    /** With the declared energies' own values. */
+    readonly declared: number;
+    /** With the accelerations that the code gives; of an equation only. */
+    readonly code?: number;
+  })[];
+}
+
+/** Both sides of a claim while one symbol of the witness runs and the rest of it stays. */
+export interface Curve {
+  readonly symbol: string;
+  readonly unit?: string;
+  readonly at: readonly number[];
+  readonly expected: readonly number[];
+  readonly found: readonly number[];
+  readonly witness: number;
 }
 
 export interface Hover {

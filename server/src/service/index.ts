@@ -9,6 +9,7 @@ import type { Comparison, Files, FileResult, Service } from './api';
 import { checkDocument, fileResult, type BlockOutcome, type Project } from './check';
 import { diagnoseOutcomes } from './diagnose';
 import { deriveSystems } from './derive';
+import { fileDetails } from './details';
 import { editingService } from './editing';
 import { hoverAt } from './hover';
 import { ResultCache } from './result-cache';
@@ -77,6 +78,11 @@ export function createService(files: Files): Service {
     async derive(file, as, budget) {
       const document = await load(file);
       return document ? deriveSystems(project, document, as, budget) : [];
+    },
+
+    async details(file, budget) {
+      const document = await load(file);
+      return document ? fileDetails(document, await checkDocument(project, document, budget)) : { systems: [], claims: [] };
     },
 
     async suggest(file) {

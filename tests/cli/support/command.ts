@@ -18,10 +18,17 @@ export interface Result {
 
 /** Runs the built command as a process of its own. */
 export function visviva(folder: string, ...args: string[]): Result {
+  return visvivaWith({}, folder, ...args);
+}
+
+/** What a test runs must not take this machine for a hosted one. */
+const HOSTED = { GITHUB_ACTIONS: '', TF_BUILD: '', TEAMCITY_VERSION: '', GITLAB_CI: '' };
+
+export function visvivaWith(environment: Readonly<Record<string, string>>, folder: string, ...args: string[]): Result {
   const r = spawnSync(process.execPath, [command, ...args], {
     cwd: folder,
     encoding: 'utf8',
-    env: { ...process.env, NO_COLOR: '1' },
+    env: { ...process.env, NO_COLOR: '1', ...HOSTED, ...environment },
     maxBuffer: 1 << 26,
   });
   return { status: r.status, out: r.stdout, log: r.stderr };
@@ -29,9 +36,10 @@ export function visviva(folder: string, ...args: string[]): Result {
 
 /** A folder with these files, gone when the test is over. */
 export class Folder {
-  readonly path = realpathSync(mkdtempSync(join(tmpdir(), 'visviva-')));
+  readonly path: string;
 
-  constructor(files: Readonly<Record<string, string | Uint8Array>> = {}) {
+  constructor(files: Readonly<Record<string, string | Uint8Array>> = {}, path?: string) {
+    this.path = path ?? realpathSync(mkdtempSync(join(tmpdir(), 'visviva-')));
     for (const [name, text] of Object.entries(files)) this.write(name, text);
   }
 
@@ -47,6 +55,15 @@ export class Folder {
 
   run(...args: string[]): Result {
     return visviva(this.path, ...args);
+  }
+
+  runWith(environment: Readonly<Record<string, string>>, ...args: string[]): Result {
+    return visvivaWith(environment, this.path, ...args);
+  }
+
+  /** A folder inside this one, to run in. */
+  inside(name: string): Folder {
+    return new Folder({}, join(this.path, name));
   }
 
   [Symbol.dispose](): void {

@@ -1,5 +1,5 @@
 import type { ReportClaim, ReportRange } from '@visviva/shared';
-import type { DocumentSymbol, FileResult, Files, Hover, Service } from '../../../server/src/service/api';
+import type { DocumentSymbol, FileDetails, FileResult, Files, Hover, Service } from '../../../server/src/service/api';
 import type { Budget } from '../../../server/src/text/budget';
 
 /**
@@ -26,6 +26,9 @@ export class ScriptedService implements Service {
     return /\.(ts|js|visviva)$/.test(file);
   }
   async prepare(): Promise<void> {}
+  async details(): Promise<FileDetails> {
+    return { systems: [], claims: [] };
+  }
 
   async check(file: string, budget: Budget): Promise<FileResult> {
     const text = this.textOf(file);

@@ -1,4 +1,4 @@
-import type { Evidence, Finding, Problem, Report, ReportClaim, ReportRange } from '@visviva/shared';
+import type { Acceptance, Evidence, Finding, Problem, Report, ReportClaim, ReportRange, Severity } from '@visviva/shared';
 
 /** The report as JSON, its keys in the documented order whatever order they were made in. */
 export function jsonReport(report: Report): string {
@@ -14,10 +14,12 @@ export function jsonReport(report: Report): string {
       differs: summary.differs,
       unread: summary.unread,
       problems: summary.problems,
+      ...(summary.accepted ? { accepted: summary.accepted } : {}),
     },
     claims: claims.map(claimJson),
     problems: problems.map(problemJson),
     skipped: skipped.map((s) => ({ file: s.file, reason: s.reason })),
+    ...(report.gone ? { gone: report.gone } : {}),
   };
   return `${JSON.stringify(ordered, finite, 2)}\n`;
 }
@@ -70,11 +72,20 @@ function findingJson(f: Finding): object {
           },
         }
       : {}),
+    ...marks(f),
   };
 }
 
 function problemJson(p: Problem): object {
-  return { file: p.file, code: p.code, message: p.message, range: rangeJson(p.range), severity: p.severity };
+  return { file: p.file, code: p.code, message: p.message, range: rangeJson(p.range), severity: p.severity, ...marks({ ...p, severity: undefined }) };
+}
+
+function marks(f: { readonly fingerprint?: string; readonly severity?: Severity; readonly accepted?: Acceptance }): object {
+  return {
+    ...(f.severity ? { severity: f.severity } : {}),
+    ...(f.fingerprint ? { fingerprint: f.fingerprint } : {}),
+    ...(f.accepted ? { accepted: { by: f.accepted.by, ...(f.accepted.reason ? { reason: f.accepted.reason } : {}) } } : {}),
+  };
 }
 
 function rangeJson(r: ReportRange): object {

@@ -1,12 +1,11 @@
-import type { Finding, Problem, Report, ReportClaim, ReportRange, Witness } from '@visviva/shared';
+import type { Acceptance, Problem, Report, ReportRange } from '@visviva/shared';
 import pc from 'picocolors';
 import { LineIndex } from '../../text/line-index';
-import { formatNumber, formatPair } from '../../text/number';
 import { evidenceLines } from './evidence';
 import { excerpt } from './excerpt';
+import { listFindings, type Listed } from './findings';
 import { harmless, textWidth } from './width';
-
-export const CAUTION = 'A claim that holds means that code and declaration agree, not that the model is right or a machine safe.';
+import { CAUTION, count, groupsOf, mentions, summaryText, verdictText, witnessText, worstOf, type Group } from './words';
 
 const LINE_WIDTH = 100;
 
@@ -14,14 +13,6 @@ export interface TextReportOptions {
   readonly colour: boolean;
   /** The text of a file of the report, for the lines it quotes. */
   readonly read: (file: string) => string | undefined;
-}
-
-/** The claims of one function about one system. */
-interface Group {
-  readonly file: string;
-  readonly system: string;
-  readonly function: string;
-  readonly claims: ReportClaim[];
 }
 
 /** The report for people: a line per system that is well, the whole story of what is not. */
@@ -37,11 +28,11 @@ export function textReport(report: Report, options: TextReportOptions): string {
   for (const { group, cells, place } of rows) {
     const isWell = group.claims.every((c) => c.verdict === 'holds' && c.findings.length === 0);
     if (!isWell || !previousWasQuiet) blank();
-    const worst = worstOf(group);
+    const worst = worstOf(group.claims);
     const paint = worst === 'differs' ? colours.red : worst === 'unread' ? colours.yellow : colours.green;
     out.push(`${colours.bold(cells[0]!)}  ${cells[1]!}  ${paint(cells[2]!)}   ${colours.dim(place)}`);
     for (const line of evidenceLines(group.claims)) for (const part of wrapped(line)) out.push(colours.dim(`  ${part}`));
-    for (const s of storiesOf(group)) story(s);
+    for (const s of listFindings({ claims: group.claims, problems: [] })) story(s);
     previousWasQuiet = isWell;
   }
   if (report.problems.length > 0) {
@@ -54,26 +45,32 @@ export function textReport(report: Report, options: TextReportOptions): string {
     out.push(colours.bold('left out'));
     for (const s of report.skipped) out.push(`  ${harmless(s.file)}: ${s.reason}`);
   }
+  if (report.gone && report.gone.length > 0) {
+    blank();
+    out.push(colours.bold('in the baseline, and no more in the code'));
+    for (const g of report.gone) out.push(`  ${harmless(`${g.file}: ${g.code}${g.output === undefined ? '' : ` at ${g.output} of ${g.system ?? ''}`}`)}`);
+  }
   blank();
   out.push(summaryText(report));
   if (report.summary.holds > 0) out.push(colours.dim(CAUTION));
   return `${out.join('\n')}\n`;
 
-  function story({ claim, finding: f, alsoFor }: Story): void {
+  function story(f: Listed): void {
     blank();
-    const paint = claim.verdict === 'differs' ? colours.red : colours.yellow;
-    out.push(`  ${placeText(f.file ?? claim.file, f.range)}   ${paint(f.code)}`);
+    const { claim } = f;
+    const paint = f.accepted ? colours.dim : f.level === 'error' ? colours.red : colours.yellow;
+    out.push(`  ${placeText(f.file, f.range)}   ${paint(f.code)}${acceptedText(f.accepted)}`);
     paragraph(f.message);
-    if (claim.witness && !mentions(f.message, claim.witness)) paragraph(witnessText(claim.witness));
-    if (alsoFor.length > 0) paragraph(`The same goes for ${alsoFor.join(', ')}.`);
-    quote(f.file ?? claim.file, f.range, paint);
+    if (claim?.witness && !mentions(f.message, claim.witness)) paragraph(witnessText(claim.witness));
+    if (f.alsoFor.length > 0) paragraph(`The same goes for ${f.alsoFor.join(', ')}.`);
+    quote(f.file, f.range, paint);
     if (f.repair) paragraph(`${f.repair.verified ? 'Repair' : 'Try'}: ${f.repair.title}`);
   }
 
   function problem(p: Problem): void {
     blank();
-    const paint = p.severity === 'error' ? colours.red : colours.yellow;
-    out.push(`  ${placeText(p.file, p.range)}   ${paint(p.code)}`);
+    const paint = p.accepted ? colours.dim : p.severity === 'error' ? colours.red : colours.yellow;
+    out.push(`  ${placeText(p.file, p.range)}   ${paint(p.code)}${acceptedText(p.accepted)}`);
     paragraph(p.message);
     quote(p.file, p.range, paint);
   }
@@ -91,36 +88,8 @@ export function textReport(report: Report, options: TextReportOptions): string {
   }
 }
 
-function groupsOf(claims: readonly ReportClaim[]): Group[] {
-  const groups = new Map<string, Group>();
-  for (const c of claims) {
-    const key = JSON.stringify([c.file, c.system, c.function]);
-    const group = groups.get(key);
-    if (group) group.claims.push(c);
-    else groups.set(key, { file: c.file, system: c.system, function: c.function, claims: [c] });
-  }
-  return [...groups.values()];
-}
-
 function cellsOf(g: Group): string[] {
   return [harmless(g.system), harmless(g.function) || '-', verdictText(g)];
-}
-
-/** `4 claims hold`, `1 of 4 claims differs`, `3 of 4 claims differ, 1 not read`. */
-function verdictText(g: Group): string {
-  const n = g.claims.length;
-  const differ = g.claims.filter((c) => c.verdict === 'differs').length;
-  const unread = g.claims.filter((c) => c.verdict === 'unread').length;
-  if (differ === 0 && unread === 0) return n === 1 ? '1 claim holds' : `${n} claims hold`;
-  const parts: string[] = [];
-  if (differ > 0) parts.push(`${differ} of ${count(n, 'claim')} ${differ === 1 ? 'differs' : 'differ'}`);
-  if (unread > 0) parts.push(differ > 0 ? `${unread} not read` : `${unread} of ${count(n, 'claim')} not read`);
-  return parts.join(', ');
-}
-
-function worstOf(g: Group): ReportClaim['verdict'] {
-  if (g.claims.some((c) => c.verdict === 'differs')) return 'differs';
-  return g.claims.some((c) => c.verdict === 'unread') ? 'unread' : 'holds';
 }
 
 /** Equal columns down the page. */
@@ -131,48 +100,6 @@ function table(rows: readonly (readonly [Group, string[]])[]): { group: Group; c
     cells: cells.map((c, i) => c + ' '.repeat(Math.max(0, widths[i]! - textWidth(c)))),
     place: `${harmless(group.file)}:${group.claims[0]!.line}`,
   }));
-}
-
-interface Story {
-  readonly claim: ReportClaim;
-  readonly finding: Finding;
-  /** Outputs of other claims with the same to tell. */
-  readonly alsoFor: string[];
-}
-
-/** What there is to tell about a group; several claims that fail at one place for one reason are told once. */
-function storiesOf(group: Group): Story[] {
-  const stories = new Map<string, Story>();
-  for (const claim of group.claims) {
-    for (const finding of findingsOf(claim)) {
-      const general = finding.message.replace(claim.output, '');
-      const key = JSON.stringify([finding.code, finding.file, finding.range, general]);
-      const told = stories.get(key);
-      if (told) told.alsoFor.push(claim.output);
-      else stories.set(key, { claim, finding, alsoFor: [] });
-    }
-  }
-  return [...stories.values()];
-}
-
-/** A claim that is not well always has something to say, if only its witness. */
-function findingsOf(claim: ReportClaim): readonly Finding[] {
-  if (claim.findings.length > 0 || claim.verdict === 'holds') return claim.findings;
-  const at = { line: claim.line, column: 1 };
-  const message = `${claim.output} = ${claim.quantity} ${claim.verdict === 'differs' ? 'does not hold.' : 'was not read.'}`;
-  return [{ code: claim.verdict, message, range: { start: at, end: at } }];
-}
-
-function mentions(message: string, w: Witness): boolean {
-  const [found, expected] = formatPair(w.found, w.expected);
-  return message.includes(found) && message.includes(expected);
-}
-
-function witnessText(w: Witness): string {
-  const state = Object.entries(w.state).map(([name, value]) => `${name} = ${formatNumber(value)}`);
-  const [found, expected] = formatPair(w.found, w.expected);
-  const where = state.length > 0 ? `At ${state.join(', ')} the` : 'The';
-  return `${where} code gives ${found}, the declared energies give ${expected}.`;
 }
 
 /** A word, with the whole of what stands between backquotes. */
@@ -195,21 +122,7 @@ function placeText(file: string, range: ReportRange): string {
   return `${harmless(file)}:${range.start.line}:${range.start.column}`;
 }
 
-function summaryText(report: Report): string {
-  const s = report.summary;
-  const files = count(s.files, 'file');
-  if (s.claims === 0) {
-    if (s.systems > 0) return `Nothing is claimed: ${count(s.systems, 'system')} in ${files}, but no \`checks\` line.`;
-    if (report.problems.length > 0) return `${files}: no claim was read.`;
-    return `Nothing is declared: no \`@visviva\` declaration in ${files}. Nothing was checked.`;
-  }
-  const verdicts: string[] = [];
-  if (s.holds > 0) verdicts.push(s.holds === s.claims ? (s.claims === 1 ? 'holds' : 'all hold') : `${s.holds} ${s.holds === 1 ? 'holds' : 'hold'}`);
-  if (s.differs > 0) verdicts.push(`${s.differs} ${s.differs === 1 ? 'differs' : 'differ'}`);
-  if (s.unread > 0) verdicts.push(`${s.unread} not read`);
-  return `${files}, ${count(s.systems, 'system')}, ${count(s.claims, 'claim')}: ${verdicts.join(', ')}.`;
-}
-
-function count(n: number, word: string): string {
-  return `${n} ${word}${n === 1 ? '' : 's'}`;
+function acceptedText(accepted: Acceptance | undefined): string {
+  if (!accepted) return '';
+  return accepted.by === 'baseline' ? '   accepted by the baseline' : `   accepted: ${harmless(accepted.reason ?? '')}`;
 }
