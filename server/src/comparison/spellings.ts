@@ -1,4 +1,5 @@
 import type { Expr } from '../expression/node';
+import { evaluate } from '../mechanics/formula';
 import { canonicalName } from '../mechanics/names';
 import type { Coordinate, Declared, System } from '../mechanics/system';
 import type { Meaning } from '../program/reading';
@@ -6,18 +7,21 @@ import type { Meaning } from '../program/reading';
 export interface NameMeaning {
   readonly expr: Expr;
   readonly text: string;
+  /** The name stands for a formula: a scalar of a `where` statement. */
+  readonly isFormula?: boolean;
 }
 
 /**
  * What a bare name in code can mean by agreement with the declaration: the name itself (Greek letters also by name, family
- * members as `th1` and `th_1`), and the customary spellings of first and second time derivatives.
+ * members as `th1` and `th_1`), the customary spellings of first and second time derivatives, and the scalars that `where`
+ * gives a name.
  */
 export class Spellings {
   private readonly exact = new Map<string, NameMeaning>();
   private readonly rates = new Map<string, NameMeaning[]>();
   private readonly families = new Map<string, Meaning[]>();
 
-  constructor(system: System) {
+  constructor(private readonly system: System) {
     for (const d of [...system.coordinates, ...system.parameters, ...system.inputs]) {
       for (const name of plainSpellings(d)) this.exact.set(name, { expr: d.symbol, text: d.name });
       if (d.family) this.addToFamily(canonicalName(d.family.name), d.symbol);
@@ -35,12 +39,24 @@ export class Spellings {
     }
   }
 
-  /** A declared name goes before any spelling of a rate. */
+  /** A declared name goes before any spelling of a rate, and those before the names of formulas. */
   byName(name: string): readonly NameMeaning[] {
     const key = canonicalCodeName(name);
     const exact = this.exact.get(key);
     if (exact) return [exact];
-    return this.rates.get(key) ?? [];
+    const rates = this.rates.get(key);
+    if (rates) return rates;
+    const formula = this.formula(key);
+    return formula ? [formula] : [];
+  }
+
+  private formula(key: string): NameMeaning | undefined {
+    const { scope } = this.system;
+    const entries = scope.shorthands.get(key);
+    if (entries?.length !== 1 || entries[0]!.index) return undefined;
+    const span = entries[0]!.equation.left.span;
+    const value = evaluate({ kind: 'name', name: key, span }, { scope, indices: new Map(), errors: [] });
+    return value?.kind === 'scalar' ? { expr: value.expr, text: key, isFormula: true } : undefined;
   }
 
   familyByName(name: string): readonly Meaning[] | undefined {

@@ -16,6 +16,7 @@ import { BudgetSpent, type Budget } from '../text/budget';
 import type { Place, Span } from '../text/span';
 import { evaluateLeft, freeSymbol, freeSymbols, isFamilyName, pairUp, prepareClaims } from './claims';
 import { codeExpression } from './code-path';
+import { contradictions } from './contradictions';
 import { decide, type DecideRequest } from './decide';
 import type { Decision } from './pair';
 import type { Spellings } from './spellings';
@@ -181,6 +182,13 @@ function borrowedAccelerations(
     if (b.how === 'name' && data?.role === 'coordinate' && data.order >= 2) named.set(b.meaning, b);
   }
   const out = new Map<number, Decision>();
+  // The same of a formula's name that is the whole value.
+  for (const v of values) {
+    const binding = v.found.op === 'symbol' ? undefined : reading.bindings.find((b) => b.how === 'name' && b.meaning === v.found);
+    if (!binding) continue;
+    const reason = `it is not computed here but taken from \`${binding.code}\`, a name of the declaration: bind it with \`reads\` if that is meant`;
+    out.set(v.at, { verdict: 'unread', reason, place: binding.place });
+  }
   if (named.size === 0) return out;
   const first = firstSymbols(values.map((v) => v.found), (s) => named.has(s));
   values.forEach((v, i) => {
@@ -224,7 +232,7 @@ export function readSubject(request: SubjectRequest, reads: readonly ReadsBindin
     if (s.withinLimits) withinLimits = true;
     if (s.condition) assumptions.push(codeExpression(s.condition));
   }
-  return read({
+  const asked: ReadRequest = {
     graph: system.graph,
     file: request.file,
     program: request.program,
@@ -243,7 +251,10 @@ export function readSubject(request: SubjectRequest, reads: readonly ReadsBindin
     budget: request.budget,
     ...(request.tag ? { tag: request.tag } : {}),
     ...(request.isNumber ? { isNumber: request.isNumber } : {}),
-  });
+  };
+  const reading = read(asked);
+  const contradicted = contradictions(derived, reading, request.budget);
+  return contradicted.size === 0 ? reading : read({ ...asked, contradicted });
 }
 
 /** `reads CODE = FORMULA` of a block, the right sides evaluated. */

@@ -30,7 +30,7 @@ export function namesAt(request: SubjectRequest, reading: Reading | undefined, m
   for (const b of [...read].sort((x, y) => short(x.code, y.code))) add(b.meaning, b.code);
   for (const name of [...parametersOf(site), ...(site.owner ? localsOf(site.owner, site.span.start) : [])]) {
     const meanings = request.spellings.byName(name);
-    if (meanings.length === 1) add(meanings[0]!.expr, name);
+    if (meanings.length === 1 && !meanings[0]!.isFormula) add(meanings[0]!.expr, name);
   }
   const { parameters, inputs } = request.derived.system;
   const objects = new Set([...names.values()].flatMap((n) => /^(.*)\.\w+$/.exec(n)?.[1] ?? []));

@@ -2,8 +2,8 @@ import type { Place } from '../text/span';
 import { findMember } from './class-members';
 import { callSuper, construct } from './classes';
 import { changesReceiver, damage, unknownCall, unknownMethod } from './damage';
-import type { Argument, Expression, Parameter } from './form';
-import { childOf, copyOfGeneric, fallbackOf, fieldValue, genericAt, hasWritesBelow, valueOf } from './generics';
+import type { Argument, Expression } from './form';
+import { childOf, copyOfGeneric, fallbackOf, genericAt, hasWritesBelow, valueOf } from './generics';
 import { runIntrinsic } from './intrinsics/table';
 import type { ScalarFunction } from './library';
 import type { Machine } from './machine';
@@ -11,27 +11,22 @@ import { readMember, writeMember } from './members';
 import { apply, mergeEndings, withEach, type Ending } from './merging';
 import { requireModule } from './modules';
 import { dataOf, describe, itemsOf } from './numbers';
-import { bindItem } from './patterns';
+import { ENTRIES, bindParameters, type ArgumentValue } from './parameters';
 import { lastName, pathOf } from './paths';
 import { hoistedNames } from './scan';
 import { applyScalar } from './scalar-call';
 import { Scope, type Frame, type Module } from './scope';
 import type { Exit } from './flow';
-import { arrivalOf, arrive, declare, readVariable } from './variables';
-import { NOTHING, unread, type FunctionValue, type LibraryValue, type Unread, type Value } from './values';
+import { declare, readVariable } from './variables';
+import { NOTHING, unread, type Assigned, type FunctionValue, type LibraryValue, type Unread, type Value } from './values';
 
 /** Calls: of the code's own functions, by running them; of the library, by its table; of anything else, not at all. */
-
-export interface ArgumentValue {
-  readonly value: Value;
-  readonly name?: string;
-}
 
 const DEEPEST_CALLS = 64;
 
 export function evaluateCall(m: Machine, scope: Scope, e: Expression & { kind: 'call' }, place: Place): Value {
   const text = pathOf(e);
-  if (text !== undefined && m.naming.hasRead(text)) return valueOf(m, m.naming.read([text], place)!, place);
+  if (text !== undefined && m.naming.hasRead(text)) return callAsSaid(m, scope, e, text, place);
   const words = pathOf(e.callee);
   if (words !== undefined && scope.frame.module.library.ignorable.has(words) && !isOwn(scope, e.callee)) return NOTHING;
   if (e.callee.kind === 'super') {
@@ -72,6 +67,23 @@ export function evaluateCall(m: Machine, scope: Scope, e: Expression & { kind: '
   return callValue(m, scope, callee, self, args, place, wordsOf(e.callee), e.isNew);
 }
 
+/** A call that `reads` gives a meaning: it is not run, but what the code says it gives is held against that. */
+function callAsSaid(m: Machine, scope: Scope, e: Expression & { kind: 'call' }, text: string, place: Place): Value {
+  const doubted = m.doubted(text);
+  if (doubted) return { kind: 'scalar', expr: doubted, place };
+  const meaning = m.naming.read([text], place)!;
+  const assigned = (): Assigned | undefined => {
+    const callee = m.evaluate(scope, e.callee);
+    if (callee.kind !== 'function') return undefined;
+    const args = argumentValues(m, scope, e.args, place);
+    if (isProblem(args)) return undefined;
+    const value = callValue(m, scope, callee, undefined, args, place, text);
+    return { value, place: m.place(callee.scope, callee.node.nameSpan), hasSymbol: () => true };
+  };
+  m.believe(text, { meaning, how: 'reads', assigned });
+  return valueOf(m, meaning, place);
+}
+
 function isOwn(scope: Scope, callee: Expression): boolean {
   let e = callee;
   while (e.kind === 'member') e = e.object;
@@ -107,9 +119,6 @@ export function argumentValues(m: Machine, scope: Scope, args: readonly Argument
   }
   return problem ?? values;
 }
-
-/** The name of an argument whose entries are given by their names: Python's `**params`. */
-const ENTRIES = '**';
 
 function isProblem(x: ArgumentValue[] | Unread): x is Unread {
   return !Array.isArray(x);
@@ -353,44 +362,4 @@ function resultsOf(m: Machine, scope: Scope): Value {
     return variable ? readVariable(m, variable, m.place(scope, r.span)) : NOTHING;
   });
   return values.length === 1 ? values[0]! : m.list(values);
-}
-
-function bindParameters(m: Machine, scope: Scope, parameters: readonly Parameter[], args: readonly ArgumentValue[], self: Value | undefined, takesSelf: boolean): void {
-  const positional = args.filter((a) => a.name === undefined).map((a) => a.value);
-  const named = new Map(args.filter((a) => a.name !== undefined).map((a) => [a.name!, a.value]));
-  const entries = named.get(ENTRIES);
-  const list = [...parameters];
-  if (takesSelf) {
-    const first = list.shift();
-    if (first) bindParameter(m, scope, first, self ?? positional.shift() ?? NOTHING);
-  }
-  for (const parameter of list) {
-    if (parameter.restNamed) {
-      bindParameter(m, scope, parameter, entries ?? m.object({ kind: 'record', members: new Map(named) }));
-    } else if (parameter.rest) {
-      bindParameter(m, scope, parameter, m.list(positional.splice(0)));
-    } else {
-      const name = parameter.pattern.kind === 'name' ? parameter.pattern.name : undefined;
-      let value: Value = NOTHING;
-      if (name !== undefined && named.has(name)) {
-        value = named.get(name)!;
-        named.delete(name);
-      } else if (!parameter.keywordOnly && positional.length > 0) value = positional.shift()!;
-      else if (name !== undefined && entries) value = readMember(m, scope.frame.module, entries, name, m.place(scope, parameter.pattern.span));
-      bindParameter(m, scope, parameter, value);
-    }
-  }
-}
-
-function bindParameter(m: Machine, scope: Scope, parameter: Parameter, value: Value): void {
-  bindItem(m, scope, parameter, value, (s, pattern, v, fromDefault) => {
-    if (pattern.kind !== 'name') return;
-    const place = m.place(s, pattern.span);
-    const settled = fromDefault ? arrive(m, pattern.name, v, arrivalOf(s, pattern.name, place)) : v;
-    declare(m, s, pattern.name, settled);
-    if (parameter.field && s.frame.self?.kind === 'object') {
-      const { self } = s.frame;
-      m.setMember(self, pattern.name, m.constructing === self.id ? fieldValue(m, pattern.name, settled, place) : settled);
-    }
-  });
 }

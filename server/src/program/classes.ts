@@ -1,12 +1,15 @@
 import type { Place } from '../text/span';
-import type { ArgumentValue } from './calls';
+import type { ArgumentValue } from './parameters';
 import { findMember } from './class-members';
 import type { ClassNode, Member } from './form';
+import type { Expr } from '../expression/node';
 import { fieldValue, genericAt, valueOf } from './generics';
 import type { Machine } from './machine';
+import { memberPath } from './paths';
+import { patternNames, storedParameters } from './scan';
 import { Scope, type ClassInfo, type Frame } from './scope';
 import { declare, settleName } from './variables';
-import { NOTHING, unread, type FunctionValue, type ObjectValue, type Value } from './values';
+import { NOTHING, unread, type Assigned, type FunctionValue, type ObjectValue, type Value } from './values';
 
 /** Classes: their members, instances, and the fields of an instance from outside. */
 
@@ -128,7 +131,7 @@ function setFields(m: Machine, info: ClassInfo, self: ObjectValue): void {
     if (member.kind !== 'field' || member.isStatic || !member.value) continue;
     const value = m.evaluate(scope, member.value);
     const place = m.place(scope, member.span);
-    const settled = m.constructing === self.id ? fieldValue(m, member.name, value, place) : settleField(m, info, member.name, value, place);
+    const settled = m.constructing?.id === self.id ? fieldValue(m, m.constructing, member.name, value, place) : settleField(m, info, member.name, value, place);
     const data = m.store.writable(self.id);
     if (data.kind === 'record') data.members.set(member.name, settled);
   }
@@ -143,13 +146,9 @@ export function settleField(m: Machine, info: ClassInfo, key: string, value: Val
 /**
  * What is known of a field of an instance from outside: its initial value, as far as a constructor run on generic
  * arguments tells, whether that stays its value, and a function it holds.
+ * @param path what the instance is called
  */
-export function instanceField(
-  m: Machine,
-  info: ClassInfo,
-  object: ObjectValue,
-  key: string,
-): { fallback?: () => Value | undefined; constant?: boolean; function?: Value } {
+export function instanceField(m: Machine, info: ClassInfo, object: ObjectValue, path: string, key: string): InstanceField {
   const found = findMember(info, key, 'field');
   const field = found && found !== 'unknown' ? found : undefined;
   if (field?.member.value?.kind === 'function') {
@@ -157,51 +156,91 @@ export function instanceField(
   }
   const constant = field?.member.isConstant === true;
   const fallback = (): Value | undefined => {
-    const data = m.store.data(constructed(m, info).id);
+    const data = m.store.data(constructed(m, info, path).id);
     return data.kind === 'record' ? data.members.get(key) : undefined;
   };
-  return { fallback, constant };
+  return { fallback, constant, assigned: () => assignedField(m, info, path, key) };
 }
 
-/** An instance made by the constructor from generic arguments, once per class. */
-function constructed(m: Machine, info: ClassInfo): ObjectValue {
-  const known = m.instances.get(info.node);
-  if (known) return known;
-  return m.atRoot(() => {
-    const self = m.object({ kind: 'record', members: new Map(), info });
-    m.instances.set(info.node, self);
-    // Its arguments are things of their own: they must not be held against the fields they are stored in.
-    const { run } = m.naming;
-    const before = m.constructing;
-    m.naming.run = -1 - 2 * m.instances.size;
-    m.constructing = self.id;
-    const args = genericArguments(m, info);
-    if (info.scope.frame.module.program.classFields) initialiseClassFields(m, info, self);
-    initialise(m, info, self, args, m.place(info.scope, info.node.nameSpan));
-    m.naming.run = run;
-    m.constructing = before;
-    return self;
-  });
+export interface InstanceField {
+  readonly fallback?: () => Value | undefined;
+  readonly constant?: boolean;
+  readonly assigned?: () => Assigned | undefined;
+  readonly function?: Value;
 }
 
-function genericArguments(m: Machine, info: ClassInfo): ArgumentValue[] {
+/** What constructor and initialisers give to a field that nothing else writes, in symbols that their names mean. */
+function assignedField(m: Machine, info: ClassInfo, path: string, key: string): Assigned | undefined {
+  if (!m.isSetOnce(familyOf(info), key)) return undefined;
+  const places = new Map<string, Place>();
+  const data = m.atRoot(() => m.store.data(makeInstance(m, info, path, places).id));
+  const value = data.kind === 'record' ? data.members.get(key) : undefined;
+  if (!value) return undefined;
+  return { value, place: places.get(key) ?? m.place(info.scope, info.node.nameSpan), hasSymbol: (s) => parameterMeans(m, info, s) };
+}
+
+/** A class and those it extends. */
+function familyOf(info: ClassInfo): Set<ClassNode> {
+  const family = new Set<ClassNode>();
+  for (let at: ClassInfo | 'unknown' | undefined = info; at && at !== 'unknown' && family.size < 64; at = at.base()) family.add(at.node);
+  return family;
+}
+
+function parameterMeans(m: Machine, info: ClassInfo, symbol: Expr): boolean {
+  return (constructorOf(info)?.node?.parameters ?? []).some((p) => patternNames(p.pattern).some((name) => m.naming.symbolOf(name) === symbol));
+}
+
+/** An instance made by the constructor from generic arguments, once per class and name. */
+function constructed(m: Machine, info: ClassInfo, path: string): ObjectValue {
+  const known = m.instances.get(info.node)?.get(path);
+  return known ?? m.atRoot(() => makeInstance(m, info, path));
+}
+
+/** @param places where fields are to keep what they are given, for the places of that */
+function makeInstance(m: Machine, info: ClassInfo, path: string, places?: Map<string, Place>): ObjectValue {
+  const self = m.object({ kind: 'record', members: new Map(), info });
+  const made = m.instances.get(info.node) ?? new Map<string, ObjectValue>();
+  m.instances.set(info.node, made);
+  if (!places) made.set(path, self);
+  // Its arguments are things of their own: they must not be held against the fields they are stored in.
+  const { run } = m.naming;
+  const before = m.constructing;
+  m.naming.run = -1 - 2 * m.constructions++;
+  m.constructing = { id: self.id, path, ...(places ? { places } : {}) };
+  const args = genericArguments(m, info, path);
+  if (info.scope.frame.module.program.classFields) initialiseClassFields(m, info, self);
+  initialise(m, info, self, args, m.place(info.scope, info.node.nameSpan));
+  m.naming.run = run;
+  m.constructing = before;
+  return self;
+}
+
+function constructorOf(info: ClassInfo): Member | undefined {
   let at: ClassInfo | 'unknown' | undefined = info;
   for (let k = 0; at && at !== 'unknown' && k < 64; k++) {
-    const constructor: Member | undefined = at.node.members.find((x) => x.kind === 'constructor' && x.node);
-    if (constructor) {
-      const parameters = constructor.node!.parameters.slice(constructor.node!.selfParameter ? 1 : 0);
-      return parameters
-        .filter((p) => !p.rest && !p.restNamed)
-        .map((p) => {
-          const name = p.pattern.kind === 'name' ? p.pattern.name : '';
-          const place = m.place(info.scope, p.pattern.span);
-          const meaning = name === '' ? undefined : m.naming.read([name], place);
-          const { initial } = p;
-          const fallback = initial ? { fallback: () => m.evaluate(info.scope, initial) } : {};
-          return { value: meaning ? valueOf(m, meaning, place) : genericAt(m, name, place, fallback) };
-        });
-    }
+    const found: Member | undefined = at.node.members.find((x) => x.kind === 'constructor' && x.node);
+    if (found) return found;
     at = at.base();
   }
-  return [];
+  return undefined;
+}
+
+function genericArguments(m: Machine, info: ClassInfo, path: string): ArgumentValue[] {
+  const node = constructorOf(info)?.node;
+  if (!node) return [];
+  const fields = storedParameters(node);
+  return node.parameters
+    .slice(node.selfParameter ? 1 : 0)
+    .filter((p) => !p.rest && !p.restNamed)
+    .map((p) => {
+      const name = p.pattern.kind === 'name' ? p.pattern.name : '';
+      const place = m.place(info.scope, p.pattern.span);
+      const meaning = name === '' ? undefined : m.naming.read([name], place);
+      if (meaning) return { value: valueOf(m, meaning, place) };
+      const { initial } = p;
+      const fallback = initial ? { fallback: () => m.evaluate(info.scope, initial) } : {};
+      // A parameter that says nothing by its name is what the field is that it is stored in.
+      const aliases = name === '' || m.naming.byName(name) ? [] : (fields.get(name) ?? []).map((field) => memberPath(path, field));
+      return { value: genericAt(m, name, place, { aliases, ...fallback }) };
+    });
 }

@@ -7,7 +7,7 @@ import type { Machine } from './machine';
 import { settle } from './settle';
 import { dataOf, numeric } from './numbers';
 import { shapeOf } from './paths';
-import { isUsedAsThing } from './scan';
+import { isUsedAsThing } from './facts';
 import type { Scope } from './scope';
 import { fork } from './merging';
 import { isUnread, unread, type Generic, type Unread, type Value } from './values';

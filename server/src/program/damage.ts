@@ -1,10 +1,11 @@
 import type { Place } from '../text/span';
-import type { ArgumentValue } from './calls';
+import type { ArgumentValue } from './parameters';
 import type { Expression } from './form';
 import type { Machine } from './machine';
 import { fallbackOf } from './generics';
 import { lastName } from './paths';
-import { assignments, isUsedAsThing } from './scan';
+import { isUsedAsThing } from './facts';
+import { assignments } from './scan';
 import { write } from './variables';
 import { unread, type Unread, type Value } from './values';
 

@@ -1,10 +1,10 @@
 import { classInfo } from './classes';
 import { evaluate } from './expressions';
-import type { ClassNode, Expression, FunctionNode, Parameter, Pattern, Program, TypeNote } from './form';
+import type { ClassNode, FunctionNode, Parameter, Pattern, TypeNote } from './form';
 import { genericAt } from './generics';
 import type { Machine } from './machine';
 import { addTopLevel } from './modules';
-import { nodesOf } from './scan';
+import { factsOf } from './facts';
 import { Scope, type ClassInfo, type Frame, type Module } from './scope';
 import { typeFacts, type Typed } from './type-notes';
 import { declare } from './variables';
@@ -41,18 +41,8 @@ function receiver(m: Machine, module: Module, around: Scope, node: FunctionNode,
   if (known && !info) return known;
   const place = m.place(around, info ? info.node.nameSpan : node.nameSpan);
   if (info) return genericAt(m, 'this', place, { info });
-  const record = recordAround(module.program, node);
+  const record = factsOf(module.program).recordOf.get(node);
   return genericAt(m, 'this', place, record ? { fallback: () => evaluate(m, around, record), constant: true } : {});
-}
-
-/** The record literal a function is a method of. */
-function recordAround(program: Program, node: FunctionNode): Expression | undefined {
-  for (const n of nodesOf(program.body)) {
-    const e = n as Expression;
-    if (e.kind !== 'record' || !('fields' in e)) continue;
-    if (e.fields.some((f) => f.kind === 'field' && f.value.kind === 'function' && f.value.node === node)) return e;
-  }
-  return undefined;
 }
 
 function enterParameter(m: Machine, scope: Scope, parameter: Parameter): void {
@@ -90,12 +80,8 @@ function partOf(typed: Typed | undefined, note: TypeNote | undefined): Typed | u
 
 /** The scopes of the functions around one, with generic arguments of their own. */
 function surroundings(m: Machine, module: Module, node: FunctionNode): Scope {
-  const outer: FunctionNode[] = [];
-  for (const n of nodesOf(module.program.body)) {
-    if (!('bodySpan' in n) || n === node) continue;
-    const f = n as unknown as FunctionNode;
-    if (f.bodySpan.start <= node.span.start && node.span.end <= f.bodySpan.end) outer.push(f);
-  }
+  const { start, end } = node.span;
+  const outer = factsOf(module.program).functions.filter((f) => f !== node && f.bodySpan.start <= start && end <= f.bodySpan.end);
   let scope = module.scope;
   for (const f of outer.sort((a, b) => a.span.start - b.span.start)) {
     const names = m.store.add({ kind: 'record', members: new Map() });

@@ -368,7 +368,7 @@ function joinOutside(m: Machine, parts: readonly Part[], at: number, place: Plac
   const source = data.copyOf ?? spread.value.id;
   if (defaults?.kind === 'record') {
     for (const [key, v] of defaults.members) {
-      if (!members.has(key)) members.set(key, childOf(m, source, data.generic, key, place, () => v));
+      if (!members.has(key)) members.set(key, childOf(m, source, data.generic, key, place, { fallback: () => v }));
     }
   }
   for (const part of parts.slice(at + 1)) {

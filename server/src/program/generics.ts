@@ -1,9 +1,9 @@
 import { childNames } from './children';
-import type { Machine } from './machine';
+import type { Construction, Machine } from './machine';
 import { lastName, memberPath } from './paths';
 import { typeFacts, typeOfMember } from './type-notes';
 import type { Meaning } from './reading';
-import { isUnread, unread, type Generic, type GenericData, type ObjectValue, type Scalar, type Value } from './values';
+import { isUnread, unread, type Assigned, type Generic, type GenericData, type ObjectValue, type Scalar, type Value } from './values';
 import type { Expr } from '../expression/node';
 import type { Place } from '../text/span';
 
@@ -14,7 +14,7 @@ export function genericAt(
   m: Machine,
   path: string,
   place: Place,
-  more: { aliases?: readonly string[]; info?: Generic['info']; typed?: Generic['typed']; fallback?: Generic['fallback']; constant?: boolean; origin?: string } = {},
+  more: { aliases?: readonly string[] } & Partial<Pick<Generic, 'info' | 'typed' | 'fallback' | 'assigned' | 'constant' | 'origin'>> = {},
 ): ObjectValue {
   const { aliases = [], ...rest } = more;
   const generic: Generic = { path, aliases: [...aliases], place, ...rest };
@@ -29,8 +29,12 @@ function memo(m: Machine): { children: Map<string, ObjectValue>; numbers: Map<st
   return found;
 }
 
+/** What is known of a member beyond its name. */
+type MemberFacts = Partial<Pick<Generic, 'fallback' | 'constant' | 'assigned'>>;
+
 /** The member `key` that a generic thing had when the function was entered. */
-export function childOf(m: Machine, id: number, generic: Generic, key: string, place: Place, fallback?: Generic['fallback'], constant = generic.constant): ObjectValue {
+export function childOf(m: Machine, id: number, generic: Generic, key: string, place: Place, facts: MemberFacts = {}): ObjectValue {
+  const { fallback, constant = generic.constant, assigned } = facts;
   const children = memo(m).children;
   const k = `${id} ${key}`;
   let child = children.get(k);
@@ -38,7 +42,8 @@ export function childOf(m: Machine, id: number, generic: Generic, key: string, p
     const [path, ...aliases] = childNames(generic, key);
     const inherited = fallback ?? fallbackMember(m, generic, key);
     const from = { ...typeFacts(m, typeOfMember(generic, key)), ...(generic.origin === undefined ? {} : { origin: generic.origin }) };
-    child = genericAt(m, path!, place, { aliases, ...from, ...(inherited ? { fallback: inherited } : {}), ...(constant ? { constant } : {}) });
+    const more = { ...(inherited ? { fallback: inherited } : {}), ...(constant ? { constant } : {}), ...(assigned ? { assigned } : {}) };
+    child = genericAt(m, path!, place, { aliases, ...from, ...more });
     children.set(k, child);
   }
   return child;
@@ -122,15 +127,23 @@ function countedFallback(m: Machine, generic: Generic): Scalar | undefined {
 export function meaningOf(m: Machine, generic: Generic): Scalar | ReturnType<typeof unread> | undefined {
   const paths = [generic.path, ...generic.aliases];
   const place = generic.place;
+  const doubted = m.doubted(generic.path);
+  if (doubted) return { kind: 'scalar', expr: doubted, place };
   const read = m.naming.read(paths, place);
-  if (read?.kind === 'scalar') return { kind: 'scalar', expr: read.expr, place };
+  if (read?.kind === 'scalar') {
+    if (generic.assigned) m.believe(generic.path, { meaning: read, how: 'reads', assigned: generic.assigned });
+    return { kind: 'scalar', expr: read.expr, place };
+  }
   if (read) return unread(`\`${generic.path}\` is a list by its \`reads\`, and is used as a number`, place);
   for (const path of paths) {
     const item = familyItem(m, path);
     if (item) return { kind: 'scalar', expr: item, place };
     const name = throughGetters(path) ? lastName(path) : undefined;
     const expr = name === undefined ? undefined : m.naming.agree(name, path, generic.path, place);
-    if (expr) return { kind: 'scalar', expr, place };
+    if (expr) {
+      if (generic.assigned) m.believe(generic.path, { meaning: { kind: 'scalar', expr }, how: 'name', assigned: generic.assigned });
+      return { kind: 'scalar', expr, place };
+    }
     if (m.naming.isForcedFree(generic.path)) return { kind: 'scalar', expr: freeOf(m, generic), place };
   }
   const value = fallbackOf(m, generic);
@@ -158,10 +171,18 @@ function throughGetters(path: string): boolean {
 
 /**
  * The value that a constructor run on generic arguments leaves in a field: what `reads` or the field's name says it is;
- * else the value, a constructor's parameter standing for what its own name means.
+ * else the value, a constructor's parameter standing for what its own name means. Where fields keep what they are given,
+ * a value that is built of declared symbols comes first.
  */
-export function fieldValue(m: Machine, key: string, value: Value, place: Place): Value {
-  const path = m.naming.member('this', key);
+export function fieldValue(m: Machine, making: Construction, key: string, value: Value, place: Place): Value {
+  const path = memberPath(making.path, key);
+  if (making.places) {
+    making.places.set(key, place);
+    const own = asWritten(m, value);
+    if (own) return own;
+  }
+  const doubted = m.doubted(path);
+  if (doubted) return { kind: 'scalar', expr: doubted, place };
   const read = m.naming.read([path], place);
   if (read) return read.kind === 'scalar' ? { kind: 'scalar', expr: read.expr, place } : value;
   if (value.kind === 'scalar' && m.naming.containsDeclared(value.expr)) return value;
@@ -175,6 +196,15 @@ export function fieldValue(m: Machine, key: string, value: Value, place: Place):
   if (expr) return { kind: 'scalar', expr, place };
   const own = data?.kind === 'generic' ? meaningOf(m, data.generic) : undefined;
   return own && !isUnread(own) ? own : value;
+}
+
+/** A value that is built of declared symbols, or a parameter that is one by its own name. */
+function asWritten(m: Machine, value: Value): Value | undefined {
+  if (value.kind === 'scalar') return m.naming.containsDeclared(value.expr) ? value : undefined;
+  const data = value.kind === 'object' ? m.store.data(value.id) : undefined;
+  if (data?.kind !== 'generic' || data.members.size > 0) return undefined;
+  const own = meaningOf(m, data.generic);
+  return own && !isUnread(own) ? own : undefined;
 }
 
 function freeOf(m: Machine, generic: Generic) {
@@ -206,8 +236,13 @@ export function structure(m: Machine, id: number): void {
   const items = read?.kind === 'list' ? read.items : family;
   if (items) {
     generic.structured = true;
+    if (generic.assigned) m.believe(generic.path, { meaning: { kind: 'list', items }, how: read ? 'reads' : 'name', assigned: generic.assigned });
     m.atRoot(() => {
-      const list = items.map((item) => valueOf(m, item, generic.place));
+      const base = m.request.program.indexBase;
+      const list = items.map((item, k): Value => {
+        const doubted = m.doubted(`${generic.path}[${k + base}]`);
+        return doubted ? { kind: 'scalar', expr: doubted, place: generic.place } : valueOf(m, item, generic.place);
+      });
       const vectors = m.request.program.listConcat === true;
       m.store.set(id, { kind: 'list', items: list, array: vectors, ...(vectors ? { outside: true } : {}) });
     });
@@ -233,12 +268,14 @@ function generalise(m: Machine, id: number, generic: Generic, depth: number) {
       // What is state begins with this value, and has another later.
       const path = memberPath(generic.path, key);
       const isState = m.naming.hasRead(path) || m.naming.isState(key) || m.isAssignedMember(key);
-      return isState ? childOf(m, -id, generic, key, generic.place) : v;
+      // Set once and bound by `reads`, it is both what is said and what is written.
+      const assigned = m.isAssignedMember(key) ? undefined : (): Assigned => ({ value: v, place: v.place ?? generic.place, hasSymbol: () => false });
+      return isState ? childOf(m, -id, generic, key, generic.place, assigned ? { assigned } : {}) : v;
     }
     const isCode = v.kind === 'function' || v.kind === 'class' || v.kind === 'library' || v.kind === 'method' || v.kind === 'module';
     if (isCode || depth > 8) return v;
     const constant = generic.constant && data.kind === 'record' && !m.isAssignedMember(key);
-    return childOf(m, -id, generic, key, generic.place, () => v, constant);
+    return childOf(m, -id, generic, key, generic.place, { fallback: () => v, constant: constant === true });
   };
   if (data.kind === 'list') {
     return { ...data, items: data.items.map((v, k) => one(v, String(k + base))) };

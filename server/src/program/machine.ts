@@ -1,22 +1,36 @@
 import type { Graph } from '../expression/graph';
 import type { Expr } from '../expression/node';
 import type { Place, Span } from '../text/span';
-import type { ArgumentValue } from './calls';
+import type { ArgumentValue } from './parameters';
 import type { Outcome } from './flow';
 import type { ClassNode, Expression, FunctionNode, Statement } from './form';
 import type { ClassInfo, Module, Scope } from './scope';
 import type { Library } from './library';
-import type { Ambiguity, BindingMade, ReadRequest, TraceEntry } from './reading';
+import type { Ambiguity, BindingMade, Meaning, ReadRequest, TraceEntry } from './reading';
 import { Naming } from './naming';
-import { memberIsAssigned } from './scan';
+import { factsOf, memberIsAssigned, type MemberWrite } from './facts';
 import { Store } from './store';
-import { isData, unread, type Data, type FunctionValue, type ObjectValue, type Unread, type Value } from './values';
+import { isData, unread, type Assigned, type Data, type FunctionValue, type ObjectValue, type Unread, type Value } from './values';
 
 /** Expressions and statements nested deeper than this are not read, so that the reading never exhausts the stack. */
 const DEEPEST = 900;
 
 /** Location of the condition under which an error was thrown: such points do not vote. */
 export const DEAD = 0;
+
+export interface Construction {
+  readonly id: number;
+  /** What the instance is called in the code that is read. */
+  readonly path: string;
+  /** Set where fields keep what the constructor gives them, with the places, whatever they mean. */
+  readonly places?: Map<string, Place>;
+}
+
+export interface Belief {
+  readonly meaning: Meaning;
+  readonly how: 'reads' | 'name';
+  readonly assigned: () => Assigned | undefined;
+}
 
 /** The state of one reading. */
 export class Machine {
@@ -68,9 +82,13 @@ export class Machine {
   callSite: Place | undefined;
   readonly classes = new Map<ClassNode, ClassInfo>();
   /** The instance that a constructor is making from generic arguments: what its fields mean by `reads` or name, they are. */
-  constructing: number | undefined;
-  /** Instances made from generic arguments, by class. */
-  readonly instances = new Map<ClassNode, ObjectValue>();
+  constructing: Construction | undefined;
+  /** Meanings that were taken as said for places of which the code itself says what they are, by path. */
+  readonly believed = new Map<string, Belief>();
+  /** How many instances were made from generic arguments. */
+  constructions = 1;
+  /** Those instances by class and by what they are called. */
+  readonly instances = new Map<ClassNode, Map<string, ObjectValue>>();
   readonly frameNames = new Set<number>();
   private readonly firstNames = new Map<Library, Set<string>>();
   private readonly functionMembers = new Map<FunctionNode, number>();
@@ -222,6 +240,19 @@ export class Machine {
     return false;
   }
 
+  /**
+   * True where a field of instances of a class has the value it was made with: nothing writes it but constructors, or one
+   * single place of the class, which then is called from there.
+   */
+  isSetOnce(family: ReadonlySet<ClassNode>, name: string): boolean {
+    const writes: MemberWrite[] = [];
+    for (const module of this.modules.values()) writes.push(...(factsOf(module.program).memberWrites.get(name) ?? []));
+    const others = writes.filter((w) => !w.inConstructor && (!w.owner || family.has(w.owner) || w.owner.base !== undefined));
+    if (others.length === 0) return true;
+    const all = writes.filter((w) => !w.owner || family.has(w.owner));
+    return others.length === 1 && all.length === 1 && others[0]!.owner !== undefined && family.has(others[0]!.owner);
+  }
+
   /** Works out what a package means by a call, of whose parts nothing is recorded. */
   meaning<T>(module: Module, place: Place, body: () => T): T {
     if (!module.isMeaning) return body();
@@ -240,6 +271,17 @@ export class Machine {
     const result = body();
     this.facts.pop();
     return result;
+  }
+
+  /** Notes that a place is taken for what it is said to mean, although the code says itself what it is. */
+  believe(path: string, belief: Belief): void {
+    if (!this.believed.has(path)) this.believed.set(path, belief);
+  }
+
+  /** A place whose meaning is not to be believed, as a symbol that nothing is known of. */
+  doubted(path: string): Expr | undefined {
+    const why = this.request.contradicted?.get(path);
+    return why && this.freeSymbol(path, why.reason, why.place);
   }
 
   condition(expr: Expr, place: Place): void {

@@ -8,7 +8,7 @@ import type { Machine } from './machine';
 import { withEach } from './merging';
 import { countOf, dataOf, describe, scalarOf } from './numbers';
 import type { ClassInfo, Module } from './scope';
-import { NOTHING, unread, type FunctionValue, type GenericData, type ListData, type ObjectValue, type RecordData, type Value } from './values';
+import { NOTHING, unread, type FunctionValue, type GenericData, type Assigned, type ListData, type ObjectValue, type RecordData, type Value } from './values';
 
 /** Reading and writing members and elements. */
 
@@ -121,14 +121,24 @@ function genericMember(m: Machine, module: Module, object: ObjectValue, data: Ge
   const bound = [generic.path, ...generic.aliases].some((path) => m.naming.hasRead(m.naming.member(path, key)));
   const method = bound || generic.info ? undefined : module.library.methods.get(`generic.${key}`);
   if (method) return { kind: 'method', intrinsic: method, self: object };
-  if (generic.info && !bound) {
-    const found = fromClass(m, generic.info, object, key, place);
-    if (found && found.kind !== 'unread') return found;
-    if (found && findMember(generic.info, key) !== 'unknown') return found;
-    const field = instanceField(m, generic.info, object, key);
-    return field.function ?? childOf(m, data.copyOf ?? object.id, generic, key, place, field.fallback, field.constant);
-  }
-  return childOf(m, data.copyOf ?? object.id, generic, key, place, undefined, generic.constant && !m.isAssignedMember(key));
+  const { info } = generic;
+  const id = data.copyOf ?? object.id;
+  if (!info) return childOf(m, id, generic, key, place, { constant: generic.constant === true && !m.isAssignedMember(key) });
+  if (bound) return childOf(m, id, generic, key, place, { assigned: () => assignedMember(m, info, object, generic.path, key, place) });
+  const found = fromClass(m, info, object, key, place);
+  if (found && found.kind !== 'unread') return found;
+  if (found && findMember(info, key) !== 'unknown') return found;
+  const field = instanceField(m, info, object, generic.path, key);
+  return field.function ?? childOf(m, id, generic, key, place, field);
+}
+
+/** What a class gives a member that is bound by `reads`: its getter's value, or what its constructor puts there. */
+function assignedMember(m: Machine, info: ClassInfo, object: ObjectValue, path: string, key: string, place: Place): Assigned | undefined {
+  const found = findMember(info, key);
+  const getter = found && found !== 'unknown' && found.member.kind === 'getter' ? found.member.node : undefined;
+  if (!getter) return instanceField(m, info, object, path, key).assigned?.();
+  const value = fromClass(m, info, object, key, place);
+  return value && { value, place: m.place(info.scope, getter.nameSpan), hasSymbol: () => true };
 }
 
 /** A key that is known: text, or a whole number as the source counts. */
@@ -214,7 +224,7 @@ export function writeMember(m: Machine, module: Module, object: Value, key: stri
   const info = before.kind === 'record' ? before.info : before.kind === 'generic' ? before.generic.info : undefined;
   if (info && callSetter(m, info, object, key, value, place)) return;
   const data = m.store.writable(object.id);
-  if (data.kind === 'record' && m.constructing === object.id) data.members.set(key, fieldValue(m, key, value, place));
+  if (data.kind === 'record' && m.constructing?.id === object.id) data.members.set(key, fieldValue(m, m.constructing, key, value, place));
   else if (data.kind === 'record' || data.kind === 'generic') data.members.set(key, value);
   else if (data.kind === 'list') {
     if (/^\d+$/.test(key)) setItem(m, object, data, Number(key) - module.program.indexBase, value, place);

@@ -6,7 +6,8 @@ import type { Library, Meaning } from './library';
 import type { Machine } from './machine';
 import { libraryMember, readMember } from './members';
 import { bindPattern } from './patterns';
-import { assignments, firstMade, patternNames, writtenThings } from './scan';
+import { factsOf, firstMade } from './facts';
+import { patternNames } from './scan';
 import { Scope, type Frame, type Module } from './scope';
 import { enumValue } from './statements';
 import { typeFacts } from './type-notes';
@@ -118,7 +119,7 @@ function topLevelValue(m: Machine, module: Module, scope: Scope, name: string, v
   const place = value ? m.place(scope, value.span) : (at ?? m.place(scope, { start: 0, end: 0 }));
   const made = value && value.kind !== 'nothing' ? value : firstMade(module.program, name);
   const initial = (): Value | undefined => (made ? m.evaluate(scope, made) : undefined);
-  const changes = mutable && assignments(module.program).assigned.has(name);
+  const changes = mutable && factsOf(module.program).assigned.has(name);
   if (!changes && value) {
     const v = initial();
     if (v && v.kind !== 'object') return arrive(m, name, v, arrival(scope, name, place));
@@ -135,7 +136,7 @@ function topLevelValue(m: Machine, module: Module, scope: Scope, name: string, v
 
 /** True where members or elements of a top-level thing are written somewhere. */
 function isState(module: Module, name: string): boolean {
-  return writtenThings(module.program).has(name);
+  return factsOf(module.program).writtenThings.has(name);
 }
 
 function addImport(m: Machine, module: Module, s: Statement & { kind: 'import' }): void {

@@ -6,7 +6,7 @@ import { lastName, memberPath, pathOf, spellings } from './paths';
 import type { Meaning, ReadsBinding } from './reading';
 
 /** What a name in the code means: one symbol, or several, between which nobody may guess. */
-export type NameMeaning = { readonly expr: Expr } | { readonly ambiguous: readonly string[] };
+export type NameMeaning = { readonly expr: Expr; readonly text: string; readonly isFormula?: boolean } | { readonly ambiguous: readonly string[] };
 
 /**
  * The meanings that `reads` and the agreement of names give to places in the code, with a record of the bindings made. Two
@@ -57,6 +57,14 @@ export class Naming {
     return this.reads.get(path)?.meaning;
   }
 
+  /** The one number that `reads` or its own name says a name is, without a record of it. */
+  symbolOf(name: string): Expr | undefined {
+    const read = this.meaningOf(name);
+    if (read) return read.kind === 'scalar' ? read.expr : undefined;
+    const meaning = this.byName(name);
+    return meaning && 'expr' in meaning ? meaning.expr : undefined;
+  }
+
   hasRead(path: string): boolean {
     return this.reads.has(path);
   }
@@ -74,12 +82,18 @@ export class Naming {
     let meaning: NameMeaning | undefined;
     for (const s of spellings(name.normalize('NFC'))) {
       const found = this.m.request.meanings.byName(s);
-      if (found.length === 1) meaning = { expr: found[0]!.expr };
+      if (found.length === 1) meaning = found[0]!;
       else if (found.length > 1) meaning = { ambiguous: found.map((f) => f.text) };
       if (meaning) break;
     }
     this.names.set(name, meaning);
     return meaning;
+  }
+
+  /** True for a name that `where` gives a formula: what the code computes under that name is its own answer. */
+  isFormula(name: string): boolean {
+    const meaning = this.byName(name);
+    return meaning !== undefined && 'expr' in meaning && meaning.isFormula === true;
   }
 
   /** True for a name that agrees with a coordinate or a velocity. */
@@ -123,7 +137,7 @@ export class Naming {
     const key = `${this.run} ${origin}`;
     if (this.forcedFree.has(key)) return undefined;
     if (!this.m.quiet) {
-      const id = `${this.run} ${meaning.expr.id}`;
+      const id = `${this.run} ${meaning.text}`;
       let entry = this.origins.get(id);
       if (!entry) this.origins.set(id, (entry = { expr: meaning.expr, paths: new Map() }));
       if (!entry.paths.has(origin)) entry.paths.set(origin, place);

@@ -1,5 +1,6 @@
 import type { Rational } from '../expression/rational';
 import type { Place } from '../text/span';
+import { assignedValues } from './assigned';
 import { assume } from './assumptions';
 import { callFunctionValue, invoke, runBody } from './calls';
 import { classInfo } from './classes';
@@ -54,6 +55,7 @@ function finished(m: Machine, outputs: readonly OutputValue[], ambiguities: read
     ambiguities: [...ambiguities, ...m.ambiguities.values()],
     free: m.free,
     conditions: [...m.conditions].map(([expr, place]) => ({ expr, place })),
+    assigned: assignedValues(m),
     assumed: m.assumed,
     trace: m.trace,
     touched: m.modules.get(m.request.file)?.touched ?? new Set(),

@@ -28,9 +28,9 @@ export interface Meanings {
   readonly reads: readonly ReadsBinding[];
   /**
    * The symbols that a bare name in the code (`m`, `thdot`, `m_`, `get_m`'s `m`) could mean by agreement of names: none,
-   * one, or several, which is `ambiguous`.
+   * one, or several, which is `ambiguous`. A formula's name is told as such: only things from outside mean it.
    */
-  byName(name: string): readonly { readonly expr: Expr; readonly text: string }[];
+  byName(name: string): readonly { readonly expr: Expr; readonly text: string; readonly isFormula?: boolean }[];
   /** The family that an array of this name could mean (`m` for m[1..3]), its items in order. */
   familyByName(name: string): readonly Meaning[] | undefined;
   /** True for the symbols of the declaration: an expression that contains one is "built of declared symbols". */
@@ -46,14 +46,14 @@ export interface ReadRequest {
     | { readonly kind: 'function'; readonly node: FunctionNode; readonly owner?: ClassNode }
     /** Nothing is run: outputs call methods (`H(q)`, `rates.return[1]`) on a generic instance. */
     | { readonly kind: 'class'; readonly node: ClassNode }
-    /** No function is run: the outputs call methods of the class. */
-    | { readonly kind: 'class'; readonly node: ClassNode }
     | { readonly kind: 'file' };
   readonly meanings: Meanings;
   /** Conditions of `assume`, in program form, each to be taken as true. */
   readonly assumptions: readonly Expression[];
   /** `assume within limits`: every clip passes its argument through. */
   readonly withinLimits: boolean;
+  /** Places whose meaning is not to be believed, by path, and why. */
+  readonly contradicted?: ReadonlyMap<string, { readonly reason: string; readonly place: Place }>;
   /** What the claims ask for at the function's exit. */
   readonly outputs: readonly OutputRequest[];
   /** Another file of the project, by the import's text; undefined where there is none. */
@@ -97,6 +97,23 @@ export interface Ambiguity {
   readonly place: Place;
 }
 
+/**
+ * A place whose meaning `reads` or its name gives, though the code itself says what it is, in symbols of the declaration.
+ * The reading goes by the meaning; the two have to be the same.
+ */
+export interface AssignedValue {
+  readonly path: string;
+  /** The code's words: `this.totalMass`. */
+  readonly code: string;
+  readonly how: 'reads' | 'name';
+  readonly meaning: Expr;
+  readonly value: Expr;
+  /** Where the code gives it. */
+  readonly place: Place;
+  /** True where the meaning is one symbol, and that symbol is something else where the value is given. */
+  readonly isTaken: boolean;
+}
+
 export interface TraceEntry {
   readonly place: Place;
   readonly expr: Expr;
@@ -112,6 +129,8 @@ export interface Reading {
   readonly free: ReadonlyMap<Expr, { readonly code: string; readonly reason: string; readonly place: Place }>;
   /** Every condition that was decided by branching, with its place. */
   readonly conditions: readonly { readonly expr: Expr; readonly place: Place }[];
+  /** Places whose meaning was taken as said, beside what the code gives them. */
+  readonly assigned: readonly AssignedValue[];
   /** Conditions that `assume` says are true; samples must satisfy them. */
   readonly assumed: readonly Expr[];
   /** Every scalar sub-expression read, in order of evaluation. */

@@ -1,4 +1,4 @@
-import type { Expression, FunctionNode, Pattern, Program, Statement } from './form';
+import type { Expression, FunctionNode, Pattern, Statement } from './form';
 
 /** Looks over syntax without running it. Iterative, so that deep nesting does no harm. */
 
@@ -62,7 +62,8 @@ interface Assignments {
 
 const assignmentsOf = new WeakMap<object, Assignments>();
 
-export function assignments(node: FunctionNode | Program): Assignments {
+/** What is assigned in a function, those inside it included. */
+export function assignments(node: FunctionNode): Assignments {
   const known = assignmentsOf.get(node);
   if (known) return known;
   const computed = new Set<string>();
@@ -81,7 +82,7 @@ export function assignments(node: FunctionNode | Program): Assignments {
 }
 
 /** A literal, arithmetic of literals, or something fetched from outside: nothing computed from the function's own names. */
-function isConstantLike(e: Expression): boolean {
+export function isConstantLike(e: Expression): boolean {
   switch (e.kind) {
     case 'number':
     case 'string':
@@ -101,58 +102,18 @@ function isConstantLike(e: Expression): boolean {
   }
 }
 
-/**
- * The thing a variable without a first value is given where it is set up: `pos = new Vec(0, 0)`, `pos = createVector()`. It
- * says of what kind the variable is; undefined where it is given anything else as well.
- */
-export function firstMade(program: Program, name: string): Expression | undefined {
-  if (!assignments(program).assigned.has(name)) return undefined;
-  let made: Expression | undefined;
-  for (const n of nodesOf(program.body)) {
+/** Parameters that a constructor stores in fields just as they are: `this.mass = mass`, `self.l = l or 1.0`. */
+export function storedParameters(constructor: FunctionNode): Map<string, string[]> {
+  const fields = new Map<string, string[]>();
+  for (const n of nodesOf(constructor.body, false)) {
     const e = n as Expression;
-    if (e.kind !== 'assign' || !('target' in e) || e.target.kind !== 'name' || e.target.name !== name || e.op) continue;
-    const isMaking = e.value.kind === 'call' && (e.value.isNew === true || (e.value.callee.kind === 'name' && /^create[A-Z]/.test(e.value.callee.name)));
-    if (!isMaking) return undefined;
-    made ??= e.value;
+    if (e.kind !== 'assign' || e.op || !('target' in e) || e.target.kind !== 'place') continue;
+    const { target } = e.target;
+    const value = e.value.kind === 'logical' && e.value.op !== 'and' ? e.value.left : e.value;
+    if (target.kind !== 'member' || target.object.kind !== 'self' || value.kind !== 'name') continue;
+    fields.set(value.name, [...(fields.get(value.name) ?? []), target.name]);
   }
-  return made;
-}
-
-const membersOf = new WeakMap<Program, { assigned: Set<string>; used: Set<string> }>();
-
-function memberScan(program: Program): { assigned: Set<string>; used: Set<string> } {
-  let found = membersOf.get(program);
-  if (found) return found;
-  found = { assigned: new Set(), used: new Set() };
-  const constructors = new Set<object>();
-  for (const n of nodesOf(program.body)) {
-    if ((n as { kind?: string }).kind === 'constructor' && 'node' in n) constructors.add(n);
-  }
-  const scan = (start: unknown, inConstructor: boolean): void => {
-    for (const n of nodesOf(start)) {
-      const e = n as Expression;
-      if (e.kind === 'assign' && 'target' in e && !inConstructor) {
-        for (const t of placesOf(e.target)) if (t.kind === 'member') found!.assigned.add(t.name);
-      } else if ((e.kind === 'member' || e.kind === 'index') && 'object' in e && e.object.kind === 'name') {
-        found!.used.add(e.object.name);
-      }
-    }
-  };
-  // What a constructor sets is an initial value, not a change.
-  scan(program.body, false);
-  if (constructors.size > 0) {
-    const elsewhere = new Set<string>();
-    const inside = new Set<object>();
-    for (const c of constructors) for (const n of nodesOf(c)) inside.add(n);
-    for (const n of nodesOf(program.body)) {
-      const e = n as Expression;
-      if (e.kind !== 'assign' || !('target' in e) || inside.has(n)) continue;
-      for (const t of placesOf(e.target)) if (t.kind === 'member') elsewhere.add(t.name);
-    }
-    found.assigned = elsewhere;
-  }
-  membersOf.set(program, found);
-  return found;
+  return fields;
 }
 
 /** The member and index expressions that a pattern writes to. */
@@ -161,52 +122,6 @@ export function placesOf(pattern: Pattern): Expression[] {
   if (pattern.kind === 'list') return pattern.items.flatMap((i) => (i ? placesOf(i.pattern) : []));
   if (pattern.kind === 'record') return pattern.fields.flatMap((f) => placesOf(f.item.pattern));
   return [];
-}
-
-/** True where some code outside constructors assigns to a member of this name. */
-export function memberIsAssigned(program: Program, name: string): boolean {
-  return memberScan(program).assigned.has(name);
-}
-
-/** True where a bare name is used as a thing with members or elements. */
-export function isUsedAsThing(program: Program, name: string): boolean {
-  return memberScan(program).used.has(name);
-}
-
-const writtenOf = new WeakMap<Program, Set<string>>();
-
-/** Names of things whose members or elements are written somewhere. */
-export function writtenThings(program: Program): ReadonlySet<string> {
-  let known = writtenOf.get(program);
-  if (known) return known;
-  known = new Set();
-  for (const n of nodesOf(program.body)) {
-    const e = n as Expression;
-    if (e.kind !== 'assign' || !('target' in e)) continue;
-    for (let t of placesOf(e.target)) {
-      while (t.kind === 'member' || t.kind === 'index') t = t.object;
-      if (t.kind === 'name') known.add(t.name);
-    }
-  }
-  writtenOf.set(program, known);
-  return known;
-}
-
-const factsOfPrograms = new WeakMap<Program, string>();
-
-/**
- * What a reading of any function may have asked of the whole file: which names and members are assigned somewhere. Two
- * programs with the same facts answer alike.
- */
-export function factsOf(program: Program): string {
-  let facts = factsOfPrograms.get(program);
-  if (facts === undefined) {
-    const { assigned, computed } = assignments(program);
-    const members = memberScan(program);
-    facts = [assigned, computed, members.assigned, members.used, writtenThings(program)].map((names) => [...names].sort().join(' ')).join('|');
-    factsOfPrograms.set(program, facts);
-  }
-  return facts;
 }
 
 /** Names that a statement of a file's top level makes known there. */

@@ -138,12 +138,22 @@ export interface Generic {
   readonly typed?: Typed;
   /** Its value where neither `reads` nor its name gives one: a field's initialiser, say. */
   readonly fallback?: () => Value | undefined;
+  /** What the code itself says it is: the constructor of its class, the body of a getter. */
+  readonly assigned?: () => Assigned | undefined;
   /** True where nothing changes it, so that a literal initial value is its value. */
   readonly constant?: boolean;
   /** Where it comes from, in words that begin a sentence, if that is why nothing says what it means. */
   readonly origin?: string;
   /** True once it was looked at whether it is a list. */
   structured?: boolean;
+}
+
+/** What the code itself gives to a place whose meaning `reads` or its name says. */
+export interface Assigned {
+  readonly value: Value;
+  readonly place: Place;
+  /** True for a symbol that something else means there, such as a parameter of the constructor. */
+  hasSymbol(symbol: Expr): boolean;
 }
 
 export type Content = Value | Data;

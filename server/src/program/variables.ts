@@ -1,8 +1,8 @@
 import type { Place } from '../text/span';
-import type { Expr } from '../expression/node';
 import { addAlias, genericAt, valueOf } from './generics';
 import type { Machine } from './machine';
 import { lastName, memberPath } from './paths';
+import { factsOf } from './facts';
 import { assignments } from './scan';
 import type { Scope, Variable } from './scope';
 import { unread, type Value } from './values';
@@ -45,8 +45,9 @@ export interface Arrival {
 }
 
 export function arrivalOf(scope: Scope, name: string, place: Place): Arrival {
-  const owner = scope.frame.node ?? scope.frame.module.program;
-  return { place, isAccumulated: assignments(owner).computed.has(name), isLocal: scope.frame.node !== undefined };
+  const { node, module } = scope.frame;
+  const { computed } = node ? assignments(node) : factsOf(module.program);
+  return { place, isAccumulated: computed.has(name), isLocal: node !== undefined };
 }
 
 /**
@@ -69,20 +70,12 @@ function meansAnother(m: Machine, value: Value & { kind: 'object' }, name: strin
   const data = m.store.data(value.id);
   if (data.kind !== 'generic' || data.members.size > 0) return false;
   const { path, aliases } = data.generic;
-  const meaning = symbolOf(m, name);
-  if (!meaning || symbolOf(m, path) || symbolOf(m, lastName(path) ?? '')) return false;
+  const meaning = m.naming.symbolOf(name);
+  if (!meaning || m.naming.symbolOf(path) || m.naming.symbolOf(lastName(path) ?? '')) return false;
   return aliases.some((a) => {
-    const other = symbolOf(m, a);
+    const other = m.naming.symbolOf(a);
     return other !== undefined && other !== meaning;
   });
-}
-
-/** The one number that `reads` or its own name says a name is. */
-function symbolOf(m: Machine, name: string): Expr | undefined {
-  const read = m.naming.meaningOf(name);
-  if (read) return read.kind === 'scalar' ? read.expr : undefined;
-  const meaning = m.naming.byName(name);
-  return meaning && 'expr' in meaning ? meaning.expr : undefined;
 }
 
 /**
@@ -113,6 +106,7 @@ export function settleName(m: Machine, name: string, path: string, value: Value,
   if (read) return valueOf(m, read, place);
   // What the code computes as an acceleration, or as a claimed output, is its answer: it can't mean the right one by its name.
   if (m.naming.isAcceleration(name) || (m.claimedNames.has(name) && value.kind === 'unread' && m.naming.isState(name))) return value;
+  if (m.naming.isFormula(name)) return value;
   const literal = value.kind === 'scalar' && value.expr.op === 'number';
   const origin = literal ? `${name} = ${literalText(value)}` : path;
   const expr = m.naming.agree(name, path, origin, place);

@@ -1,6 +1,7 @@
 import type { SubjectResult } from '../comparison/subject';
 import type { Derived } from '../mechanics/lagrange';
-import { declaredNames, factsOf } from '../program/scan';
+import { digestOf } from '../program/facts';
+import { declaredNames } from '../program/scan';
 import type { Statement } from '../program/form';
 import type { Place, Span } from '../text/span';
 import type { Document, PlacedBlock } from '../workspace/documents';
@@ -54,7 +55,7 @@ export class ResultCache<Extra> {
     const entry = key === undefined ? undefined : this.entries.get(key);
     if (!entry || entry.derived !== derived || !key) return undefined;
     const block = blockPiece(document, placed);
-    if (block.text !== entry.block.text || factsOf(document.program) !== entry.facts) return undefined;
+    if (block.text !== entry.block.text || digestOf(document.program) !== entry.facts) return undefined;
     if (entry.imported.some((f) => this.read(f.file) !== f.text)) return undefined;
     const now = piecesOf(document, placed, touchedOf(entry.result));
     if (!now || now.length !== entry.pieces.length) return undefined;
@@ -93,7 +94,7 @@ export class ResultCache<Extra> {
       derived,
       block: blockPiece(document, placed),
       pieces,
-      facts: factsOf(document.program),
+      facts: digestOf(document.program),
       imported,
       // What led to the result is not asked for again, and is large.
       result: { ...result, reading: { ...result.reading, trace: [] } },

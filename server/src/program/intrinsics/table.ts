@@ -1,5 +1,5 @@
 import type { Place } from '../../text/span';
-import type { ArgumentValue } from '../calls';
+import type { ArgumentValue } from '../parameters';
 import type { Machine } from '../machine';
 import { withEach } from '../merging';
 import { scalarOf } from '../numbers';

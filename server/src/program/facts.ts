@@ -1,0 +1,172 @@
+import type { ClassNode, Expression, FunctionNode, Pattern, Program } from './form';
+import { isConstantLike, patternNames, placesOf } from './scan';
+
+/** What a whole file says here and there of its names and members, gathered in one walk over it. */
+export interface Facts {
+  /** Names that are assigned to after their declaration. */
+  readonly assigned: ReadonlySet<string>;
+  /** Those of them that are given more than a constant, or augmented: their first value counts. */
+  readonly computed: ReadonlySet<string>;
+  /** Where members of a name are written. */
+  readonly memberWrites: ReadonlyMap<string, readonly MemberWrite[]>;
+  /** Bare names that are used as things with members or elements. */
+  readonly usedAsThings: ReadonlySet<string>;
+  /** Names of things whose members or elements are written. */
+  readonly writtenThings: ReadonlySet<string>;
+  readonly functions: readonly FunctionNode[];
+  /** The record literal a function is a method of. */
+  readonly recordOf: ReadonlyMap<FunctionNode, Expression>;
+  /** What each name is assigned, without an operator; undefined where it is augmented too. */
+  readonly values: ReadonlyMap<string, readonly Expression[] | undefined>;
+}
+
+export interface MemberWrite {
+  /** The class through whose receiver it is written, by `this.m = ...`; undefined for any other object. */
+  readonly owner: ClassNode | undefined;
+  /** What a constructor sets is an initial value, not a change. */
+  readonly inConstructor: boolean;
+}
+
+type Context = MemberWrite;
+
+const OUTSIDE: Context = { owner: undefined, inConstructor: false };
+
+const factsByProgram = new WeakMap<Program, Facts>();
+
+export function factsOf(program: Program): Facts {
+  let facts = factsByProgram.get(program);
+  if (!facts) factsByProgram.set(program, (facts = gather(program)));
+  return facts;
+}
+
+const NO_CHILDREN: ReadonlySet<string> = new Set(['span', 'nameSpan', 'opSpan', 'bodySpan', 'note']);
+
+/** Iterative, so that deep nesting does no harm; parents come first, in the order of the source. */
+function gather(program: Program): Facts {
+  const assigned = new Set<string>();
+  const computed = new Set<string>();
+  const memberWrites = new Map<string, MemberWrite[]>();
+  const usedAsThings = new Set<string>();
+  const writtenThings = new Set<string>();
+  const functions: FunctionNode[] = [];
+  const recordOf = new Map<FunctionNode, Expression>();
+  const values = new Map<string, Expression[] | undefined>();
+
+  const onAssign = (e: Expression & { kind: 'assign' }, context: Context): void => {
+    for (const name of patternNames(e.target)) {
+      assigned.add(name);
+      if (e.op !== undefined || !isConstantLike(e.value)) computed.add(name);
+      if (e.target.kind !== 'name') continue;
+      if (e.op !== undefined) values.set(name, undefined);
+      else if (!values.has(name)) values.set(name, [e.value]);
+      else values.get(name)?.push(e.value);
+    }
+    for (const place of placesOf(e.target)) {
+      if (place.kind === 'member') {
+        const own = place.object.kind === 'self';
+        const write = own ? context : { owner: undefined, inConstructor: context.inConstructor };
+        const known = memberWrites.get(place.name);
+        if (known) known.push(write);
+        else memberWrites.set(place.name, [write]);
+      }
+      let root = place;
+      while (root.kind === 'member' || root.kind === 'index') root = root.object;
+      if (root.kind === 'name') writtenThings.add(root.name);
+    }
+  };
+
+  const nodes: unknown[] = [program.body];
+  const contexts: Context[] = [OUTSIDE];
+  while (nodes.length > 0) {
+    const node = nodes.pop();
+    let context = contexts.pop()!;
+    if (Array.isArray(node)) {
+      for (let i = node.length - 1; i >= 0; i--) {
+        if (node[i] === null || typeof node[i] !== 'object') continue;
+        nodes.push(node[i]);
+        contexts.push(context);
+      }
+      continue;
+    }
+    const n = node as Expression & { readonly target?: Pattern };
+    if (n.kind === 'number' || n.kind === 'string') continue;
+    if (n.kind === 'assign' && 'target' in n) onAssign(n, context);
+    else if ((n.kind === 'member' || n.kind === 'index') && 'object' in n) {
+      if (n.object.kind === 'name') usedAsThings.add(n.object.name);
+    } else if (n.kind === 'record' && 'fields' in n) {
+      for (const f of n.fields) if ('kind' in f && f.kind === 'field' && f.value.kind === 'function') recordOf.set(f.value.node, n);
+    } else if (isFunction(n)) {
+      functions.push(n);
+    } else if (n.kind === 'function' && 'node' in n) {
+      // A function inside a method has a receiver of its own.
+      if (!n.node.inheritsSelf && context.owner) context = { owner: undefined, inConstructor: context.inConstructor };
+    } else if (isClass(n)) {
+      for (let i = n.members.length - 1; i >= 0; i--) {
+        const member = n.members[i]!;
+        nodes.push(member);
+        contexts.push({ owner: n, inConstructor: member.kind === 'constructor' });
+      }
+      if (n.base) {
+        nodes.push(n.base);
+        contexts.push(context);
+      }
+      continue;
+    }
+    const keys = Object.keys(n);
+    for (let i = keys.length - 1; i >= 0; i--) {
+      const child = (n as unknown as Record<string, unknown>)[keys[i]!];
+      if (child === null || typeof child !== 'object' || NO_CHILDREN.has(keys[i]!)) continue;
+      nodes.push(child);
+      contexts.push(context);
+    }
+  }
+  return { assigned, computed, memberWrites, usedAsThings, writtenThings, functions, recordOf, values };
+}
+
+function isFunction(n: object): n is FunctionNode {
+  return 'bodySpan' in n && 'parameters' in n;
+}
+
+function isClass(n: object): n is ClassNode {
+  return 'members' in n && 'nameSpan' in n;
+}
+
+/** True where some code outside constructors assigns to a member of this name. */
+export function memberIsAssigned(program: Program, name: string): boolean {
+  return factsOf(program).memberWrites.get(name)?.some((w) => !w.inConstructor) ?? false;
+}
+
+/** True where a bare name is used as a thing with members or elements. */
+export function isUsedAsThing(program: Program, name: string): boolean {
+  return factsOf(program).usedAsThings.has(name);
+}
+
+/**
+ * The thing a variable without a first value is given where it is set up: `pos = new Vec(0, 0)`, `pos = createVector()`. It
+ * says of what kind the variable is; undefined where it is given anything else as well.
+ */
+export function firstMade(program: Program, name: string): Expression | undefined {
+  const given = factsOf(program).values.get(name);
+  return given?.every(isMaking) ? given[0] : undefined;
+}
+
+function isMaking(e: Expression): boolean {
+  return e.kind === 'call' && (e.isNew === true || (e.callee.kind === 'name' && /^create[A-Z]/.test(e.callee.name)));
+}
+
+const digests = new WeakMap<Program, string>();
+
+/**
+ * What a reading of any function may have asked of the whole file, as text: which names and members are assigned somewhere,
+ * and how. Two programs with the same digest answer alike.
+ */
+export function digestOf(program: Program): string {
+  let digest = digests.get(program);
+  if (digest === undefined) {
+    const { assigned, computed, memberWrites, usedAsThings, writtenThings } = factsOf(program);
+    const writes = [...memberWrites].map(([name, list]) => `${name}:${list.map((w) => `${w.owner?.name ?? ''}${w.inConstructor ? '*' : ''}`).sort().join(',')}`);
+    digest = [assigned, computed, writes, usedAsThings, writtenThings].map((names) => [...names].sort().join(' ')).join('|');
+    digests.set(program, digest);
+  }
+  return digest;
+}
