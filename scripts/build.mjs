@@ -55,7 +55,11 @@ async function bundle(outdir, production) {
     }),
     build({
       ...common,
-      entryPoints: { server: 'server/src/lsp/main.ts', visviva: 'server/src/cli/main.ts' },
+      entryPoints: {
+        server: 'server/src/lsp/main.ts',
+        'check-worker': 'server/src/lsp/working/worker.ts',
+        visviva: 'server/src/cli/main.ts',
+      },
       outdir,
       outExtension: { '.js': '.mjs' },
       format: 'esm',

@@ -39,7 +39,7 @@ const dependentDelay = 100;
  * Wires the service to the language server protocol. Nothing is analysed here: each request becomes a call of the
  * service and its answer is translated. A request that fails is logged and answered with nothing.
  */
-export function serve(connection: Connection, createService: (files: Files) => Service): void {
+export function serve(connection: Connection, createService: (files: Files, folders: () => readonly string[]) => Service): void {
   let capabilities: ClientCapabilities = {};
   let settings: Settings = defaultSettings;
   let folders: string[] = [];
@@ -48,7 +48,7 @@ export function serve(connection: Connection, createService: (files: Files) => S
     () => folders,
     (file) => service.handles(file),
   );
-  const service: Service = createService(disk);
+  const service: Service = createService(disk, () => folders);
   const addresses = new Addresses();
   const files = new OpenFiles();
   const documents = new TextDocuments(TextDocument);

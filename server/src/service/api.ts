@@ -29,6 +29,8 @@ export interface Service {
    */
   rewrites(file: string, range: ReportRange, budget: Budget): Promise<readonly OutputRewrite[]>;
   hover(file: string, position: ReportPosition, budget: Budget): Promise<Hover | undefined>;
+  /** All that `hover` tells about a file, most particular first. */
+  hovers(file: string, budget: Budget): Promise<readonly HoverItem[]>;
   symbols(file: string): Promise<readonly DocumentSymbol[]>;
   /** Symbols of all files that declare something, whose name has the letters of the query in their order. */
   workspaceSymbols(query: string): Promise<readonly { readonly file: string; readonly symbol: DocumentSymbol; readonly system: string }[]>;
@@ -59,6 +61,15 @@ export interface Service {
    * @param system only this one of `file`
    */
   compare(file: string, against: { readonly file: string } | { readonly name: string }, system: string | undefined, budget: Budget): Promise<ComparisonResult>;
+}
+
+export interface HoverItem {
+  readonly markdown: string;
+  /** Where it is told, and the text that stands there. */
+  readonly range: ReportRange;
+  readonly text: string;
+  /** What the editor marks as meant. */
+  readonly shown: ReportRange;
 }
 
 export interface FileRange {

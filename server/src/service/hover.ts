@@ -7,7 +7,7 @@ import { conserved, equationsOfMotion } from '../mechanics/equations';
 import { stateText } from '../diagnosis/describe';
 import { contains, type Span } from '../text/span';
 import type { Document } from '../workspace/documents';
-import type { Hover } from './api';
+import type { Hover, HoverItem } from './api';
 import { subjectName, type BlockOutcome } from './check';
 import { equilibriumText } from './derive';
 
@@ -25,28 +25,50 @@ export async function hoverAt(
 ): Promise<Hover | undefined> {
   const near = document.blocks.some((b) => contains(b.block.span, offset) || contains(subjectSpan(b) ?? b.block.span, offset));
   if (!near) return undefined;
-  const outcomes = await check();
+  const told = tellable(document, await check()).find((t) => contains(t.span, offset));
+  return told && { markdown: told.markdown(), range: document.lines.range(told.shown) };
+}
+
+/** Everything that `hoverAt` may tell. */
+export function allHovers(document: Document, outcomes: readonly BlockOutcome[]): HoverItem[] {
+  const { lines, text: source } = document;
+  return tellable(document, outcomes).map((t) => ({
+    markdown: t.markdown(),
+    range: lines.range(t.span),
+    text: source.slice(t.span.start, t.span.end),
+    shown: lines.range(t.shown),
+  }));
+}
+
+interface Told {
+  readonly span: Span;
+  readonly shown: Span;
+  markdown(): string;
+}
+
+function tellable(document: Document, outcomes: readonly BlockOutcome[]): Told[] {
+  const out: Told[] = [];
   for (const o of outcomes) {
-    const binding = o.result?.reading?.bindings.find((b) => b.place.file === document.file && contains(b.place.span, offset));
-    if (binding) {
+    for (const binding of o.result?.reading?.bindings ?? []) {
+      if (binding.place.file !== document.file) continue;
+      const { span } = binding.place;
       const how = binding.how === 'reads' ? 'by `reads`' : 'by its name';
-      const meaning = text(binding.meaning);
-      return {
-        markdown: `\`${binding.code}\` is **${meaning}** of \`${o.placed.block.name}\`, ${how}.${symbolNote(o, binding.meaning.data)}`,
-        range: document.lines.range(binding.place.span),
-      };
+      out.push({
+        span,
+        shown: span,
+        markdown: () => `\`${binding.code}\` is **${text(binding.meaning)}** of \`${o.placed.block.name}\`, ${how}.${symbolNote(o, binding.meaning.data)}`,
+      });
     }
   }
   for (const o of outcomes) {
+    const { block } = o.placed;
     const name = nameSpan(o);
-    const onBlock = contains(o.placed.block.span, offset);
-    if (!onBlock && !(name && contains(name, offset))) continue;
-    return {
-      markdown: describeOutcome(o),
-      range: document.lines.range(onBlock ? o.placed.block.nameSpan : name!),
-    };
+    let made: string | undefined;
+    const markdown = () => (made ??= describeOutcome(o));
+    out.push({ span: block.span, shown: block.nameSpan, markdown });
+    if (name) out.push({ span: name, shown: name, markdown });
   }
-  return undefined;
+  return out;
 }
 
 function subjectSpan(b: { readonly subject: BlockOutcome['placed']['subject'] }): Span | undefined {

@@ -11,7 +11,7 @@ import { diagnoseOutcomes } from './diagnose';
 import { deriveSystems } from './derive';
 import { fileDetails } from './details';
 import { editingService } from './editing';
-import { hoverAt } from './hover';
+import { allHovers, hoverAt } from './hover';
 import { ResultCache } from './result-cache';
 import { rewritesAt } from './rewrites';
 import { suggestedComments } from './suggested-comments';
@@ -68,6 +68,13 @@ export function createService(files: Files): Service {
       const document = await load(file);
       if (!document || document.blocks.length === 0) return undefined;
       return hoverAt(document, document.lines.offset(position), async (): Promise<BlockOutcome[]> => checkDocument(project, document, budget));
+    },
+
+    async hovers(file, budget) {
+      const document = await load(file);
+      if (!document || document.blocks.length === 0) return [];
+      const outcomes = await checkDocument(project, document, budget);
+      return budget.run('what there is to tell', () => allHovers(document, outcomes));
     },
 
     async symbols(file) {

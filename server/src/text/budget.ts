@@ -40,6 +40,17 @@ export class Budget {
     return this.stopped;
   }
 
+  /** Milliseconds that are left; undefined without a limit. */
+  get remaining(): number | undefined {
+    const { milliseconds } = this.limits;
+    return milliseconds === undefined ? undefined : Math.max(1, milliseconds - (this.clock() - this.start));
+  }
+
+  /** Nothing may go on: what was done for this budget elsewhere ran out. */
+  stop(why: 'cancelled' | 'time' | 'steps'): void {
+    this.stopped ??= why;
+  }
+
   /**
    * Does a piece of work that is left, by `BudgetSpent`, when this budget is spent on the way.
    * @param stage what the time goes into, in words that complete "went into"

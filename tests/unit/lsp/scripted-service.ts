@@ -64,6 +64,10 @@ export class ScriptedService implements Service {
     };
   }
 
+  hovers(): Promise<readonly never[]> {
+    return Promise.resolve([]);
+  }
+
   async hover(file: string): Promise<Hover | undefined> {
     if (this.textOf(file).includes('throw')) throw new Error('the scripted failure');
     return { markdown: '**crane** has `th\'\'`', range: rangeAt(this.textOf(file), 0, 3) };
