@@ -1,4 +1,4 @@
-import { statusNotification, suggestRequest, version, type FileStatus, type SuggestParams, type Suggestion } from '@visviva/shared';
+import { type FileStatus, statusNotification, type Suggestion, type SuggestParams, suggestRequest, version, visibleNotification, type VisibleParams } from '@visviva/shared';
 import * as vscode from 'vscode';
 import {
   CloseAction,
@@ -51,8 +51,11 @@ export class CheckerClient {
       this.client.onNotification(statusNotification, (told: FileStatus) => this.told(told)),
       this.client.onDidChangeState(({ newState }) => {
         if (newState === State.Starting) status.starting();
-        if (newState === State.Running) status.running();
+        if (newState !== State.Running) return;
+        status.running();
+        this.tellVisible(vscode.window.visibleTextEditors);
       }),
+      vscode.window.onDidChangeVisibleTextEditors((editors) => this.tellVisible(editors)),
     );
   }
 
@@ -60,6 +63,12 @@ export class CheckerClient {
   async suggest(uri: vscode.Uri, position: vscode.Position): Promise<Suggestion | undefined> {
     const params: SuggestParams = { textDocument: { uri: uri.toString() }, position: { line: position.line, character: position.character } };
     return (await this.client.sendRequest<Suggestion | null>(suggestRequest, params)) ?? undefined;
+  }
+
+  private tellVisible(editors: readonly vscode.TextEditor[]): void {
+    if (!this.client.isRunning()) return;
+    const params: VisibleParams = { uris: editors.map((editor) => this.client.code2ProtocolConverter.asUri(editor.document.uri)) };
+    void this.client.sendNotification(visibleNotification, params);
   }
 
   async start(): Promise<void> {

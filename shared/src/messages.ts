@@ -15,6 +15,13 @@ export interface FileStatus {
   readonly reason?: string;
 }
 
+/** Sent by the editor when other documents come into view: they are checked first. */
+export const visibleNotification = 'visviva/visible';
+
+export interface VisibleParams {
+  readonly uris: readonly string[];
+}
+
 /** Asks for a first declaration of the function at a place; answered with null where nothing looks like dynamics. */
 export const suggestRequest = 'visviva/suggest';
 

@@ -20,7 +20,7 @@ interface Entry {
 
 /**
  * Decides when a file is checked: at once where its last check was quick, otherwise after a pause in typing that grows
- * with the time a check takes. One check runs at a time, the file asked for last comes first, and a run whose file is
+ * with the time a check takes. One check runs at a time; what is in view comes first, of that the file asked for last, and a run whose file is
  * asked for again is cancelled.
  */
 export class CheckQueue {
@@ -31,6 +31,7 @@ export class CheckQueue {
   constructor(
     private readonly work: (run: Run) => Promise<void>,
     private readonly clock: Clock,
+    private readonly isVisible: (key: string) => boolean = () => false,
   ) {}
 
   /** Asks for a check of a file, not before `atLeast` milliseconds from now. */
@@ -69,7 +70,7 @@ export class CheckQueue {
 
   private async pump(): Promise<void> {
     if (this.busy) return;
-    const key = [...this.ready].pop();
+    const key = [...this.ready].filter((k) => this.isVisible(k)).pop() ?? [...this.ready].pop();
     const entry = key === undefined ? undefined : this.entries.get(key);
     if (key === undefined || !entry) return;
     this.ready.delete(key);

@@ -29,13 +29,19 @@ export interface CheckerContext {
 /** Checks open files and keeps the editor's diagnostics and status in step with the results. */
 export class Checker {
   private readonly queue: CheckQueue;
+  private visible: ReadonlySet<string> = new Set();
 
   constructor(private readonly context: CheckerContext) {
-    this.queue = new CheckQueue((run) => this.run(run), context.clock);
+    this.queue = new CheckQueue((run) => this.run(run), context.clock, (uri) => this.visible.has(uri));
   }
 
   request(open: OpenFile, atLeast = 0): void {
     this.queue.request(open.document.uri, atLeast);
+  }
+
+  /** The documents in view, whose checks come first. */
+  setVisible(uris: readonly string[]): void {
+    this.visible = new Set(uris);
   }
 
   requestAll(): void {

@@ -1,4 +1,4 @@
-import { defaultSettings, readSettings, suggestRequest, type Settings, type SuggestParams, type Suggestion } from '@visviva/shared';
+import { defaultSettings, readSettings, suggestRequest, visibleNotification, type Settings, type SuggestParams, type Suggestion, type VisibleParams } from '@visviva/shared';
 import {
   CodeActionKind,
   DidChangeConfigurationNotification,
@@ -142,6 +142,8 @@ export function serve(connection: Connection, createService: (files: Files, fold
     checker.close(open);
     for (const dependent of files.dependents(open.file)) checker.request(dependent, dependentDelay);
   });
+
+  connection.onNotification(visibleNotification, ({ uris }: VisibleParams) => checker.setVisible(uris));
 
   connection.onDidChangeWatchedFiles(
     guarded('watched files', undefined, ({ changes }: DidChangeWatchedFilesParams) => {
