@@ -7,6 +7,8 @@ import { readElement, readMember, writeElement, writeMember } from './members';
 import { withEach } from './merging';
 import { itemsOf } from './numbers';
 import { binary } from './operators';
+import { writeOpen } from './open-cells';
+import { openPlace, readOpen, spoilRoot } from './open-index';
 import { bindPattern } from './patterns';
 import type { ClassInfo, Scope } from './scope';
 import { sliceTargets } from './slices';
@@ -78,11 +80,18 @@ function assignPlace(m: Machine, scope: Scope, e: Expression & { kind: 'assign' 
     );
   }
   if (target.kind === 'index') {
+    const open = openPlace(m, scope, target);
+    if (open) {
+      const object = m.evaluate(scope, open.root);
+      const read = (): Value => readOpen(m, scope, open, place);
+      return through(m, scope, e, object, place, read, (o, v) => writeOpen(m, o, open.keys, v, place));
+    }
     let object = m.evaluate(scope, target.object);
     if (target.indices.some((i) => i.kind === 'slice')) return assignSlice(m, scope, e, target, object, place);
     const keys = target.indices.map((i) => m.evaluate(scope, i));
     for (const k of keys.slice(0, -1)) object = readElement(m, module, object, k, place);
     const key = keys[keys.length - 1]!;
+    if (object.kind === 'unread') spoilRoot(m, scope, target, object);
     return through(m, scope, e, object, place, (o) => readElement(m, module, o, key, place), (o, v) => writeElement(m, module, o, key, v, place));
   }
   if (target.kind === 'name') return assignName(m, scope, e, target.name, place);

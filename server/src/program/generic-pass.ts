@@ -1,6 +1,6 @@
 import type { SymbolData } from '../expression/node';
 import type { Place } from '../text/span';
-import type { Statement } from './form';
+import type { Pattern, Statement } from './form';
 import { genericAt } from './generics';
 import { DEAD, type Machine } from './machine';
 import { scalarOf } from './numbers';
@@ -10,7 +10,7 @@ import type { Scope, Variable } from './scope';
 import type { Outcome } from './flow';
 import type { Expression } from './form';
 import { readVariable } from './variables';
-import { isData, type Content, type Value } from './values';
+import { isData, unread, type Content, type Value } from './values';
 
 /** Where a pass begins: the place in the source, and why all that is known is one pass, in words that begin a sentence. */
 export interface PassStart {
@@ -24,8 +24,9 @@ export interface PassStart {
  */
 export function genericPass(m: Machine, scope: Scope, start: PassStart, run: () => Outcome): Outcome {
   const base = m.store;
-  const written = dryRun(m, base, run);
   const variables = variablesByLocation(scope);
+  openSamples(m, variables, start);
+  const written = dryRun(m, base, run);
   const names = namesOfObjects(m, variables);
   for (const location of written.keys()) {
     const before = base.get(location);
@@ -39,6 +40,18 @@ export function genericPass(m: Machine, scope: Scope, start: PassStart, run: () 
   const outcome = run();
   m.inGenericPass--;
   return outcome;
+}
+
+/** Of lists whose samples `reads v[i] = ...` tells about, nothing else is known in a pass: it may be any of them. */
+function openSamples(m: Machine, variables: ReadonlyMap<number, Variable>, { place }: PassStart): void {
+  for (const v of variables.values()) {
+    if (!m.naming.hasOpenReads(v.name)) continue;
+    const value = readVariable(m, v, undefined);
+    const data = value.kind === 'object' ? m.store.data(value.id) : undefined;
+    const isOpen = data?.kind === 'list' || data?.kind === 'generic' || (data?.kind === 'broken' && data.cells);
+    if (value.kind !== 'object' || !isOpen) continue;
+    m.store.set(value.id, { kind: 'broken', unread: unread('a list of which only the samples that `reads` names are known', place), cells: [] });
+  }
 }
 
 /** What a pass writes, found by a run whose effects are dropped. */
@@ -79,6 +92,12 @@ function entryValue(m: Machine, variable: Variable, before: Value, { place, orig
 function openMembers(m: Machine, id: number, after: Content, name: string | undefined, { place, origin }: PassStart): void {
   const data = m.store.data(id);
   if (!isData(after)) return;
+  if (after.kind === 'broken' && data.kind === 'list') {
+    // Earlier passes wrote to it, nobody knows where.
+    m.breakObject(id, after.unread);
+    if (after.cells && !data.view) m.store.set(id, { kind: 'broken', unread: after.unread, cells: [] });
+    return;
+  }
   if (data.kind === 'generic' && after.kind === 'generic') {
     const own = m.store.writable(id);
     if (own.kind === 'generic') for (const key of after.members.keys()) own.members.delete(key);
@@ -140,6 +159,18 @@ export function startsFromLiteralState(m: Machine, scope: Scope, bodies: readonl
     }
     return false;
   });
+}
+
+/** True for a loop over the samples of which `reads v[i] = ...` tells the state: a claim in it is about one of them. */
+export function countsSamples(m: Machine, target: Pattern | undefined, bodies: readonly (readonly Statement[])[]): boolean {
+  const { openNames } = m.naming;
+  if (openNames.size === 0) return false;
+  const written = target ? patternNames(target) : [];
+  for (const node of bodies.flatMap((body) => [...nodesOf(body, false)])) {
+    const x = node as Statement | Expression;
+    if ((x.kind === 'assign' || x.kind === 'declare') && 'target' in x) written.push(...patternNames(x.target));
+  }
+  return written.some((name) => openNames.has(name));
 }
 
 /**

@@ -3,6 +3,7 @@ import type { Expression } from './form';
 import type { Machine } from './machine';
 import { readElement } from './members';
 import { countOf, dataOf, itemsOf } from './numbers';
+import { openPlace, readOpen } from './open-index';
 import { depthOf } from './operators';
 import type { Scope } from './scope';
 import { positions, sliceItems } from './slices';
@@ -12,6 +13,8 @@ import { NOTHING, type Value, type ViewItem } from './values';
 
 export function indexValue(m: Machine, scope: Scope, e: Expression & { kind: 'index' }, place: Place): Value {
   const { module } = scope.frame;
+  const open = openPlace(m, scope, e);
+  if (open) return readOpen(m, scope, open, place);
   const object = m.evaluate(scope, e.object);
   if (object.kind === 'nothing' && e.optional) return NOTHING;
   return indexWith(m, scope, object, e.indices, place, module.program.indexBase);

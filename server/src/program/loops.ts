@@ -2,7 +2,7 @@ import type { Place } from '../text/span';
 import { conditionOf } from './conditions';
 import type { Pattern, Statement } from './form';
 import { genericAt } from './generics';
-import { genericPass, isSubsteps, startsFromLiteralState, type PassStart } from './generic-pass';
+import { countsSamples, genericPass, isSubsteps, startsFromLiteralState, type PassStart } from './generic-pass';
 import { isWrap } from './limits';
 import type { Machine } from './machine';
 import { apply } from './merging';
@@ -29,7 +29,7 @@ export function loop(m: Machine, scope: Scope, s: LoopStatement, place: Place, l
   const first = m.execute(outer, s.initial);
   if (!first.normal) return first;
   if (m.request.withinLimits && isWrap(s)) return { exits: [], normal: true };
-  if (isSubsteps(m, outer, s) || startsFromLiteralState(m, outer, [s.body, s.update])) return pass(m, outer, s, place, label);
+  if (isSubsteps(m, outer, s) || startsFromLiteralState(m, outer, [s.body, s.update]) || countsSamples(m, undefined, [s.body, s.update])) return pass(m, outer, s, place, label);
   const base = m.store;
   const traced = m.trace.length;
   m.store = base.child();
@@ -124,8 +124,9 @@ export function forEach(m: Machine, scope: Scope, s: ForEach, place: Place, labe
   const over = m.evaluate(scope, s.over);
   const items = s.keys ? keysOf(m, scope, over) : passesOf(m, over);
   const bindTo = (inner: Scope, value: Value): void => bindTarget(m, inner, s, value);
-  if (!items || items.length > MOST_PASSES || startsFromLiteralState(m, scope, [s.body])) {
+  if (!items || items.length > MOST_PASSES || startsFromLiteralState(m, scope, [s.body]) || countsSamples(m, s.target, [s.body])) {
     const one = genericItem(m, scope, s, over);
+    if (s.target.kind === 'name') m.entries.set(s.target.name, one);
     const start = items ? { place } : { place: m.place(scope, s.over.span), origin: 'this loop runs over a list whose length is not known' };
     return genericPass(m, scope, start, () => {
       const base = m.store;

@@ -7,6 +7,7 @@ import { runIntrinsic } from './intrinsics/table';
 import type { Machine } from './machine';
 import { withEach } from './merging';
 import { countOf, dataOf, describe, scalarOf } from './numbers';
+import { cellAt, writeOpen } from './open-cells';
 import type { ClassInfo, Module } from './scope';
 import { NOTHING, unread, type FunctionValue, type GenericData, type Assigned, type ListData, type ObjectValue, type RecordData, type Value } from './values';
 
@@ -43,8 +44,12 @@ export function readMember(m: Machine, module: Module, object: Value, key: strin
   }
   const data = dataOf(m, object)!;
   switch (data.kind) {
-    case 'broken':
+    case 'broken': {
+      const method = data.cells && methodOf(m, module, 'list', object, key, place);
+      if (method && method.kind !== 'unread') return method;
+      if (data.cells) m.breakObject(object.id, data.unread);
       return data.unread;
+    }
     case 'list':
       return listMember(m, module, object, data, key, place);
     case 'record':
@@ -167,7 +172,10 @@ export function readElement(m: Machine, module: Module, object: Value, given: Va
   if (object.kind === 'choice') return withEach(m, object, place, (v) => readElement(m, module, v, key, place));
   if (key.kind === 'choice') return withEach(m, key, place, (v) => readElement(m, module, object, v, place));
   const known = keyOf(m, key, place);
-  if (known === undefined) return unread('an element whose index is not known', place);
+  if (known === undefined) {
+    const open = scalarOf(m, key);
+    return (open && cellAt(m, module, object, [open], place)) ?? unread('an element whose index is not known', place);
+  }
   if (typeof known === 'string') return readMember(m, module, object, known, place);
   if (object.kind === 'string') {
     const c = object.value[known - module.program.indexBase];
@@ -175,6 +183,7 @@ export function readElement(m: Machine, module: Module, object: Value, given: Va
   }
   const data = dataOf(m, object);
   if (data?.kind === 'list') return elementAt(m, module, data, known);
+  if (data?.kind === 'broken') return cellAt(m, module, object, [m.graph.number(known)], place) ?? data.unread;
   // What is indexed by the first place is no number: its one entry goes by the name of the whole.
   if (object.kind === 'scalar' && module.program.listConcat && known === module.program.indexBase) return object;
   if (!data) return unread(`an element of a ${describe(object)}`, place);
@@ -278,9 +287,9 @@ export function writeElement(m: Machine, module: Module, object: Value, given: V
   const known = key.kind === 'unread' ? undefined : keyOf(m, key, place);
   if (known === undefined) {
     if (object.kind === 'object') {
-      const why = key.kind === 'unread' ? key : unread('a list written to at an index that is not known', place);
-      dataOf(m, object);
-      m.breakObject(object.id, why);
+      const open = scalarOf(m, key);
+      if (open) writeOpen(m, object, [open], value, place);
+      else m.breakObject(object.id, key.kind === 'unread' ? key : unread('a list written to at an index that is not known', place));
     }
     return;
   }
@@ -299,6 +308,10 @@ export function writeElement(m: Machine, module: Module, object: Value, given: V
         }
       }
       setItem(m, object, list, k, value, place);
+      return;
+    }
+    if (data?.kind === 'broken') {
+      writeOpen(m, object, [m.graph.number(known)], value, place);
       return;
     }
   }

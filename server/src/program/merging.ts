@@ -94,8 +94,8 @@ function mergeData(m: Machine, condition: Expr, a: Data, b: Data, id: number, pl
     const members = mergeMembers(m, condition, a.members, b.members, (key) => childOf(m, a.copyOf ?? id, a.generic, key, place), place);
     return { ...a, members };
   }
-  if (a.kind === 'broken') return a;
-  if (b.kind === 'broken') return b;
+  if (a.kind === 'broken') return { kind: 'broken', unread: a.unread };
+  if (b.kind === 'broken') return { kind: 'broken', unread: b.unread };
   return { kind: 'broken', unread: unread('a list whose length differs between two branches', place) };
 }
 

@@ -2,8 +2,10 @@ import type { Expr, SymbolData } from '../expression/node';
 import type { Place } from '../text/span';
 import type { Expression } from './form';
 import type { Machine } from './machine';
+import { openKey, openKeyOf } from './open-keys';
 import { lastName, memberPath, pathOf, spellings } from './paths';
 import type { Meaning, ReadsBinding } from './reading';
+import { nodesOf } from './scan';
 
 /** What a name in the code means: one symbol, or several, between which nobody may guess. */
 export type NameMeaning = { readonly expr: Expr; readonly text: string; readonly isFormula?: boolean } | { readonly ambiguous: readonly string[] };
@@ -14,10 +16,14 @@ export type NameMeaning = { readonly expr: Expr; readonly text: string; readonly
  */
 export class Naming {
   private readonly reads = new Map<string, ReadsBinding>();
+  /** `reads v[i] = ...`, by the text of its indices */
+  private readonly openReads = new Map<string, ReadsBinding>();
   private readonly names = new Map<string, NameMeaning | undefined>();
   /** symbol -> the different things in the code that mean it by name alone */
   private readonly origins = new Map<string, { expr: Expr; paths: Map<string, Place> }>();
+  private indexNames: ReadonlySet<string> | undefined;
   private readonly declared = new Map<number, boolean>();
+  private readonly free = new Map<number, boolean>();
   /** Distinguishes the runs of different functions, each of which may have its own `p.m`. */
   run = 0;
 
@@ -33,6 +39,8 @@ export class Naming {
     for (const binding of this.m.request.meanings.reads) {
       const path = pathOf(binding.target, indexOf);
       if (path !== undefined && !this.reads.has(path)) this.reads.set(path, binding);
+      const open = path === undefined ? openKeyOf(binding.target) : undefined;
+      if (open !== undefined) this.openReads.set(open, binding);
     }
   }
 
@@ -63,6 +71,39 @@ export class Naming {
     if (read) return read.kind === 'scalar' ? read.expr : undefined;
     const meaning = this.byName(name);
     return meaning && 'expr' in meaning ? meaning.expr : undefined;
+  }
+
+  /** What `reads` says about the element at these indices, or about what it is in: `reads x[k] = [..]` for `x[k, 0]`. */
+  openRead(root: Expression, indices: readonly Expression[]): { meaning: Meaning; path: string; length: number } | undefined {
+    if (this.openReads.size === 0) return undefined;
+    for (let length = indices.length; length > 0; length--) {
+      const key = openKey(root, indices.slice(0, length));
+      const binding = key === undefined ? undefined : this.openReads.get(key);
+      if (binding) return { meaning: binding.meaning, path: binding.text.slice(0, binding.text.lastIndexOf(' = ')), length };
+    }
+    return undefined;
+  }
+
+  /** True for the list of some `reads v[i] = ...`. */
+  hasOpenReads(name: string): boolean {
+    for (const key of this.openReads.keys()) if (key.startsWith(`${name} `)) return true;
+    return false;
+  }
+
+  /** Names in the indices of `reads v[i] = ...`, and of claims about `v[i + 1]`. */
+  get openNames(): ReadonlySet<string> {
+    if (this.indexNames) return this.indexNames;
+    const names = new Set<string>();
+    const targets = [...this.openReads.values()].map((b) => b.target);
+    for (const e of [...targets, ...this.m.request.outputs.map((o) => o.expression)]) {
+      if (e.kind !== 'index') continue;
+      for (const node of nodesOf(e.indices)) if (isName(node)) names.add(node.name);
+    }
+    return (this.indexNames = names);
+  }
+
+  recordRead(path: string, meaning: Meaning, place: Place): void {
+    this.recordMeaning(path, meaning, place);
   }
 
   hasRead(path: string): boolean {
@@ -170,27 +211,34 @@ export class Naming {
 
   /** True for an expression in which a symbol of the declaration occurs. */
   containsDeclared(expr: Expr): boolean {
-    const known = this.declared.get(expr.id);
-    if (known !== undefined) return known;
+    return this.contains(expr, this.declared, (symbol) => this.m.request.meanings.isDeclared(symbol));
+  }
+
+  /** True for an expression in which something occurs that nothing says the meaning of. */
+  containsFree(expr: Expr): boolean {
+    return this.contains(expr, this.free, (symbol) => this.m.free.has(symbol));
+  }
+
+  private contains(expr: Expr, known: Map<number, boolean>, isOne: (symbol: Expr) => boolean): boolean {
     const stack = [expr];
     while (stack.length > 0) {
       const e = stack[stack.length - 1]!;
-      if (this.declared.has(e.id)) {
+      if (known.has(e.id)) {
         stack.pop();
         continue;
       }
-      if (e.op === 'symbol') this.declared.set(e.id, this.m.request.meanings.isDeclared(e));
+      if (e.op === 'symbol') known.set(e.id, isOne(e));
       else {
-        const open = e.args.filter((a) => !this.declared.has(a.id));
+        const open = e.args.filter((a) => !known.has(a.id));
         if (open.length > 0) {
           stack.push(...open);
           continue;
         }
-        this.declared.set(e.id, e.args.some((a) => this.declared.get(a.id)!));
+        known.set(e.id, e.args.some((a) => known.get(a.id)!));
       }
       stack.pop();
     }
-    return this.declared.get(expr.id)!;
+    return known.get(expr.id)!;
   }
 
   private recordMeaning(path: string, meaning: Meaning, place: Place): void {
@@ -206,4 +254,8 @@ export class Naming {
     const key = `${code} ${meaning.id}`;
     if (!this.m.bindings.has(key)) this.m.bindings.set(key, { code: this.m.inWords(code), meaning, how, place });
   }
+}
+
+function isName(node: object): node is Expression & { kind: 'name' } {
+  return 'kind' in node && node.kind === 'name' && 'name' in node;
 }

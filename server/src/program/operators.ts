@@ -139,7 +139,7 @@ function onLists(
     if (op === '+' && x && y) return m.list([...x.items, ...y.items]);
     if (op === '*' && (x === undefined) !== (y === undefined)) {
       const n = countOf(m, x ? b : a, place);
-      if (n === undefined || n > 10_000) return unread('a list repeated an unknown number of times', place);
+      if (n === undefined || n > 10_000) return m.object({ kind: 'broken', unread: unread('a list repeated an unknown number of times', place), cells: [] });
       return m.list(Array.from({ length: Math.max(0, n) }, () => (x ?? y)!.items).flat());
     }
   }

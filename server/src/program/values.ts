@@ -89,7 +89,20 @@ export interface Unread {
 }
 
 /** Contents of an object, in the store. A layer of the store that owns one may change it in place. */
-export type Data = ListData | RecordData | GenericData | { readonly kind: 'broken'; readonly unread: Unread };
+export type Data = ListData | RecordData | GenericData | BrokenData;
+
+/** A thing that is no longer known. */
+export interface BrokenData {
+  readonly kind: 'broken';
+  readonly unread: Unread;
+  /** Where only elements at indices that are not known were written: what was written, newest first. */
+  readonly cells?: readonly Cell[];
+}
+
+export interface Cell {
+  readonly keys: readonly Expr[];
+  readonly value: Value;
+}
 
 export interface ListData {
   readonly kind: 'list';

@@ -1,8 +1,10 @@
+import type { Expr } from '../expression/node';
 import type { Place } from '../text/span';
 import { addAlias, genericAt, valueOf } from './generics';
 import type { Machine } from './machine';
 import { lastName, memberPath } from './paths';
 import { factsOf } from './facts';
+import type { Meaning } from './reading';
 import { assignments } from './scan';
 import type { Scope, Variable } from './scope';
 import { unread, type Value } from './values';
@@ -100,8 +102,9 @@ export function settleName(m: Machine, name: string, path: string, value: Value,
   if (m.callSite) return value;
   if (value.kind === 'object') return settleMembers(m, path, value, place, 0);
   if (value.kind !== 'scalar' && value.kind !== 'unread') return value;
-  if (value.kind === 'scalar' && m.naming.containsDeclared(value.expr)) return value;
   if (value.kind === 'unread' && m.stopped) return value;
+  const isBound = m.naming.hasRead(path) || m.naming.hasRead(name);
+  if (value.kind === 'scalar' && isBuilt(m, value.expr, isBound)) return value;
   const read = m.naming.read([path, name], place);
   if (read) return valueOf(m, read, place);
   // What the code computes as an acceleration, or as a claimed output, is its answer: it can't mean the right one by its name.
@@ -124,15 +127,46 @@ function settleList(m: Machine, name: string, value: Value & { kind: 'object' },
     if (!data.info) settleMembers(m, name, value, arrival.place, 0, arrival.isLocal);
     return value;
   }
-  if (data.kind !== 'list' || data.items.length === 0) return value;
-  const constant = data.items.every((v) => v.kind === 'scalar' && !m.naming.containsDeclared(v.expr));
-  if (!constant || arrival.isAccumulated) return value;
+  if (data.kind !== 'list' || data.items.length === 0 || arrival.isAccumulated) return value;
+  const numbers = countOpen(m, value, m.naming.hasRead(name));
+  if (!numbers) return value;
   const read = m.naming.read([name], arrival.place);
-  const items = read?.kind === 'list' ? read.items : m.naming.family([name]);
-  if (items?.length !== data.items.length) return value;
+  const meanings = read ? leavesOf(read) : m.naming.family([name]);
+  if (!meanings) return value;
+  if (meanings.length !== numbers) {
+    if (!read) return value;
+    return unread(`\`${name}\` has ${meanings.length} entries by its \`reads\`, and ${numbers} here`, arrival.place);
+  }
+  const left = [...meanings];
+  const settled = (v: Value): Value => {
+    const inner = v.kind === 'object' ? m.store.data(v.id) : undefined;
+    return inner?.kind === 'list' ? m.list(inner.items.map(settled), inner.array) : valueOf(m, left.shift()!, arrival.place);
+  };
+  const items = data.items.map(settled);
   const list = m.store.writable(value.id);
-  if (list.kind === 'list') list.items = items.map((i) => valueOf(m, i, arrival.place));
+  if (list.kind === 'list') list.items = items;
   return value;
+}
+
+/** How many numbers a list holds, rows within rows; undefined where one of them is known to be built of declared symbols. */
+function countOpen(m: Machine, value: Value, isBound: boolean, depth = 0): number | undefined {
+  if (value.kind === 'scalar') return isBuilt(m, value.expr, isBound) ? undefined : 1;
+  const data = value.kind === 'object' && depth < 8 ? m.store.data(value.id) : undefined;
+  if (data?.kind !== 'list') return undefined;
+  const counts = data.items.map((v) => countOpen(m, v, isBound, depth + 1));
+  return counts.includes(undefined) ? undefined : counts.reduce<number>((a, b) => a + b!, 0);
+}
+
+/**
+ * True for a value that is built of declared symbols. What also contains things that nothing says the meaning of could not
+ * be told, so that a name bound by `reads` says it: a controller's output.
+ */
+function isBuilt(m: Machine, expr: Expr, isBound: boolean): boolean {
+  return m.naming.containsDeclared(expr) && !(isBound && m.naming.containsFree(expr));
+}
+
+function leavesOf(meaning: Meaning): Meaning[] {
+  return meaning.kind === 'list' ? meaning.items.flatMap(leavesOf) : [meaning];
 }
 
 /** Constants stored in a record by a name with a meaning stand for it: `{ m: 1.0, l: 0.5 }`. */

@@ -22,7 +22,8 @@ function filled(m: Machine, call: Call, value: Value, shape: readonly number[]):
 function constant(value: (m: Machine, call: Call) => Value, from = 0) {
   return (m: Machine, call: Call): Value => {
     const shape = shapeIn(m, call, from);
-    return shape ? filled(m, call, value(m, call), shape) : unread('an array whose shape is not known', call.place);
+    // Nothing is known of it as a whole, but what is written to one of its places can be read there.
+    return shape ? filled(m, call, value(m, call), shape) : m.object({ kind: 'broken', unread: unread('an array whose shape is not known', call.place), cells: [] });
   };
 }
 

@@ -1,4 +1,5 @@
 import { truthOf } from '../conditions';
+import { genericAt } from '../generics';
 import type { Machine } from '../machine';
 import { binary } from '../operators';
 import { countOf, dataOf, itemsOf, numeric } from '../numbers';
@@ -122,7 +123,10 @@ export const LISTS: IntrinsicTable = {
   },
   'list-range': (m, call) => {
     const bounds = call.args.map((v) => countOf(m, v, call.place));
-    if (bounds.includes(undefined)) return unread('a range whose bounds are not known', call.place);
+    const open = call.args.find((v) => v.kind === 'unread');
+    if (open) return open;
+    // How many items it has is not known, but each is a number.
+    if (bounds.includes(undefined)) return genericAt(m, 'range', call.place, { origin: 'this is an item of a range whose bounds are not known' });
     const [a, b, step = 1] = bounds as number[];
     const from = bounds.length > 1 ? a! : 0;
     const to = bounds.length > 1 ? b! : a!;

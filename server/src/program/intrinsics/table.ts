@@ -5,7 +5,8 @@ import { withEach } from '../merging';
 import { scalarOf } from '../numbers';
 import { applyScalar } from '../scalar-call';
 import type { Module } from '../scope';
-import { unread, type Value } from '../values';
+import { changesOpen } from '../open-cells';
+import { NOTHING, unread, type Value } from '../values';
 import { ARRAY_NUMBERS } from './array-numbers';
 import { ARRAY_SHAPES } from './array-shapes';
 import { LISTS } from './lists';
@@ -34,6 +35,9 @@ export const INTRINSICS: ReadonlyMap<string, Intrinsic> = new Map(
   [LISTS, HIGHER_ORDER, RECORDS, MATRICES, NUMBERS, ARRAY_SHAPES, ARRAY_NUMBERS, PLAIN_LISTS].flatMap((table) => Object.entries(table)),
 );
 
+/** What is asked of a list without changing it. */
+const LOOKING: ReadonlySet<string> = new Set(['array-transpose', 'array-shape', 'array-size', 'array-depth', 'array-flat', 'array-copy', 'list-length']);
+
 function isNumberChoice(m: Machine, v: Value): boolean {
   return v.kind === 'choice' ? isNumberChoice(m, v.whenTrue) && isNumberChoice(m, v.whenFalse) : scalarOf(m, v) !== undefined;
 }
@@ -47,6 +51,7 @@ export function runIntrinsic(m: Machine, module: Module, name: string, self: Val
     );
   }
   const values = args.filter((a) => a.name === undefined).map((a) => a.value);
+  if (self && !LOOKING.has(name) && changesOpen(m, self, name, values)) return NOTHING;
   const all = self ? [self, ...values] : values;
   if (name.startsWith('scalar:')) {
     const f = module.library.scalars.get(name.slice('scalar:'.length));
