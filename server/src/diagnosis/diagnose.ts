@@ -5,6 +5,7 @@ import type { Candidate } from './search/candidates/candidate';
 import { trimmed, type Edit } from './search/edits';
 import { Search } from './search/search';
 import { findDeclarationChange } from './declaration';
+import { unreadCandidates } from './search/unread';
 import { isProgress, isRepair, type Recheck } from './verify';
 
 /** One thing that is wrong with the code of a function. */
@@ -27,15 +28,20 @@ export interface Diagnosis {
 }
 
 const MOST_TRIES = 8;
-const MOST_UNTRIED = 6;
+const MOST_UNTRIED = 8;
 const MOST_FIRST_STEPS = 3;
 
 /** Looks for what is wrong with a function whose claims differ, and for an edit that makes them right. */
 export async function diagnose(request: SubjectRequest, result: SubjectResult, source: string, recheck: Recheck): Promise<Diagnosis | undefined> {
-  if (!result.claims.some((c) => c.decision.verdict === 'differs')) return undefined;
-  const search = Search.start(request, result, source);
-  if (!search) return undefined;
+  const has = (verdict: 'differs' | 'unread') => result.claims.some((c) => c.decision.verdict === verdict);
+  if (!has('differs') && !has('unread')) return undefined;
   const verify = (edits: readonly Edit[]) => isRepair(result, edits, recheck);
+  if (has('unread')) {
+    const readable = await firstOf(request, unreadCandidates(request, result, source), verify);
+    if (readable) return repaired([readable], source, undefined);
+  }
+  const search = has('differs') ? Search.start(request, result, source) : undefined;
+  if (!search) return undefined;
   const single = await firstOf(request, oneEdit(search), verify);
   if (single) return repaired([single], source, undefined);
   // Where one edit of the code does not do, one of the declaration may.

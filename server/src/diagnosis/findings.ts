@@ -1,7 +1,7 @@
 import type { FindingCode } from '@visviva/shared';
 import type { Diagnosis } from './diagnose';
 import type { Edit } from './search/edits';
-import { declarationText, derivedText, faultText, NO_EXPLANATION, repairTitle, termAndFault } from './messages';
+import { declarationText, derivedText, faultText, NO_EXPLANATION, readableText, repairTitle, termAndFault } from './messages';
 import { expectedInCode } from './own-names';
 import type { Reading } from '../program/reading';
 import type { ClaimResult } from '../comparison/subject';
@@ -45,6 +45,10 @@ export function describeClaim(derived: Derived, claims: readonly ClaimResult[], 
     }
     case 'unread': {
       const message = `${claim.output} is not checked: ${decision.reason}.`;
+      if (diagnosis?.edits && diagnosis.faults.length > 0) {
+        const repair = { title: repairTitle(diagnosis.faults), edits: diagnosis.edits };
+        return diagnosis.faults.map((f) => ({ code: 'unread', message: `${message} ${readableText(f)}`, place: { file: here.file, span: f.span }, repair }));
+      }
       return [{ code: 'unread', message, place: decision.place ?? claim.place ?? here }];
     }
     case 'differs': {

@@ -36,6 +36,11 @@ export function termAndFault(term: string, fault: Fault): string {
   return `${term}: ${toDo(fault)}`;
 }
 
+/** After the reason why a claim was not read: what makes it readable, and right. */
+export function readableText(fault: Fault): string {
+  return `With \`${clip(fault.new)}\` for \`${clip(fault.old)}\` every claim holds.`;
+}
+
 /** What to do, for the end of a sentence. */
 function toDo(fault: Fault): string {
   const old = clip(fault.old);

@@ -18,7 +18,7 @@ export async function diagnoseOutcomes(
 ): Promise<BlockOutcome[]> {
   const out: BlockOutcome[] = [];
   for (const [i, o] of outcomes.entries()) {
-    if (!o.entry || !o.result || !o.result.claims.some((c) => c.decision.verdict === 'differs')) {
+    if (!o.entry || !o.result || o.result.claims.every((c) => c.decision.verdict === 'holds')) {
       out.push(o);
       continue;
     }

@@ -8,7 +8,8 @@ import { resultsText, summaryText, type Run } from './tables';
 /**
  * A mutation benchmark: every correct function of the fixtures, changed at one place (and at two) by ten operators.
  * Arguments: `--every N` takes each N-th mutant, `--pairs N` pairs of each N-th function, `--only NAME` files that contain
- * NAME, `--match TEXT` mutants whose description does, `--show` lists what was missed, `--all` everything.
+ * NAME, `--match TEXT` mutants whose description does (or contains a line of the file, for `--match @FILE`), `--show`
+ * lists what was missed, `--all` everything.
  */
 const argument = (name: string): string | undefined => {
   const at = process.argv.indexOf(`--${name}`);
@@ -17,6 +18,7 @@ const argument = (name: string): string | undefined => {
 const every = Number(argument('every') ?? 1);
 const only = argument('only');
 const match = argument('match');
+const matches = match?.startsWith('@') ? readFileSync(match.slice(1), 'utf8').split('\n').filter((l) => l.trim() !== '') : match === undefined ? undefined : [match];
 const everyPairs = Number(argument('pairs') ?? 6);
 const all = process.argv.includes('--all');
 const show = all || process.argv.includes('--show');
@@ -54,13 +56,14 @@ async function take(into: Outcome[], bench: Bench, mutations: readonly Mutation[
   const what = mutations
     .map((m) => `${m.operator} ${JSON.stringify(bench.fixture.text.slice(m.start, m.end))} -> ${JSON.stringify(m.text)} (${m.start})`)
     .join(' and ');
-  if (match !== undefined && !what.includes(match)) return;
+  const name = `${bench.fixture.file} ${bench.section.name}: ${what}`;
+  if (matches && !matches.some((m) => name.includes(m))) return;
   const outcome = await bench.measure(mutations);
   if (!outcome) return;
   into.push(outcome);
   const kind = missed(outcome);
   if (all || (show && kind !== 'RIGHT')) {
-    console.log(`${kind} ${bench.fixture.file} ${bench.section.name}: ${what}: ${outcome.note} ${outcome.milliseconds.toFixed(0)} ms`);
+    console.log(`${kind} ${name}: ${outcome.note} ${outcome.milliseconds.toFixed(0)} ms`);
   }
 }
 

@@ -61,7 +61,7 @@ export class Bench {
     const result = await this.check(text);
     const used = process.cpuUsage(start);
     const claims = result.claims.filter((c) => c.line >= this.section.startLine && c.line < this.section.endLine);
-    const wrong = claims.filter((c) => c.verdict === 'differs');
+    const wrong = claims.filter((c) => c.verdict !== 'holds');
     const findings = wrong.flatMap((c) => c.findings);
     const repair = findings.find((f) => f.repair)?.repair;
     const usual = this.baselines.detects(text);

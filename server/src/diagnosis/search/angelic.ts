@@ -17,7 +17,7 @@ export type Needed =
   /** No value does it; `fixes` are claims that would be right with the values `need`, while no other gets worse. */
   | { readonly kind: 'none'; readonly partial: { readonly need: Float64Array; readonly fixes: readonly Target[] } | undefined };
 
-const NEWTON = 6;
+const NEWTON = 10;
 
 export function solvePlace(model: Model, site: Site, evaluations: readonly Evaluation[]): Needed {
   if (evaluations.length !== 1) return { kind: 'open' };

@@ -1,6 +1,7 @@
 import type { ClaimResult, SubjectRequest, SubjectResult } from '../../comparison/subject';
 import type { Expr } from '../../expression/node';
 import { reachable } from '../../expression/reach';
+import type { Derived } from '../../mechanics/lagrange';
 import { solvePlace, type Needed } from './angelic';
 import { assignments } from './candidates/assignments';
 import { brackets } from './candidates/brackets';
@@ -17,6 +18,7 @@ import { findPairs, type CandidatePair } from './pairs';
 import { Model, type Change } from './model';
 import { mapSource, type Site, type SourceMap } from './sites';
 import { makeScene } from './scene';
+import { slotCandidates } from './unread';
 import { MODES, readTagged, type Evaluation } from './tagged';
 
 /** Operations of trials; some seconds. */
@@ -39,20 +41,20 @@ export class Search {
 
   private constructor(
     private readonly request: SubjectRequest,
-    claims: readonly ClaimResult[],
+    private readonly claims: readonly ClaimResult[],
     readonly model: Model,
     readonly map: SourceMap,
     private readonly source: string,
   ) {
-    const { system, residuals } = request.derived;
-    const terms = knownTerms(model, wantedTerms(claims, residuals));
+    const { system } = request.derived;
+    const terms = knownTerms(model, wantedTerms(request.derived, claims));
     this.scene = makeScene(request, model, map, source, functionsOf(terms.map((t) => t.expr)));
     const symbols = [...system.parameters, ...system.inputs].map((p) => p.symbol);
     const bases = symbols.flatMap((expr) => {
       const value = model.column(expr);
       return value ? [{ expr, value }] : [];
     });
-    this.makers = [...BASIC, insertions(terms, new LogFit(bases, model.n))];
+    this.makers = [...BASIC, insertions(terms, new LogFit(bases, model.n), model.n)];
     for (const site of map.sites) {
       if (!this.mayGoOn) break;
       const evaluations = model.evaluations(site);
@@ -88,6 +90,7 @@ export class Search {
     exchanges(this.scene, this.map.siblings, (s) => this.model.evaluations(s), (c) => swaps.push(c));
     this.all.push(...swaps);
     if (this.mayGoOn) passed.push(...confirmed(this.model, swaps), ...everywhere(this.model, this.repeated));
+    this.untried.push(...slotCandidates(this.request, this.claims, this.map, this.source));
     this.untried.sort(byCost);
     return passed.sort(byCost);
   }
@@ -209,9 +212,10 @@ function everywhere(model: Model, repeated: ReadonlyMap<string, readonly Candida
   return confirmed(model, joined.slice(0, 600));
 }
 
-function wantedTerms(claims: readonly ClaimResult[], residuals: readonly Expr[]): Expr[] {
+/** What the code may be made of: claims that are no accelerations, the equations, and the entries of the mass matrix. */
+function wantedTerms(derived: Derived, claims: readonly ClaimResult[]): Expr[] {
   const own = claims.flatMap((c) => (c.expected && c.decision.verdict === 'differs' && c.expected.op !== 'symbol' ? [c.expected] : []));
-  return [...own, ...residuals];
+  return [...own, ...derived.residuals, ...new Set(derived.massMatrix)];
 }
 
 function functionsOf(terms: readonly Expr[]): Expr[] {

@@ -36,6 +36,7 @@ export interface SourceMap {
   readonly sites: readonly Site[];
   readonly byNode: ReadonlyMap<Expression, Site>;
   readonly siblings: readonly Siblings[];
+  readonly functions: readonly FunctionNode[];
 }
 
 interface Context {
@@ -71,6 +72,7 @@ export function mapSource(program: Program): SourceMap {
   const byNode = new Map<Expression, Site>();
   const siblings: Siblings[] = [];
   const rows: Expression[][] = [];
+  const functions: FunctionNode[] = [];
   const stack: Task[] = [];
   const push = (x: unknown, context: Context): void => {
     if (x !== undefined && x !== null) stack.push({ x, context });
@@ -99,14 +101,17 @@ export function mapSource(program: Program): SourceMap {
       sites.push(site);
       byNode.set(node, site);
       inside(node, site, context, push, rows);
-    } else outside(node, context, push, rows);
+    } else {
+      if ('parameters' in node && 'bodySpan' in node) functions.push(node as FunctionNode);
+      outside(node, context, push, rows);
+    }
   }
   for (const row of rows) {
     const found = row.map((e) => byNode.get(e)).filter((s) => s !== undefined);
     if (found.length > 1) siblings.push({ sites: found });
   }
   sites.sort((a, b) => a.span.start - b.span.start || b.span.end - a.span.end);
-  return { sites, byNode, siblings };
+  return { sites, byNode, siblings, functions };
 }
 
 const EXPRESSIONS = new Set<string>([

@@ -78,6 +78,7 @@ export function readTagged(
 function mayTag(site: Site, mode: Mode): boolean {
   const { node } = site;
   if (mode !== 'all' && isInLimit(site)) return false;
+  if (isIndex(site)) return false;
   if (!site.mayVary && (node.kind === 'number' || node.kind === 'unary')) return false;
   if (node.kind === 'number') {
     if (mode === 'none') return false;
@@ -89,6 +90,12 @@ function mayTag(site: Site, mode: Mode): boolean {
 /** Numbers that are needed as plain numbers show only when reading with tags fails: then fewer are tagged. */
 export const MODES = ['all', 'arithmetic', 'none'] as const;
 type Mode = 'all' | 'arithmetic' | 'none';
+
+/** A choice of row or slot, which must stay a whole number. */
+function isIndex(site: Site): boolean {
+  for (let s: Site | undefined = site; s; s = s.parent) if (s.role === 'other' && s.parent?.node.kind === 'index') return true;
+  return false;
+}
 
 /** Inside a clip, whose form must stay recognisable. */
 function isInLimit(site: Site): boolean {
@@ -105,6 +112,7 @@ function isOperand({ node, parent, role }: Site, mode: Mode): boolean {
   if (node.kind !== 'name' && node.kind !== 'member' && node.kind !== 'index') return false;
   const p = parent?.node;
   if (role === 'item' || (role === 'whole' && !p)) return mode === 'all';
+  if (p?.kind === 'assign') return role === 'whole' && (p.op !== undefined || mode === 'all');
   if (p?.kind === 'unary') return p.op === '-';
   if (p?.kind === 'binary') return /^[-+*/%]$|\*\*/.test(p.op);
   return p?.kind === 'call' && role === 'argument' && parent!.mayVary && isScalarCall(p);

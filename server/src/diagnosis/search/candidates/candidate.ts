@@ -1,5 +1,5 @@
 import type { FindingCode } from '@visviva/shared';
-import type { Span } from '../../../text/span';
+import { contains, type Span } from '../../../text/span';
 import type { Program } from '../../../program/form';
 import type { Edit } from '../edits';
 import type { Model } from '../model';
@@ -34,7 +34,15 @@ export interface Atom {
   readonly values: readonly Float64Array[];
   /** Position from which on it may be used. */
   readonly from: number;
+  /** The function it belongs to; it may be used in functions inside that one too. */
   readonly owner: Site['owner'];
+  /** More than a name or an entry: good as a factor or a term, not in place of a name. */
+  readonly compound?: boolean;
+}
+
+/** Whether what an atom's text means is there at a place. */
+export function isVisible(atom: Atom, site: Site): boolean {
+  return atom.from <= site.span.start && (!atom.owner || atom.owner === site.owner || contains(atom.owner.span, site.span.start));
 }
 
 /** What the makers of candidates see. */

@@ -1,5 +1,5 @@
 import { Binding, replaceSite } from '../edits';
-import { agree, seenAt, type Maker } from './candidate';
+import { agree, isVisible, seenAt, type Maker } from './candidate';
 
 /** Another name that stands in the code, or a member or entry beside the one that stands there. */
 export const names: Maker = (scene, spot, give) => {
@@ -25,7 +25,7 @@ export const names: Maker = (scene, spot, give) => {
     });
   };
   for (const atom of scene.atoms) {
-    if (atom.from > site.span.start || (atom.owner && atom.owner !== site.owner)) continue;
+    if (atom.compound || !isVisible(atom, site)) continue;
     const seen = seenAt(atom, values.length);
     if (seen) offer(atom.text, seen, 1 + distance(text, atom.text));
   }

@@ -1,21 +1,24 @@
 import { normalForm, type Monomial } from '../../../expression/normal-form';
 import { monomialExpr } from '../../../expression/normal-form';
-import { symbolsOf } from '../../../expression/reach';
 import { Tape } from '../../../expression/tape';
-import type { Expr, SymbolData } from '../../../expression/node';
-import { Binding, bindingOf, bracket, replaceSite } from '../edits';
-import { LogFit } from '../log-fit';
+import type { Expr } from '../../../expression/node';
+import { Binding, bindingOf, bracket, replaceSite, roomAt } from '../edits';
+import { LinearFit } from '../linear-fit';
+import type { LogFit } from '../log-fit';
 import type { Model } from '../model';
-import { prefixFor } from '../scene';
-import { agree, map2, seenAt, type Maker, type Scene } from './candidate';
+import { agree, isVisible, map2, seenAt, type Maker } from './candidate';
+import { isScalarCall } from '../sites';
 import { isSum } from './operators';
-import { commonOf, isInnerFactor, writeNice } from './numbers';
+import { commonOf, isInnerFactor } from './numbers';
+import { TermPrinter, type Product } from './term-printer';
 
 /** A product that may be missing: a term of the derived equations without its constant factor. */
 export interface KnownTerm {
   readonly monomial: Monomial;
   readonly expr: Expr;
   readonly value: Float64Array;
+  /** Terms of one derived expression have the same number: they may be missing together. */
+  readonly group: number;
 }
 
 const MOST_TERMS = 60;
@@ -24,12 +27,12 @@ const MOST_TERMS = 60;
 export function knownTerms(model: Model, wanted: readonly Expr[]): KnownTerm[] {
   const { system } = model.derived;
   const { graph } = system;
-  const out = new Map<Expr, Monomial>();
-  for (const e of wanted) {
+  const out = new Map<Expr, { monomial: Monomial; group: number }>();
+  for (const [group, e] of wanted.entries()) {
     for (const m of normalForm(graph, e, 40)?.terms ?? []) {
       const factors = m.factors;
       if (factors.length === 0) continue;
-      out.set(monomialExpr(graph, { coefficient: m.coefficient.divide(m.coefficient), factors }), m);
+      out.set(monomialExpr(graph, { coefficient: m.coefficient.divide(m.coefficient), factors }), { monomial: m, group });
       if (out.size >= MOST_TERMS) break;
     }
   }
@@ -42,12 +45,14 @@ export function knownTerms(model: Model, wanted: readonly Expr[]): KnownTerm[] {
   }, model.n);
   return exprs.flatMap((expr) => {
     const value = registers.column(expr).values;
-    return value.every(Number.isFinite) ? [{ monomial: out.get(expr)!, expr, value }] : [];
+    return value.every(Number.isFinite) ? [{ ...out.get(expr)!, expr, value }] : [];
   });
 }
 
 /** A term of the derived equations put in, or a factor that is missing or too many. */
-export function insertions(terms: readonly KnownTerm[], fit: LogFit<Expr>): Maker {
+export function insertions(terms: readonly KnownTerm[], fit: LogFit<Expr>, n: number): Maker {
+  const groups = [...new Set(terms.map((t) => t.group))].map((g) => terms.filter((t) => t.group === g));
+  const sums = groups.filter((g) => g.length > 1).map((g) => new LinearFit(g.map((t) => ({ expr: t, value: t.value })), n));
   return (scene, spot, give) => {
     const { site, need, values, text } = spot;
     if (!need || values.length !== 1) {
@@ -55,10 +60,11 @@ export function insertions(terms: readonly KnownTerm[], fit: LogFit<Expr>): Make
       return;
     }
     const now = values[0]!;
+    const value = need.map((x, s) => (Number.isNaN(x) ? now[s]! : x));
     const { node } = site;
     const { source } = scene;
     const parent = site.parent?.node;
-    const printer = new TermPrinter(scene, spot.site.span.start, spot.site.owner);
+    const printer = new TermPrinter(scene, site);
 
     // A factor: a product of declared symbols, or something the code has a name for.
     if (!isInnerFactor(spot) || (parent?.kind === 'binary' && parent.op === '/' && node.kind !== 'number')) {
@@ -72,7 +78,7 @@ export function insertions(terms: readonly KnownTerm[], fit: LogFit<Expr>): Make
           edits: [replaceSite(site, source, whole, Binding.product)],
           code: 'factor',
           cost,
-          values: [need],
+          values: [value],
           label: `times ${factor.label}`,
           old: text,
           new: whole,
@@ -88,13 +94,13 @@ export function insertions(terms: readonly KnownTerm[], fit: LogFit<Expr>): Make
           const written = printer.ofAtoms(own.constant, own.powers);
           if (written) give1(written, below + 2 + 0.3 * own.powers.length);
         } else {
+          const sum = printer.sumOfAtoms(ratio);
+          if (sum !== undefined) give1({ label: sum, attach: (inner) => `${inner} * ${sum}` }, below + 2.4);
           for (const atom of printer.atoms) {
             for (const power of [1, -1]) {
               const rest = ratio.map((x, s) => x / atom.value[s]! ** power);
               const constant = commonOf(rest);
-              if (constant === undefined) {
-                continue;
-              }
+              if (constant === undefined) continue;
               const product = printer.withAtom(constant, atom.text, power);
               if (product) give1(product, below + 2 + (Math.abs(constant - 1) > 1e-9 ? 0.6 : 0));
             }
@@ -110,12 +116,14 @@ export function insertions(terms: readonly KnownTerm[], fit: LogFit<Expr>): Make
     const offer = (sign: '+' | '-', body: string, cost: number): void => {
       const whole = `${bindingOf(node) < Binding.sum ? bracket(text) : text} ${sign} ${body}`;
       const isZero = node.kind === 'number' && node.value.isZero;
+      // A term belongs into a sum that is there, sooner than into one made for it in brackets.
+      const made = !isZero && roomAt(site, source) > Binding.sum ? 0.7 : 0;
       give({
         site,
         edits: [replaceSite(site, source, isZero ? (sign === '-' ? `-${body}` : body) : whole, isZero ? Binding.product : Binding.sum)],
         code: 'missing-term',
-        cost,
-        values: [need],
+        cost: cost + made,
+        values: [value],
         label: `${sign} ${body}`,
         old: '',
         new: `${sign} ${body}`,
@@ -139,16 +147,27 @@ export function insertions(terms: readonly KnownTerm[], fit: LogFit<Expr>): Make
       const written = printer.term(term.monomial, p.powers, Math.abs(p.constant));
       if (written) offer(p.constant < 0 ? '-' : '+', written.text, 2.2 + 0.1 * written.size);
     }
+    for (const fit of sums) {
+      const parts = fit.sum(gap);
+      // Whole terms as the equations have them: anything else would make up for faults of other terms.
+      const ratios = parts?.map((p) => p.coefficient / p.base.monomial.coefficient.toNumber());
+      if (!parts || parts.length < 2 || !ratios!.every((r) => Math.abs(Math.abs(r) - 1) < 1e-6 && r * ratios![0]! > 0)) continue;
+      const written = parts.map((p) => ({ sign: p.coefficient < 0 ? '-' : '+', ...printer.term(p.base.monomial, [], Math.abs(p.coefficient)) }));
+      if (written.some((w) => w.text === undefined)) continue;
+      const [first, ...rest] = written;
+      offer(first!.sign as '+' | '-', [first!.text, ...rest.map((w) => `${w.sign} ${w.text}`)].join(' '), 2.5 + 0.1 * written.reduce((t, w) => t + w.size!, 0));
+    }
   };
 }
 
-/** Where the values needed are not known: times or divided by anything the code has a name for. */
+/** Where the values needed are not known: times or divided by anything the code has a name for; in a function's argument also more or less of it. */
 const guesses: Maker = (scene, spot, give) => {
   const { site, values, text } = spot;
   if (isInnerFactor(spot) || site.node.kind === 'number') return;
+  const isArgument = site.role === 'argument' && site.parent?.node.kind === 'call' && isScalarCall(site.parent.node);
   const inner = bindingOf(site.node) < Binding.product ? bracket(text) : text;
   for (const atom of scene.atoms) {
-    if (atom.from > site.span.start || (atom.owner && atom.owner !== site.owner) || atom.text.length > 24) continue;
+    if (!isVisible(atom, site) || atom.text.length > 24) continue;
     const seen = seenAt(atom, values.length);
     if (!seen) continue;
     for (const op of ['*', '/'] as const) {
@@ -164,144 +183,18 @@ const guesses: Maker = (scene, spot, give) => {
         new: whole,
       });
     }
+    if (!isArgument || atom.compound) continue;
+    for (const op of ['-', '+'] as const) {
+      give({
+        site,
+        edits: [replaceSite(site, scene.source, `${text} ${op} ${atom.text}`, Binding.sum)],
+        code: 'missing-term',
+        cost: 2,
+        values: map2(values, seen, op === '+' ? (x, y) => x + y : (x, y) => x - y),
+        label: `${op} ${atom.text}`,
+        old: '',
+        new: `${op} ${atom.text}`,
+      });
+    }
   }
 };
-
-const fits = new WeakMap<Scene, Map<string, LogFit<string>>>();
-
-/** One fit per set of names, made once: distinct sizes only, plain names first. */
-function fitOf(scene: Scene, atoms: readonly { readonly text: string; readonly value: Float64Array }[]): LogFit<string> {
-  let known = fits.get(scene);
-  if (!known) fits.set(scene, (known = new Map()));
-  const key = atoms.map((a) => a.text).join(' ');
-  let fit = known.get(key);
-  if (!fit) {
-    const chosen: { expr: string; value: Float64Array }[] = [];
-    for (const a of [...atoms].sort((x, y) => x.text.length - y.text.length)) {
-      if (a.value.some((x) => Math.abs(x) < 1e-9) || chosen.some((c) => c.value.every((x, s) => Math.abs(Math.abs(x) - Math.abs(a.value[s]!)) < 1e-9))) continue;
-      chosen.push({ expr: a.text, value: a.value });
-    }
-    known.set(key, (fit = new LogFit(chosen, scene.model.n)));
-  }
-  return fit;
-}
-
-interface Product {
-  readonly label: string;
-  attach(inner: string): string | undefined;
-}
-
-/** Writes products of symbols with the names that the code has for them at a place. */
-class TermPrinter {
-  readonly atoms: readonly { readonly text: string; readonly value: Float64Array }[];
-  private fit: LogFit<string> | undefined;
-
-  constructor(
-    private readonly scene: Scene,
-    at: number,
-    owner: unknown,
-  ) {
-    this.atoms = scene.atoms
-      .filter((a) => a.values.length === 1 && a.from <= at && (!a.owner || a.owner === owner))
-      .map((a) => ({ text: a.text, value: a.values[0]! }));
-  }
-
-  /** Products of what the code has names for here. */
-  get own(): LogFit<string> {
-    return (this.fit ??= fitOf(this.scene, this.atoms));
-  }
-
-  ofAtoms(constant: number, powers: readonly { readonly base: string; readonly power: number }[]): Product | undefined {
-    const number = Math.abs(constant - 1) < 1e-9 ? undefined : writeNice(constant, this.scene, undefined);
-    if ((Math.abs(constant - 1) >= 1e-9 && !number) || powers.some((p) => p.power % 1 !== 0)) return undefined;
-    const list = (sign: number) => powers.flatMap((p) => Array<string>(Math.max(0, sign * p.power)).fill(p.base));
-    return joinFactors(list(1), list(-1), number && (number.binding < Binding.atom ? bracket(number.text) : number.text));
-  }
-
-  /** The code's text for an expression: one whose value is the same. */
-  private textOf(e: Expr): string | undefined {
-    const { model } = this.scene;
-    let value = e.op === 'symbol' ? model.column(e) : undefined;
-    if (!value) {
-      const symbols = symbolsOf(e);
-      const tape = new Tape([e]);
-      if (symbols.some((s) => !model.column(s))) return undefined;
-      value = tape.run((s) => ({ values: model.column(s)! }), model.n).column(e).values;
-    }
-    const found = this.atoms.filter((a) => agree(a.value, value, 1e-9)).sort((a, b) => a.text.length - b.text.length)[0];
-    if (found) return found.text;
-    if (e.args.length === 1) {
-      const prefix = prefixFor(this.scene.code, e.op);
-      const inner = this.textOf(e.args[0]!);
-      if (prefix !== undefined && inner) return `${prefix}${e.op}(${inner})`;
-    }
-    if (e.op === 'sum') {
-      const parts = e.args.map((a) => this.textOf(a));
-      if (parts.every((p) => p !== undefined)) return parts.join(' + ');
-    }
-    if (e.op === 'product' && e.args.length === 2 && e.args[0]!.op === 'number') {
-      const inner = this.textOf(e.args[1]!);
-      const c = (e.args[0]!.data as { toNumber(): number }).toNumber();
-      if (inner) return c === -1 ? `-${inner}` : writeNice(c, this.scene, undefined)?.text + ` * ${inner}`;
-    }
-    return undefined;
-  }
-
-  private factors(list: readonly { readonly base: Expr; readonly power: number }[]): { top: string[]; bottom: string[] } | undefined {
-    const top: string[] = [];
-    const bottom: string[] = [];
-    for (const { base, power } of list) {
-      const text = this.textOf(base);
-      if (text === undefined || power % 1 !== 0 || Math.abs(power) > 4) return undefined;
-      for (let k = 0; k < Math.abs(power); k++) (power > 0 ? top : bottom).push(text);
-    }
-    return { top, bottom };
-  }
-
-  product(constant: number, powers: readonly { readonly base: Expr; readonly power: number }[]): Product | undefined {
-    const f = this.factors(powers);
-    const number = Math.abs(constant - 1) < 1e-9 ? undefined : writeNice(constant, this.scene, undefined);
-    if (!f || (Math.abs(constant - 1) >= 1e-9 && !number)) return undefined;
-    return joinFactors(f.top, f.bottom, number && (number.binding < Binding.atom ? bracket(number.text) : number.text));
-  }
-
-  withAtom(constant: number, text: string, power: number): Product | undefined {
-    const number = Math.abs(constant - 1) < 1e-9 ? undefined : writeNice(constant, this.scene, undefined);
-    if (Math.abs(constant - 1) >= 1e-9 && !number) return undefined;
-    return joinFactors(power > 0 ? [text] : [], power < 0 ? [text] : [], number && (number.binding < Binding.atom ? bracket(number.text) : number.text));
-  }
-
-  term(m: Monomial, extra: readonly { readonly base: Expr; readonly power: number }[], constant: number): { text: string; size: number } | undefined {
-    const powers = new Map<Expr, number>();
-    for (const f of m.factors) powers.set(f.base, f.exponent.toNumber());
-    for (const x of extra) powers.set(x.base, (powers.get(x.base) ?? 0) + x.power);
-    const list = [...powers].filter(([, p]) => p !== 0).map(([base, power]) => ({ base, power }));
-    list.sort((a, b) => rank(a.base) - rank(b.base));
-    const f = this.factors(list);
-    if (!f) return undefined;
-    const number = Math.abs(constant - 1) < 1e-9 ? undefined : writeNice(constant, this.scene, undefined);
-    if (Math.abs(constant - 1) >= 1e-9 && !number) return undefined;
-    const top = [...(number ? [number.binding < Binding.atom ? bracket(number.text) : number.text] : []), ...f.top];
-    if (top.length === 0) top.push('1');
-    const bottom = f.bottom.length === 0 ? '' : f.bottom.length === 1 ? ` / ${f.bottom[0]}` : ` / (${f.bottom.join(' * ')})`;
-    return { text: top.join(' * ') + bottom, size: top.length + f.bottom.length };
-  }
-}
-
-function joinFactors(top: readonly string[], bottom: readonly string[], number: string | undefined): Product {
-  return {
-    label: `${number ?? ''} ${top.join('*')}/${bottom.join('*')}`,
-    attach: (inner) => {
-      const up = [...(number ? [number] : []), ...(inner ? [inner] : []), ...top].join(' * ') || '1';
-      if (bottom.length === 0) return up;
-      return `${up} / ${bottom.length === 1 ? bottom[0] : bracket(bottom.join(' * '))}`;
-    },
-  };
-}
-
-/** Parameters, coordinates, velocities, functions: the order people write factors in. */
-function rank(e: Expr): number {
-  if (e.op !== 'symbol') return 3;
-  const { role, order } = e.data as SymbolData;
-  return role === 'parameter' ? 0 : 1 + order / 2;
-}
