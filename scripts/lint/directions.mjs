@@ -37,8 +37,9 @@ export const directions = {
   },
   // The service's contract names what the host has to give; nothing else of it is used there.
   'server/src/host': { from: ['text', 'shared', 'service/api'], packages: ['ignore', 'tinyglobby'], node: true },
+  'server/src/typeset': { from: [], packages: ['mathjax-full'] },
   'server/src/lsp': {
-    from: ['text', 'service', 'host', 'shared'],
+    from: ['text', 'service', 'host', 'typeset', 'shared'],
     packages: ['vscode-languageserver', 'vscode-languageserver-textdocument'],
     node: true,
   },
@@ -49,6 +50,8 @@ export const directions = {
   },
 
   'client/src': { from: ['shared'], packages: ['vscode', 'vscode-languageclient'] },
+  // The page inside the panel: no editor and no server there.
+  'client/panel': { from: ['shared'], packages: ['odex', 'uplot'] },
 };
 
 /** Where a name in a `from` list lies. */

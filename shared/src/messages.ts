@@ -48,3 +48,19 @@ export interface FileCounts {
   readonly unread: number;
   readonly problems: number;
 }
+
+/** Tells the server which theme its pictures are shown in. */
+export const themeNotification = 'visviva/theme';
+
+export interface Theme {
+  /** A colour for text, such as `#1f1f1f`. */
+  readonly text: string;
+}
+
+/** What this product's own extension tells the server when it starts, beside the settings. */
+export interface ClientOptions {
+  /** It has the panel, and the commands that lenses call. */
+  readonly panel?: boolean;
+  /** Formulas in hovers may be pictures, in this theme. */
+  readonly theme?: Theme;
+}

@@ -22,6 +22,7 @@ export interface CheckerContext {
   readonly files: OpenFiles;
   readonly clock: Clock;
   readonly settings: () => Settings;
+  readonly isExcluded: (file: string) => boolean;
   /** True where the editor keeps track of which version a diagnostic belongs to: it then hears of each one checked. */
   readonly tracksVersions: () => boolean;
 }
@@ -105,6 +106,7 @@ export class Checker {
     const diagnostics = toDiagnostics(result, {
       uriOf: (name) => this.context.addresses.uriOf(name),
       line: (line) => lineOf(open.document, line),
+      severity: this.context.settings().severity,
     });
     this.publish(open, version, diagnostics);
   }
@@ -127,6 +129,7 @@ export class Checker {
 
   private reasonToSkip({ document, file }: OpenFile): string | undefined {
     if (!this.context.settings().enable) return 'Checking is switched off (visviva.enable).';
+    if (this.context.isExcluded(file)) return 'The file is left out by the settings (visviva.exclude).';
     if (!this.context.service.handles(file)) return 'Files of this kind are not read.';
     if (document.getText().length > sizeLimit) return 'The file is too large to be read.';
     return undefined;

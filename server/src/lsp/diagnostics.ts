@@ -1,4 +1,4 @@
-import type { Finding, ReportClaim, Verdict } from '@visviva/shared';
+import { defaultSettings, type Finding, type ReportClaim, type Settings, type ShownAs, type Verdict } from '@visviva/shared';
 import {
   DiagnosticSeverity,
   type Diagnostic,
@@ -12,12 +12,29 @@ export interface DiagnosticContext {
   readonly uriOf: (file: string) => string;
   /** The text of a line (from 1) of the checked document; empty where there is none. */
   readonly line: (line: number) => string;
+  /** As the settings say; as by default where absent. */
+  readonly severity?: Settings['severity'];
 }
 
-const severityOf: Readonly<Record<Verdict, DiagnosticSeverity>> = {
-  differs: DiagnosticSeverity.Error,
-  unread: DiagnosticSeverity.Information,
-  holds: DiagnosticSeverity.Warning,
+/** Undefined: not shown at all. A steady small difference of a claim that holds is a warning at most. */
+function severityOfClaim(verdict: Verdict, { severity = defaultSettings.severity }: DiagnosticContext): DiagnosticSeverity | undefined {
+  if (verdict === 'holds') return DiagnosticSeverity.Warning;
+  const shown = severity[verdict];
+  return shown === 'none' ? undefined : severityOf[shown];
+}
+
+/** What is an error of a declaration is shown as the settings say, what is none never as more than a warning. */
+function severityOfProblem(isError: boolean, { severity = defaultSettings.severity }: DiagnosticContext): DiagnosticSeverity | undefined {
+  const { declaration } = severity;
+  if (declaration === 'none') return undefined;
+  return isError ? severityOf[declaration] : (Math.max(severityOf[declaration], DiagnosticSeverity.Warning) as DiagnosticSeverity);
+}
+
+const severityOf: Readonly<Record<Exclude<ShownAs, 'none'>, DiagnosticSeverity>> = {
+  error: DiagnosticSeverity.Error,
+  warning: DiagnosticSeverity.Warning,
+  information: DiagnosticSeverity.Information,
+  hint: DiagnosticSeverity.Hint,
 };
 
 /**
@@ -27,6 +44,7 @@ const severityOf: Readonly<Record<Verdict, DiagnosticSeverity>> = {
 export function toDiagnostics(result: FileResult, context: DiagnosticContext): Diagnostic[] {
   const shown = new Map<string, Diagnostic>();
   const add = (diagnostic: Diagnostic): void => {
+    if (diagnostic.severity === undefined) return;
     const { start, end } = diagnostic.range;
     const key = JSON.stringify([start, end, diagnostic.code, diagnostic.message]);
     const before = shown.get(key);
@@ -42,7 +60,7 @@ export function toDiagnostics(result: FileResult, context: DiagnosticContext): D
     const elsewhere = problem.file !== result.file;
     add({
       range: elsewhere ? firstLine : toRange(problem.range),
-      severity: problem.severity === 'error' ? DiagnosticSeverity.Error : DiagnosticSeverity.Warning,
+      severity: severityOfProblem(problem.severity === 'error', context),
       code: problem.code,
       source: 'visviva',
       message: problem.message,
@@ -72,7 +90,7 @@ function ofFinding(file: string, claim: ReportClaim, finding: Finding, context: 
   related.push(toClaim(file, claim, context));
   return {
     range: elsewhere ? claimRange(file, claim, context) : toRange(finding.range),
-    severity: severityOf[claim.verdict],
+    severity: severityOfClaim(claim.verdict, context),
     code: finding.code,
     source: 'visviva',
     message: finding.message,
@@ -84,7 +102,7 @@ function ofFinding(file: string, claim: ReportClaim, finding: Finding, context: 
 function ofClaim(file: string, claim: ReportClaim, context: DiagnosticContext): Diagnostic {
   return {
     range: claimRange(file, claim, context),
-    severity: severityOf[claim.verdict],
+    severity: severityOfClaim(claim.verdict, context),
     code: claim.verdict,
     source: 'visviva',
     message:

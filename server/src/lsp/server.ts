@@ -1,6 +1,20 @@
-import { defaultSettings, readSettings, suggestRequest, visibleNotification, type Settings, type SuggestParams, type Suggestion, type VisibleParams } from '@visviva/shared';
+import {
+  defaultSettings,
+  readSettings,
+  suggestRequest,
+  themeNotification,
+  version,
+  visibleNotification,
+  type ClientOptions,
+  type Settings,
+  type SuggestParams,
+  type Suggestion,
+  type Theme,
+  type VisibleParams,
+} from '@visviva/shared';
 import {
   CodeActionKind,
+  CodeLensRefreshRequest,
   DidChangeConfigurationNotification,
   DidChangeWatchedFilesNotification,
   FileChangeType,
@@ -14,8 +28,8 @@ import {
   type InitializeResult,
 } from 'vscode-languageserver';
 import { TextDocument } from 'vscode-languageserver-textdocument';
-import { version } from '@visviva/shared';
 import { clock } from '../host/clock';
+import { isExcluded } from '../host/exclude';
 import { createDiskFiles } from '../host/files';
 import { pathOf } from '../host/paths';
 import type { Files, Service } from '../service/api';
@@ -27,8 +41,10 @@ import { plainText } from './hover';
 import { languageCapabilities, registerLanguageFeatures } from './language-features';
 import { OpenFiles } from './open-files';
 import { fromPosition, fromRange, toRange } from './ranges';
+import { withPictures } from './pictures';
 import { nearestSuggestion } from './suggest';
 import { toFlatSymbols, toSymbols } from './symbols';
+import { registerVisualFeatures, visualCapabilities } from './visual-features';
 
 /** Kinds of files whose change on disk can change a result. */
 export const watchedFiles = '**/*.{ts,tsx,mts,cts,js,jsx,mjs,cjs,htm,html,json,py,visviva}';
@@ -43,6 +59,8 @@ export function serve(connection: Connection, createService: (files: Files, fold
   let capabilities: ClientCapabilities = {};
   let settings: Settings = defaultSettings;
   let folders: string[] = [];
+  let options: ClientOptions = {};
+  let theme: Theme | undefined;
 
   const disk = createDiskFiles(
     () => folders,
@@ -59,20 +77,24 @@ export function serve(connection: Connection, createService: (files: Files, fold
     files,
     clock,
     settings: () => settings,
+    isExcluded: (file) => isExcluded(file, folders, settings.exclude),
     tracksVersions: () => capabilities.textDocument?.publishDiagnostics?.versionSupport === true,
   });
 
   connection.onInitialize((params: InitializeParams): InitializeResult => {
     capabilities = params.capabilities ?? {};
     settings = readSettings(params.initializationOptions);
+    options = (params.initializationOptions ?? {}) as ClientOptions;
+    theme = options.theme;
     folders = foldersOf(params);
     return {
       serverInfo: { name: 'visviva', version },
       capabilities: {
-        textDocumentSync: { openClose: true, change: TextDocumentSyncKind.Incremental },
+        textDocumentSync: { openClose: true, change: TextDocumentSyncKind.Incremental, save: true },
         hoverProvider: true,
         documentSymbolProvider: true,
         ...languageCapabilities,
+        ...visualCapabilities,
         codeActionProvider: { codeActionKinds: [CodeActionKind.QuickFix, CodeActionKind.RefactorRewrite] },
         workspace: { workspaceFolders: { supported: true, changeNotifications: true } },
       },
@@ -109,7 +131,11 @@ export function serve(connection: Connection, createService: (files: Files, fold
     if (given === undefined) return;
     const before = settings;
     settings = readSettings(given);
-    if (settings.enable !== before.enable || settings.timeLimit !== before.timeLimit) checker.requestAll();
+    if (JSON.stringify(settings) === JSON.stringify(before)) return;
+    checker.requestAll();
+    const { codeLens, inlayHint } = capabilities.workspace ?? {};
+    if (codeLens?.refreshSupport) void connection.sendRequest(CodeLensRefreshRequest.type);
+    if (inlayHint?.refreshSupport) void connection.languages.inlayHint.refresh();
   };
 
   connection.onDidChangeConfiguration(
@@ -129,6 +155,15 @@ export function serve(connection: Connection, createService: (files: Files, fold
     const open = files.get(document.uri);
     if (!open) return;
     service.update(open.file, document.getText());
+    const isNew = open.published === undefined;
+    if (settings.checkOn === 'save' && !isNew) return;
+    checker.request(open);
+    for (const dependent of files.dependents(open.file)) checker.request(dependent, dependentDelay);
+  });
+
+  documents.onDidSave(({ document }) => {
+    const open = files.get(document.uri);
+    if (!open || settings.checkOn !== 'save') return;
     checker.request(open);
     for (const dependent of files.dependents(open.file)) checker.request(dependent, dependentDelay);
   });
@@ -175,6 +210,17 @@ export function serve(connection: Connection, createService: (files: Files, fold
     snippets: () => capabilities.textDocument?.completion?.completionItem?.snippetSupport === true,
   });
 
+  registerVisualFeatures({
+    connection,
+    service,
+    files,
+    guarded,
+    budgetFor,
+    settings: () => settings,
+    hasPanel: () => options.panel === true,
+  });
+  connection.onNotification(themeNotification, (told: Theme) => void (theme = told));
+
   connection.onHover(
     guarded('hover', null, async ({ textDocument, position }, token) => {
       const open = files.get(textDocument.uri);
@@ -186,7 +232,7 @@ export function serve(connection: Connection, createService: (files: Files, fold
       const markdown = !formats || formats.includes('markdown');
       return {
         contents: markdown
-          ? { kind: 'markdown', value: hover.markdown }
+          ? { kind: 'markdown', value: theme ? await withPictures(hover, theme.text) : hover.markdown }
           : { kind: 'plaintext', value: plainText(hover.markdown) },
         range: toRange(hover.range),
       };

@@ -1,4 +1,4 @@
-import type { Problem, ReportClaim, ReportPosition, ReportRange } from '@visviva/shared';
+import type { PanelData, Problem, ReportClaim, ReportPosition, ReportRange } from '@visviva/shared';
 import type { Budget } from '../text/budget';
 
 /**
@@ -32,6 +32,12 @@ export interface Service {
   /** All that `hover` tells about a file, most particular first. */
   hovers(file: string, budget: Budget): Promise<readonly HoverItem[]>;
   symbols(file: string): Promise<readonly DocumentSymbol[]>;
+  /** What to say above each function that has claims. */
+  lenses(file: string, budget: Budget): Promise<readonly Lens[]>;
+  /** The derived expression of each claim that has a short one, for the end of the claim's line. */
+  inlays(file: string, budget: Budget): Promise<readonly { readonly position: ReportPosition; readonly text: string }[]>;
+  /** What the panel shows of the declaration or function at a place; formulas come as TeX. */
+  panel(file: string, position: ReportPosition, budget: Budget): Promise<Omit<PanelData, 'uri' | 'version'> | undefined>;
   /** Symbols of all files that declare something, whose name has the letters of the query in their order. */
   workspaceSymbols(query: string): Promise<readonly { readonly file: string; readonly symbol: DocumentSymbol; readonly system: string }[]>;
   /** What may be typed at a place of a declaration. */
@@ -65,6 +71,7 @@ export interface Service {
 
 export interface HoverItem {
   readonly markdown: string;
+  readonly formulas: Hover['formulas'];
   /** Where it is told, and the text that stands there. */
   readonly range: ReportRange;
   readonly text: string;
@@ -219,8 +226,19 @@ export interface Curve {
   readonly witness: number;
 }
 
+export interface Lens {
+  /** The function's name, or the declaration's where it stands above no function. */
+  readonly range: ReportRange;
+  readonly system: string;
+  readonly function: string;
+  /** `4 claims hold`, `1 of 4 claims differs: th''` */
+  readonly verdict: string;
+}
+
 export interface Hover {
   readonly markdown: string;
+  /** Pieces of the Markdown that can be shown as pictures instead, in order. */
+  readonly formulas: readonly { readonly markdown: string; readonly lines: readonly { readonly text: string; readonly tex: string }[] }[];
   readonly range: ReportRange;
 }
 

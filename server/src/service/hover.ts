@@ -2,7 +2,7 @@ import { findEquilibria } from '../comparison/equilibria';
 import type { ClaimResult } from '../comparison/subject';
 import { symbolText, type SymbolData } from '../expression/node';
 import { formatNumber, formatPair } from '../expression/print/number';
-import { equationText, text } from '../expression/print/text';
+import { equationText, symbolTex, tex, text } from '../expression/print';
 import { conserved, equationsOfMotion } from '../mechanics/equations';
 import { stateText } from '../diagnosis/describe';
 import { contains, type Span } from '../text/span';
@@ -26,14 +26,14 @@ export async function hoverAt(
   const near = document.blocks.some((b) => contains(b.block.span, offset) || contains(subjectSpan(b) ?? b.block.span, offset));
   if (!near) return undefined;
   const told = tellable(document, await check()).find((t) => contains(t.span, offset));
-  return told && { markdown: told.markdown(), range: document.lines.range(told.shown) };
+  return told && { ...told.content(), range: document.lines.range(told.shown) };
 }
 
 /** Everything that `hoverAt` may tell. */
 export function allHovers(document: Document, outcomes: readonly BlockOutcome[]): HoverItem[] {
   const { lines, text: source } = document;
   return tellable(document, outcomes).map((t) => ({
-    markdown: t.markdown(),
+    ...t.content(),
     range: lines.range(t.span),
     text: source.slice(t.span.start, t.span.end),
     shown: lines.range(t.shown),
@@ -43,8 +43,10 @@ export function allHovers(document: Document, outcomes: readonly BlockOutcome[])
 interface Told {
   readonly span: Span;
   readonly shown: Span;
-  markdown(): string;
+  content(): Content;
 }
+
+type Content = Pick<Hover, 'markdown' | 'formulas'>;
 
 function tellable(document: Document, outcomes: readonly BlockOutcome[]): Told[] {
   const out: Told[] = [];
@@ -56,17 +58,20 @@ function tellable(document: Document, outcomes: readonly BlockOutcome[]): Told[]
       out.push({
         span,
         shown: span,
-        markdown: () => `\`${binding.code}\` is **${text(binding.meaning)}** of \`${o.placed.block.name}\`, ${how}.${symbolNote(o, binding.meaning.data)}`,
+        content: () => ({
+          formulas: [],
+          markdown: `\`${binding.code}\` is **${text(binding.meaning)}** of \`${o.placed.block.name}\`, ${how}.${symbolNote(o, binding.meaning.data)}`,
+        }),
       });
     }
   }
   for (const o of outcomes) {
     const { block } = o.placed;
     const name = nameSpan(o);
-    let made: string | undefined;
-    const markdown = () => (made ??= describeOutcome(o));
-    out.push({ span: block.span, shown: block.nameSpan, markdown });
-    if (name) out.push({ span: name, shown: name, markdown });
+    let made: Content | undefined;
+    const content = () => (made ??= describeOutcome(o));
+    out.push({ span: block.span, shown: block.nameSpan, content });
+    if (name) out.push({ span: name, shown: name, content });
   }
   return out;
 }
@@ -88,22 +93,30 @@ function symbolNote(o: BlockOutcome, data: unknown): string {
   return parts.length > 0 ? ` ${parts.join(' ')}` : '';
 }
 
-function describeOutcome(o: BlockOutcome): string {
+type Formulas = Hover['formulas'][number];
+
+function describeOutcome(o: BlockOutcome): Content {
   const { block, subject } = o.placed;
   const lines: string[] = [`**${block.name}**${subject.kind === 'file' ? '' : ` · \`${subjectName(subject)}\``}`, ''];
+  const formulas: Formulas[] = [];
   const derived = o.entry?.derived;
-  if (!derived) return `${lines[0]}\n\n${o.problems[0]?.message ?? 'not resolved'}`;
+  if (!derived) return { markdown: `${lines[0]}\n\n${o.problems[0]?.message ?? 'not resolved'}`, formulas };
   const { system } = derived;
+  const add = (heading: string, content: readonly Formulas['lines'][number][]): void => {
+    const markdown = ['```text', ...content.map((c) => c.text), '```'].join('\n');
+    lines.push(heading, '', markdown, '');
+    formulas.push({ markdown, lines: content });
+  };
   if (system.blocked) lines.push(system.blocked.reason, '');
   else {
-    lines.push('Equations of motion', '', '```text');
-    for (const e of equationsOfMotion(derived)) {
-      const equation = equationText(e.left, e.right, { limit: LONGEST });
-      lines.push(equation.length > 2 * LONGEST ? `(the equation for ${e.coordinate.name} is too long to show here)` : equation);
-    }
-    lines.push('```', '');
-    const constant = conserved(derived).map((c) => `${c.name} = ${text(c.expr)} (${c.why})`);
-    if (constant.length > 0) lines.push('Constant along the motion', '', '```text', ...constant, '```', '');
+    const limit = { limit: LONGEST };
+    add('Equations of motion', equationsOfMotion(derived).map((e) => {
+      const equation = equationText(e.left, e.right, limit);
+      if (equation.length > 2 * LONGEST) return { text: `(the equation for ${e.coordinate.name} is too long to show here)`, tex: '' };
+      return { text: equation, tex: `${tex(e.left, limit)} = ${tex(e.right, limit)}` };
+    }));
+    const constant = conserved(derived).map((c) => ({ text: `${c.name} = ${text(c.expr)} (${c.why})`, tex: `${conservedTex(c.name)} = ${tex(c.expr)}` }));
+    if (constant.length > 0) add('Constant along the motion', constant);
     const rest = findEquilibria(derived).map((e) => equilibriumText(derived, e));
     if (rest.length > 0) lines.push('Equilibria at rest', '', '```text', ...rest, '```', '');
   }
@@ -111,9 +124,17 @@ function describeOutcome(o: BlockOutcome): string {
   if (claims.length > 0) lines.push('Claims', '', ...claims.map((c) => `- ${claimLine(o, c)}`), '');
   const bindings = bindingLines(o);
   if (bindings.length > 0) lines.push('Read as', '', ...bindings.map((b) => `- ${b}`), '');
+  const units = [...system.coordinates, ...system.parameters, ...system.inputs].filter((d) => d.unit).map((d) => `${d.name} [${d.unit!}]`);
+  if (units.length > 0) lines.push(`Units: ${units.join(', ')}`, '');
   const remarks = system.coordinates.filter((c) => c.remark).map((c) => c.remark!);
   if (remarks.length > 0) lines.push(`Convention: ${[...new Set(remarks)].join('; ')}`, '');
-  return lines.join('\n').trim();
+  return { markdown: lines.join('\n').trim(), formulas };
+}
+
+/** `p[th]` is p with an index. */
+function conservedTex(name: string): string {
+  const index = /^p\[(.+)\]$/.exec(name)?.[1];
+  return index === undefined ? name : `p_{${symbolTex({ name: index, role: 'coordinate', order: 0 })}}`;
 }
 
 function claimLine(o: BlockOutcome, claim: ClaimResult): string {

@@ -12,6 +12,8 @@ import { deriveSystems } from './derive';
 import { fileDetails } from './details';
 import { editingService } from './editing';
 import { allHovers, hoverAt } from './hover';
+import { inlaysOf, lensesOf } from './lenses';
+import { outcomeAt, panelOf } from './panel/panel';
 import { ResultCache } from './result-cache';
 import { rewritesAt } from './rewrites';
 import { suggestedComments } from './suggested-comments';
@@ -80,6 +82,23 @@ export function createService(files: Files): Service {
     async symbols(file) {
       const document = await load(file);
       return document ? symbolsOf(document) : [];
+    },
+
+    async lenses(file, budget) {
+      const document = await load(file);
+      return document && document.blocks.length > 0 ? lensesOf(document, await checkDocument(project, document, budget)) : [];
+    },
+
+    async inlays(file, budget) {
+      const document = await load(file);
+      return document && document.blocks.length > 0 ? inlaysOf(document, await checkDocument(project, document, budget)) : [];
+    },
+
+    async panel(file, position, budget) {
+      const document = await load(file);
+      if (!document || document.blocks.length === 0) return undefined;
+      const outcome = outcomeAt(await checkDocument(project, document, budget), document.lines.offset(position));
+      return outcome && panelOf(document, outcome);
     },
 
     async derive(file, as, budget) {

@@ -70,7 +70,7 @@ export class ScriptedService implements Service {
 
   async hover(file: string): Promise<Hover | undefined> {
     if (this.textOf(file).includes('throw')) throw new Error('the scripted failure');
-    return { markdown: '**crane** has `th\'\'`', range: rangeAt(this.textOf(file), 0, 3) };
+    return { markdown: '**crane** has `th\'\'`', range: rangeAt(this.textOf(file), 0, 3), formulas: [] };
   }
 
   async symbols(file: string): Promise<readonly DocumentSymbol[]> {
@@ -78,6 +78,16 @@ export class ScriptedService implements Service {
     const leaf: DocumentSymbol = { name: 'th', detail: 'rad', kind: 'coordinate', range, nameRange: range, children: [] };
     return [{ name: 'crane', detail: 'system', kind: 'system', range, nameRange: range, children: [leaf] }];
   }
+
+  async lenses(): Promise<readonly []> {
+    return [];
+  }
+
+  async inlays(): Promise<readonly []> {
+    return [];
+  }
+
+  async panel(): Promise<undefined> {}
 
   async workspaceSymbols(): Promise<readonly []> {
     return [];

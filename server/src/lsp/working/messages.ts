@@ -2,7 +2,8 @@
 
 /** Work of the other thread: a method of the service, or what follows a check. */
 export type Work =
-  | 'prepare' | 'check' | 'rewrites' | 'hover' | 'hovers' | 'definition' | 'references' | 'rename' | 'derive' | 'compare';
+  | 'prepare' | 'check' | 'rewrites' | 'hover' | 'hovers' | 'definition' | 'references' | 'rename' | 'derive' | 'compare'
+  | 'lenses' | 'inlays' | 'panel';
 
 export type ToWorker =
   | { readonly kind: 'folders'; readonly folders: readonly string[] }

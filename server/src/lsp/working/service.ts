@@ -59,7 +59,7 @@ export function inAnotherThread(local: Service, folders: () => readonly string[]
       const [start, end] = [lines.offset(item.range.start), lines.offset(item.range.end)];
       if (at < start || at > end) continue;
       if (text.slice(start, end) !== item.text) return undefined;
-      return { markdown: isOld ? `${item.markdown}\n\n${OLD}` : item.markdown, range: item.shown };
+      return { formulas: item.formulas, markdown: isOld ? `${item.markdown}\n\n${OLD}` : item.markdown, range: item.shown };
     }
     return undefined;
   };
@@ -123,6 +123,9 @@ export function inAnotherThread(local: Service, folders: () => readonly string[]
     definition: (file, position, budget) => call('definition', [file, position], budget),
     references: (file, position, budget) => call('references', [file, position], budget),
     rename: (file, position, name, budget) => call('rename', [file, position, name], budget),
+    lenses: (file, budget) => call('lenses', [file], budget),
+    inlays: (file, budget) => call('inlays', [file], budget),
+    panel: (file, position, budget) => call('panel', [file, position], budget),
     derive: (file, as, budget) => call('derive', [file, as], budget),
     compare: (file, against, system, budget) => call('compare', [file, against, system], budget),
     settled: async () => void (await Promise.all(keeping)),
