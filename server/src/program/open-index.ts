@@ -23,6 +23,7 @@ export interface OpenPlace {
 export function openPlace(m: Machine, scope: Scope, e: Expression & { kind: 'index' }): OpenPlace | undefined {
   const { root, indices } = indexChain(e);
   if (indices.every((i) => i.kind === 'number' || i.kind === 'string' || i.kind === 'slice')) return undefined;
+  if (!indices.every(isPlain)) return undefined;
   const keys: Expr[] = [];
   let isOpen = m.naming.openRead(root, indices) !== undefined;
   m.quiet++;
@@ -38,6 +39,26 @@ export function openPlace(m: Machine, scope: Scope, e: Expression & { kind: 'ind
   }
   m.quiet--;
   return isOpen && keys.length === indices.length ? { root, indices, keys } : undefined;
+}
+
+/** An index that does nothing else, so that it may be worked out twice. */
+function isPlain(e: Expression): boolean {
+  switch (e.kind) {
+    case 'number':
+    case 'string':
+    case 'slice':
+    case 'name':
+    case 'self':
+      return true;
+    case 'member':
+      return isPlain(e.object);
+    case 'unary':
+      return isPlain(e.operand);
+    case 'binary':
+      return isPlain(e.left) && isPlain(e.right);
+    default:
+      return false;
+  }
 }
 
 /** A claim counts samples as the pass does that it is about, whose end may go on to the next. */
