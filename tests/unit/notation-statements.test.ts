@@ -158,3 +158,21 @@ describe('errors', () => {
   test('one bad equation does not hide the next', () => expect(statements('reads a, b = x')).toEqual(['reads a = ?; b = x']));
   test('one bad statement does not hide the next', () => expect(statements('T = (', 'V = b')).toEqual(['T = ?', 'V = b']));
 });
+
+describe('parameters by the name of a part', () => {
+  reads('point bob: mass mass at (x, y)', 'point bob: mass at (x, y)');
+  reads('point bob: mass 2*mass at (x, y)', 'point bob: 2*mass at (x, y)');
+  reads('point 1: mass m at (x, y)', 'point 1: m at (x, y)');
+  reads('body rod: mass mass, inertia inertia, centre (x, y), angle angle', 'body rod: mass mass, inertia inertia, centre (x, y), angle angle');
+  reads('spring stiffness, rest rest between A and B', 'spring stiffness rest rest A -- B');
+  reads('spring stiffness k, rest length length between A and B', 'spring k rest length A -- B');
+  reads('damper coefficient*mass between A and B', 'damper coefficient*mass A -- B');
+
+  test('a part without its formula is still missing', () => {
+    expect(errors('point bob: mass at (x, y)')).not.toEqual([]);
+    expect(errors('body rod: mass inertia J')).not.toEqual([]);
+  });
+  test.each(['coordinates x[i] [m] for i in 1..3', 'parameters m[i] > 0 for i in 1..3', 'point p[i]: mass m at (x[i], 0) for i in 1..3'])('%s', (line) =>
+    expect(errors(line)).toEqual(['for: families are written `over i in 1..n`']),
+  );
+});

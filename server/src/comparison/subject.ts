@@ -261,6 +261,11 @@ export function readSubject(request: SubjectRequest, reads: readonly ReadsBindin
 export function readsBindings(block: Block, derived: Derived, errors: FormulaError[]): ReadsBinding[] {
   const out: ReadsBinding[] = [];
   const bind = (left: Formula, right: Formula): void => {
+    if (left.kind === 'binary' || left.kind === 'unary' || left.kind === 'number') {
+      const message = `\`reads\` takes a variable, field, element or call of the code, not the formula \`${printFormula(left)}\`: say what each name in it means`;
+      errors.push({ code: 'syntax', message, span: left.span });
+      return;
+    }
     if ((left.kind === 'list' || left.kind === 'tuple') && (right.kind === 'list' || right.kind === 'tuple')) {
       if (left.items.length !== right.items.length) {
         errors.push({

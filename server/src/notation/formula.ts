@@ -5,6 +5,7 @@ import { childrenOf, grow, hole, LEVEL, MOST_DEPTH, overflow } from './building'
 import { parsePhrase } from './phrases';
 import { parseFamilies } from './family';
 import type { BinaryOperator, Formula } from './tree';
+import { NOUNS } from './words';
 
 export const FUNCTION_NAMES: ReadonlySet<string> = new Set(
   ('sin cos tan asin acos atan atan2 sinh cosh tanh exp log sqrt abs sign min max dot cross norm transpose det sum floor').split(' '),
@@ -106,7 +107,10 @@ function infixAt(c: Cursor): Infix | undefined {
 function juxtaposed(c: Cursor): boolean {
   const token = c.peek();
   if (token.newline) return false;
-  if (token.kind === 'name') return !c.mode.stops.has(token.text) && token.text !== 'and' && token.text !== 'or' && token.text !== 'in';
+  if (token.kind === 'name') {
+    if (token.text === 'for' && c.isWord('in', 2)) return false;
+    return !c.mode.stops.has(token.text) && token.text !== 'and' && token.text !== 'or' && token.text !== 'in';
+  }
   return token.kind === 'number' || token.kind === 'string' || c.is('(');
 }
 
@@ -118,9 +122,24 @@ function startsOperand(c: Cursor): boolean {
     case 'operator':
       return ['(', '[', '-', '+', '!', '~'].includes(token.text) || (c.mode.code && ['*', '&'].includes(token.text));
     case 'name':
-      return !c.mode.stops.has(token.text) && token.text !== 'and' && token.text !== 'or';
+      return (!c.mode.stops.has(token.text) || isOwnName(c)) && token.text !== 'and' && token.text !== 'or';
     default:
       return true;
+  }
+}
+
+/** True where a word of the statement stands as a name of the declaration: a formula is expected, and none follows it. */
+export function isOwnName(c: Cursor): boolean {
+  if (!NOUNS.has(c.peek().text)) return false;
+  const next = c.peek(1);
+  if (next.newline) return true;
+  switch (next.kind) {
+    case 'name':
+      return c.mode.stops.has(next.text) || next.text === 'and' || next.text === 'between' || next.text === 'rest';
+    case 'operator':
+      return next.text === '[' ? next.gap === 0 : next.text !== '(';
+    default:
+      return next.kind !== 'number' && next.kind !== 'string';
   }
 }
 

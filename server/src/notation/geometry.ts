@@ -1,5 +1,6 @@
 import { PHYSICS, type Cursor } from './cursor';
 import { hole } from './building';
+import { isOwnName } from './formula';
 import { type Content, reading, skipLabel, withStops } from './content';
 import type { Formula } from './tree';
 
@@ -11,8 +12,10 @@ const BODY_PARTS: Readonly<Record<string, 'mass' | 'inertia' | 'centre' | 'angle
 function parseName(c: Cursor, word: string, firstPart: string): string {
   const token = c.peek();
   if (token.kind !== 'name') {
-    if (!c.eat(':')) return '';
-    return '';
+    const numbered = token.kind === 'number' && c.is(':', 1);
+    if (numbered) c.take();
+    c.eat(':');
+    return numbered ? token.text : '';
   }
   if (token.text === firstPart && !c.is(':', 1)) return '';
   let colon = 1;
@@ -87,7 +90,7 @@ interface Link {
 
 function parseLink(c: Cursor, word: 'spring' | 'damper', example: string): Link {
   skipLabel(c);
-  c.eatWord(word === 'spring' ? 'stiffness' : 'coefficient');
+  if (!isOwnName(c)) c.eatWord(word === 'spring' ? 'stiffness' : 'coefficient');
   const mode = withStops(PHYSICS, 'between', 'rest', 'and');
   const value = reading(c, mode);
   let rest: Formula | undefined;
@@ -98,7 +101,7 @@ function parseLink(c: Cursor, word: 'spring' | 'damper', example: string): Link 
     if (c.is(',') && (c.isWord('rest', 1) || c.isWord('between', 1))) c.take();
     if (!rest && c.isWord('rest')) {
       const at = c.take().span;
-      if (c.isWord('length')) c.take();
+      if (c.isWord('length') && !isOwnName(c)) c.take();
       rest = reading(c, mode);
       if (word === 'damper') c.error('a damper has no rest length', at);
     } else if (!from && c.eatWord('between')) {

@@ -22,7 +22,7 @@ export function parseSymbols(c: Cursor, what: string): SymbolItem[] {
   const families = indexNames(c);
   for (;;) {
     const token = c.peek();
-    if (token.kind !== 'name' || (token.text === 'over' && c.peek(1).kind === 'name')) {
+    if (token.kind !== 'name' || (isFamily(c) && c.peek(1).kind === 'name')) {
       if (items.length === 0 || token.kind !== 'end') {
         c.error(`a name is expected ${items.length ? 'after the comma' : `after \`${what}\``}, but there is ${c.describeNext()}`, token.kind === 'end' ? c.lastSpan : token.span);
       } else c.error('a name is expected after the comma', c.lastSpan);
@@ -42,7 +42,7 @@ export function parseSymbols(c: Cursor, what: string): SymbolItem[] {
       continue;
     }
     const next = c.peek();
-    if (next.kind === 'end' || c.isWord('over')) break;
+    if (next.kind === 'end' || isFamily(c)) break;
     // One item per line needs no commas.
     if (next.newline && next.kind === 'name') continue;
     if (next.kind === 'name') {
@@ -67,9 +67,14 @@ export function parseSymbols(c: Cursor, what: string): SymbolItem[] {
 function indexNames(c: Cursor): Set<string> {
   const names = new Set<string>();
   for (let k = 0; k < 400 && c.peek(k).kind !== 'end'; k++) {
-    if (c.isWord('in', k + 2) && c.peek(k + 1).kind === 'name' && (c.isWord('over', k) || (names.size && c.is(',', k)))) names.add(c.peek(k + 1).text);
+    if (c.isWord('in', k + 2) && c.peek(k + 1).kind === 'name' && (c.isWord('over', k) || c.isWord('for', k) || (names.size && c.is(',', k)))) names.add(c.peek(k + 1).text);
   }
   return names;
+}
+
+/** `over i in 1..n`, or as other notations have it: the statement's end says what to write. */
+function isFamily(c: Cursor): boolean {
+  return c.isWord('over') || (c.isWord('for') && c.isWord('in', 2));
 }
 
 function skipToComma(c: Cursor): boolean {

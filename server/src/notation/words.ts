@@ -44,3 +44,6 @@ export const SINGULARS: ReadonlyMap<string, string> = new Map([
 export const LONG_WORDS: ReadonlySet<string> = new Set(STATEMENT_WORDS.map((w) => w.word).filter((w) => w.length >= 4));
 
 export const ENERGY_WORDS: ReadonlySet<string> = new Set(['T', 'V', 'L', 'D']);
+
+/** Words of a statement that parameters are often named by as well: `point bob: mass mass at (x, y)`. */
+export const NOUNS: ReadonlySet<string> = new Set('mass inertia centre center angle rotation rest length stiffness coefficient'.split(' '));

@@ -187,7 +187,7 @@ function callObject(m: Machine, scope: Scope, callee: Value & { kind: 'object' }
   if (data.kind !== 'generic') return unknownCall(m, args, place, words);
   const { generic } = data;
   const known = fallbackOf(m, generic);
-  if (known?.kind === 'function' || known?.kind === 'class') return callValue(m, scope, known, undefined, args, place, words);
+  if (known?.kind === 'function' || known?.kind === 'class') return callValue(m, scope, known, self, args, place, words);
   if (args.length === 0) return getter(m, callee, place);
   const shown = args.map((a) => argumentWords(m, a.value));
   if (!shown.includes(undefined)) {
@@ -335,7 +335,9 @@ export function runBody(m: Machine, scope: Scope, base: Machine['store'], place:
   for (const name of hoistedNames(node.body)) if (!scope.variables.has(name)) declare(m, scope, name, undefined);
   for (const r of node.results ?? []) if (!scope.variables.has(r.name)) declare(m, scope, r.name, undefined);
   const { exits, normal } = m.execute(scope, node.body);
+  const atEnd = m.store;
   const endings: Ending[] = exits.map((x) => endingOf(m, scope, x, base));
+  m.store = atEnd;
   if (normal || endings.length === 0) {
     endings.push({ guard: m.graph.true, changes: m.store.changesSince(base), value: resultsOf(m, scope) });
   }

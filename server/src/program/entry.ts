@@ -1,7 +1,7 @@
 import { classInfo } from './classes';
 import { evaluate } from './expressions';
 import type { ClassNode, FunctionNode, Parameter, Pattern, TypeNote } from './form';
-import { genericAt } from './generics';
+import { addAlias, genericAt } from './generics';
 import type { Machine } from './machine';
 import { addTopLevel } from './modules';
 import { factsOf } from './facts';
@@ -41,8 +41,16 @@ function receiver(m: Machine, module: Module, around: Scope, node: FunctionNode,
   if (known && !info) return known;
   const place = m.place(around, info ? info.node.nameSpan : node.nameSpan);
   if (info) return genericAt(m, 'this', place, { info });
-  const record = factsOf(module.program).recordOf.get(node);
-  return genericAt(m, 'this', place, record ? { fallback: () => evaluate(m, around, record), constant: true } : {});
+  const thing = factsOf(module.program).holderOf(node);
+  if (thing?.kind === 'name' && around.find(thing.name)) {
+    const value = evaluate(m, around, thing);
+    // What is done to `this` is done to the thing by its name.
+    if (value.kind === 'object' && m.store.data(value.id).kind === 'generic') {
+      addAlias(m, value, 'this');
+      return value;
+    }
+  }
+  return genericAt(m, 'this', place, thing ? { fallback: () => evaluate(m, around, thing), constant: true } : {});
 }
 
 function enterParameter(m: Machine, scope: Scope, parameter: Parameter): void {

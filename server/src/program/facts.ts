@@ -1,4 +1,4 @@
-import type { ClassNode, Expression, FunctionNode, Pattern, Program } from './form';
+import type { ClassNode, Expression, FunctionNode, Pattern, Program, Statement } from './form';
 import { isConstantLike, patternNames, placesOf } from './scan';
 
 /** What a whole file says here and there of its names and members, gathered in one walk over it. */
@@ -14,8 +14,8 @@ export interface Facts {
   /** Names of things whose members or elements are written. */
   readonly writtenThings: ReadonlySet<string>;
   readonly functions: readonly FunctionNode[];
-  /** The record literal a function is a method of. */
-  readonly recordOf: ReadonlyMap<FunctionNode, Expression>;
+  /** What a function is a method of: a record literal, or the variable that holds it or is given the function. */
+  holderOf(node: FunctionNode): Expression | undefined;
   /** What each name is assigned, without an operator; undefined where it is augmented too. */
   readonly values: ReadonlyMap<string, readonly Expression[] | undefined>;
 }
@@ -49,7 +49,8 @@ function gather(program: Program): Facts {
   const usedAsThings = new Set<string>();
   const writtenThings = new Set<string>();
   const functions: FunctionNode[] = [];
-  const recordOf = new Map<FunctionNode, Expression>();
+  const holders = new Map<FunctionNode, Expression>();
+  const variables = new Map<Expression, Expression>();
   const values = new Map<string, Expression[] | undefined>();
 
   const onAssign = (e: Expression & { kind: 'assign' }, context: Context): void => {
@@ -61,8 +62,10 @@ function gather(program: Program): Facts {
       else if (!values.has(name)) values.set(name, [e.value]);
       else values.get(name)?.push(e.value);
     }
+    if (e.target.kind === 'name' && !e.op) variables.set(e.value, { ...e.target });
     for (const place of placesOf(e.target)) {
       if (place.kind === 'member') {
+        if (e.value.kind === 'function' && !e.op && place.object.kind === 'name') holders.set(e.value.node, place.object);
         const own = place.object.kind === 'self';
         const write = own ? context : { owner: undefined, inConstructor: context.inConstructor };
         const known = memberWrites.get(place.name);
@@ -90,11 +93,12 @@ function gather(program: Program): Facts {
     }
     const n = node as Expression & { readonly target?: Pattern };
     if (n.kind === 'number' || n.kind === 'string') continue;
+    if ((n.kind as string) === 'declare' && n.target?.kind === 'name' && 'value' in n) variables.set(n.value as Expression, { ...n.target });
     if (n.kind === 'assign' && 'target' in n) onAssign(n, context);
     else if ((n.kind === 'member' || n.kind === 'index') && 'object' in n) {
       if (n.object.kind === 'name') usedAsThings.add(n.object.name);
     } else if (n.kind === 'record' && 'fields' in n) {
-      for (const f of n.fields) if ('kind' in f && f.kind === 'field' && f.value.kind === 'function') recordOf.set(f.value.node, n);
+      for (const f of n.fields) if ('kind' in f && f.kind === 'field' && f.value.kind === 'function') holders.set(f.value.node, n);
     } else if (isFunction(n)) {
       functions.push(n);
     } else if (n.kind === 'function' && 'node' in n) {
@@ -120,7 +124,14 @@ function gather(program: Program): Facts {
       contexts.push(context);
     }
   }
-  return { assigned, computed, memberWrites, usedAsThings, writtenThings, functions, recordOf, values };
+  const holderOf = (node: FunctionNode): Expression | undefined => {
+    const holder = holders.get(node);
+    const variable = holder && variables.get(holder);
+    // A variable that is given other things too need not hold this one.
+    const isSole = variable?.kind === 'name' && (values.get(variable.name)?.length ?? (assigned.has(variable.name) ? 2 : 0)) <= 1;
+    return isSole ? variable : holder;
+  };
+  return { assigned, computed, memberWrites, usedAsThings, writtenThings, functions, holderOf, values };
 }
 
 function isFunction(n: object): n is FunctionNode {
@@ -170,3 +181,25 @@ export function digestOf(program: Program): string {
   }
   return digest;
 }
+
+/**
+ * Members that are given to things by a statement of their own among `statements` (`config.total = a + b`) and by nothing
+ * else in the program, by the thing's name.
+ */
+export function givenOnce(program: Program, statements: readonly Statement[]): ReadonlyMap<string, ReadonlyMap<string, Expression>> {
+  let given = givenOf.get(statements);
+  if (given) return given;
+  given = new Map();
+  for (const s of statements) {
+    const e = s.kind === 'expression' ? s.value : undefined;
+    if (e?.kind !== 'assign' || e.op || e.target.kind !== 'place') continue;
+    const { target } = e.target;
+    if (target.kind !== 'member' || target.object.kind !== 'name' || factsOf(program).memberWrites.get(target.name)?.length !== 1) continue;
+    const members = given.get(target.object.name) ?? new Map<string, Expression>();
+    given.set(target.object.name, members.set(target.name, e.value));
+  }
+  givenOf.set(statements, given);
+  return given;
+}
+
+const givenOf = new WeakMap<readonly Statement[], Map<string, Map<string, Expression>>>();

@@ -5,6 +5,7 @@ import { typeFacts, typeOfMember } from './type-notes';
 import type { Meaning } from './reading';
 import { isUnread, unread, type Assigned, type Generic, type GenericData, type ObjectValue, type Scalar, type Value } from './values';
 import type { Expr } from '../expression/node';
+import type { Rational } from '../expression/rational';
 import type { Place } from '../text/span';
 
 /** Things from outside the code, and what they mean. */
@@ -14,7 +15,7 @@ export function genericAt(
   m: Machine,
   path: string,
   place: Place,
-  more: { aliases?: readonly string[] } & Partial<Pick<Generic, 'info' | 'typed' | 'fallback' | 'assigned' | 'constant' | 'origin'>> = {},
+  more: { aliases?: readonly string[] } & Partial<Pick<Generic, 'info' | 'typed' | 'fallback' | 'assigned' | 'later' | 'constant' | 'origin' | 'computed'>> = {},
 ): ObjectValue {
   const { aliases = [], ...rest } = more;
   const generic: Generic = { path, aliases: [...aliases], place, ...rest };
@@ -41,7 +42,8 @@ export function childOf(m: Machine, id: number, generic: Generic, key: string, p
   if (!child) {
     const [path, ...aliases] = childNames(generic, key);
     const inherited = fallback ?? fallbackMember(m, generic, key);
-    const from = { ...typeFacts(m, typeOfMember(generic, key)), ...(generic.origin === undefined ? {} : { origin: generic.origin }) };
+    const { origin, computed } = generic;
+    const from = { ...typeFacts(m, typeOfMember(generic, key)), ...(origin === undefined ? {} : { origin }), ...(computed ? { computed } : {}) };
     const more = { ...(inherited ? { fallback: inherited } : {}), ...(constant ? { constant } : {}), ...(assigned ? { assigned } : {}) };
     child = genericAt(m, path!, place, { aliases, ...from, ...more });
     children.set(k, child);
@@ -66,6 +68,8 @@ export function hasWritesBelow(m: Machine, id: number): boolean {
 }
 
 function fallbackMember(m: Machine, generic: Generic, key: string): Generic['fallback'] {
+  const later = generic.later?.get(key);
+  if (later) return later;
   if (!generic.fallback) return undefined;
   const whole = generic.fallback;
   return () => {
@@ -138,7 +142,7 @@ export function meaningOf(m: Machine, generic: Generic): Scalar | ReturnType<typ
   for (const path of paths) {
     const item = familyItem(m, path);
     if (item) return { kind: 'scalar', expr: item, place };
-    const name = throughGetters(path) ? lastName(path) : undefined;
+    const name = throughGetters(path) && !generic.computed ? lastName(path) : undefined;
     const expr = name === undefined ? undefined : m.naming.agree(name, path, generic.path, place);
     if (expr) {
       if (generic.assigned) m.believe(generic.path, { meaning: { kind: 'scalar', expr }, how: 'name', assigned: generic.assigned });
@@ -248,6 +252,14 @@ export function structure(m: Machine, id: number): void {
     });
     return;
   }
+  const count = countRead(m, paths);
+  if (count !== undefined) {
+    generic.structured = true;
+    const base = m.request.program.indexBase;
+    const list = Array.from({ length: count }, (_, k) => childOf(m, id, generic, String(k + base), generic.place));
+    m.atRoot(() => m.store.set(id, { kind: 'list', items: list, array: false }));
+    return;
+  }
   const value = fallbackOf(m, generic);
   if (value?.kind === 'object' && value.id !== id) {
     const initial = m.store.data(value.id);
@@ -257,6 +269,19 @@ export function structure(m: Machine, id: number): void {
       m.atRoot(() => m.store.set(id, shape));
     }
   }
+}
+
+const MOST_ITEMS = 1000;
+
+/** How many items a list has by `reads bodies.length = 2`. */
+function countRead(m: Machine, paths: readonly string[]): number | undefined {
+  for (const path of paths) {
+    const read = m.naming.meaningOf(`${path}.length`) ?? m.naming.meaningOf(`len(${path})`);
+    if (read?.kind !== 'scalar' || read.expr.op !== 'number') continue;
+    const n = (read.expr.data as Rational).toNumber();
+    if (Number.isInteger(n) && n >= 0 && n <= MOST_ITEMS) return n;
+  }
+  return undefined;
 }
 
 /** The same shape, in which numbers that are not built of declared symbols become generic by their path. */
@@ -281,7 +306,9 @@ function generalise(m: Machine, id: number, generic: Generic, depth: number) {
     return { ...data, items: data.items.map((v, k) => one(v, String(k + base))) };
   }
   if (data.kind === 'record') {
-    return { ...data, members: new Map([...data.members].map(([k, v]) => [k, one(v, k)])) };
+    const members = new Map([...data.members].map(([k, v]) => [k, one(v, k)]));
+    for (const [k, value] of generic.later ?? []) if (!members.has(k)) members.set(k, childOf(m, -id, generic, k, generic.place, { fallback: value, constant: true }));
+    return { ...data, members };
   }
   return data;
 }

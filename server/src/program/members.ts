@@ -33,6 +33,9 @@ export function readMember(m: Machine, module: Module, object: Value, key: strin
       if (key === 'length') return m.scalar(m.graph.number(object.value.length), place);
       return methodOf(m, module, 'string', object, key, place);
     case 'scalar':
+      // What is not there on this way through the function has no parts that are.
+      if (object.expr === m.graph.nan) return object;
+      return methodOf(m, module, 'scalar', object, key, place);
     case 'condition':
       return methodOf(m, module, 'scalar', object, key, place);
     case 'nothing':
@@ -171,6 +174,7 @@ export function readElement(m: Machine, module: Module, object: Value, given: Va
   if (key.kind === 'unread') return key;
   if (object.kind === 'choice') return withEach(m, object, place, (v) => readElement(m, module, v, key, place));
   if (key.kind === 'choice') return withEach(m, key, place, (v) => readElement(m, module, object, v, place));
+  if (object.kind === 'scalar' && object.expr === m.graph.nan) return object;
   const known = keyOf(m, key, place);
   if (known === undefined) {
     const open = scalarOf(m, key);

@@ -1,5 +1,6 @@
 import { settle } from './settle';
 import type { Expr } from '../expression/node';
+import { reachable } from '../expression/reach';
 import type { Place } from '../text/span';
 import { childOf, numberOf } from './generics';
 import { DEAD, type Machine } from './machine';
@@ -87,6 +88,7 @@ function mergeData(m: Machine, condition: Expr, a: Data, b: Data, id: number, pl
     return { ...a, items: a.items.map((v, k) => mergeValues(m, condition, v, b.items[k]!, place)) };
   }
   if (a.kind === 'record' && b.kind === 'record') {
+    if (m.isFrameNames(id)) return { ...a, members: mergeLocals(m, condition, a.members, b.members, place) };
     const members = mergeMembers(m, condition, a.members, b.members, () => NOTHING, place);
     return { ...a, members };
   }
@@ -110,6 +112,23 @@ function mergeMembers(
   const members = new Map<string, Value>();
   for (const key of new Set([...a.keys(), ...b.keys()])) {
     members.set(key, mergeValues(m, condition, a.get(key) ?? missing(key), b.get(key) ?? missing(key), place));
+  }
+  return members;
+}
+
+/**
+ * Locals by name: one that is declared on one branch only is asked for there. States of the other branch do not vote on it;
+ * where a flag from outside chooses the branch, it is the flag for which there is such a local.
+ */
+function mergeLocals(m: Machine, condition: Expr, a: Map<string, Value>, b: Map<string, Value>, place: Place): Map<string, Value> {
+  const members = new Map<string, Value>();
+  const isPartial = a.size !== b.size || [...a.keys()].some((key) => !b.has(key));
+  const isOpen = isPartial && m.free.size > 0 && reachable([condition]).some((e) => m.free.has(e));
+  const none: Value = { kind: 'scalar', expr: m.graph.nan, place };
+  for (const key of new Set([...a.keys(), ...b.keys()])) {
+    const [x, y] = [a.get(key), b.get(key)];
+    if (isOpen && (!x || !y)) members.set(key, (x ?? y)!);
+    else members.set(key, mergeValues(m, condition, x ?? none, y ?? none, place));
   }
   return members;
 }

@@ -5,8 +5,9 @@ import { genericAt } from './generics';
 import type { Library, Meaning } from './library';
 import type { Machine } from './machine';
 import { libraryMember, readMember } from './members';
+import { pathOf } from './paths';
 import { bindPattern } from './patterns';
-import { factsOf, firstMade } from './facts';
+import { factsOf, firstMade, givenOnce } from './facts';
 import { patternNames } from './scan';
 import { Scope, type Frame, type Module } from './scope';
 import { enumValue } from './statements';
@@ -122,16 +123,29 @@ function topLevelValue(m: Machine, module: Module, scope: Scope, name: string, v
   const changes = mutable && factsOf(module.program).assigned.has(name);
   if (!changes && value) {
     const v = initial();
-    if (v && v.kind !== 'object') return arrive(m, name, v, arrival(scope, name, place));
+    if (v && v.kind !== 'object') {
+      const settled = arrive(m, name, v, arrival(scope, name, place));
+      // What an unknown function gave is a thing of which nothing is known, set up before the function is entered.
+      if (settled.kind !== 'unread' || m.stopped || value.kind !== 'call') return settled;
+      return genericAt(m, name, place, { computed: true, origin: `what \`${pathOf(value.callee) ?? 'the call'}(...)\` gives is not known` });
+    }
     if (v?.kind === 'object') {
       const data = m.store.data(v.id);
       if (data.kind === 'generic') return arrive(m, name, v, arrival(scope, name, place));
+      // An empty list is filled elsewhere: it is what \`reads\` says.
+      if (data.kind === 'list' && data.items.length === 0 && (m.naming.hasRead(name) || m.naming.hasReadBelow(name))) return genericAt(m, name, place);
       if (!isState(module, name) && data.kind !== 'broken') return arrive(m, name, v, arrival(scope, name, place));
-      return genericAt(m, name, place, { fallback: () => v, constant: true });
+      return genericAt(m, name, place, { fallback: () => v, constant: true, ...givenLater(m, module, scope, name) });
     }
   }
   let first: Value | undefined;
   return genericAt(m, name, place, { ...typeFacts(m, note && { note, scope }), fallback: () => (first ??= initial()) });
+}
+
+/** The members that statements beside a thing's declaration give it. */
+function givenLater(m: Machine, module: Module, scope: Scope, name: string): { readonly later?: ReadonlyMap<string, () => Value> } {
+  const given = givenOnce(module.program, scope.frame.node?.body ?? module.program.body).get(name);
+  return given ? { later: new Map([...given].map(([key, e]) => [key, () => m.evaluate(scope, e)])) } : {};
 }
 
 /** True where members or elements of a top-level thing are written somewhere. */

@@ -138,6 +138,9 @@ function toOutput(m: Machine, value: Value, place: Place | undefined, isComputed
     case 'nothing':
       return lost('there is no value here');
     case 'choice': {
+      if (value.whenTrue.kind === 'nothing' || value.whenFalse.kind === 'nothing') {
+        return lost('one way through the function ends without a value here; say with `assume` which way is meant');
+      }
       const a = toOutput(m, value.whenTrue, place, isComputed, depth + 1);
       const b = toOutput(m, value.whenFalse, place, isComputed, depth + 1);
       return chosen(m, value.condition, a, b, place);
@@ -169,6 +172,12 @@ function chosen(m: Machine, condition: Expr, a: OutputValue, b: OutputValue, pla
   }
   if (a.kind === 'list' && b.kind === 'list' && a.items.length === b.items.length) {
     return { kind: 'list', items: a.items.map((x, k) => chosen(m, condition, x, b.items[k]!, x.place)), place };
+  }
+  if (a.kind === 'scalar' && b.kind === 'list' && a.expr === m.graph.nan) {
+    return { kind: 'list', items: b.items.map((y) => chosen(m, condition, a, y, place)), place: b.place };
+  }
+  if (a.kind === 'list' && b.kind === 'scalar' && b.expr === m.graph.nan) {
+    return { kind: 'list', items: a.items.map((x) => chosen(m, condition, x, b, place)), place: a.place };
   }
   return { kind: 'unread', reason: 'a value whose shape differs between two branches', place };
 }

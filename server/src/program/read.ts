@@ -185,11 +185,13 @@ function runScript(m: Machine, module: Module, scope: Scope): void {
   const base = m.store;
   m.store = base.child();
   const { exits, normal } = execute(m, scope, module.program.body);
+  const atEnd = m.store;
   const endings: Ending[] = exits.map((x) => {
     m.store = x.store;
     if (x.kind === 'throw') m.die();
     return { guard: x.guard, changes: m.store.changesSince(base), value: NOTHING };
   });
+  m.store = atEnd;
   if (normal || endings.length === 0) endings.push({ guard: m.graph.true, changes: m.store.changesSince(base), value: NOTHING });
   const merged = mergeEndings(m, base, endings, { file: module.file, span: { start: 0, end: 0 } });
   m.store = base;

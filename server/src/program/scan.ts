@@ -157,7 +157,14 @@ function assignedIn(s: Statement): string[] {
   const names: string[] = [];
   for (const n of nodesOf(s, false)) {
     const e = n as Expression;
-    if (e.kind === 'assign' && 'target' in e) names.push(...patternNames(e.target));
+    if (e.kind === 'assign' && 'target' in e) names.push(...patternNames(e.target), ...placesOf(e.target).flatMap(rootName));
   }
   return names;
+}
+
+/** `config` of `config.total`. */
+function rootName(place: Expression): string[] {
+  let at = place;
+  while (at.kind === 'member' || at.kind === 'index') at = at.object;
+  return at.kind === 'name' ? [at.name] : [];
 }

@@ -153,10 +153,14 @@ export interface Generic {
   readonly fallback?: () => Value | undefined;
   /** What the code itself says it is: the constructor of its class, the body of a getter. */
   readonly assigned?: () => Assigned | undefined;
+  /** Members its file gives it once, after it is made: `config.total = ...` beside `const config = {...}`. */
+  readonly later?: ReadonlyMap<string, () => Value>;
   /** True where nothing changes it, so that a literal initial value is its value. */
   readonly constant?: boolean;
   /** Where it comes from, in words that begin a sentence, if that is why nothing says what it means. */
   readonly origin?: string;
+  /** True for what a computation gave that is not known: the names of its parts say nothing of what they are. */
+  readonly computed?: boolean;
   /** True once it was looked at whether it is a list. */
   structured?: boolean;
 }

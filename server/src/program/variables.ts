@@ -58,6 +58,8 @@ export function arrivalOf(scope: Scope, name: string, place: Place): Arrival {
  */
 export function arrive(m: Machine, name: string, value: Value, arrival: Arrival): Value {
   if (m.callSite) return value;
+  // What can't be read is a thing from outside where `reads` says what its parts are.
+  if (value.kind === 'unread' && !m.stopped && m.naming.hasReadBelow(name)) return genericAt(m, name, arrival.place);
   if (value.kind === 'object') {
     if (meansAnother(m, value, name)) return genericAt(m, name, arrival.place);
     addAlias(m, value, name);

@@ -19,6 +19,8 @@ export interface Context {
   readonly callsEval: boolean;
   /** The base of the class written with prototypes whose functions are being converted. */
   base: string | undefined;
+  /** Parameters that are sketches of a drawing library where the conversion stands, with the members that are set on each. */
+  sketches: Map<string, ReadonlySet<string>>;
   /** Where the syntax errors are, in ascending order. */
   readonly errorsAt: readonly number[];
   /** Names under `exports.` or `module.exports.` that the file assigns at its top. */

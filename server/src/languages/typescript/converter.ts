@@ -15,6 +15,7 @@ export class Converter implements Context {
   readonly hasPrototypes: boolean;
   readonly callsEval: boolean;
   base: string | undefined = undefined;
+  sketches = new Map<string, ReadonlySet<string>>();
   private types: Map<string, ts.InterfaceDeclaration | ts.TypeAliasDeclaration> | undefined;
 
   constructor(

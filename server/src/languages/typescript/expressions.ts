@@ -9,6 +9,7 @@ import { literalValue } from './numbers';
 import { BINARY, LOGICAL } from './operators';
 import { superCall } from './prototype-classes';
 import { record } from './records';
+import { sketchMember } from './sketch-instance';
 
 const K = ts.SyntaxKind;
 
@@ -26,7 +27,7 @@ export function expression(c: Context, node: ts.Expression): Expression {
       spine.push(at);
       at = bare(at.left);
     } else if (
-      (ts.isPropertyAccessExpression(at) && exportedName(c, at) === undefined) ||
+      (ts.isPropertyAccessExpression(at) && memberName(c, at) === undefined) ||
       ts.isElementAccessExpression(at) ||
       (ts.isCallExpression(at) && at.expression.kind !== K.ImportKeyword)
     ) {
@@ -37,6 +38,11 @@ export function expression(c: Context, node: ts.Expression): Expression {
   let value = leaf(c, at);
   for (let link = spine.pop(); link; link = spine.pop()) value = extend(c, link, value);
   return value;
+}
+
+/** A member that goes by one name: `exports.rates`, and `p.sin` of a sketch. */
+function memberName(c: Context, node: ts.PropertyAccessExpression): string | undefined {
+  return exportedName(c, node) ?? sketchMember(c, node);
 }
 
 function isPlainBinary(node: ts.BinaryExpression): boolean {
@@ -84,7 +90,7 @@ function leaf(c: Context, node: ts.Expression): Expression {
   if (ts.isStringLiteral(node) || ts.isNoSubstitutionTemplateLiteral(node)) {
     return { kind: 'string', value: node.text, span };
   }
-  if (ts.isPropertyAccessExpression(node)) return { kind: 'name', name: exportedName(c, node)!, span };
+  if (ts.isPropertyAccessExpression(node)) return { kind: 'name', name: memberName(c, node)!, span };
   if (ts.isBinaryExpression(node)) {
     if (node.operatorToken.kind === K.CommaToken) return sequence(c, node, span);
     return assignment(c, node, span);

@@ -2,6 +2,7 @@ import ts from 'typescript';
 import type { FunctionNode, Parameter, Statement } from '../../program/form';
 import { type Context, type FunctionSyntax, type Name, hasModifier, nameOf, propertyName, spanOf } from './context';
 import { valueNamed } from './naming';
+import { insideOf } from './sketch-instance';
 import { typeNote } from './types';
 
 const K = ts.SyntaxKind;
@@ -16,7 +17,7 @@ export function functionNode(c: Context, node: FunctionSyntax, name?: Name): Fun
     name: label.text,
     nameSpan: label.span,
     parameters: node.parameters.filter((p) => !isThisParameter(p)).map((p) => parameter(c, p)),
-    body: body(c, node),
+    body: insideOf(c, node, () => body(c, node)),
     ...(opaque ? { opaque } : {}),
     inheritsSelf: ts.isArrowFunction(node),
     span: spanOf(c, node),

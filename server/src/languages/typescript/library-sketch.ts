@@ -18,9 +18,11 @@ const BARE: ReadonlyMap<string, string> = new Map([
 ]);
 
 export function bareName(name: string, program: Program): string | { readonly unread: string } | undefined {
-  const path = BARE.get(name);
+  // The parser makes one name of `p.sin`, where `p` is the sketch.
+  const own = name.slice(name.indexOf('.') + 1);
+  const path = /^(?:module|exports)\./.test(name) ? undefined : BARE.get(own);
   if (path === undefined) return undefined;
-  if (ANGLES.has(name) && countsDegrees(program)) {
+  if (ANGLES.has(own) && countsDegrees(program)) {
     return { unread: `\`${name}\` counts in the unit that \`angleMode\` sets, which may not be radians` };
   }
   return path;
@@ -35,13 +37,16 @@ function countsDegrees(program: Program): boolean {
     known = false;
     for (const n of nodesOf(program.body)) {
       const e = n as Expression;
-      if (e.kind !== 'call' || !('callee' in e) || e.callee.kind !== 'name' || e.callee.name !== 'angleMode') continue;
-      const unit = e.args[0]?.value;
-      if (unit?.kind !== 'name' || unit.name !== 'RADIANS') known = true;
+      if (e.kind !== 'call' || !('callee' in e) || !isNamed(e.callee, 'angleMode')) continue;
+      if (!isNamed(e.args[0]?.value, 'RADIANS')) known = true;
     }
     degrees.set(program, known);
   }
   return known;
+}
+
+function isNamed(e: Expression | undefined, name: string): boolean {
+  return e?.kind === 'name' && (e.name === name || e.name.endsWith(`.${name}`));
 }
 
 const degree = (g: Graph): Expr => g.divide(g.pi, g.number(180));

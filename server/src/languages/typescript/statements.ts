@@ -1,7 +1,7 @@
 import ts from 'typescript';
 import type { Pattern, Statement } from '../../program/form';
 import type { Span } from '../../text/span';
-import { type Context, hasModifier, isFunctionSyntax, nameOf, nameText, opaque, spanOf } from './context';
+import { type Context, bare, hasModifier, isFunctionSyntax, nameOf, nameText, opaque, spanOf } from './context';
 import { enumeration } from './enums';
 import { exportAssignment, exportDeclaration, exportList, exportedValue, importDeclaration, importEquals } from './modules';
 import { namespaceValue } from './namespaces';
@@ -98,8 +98,9 @@ export function declarations(c: Context, node: ts.VariableDeclarationList, span:
   return node.declarations.flatMap((d): Statement[] => {
     const own = node.declarations.length === 1 ? span : spanOf(c, d);
     const label = ts.isIdentifier(d.name) ? nameOf(c, d.name) : undefined;
-    const exported = d.initializer ? exportedValue(c, d.initializer, own) : undefined;
-    const value = d.initializer ? { value: exported?.value ?? valueNamed(c, d.initializer, label) } : {};
+    const initial = d.initializer && !scoped && label ? withoutItself(d.initializer, label.text) : d.initializer;
+    const exported = initial ? exportedValue(c, initial, own) : undefined;
+    const value = initial ? { value: exported?.value ?? valueNamed(c, initial, label) } : {};
     const target = c.binding(d.name);
     const scope = scoped ? 'block' : 'function';
     if (target.kind === 'opaque') {
@@ -113,6 +114,14 @@ export function declarations(c: Context, node: ts.VariableDeclarationList, span:
     const made: Statement = { kind: 'declare', mutable, scope, target, ...value, ...(note ? { note } : {}), span: own };
     return exported ? [...exported, made] : [made];
   });
+}
+
+/** `var Sim = Sim || {}`: where no other script made it before, the name has no value yet. */
+function withoutItself(initializer: ts.Expression, name: string): ts.Expression {
+  const at = bare(initializer);
+  if (!ts.isBinaryExpression(at) || (at.operatorToken.kind !== K.BarBarToken && at.operatorToken.kind !== K.QuestionQuestionToken)) return initializer;
+  const left = bare(at.left);
+  return ts.isIdentifier(left) && nameText(left.text) === name ? at.right : initializer;
 }
 
 function plain(c: Context, node: ts.Statement, span: Span): Statement[] {

@@ -1,11 +1,12 @@
 import type { Meaning } from '../../../program/library';
 import { parseTypeScript } from '../parse';
+import { REACT } from './hooks';
 import { GL_MATRIX } from './lists';
 import { P5, THREE, VICTOR } from './objects';
 
-/** Packages whose vectors are read by what they mean: by the name they are imported under, or are known by in a page. */
+/** Packages that are read by what they mean, most of them for their vectors: by the name they are imported under, or are known by in a page. */
 
-const TEXTS: Readonly<Record<string, string>> = { three: THREE, p5: P5, victor: VICTOR, 'gl-matrix': GL_MATRIX };
+const TEXTS: Readonly<Record<string, string>> = { three: THREE, p5: P5, victor: VICTOR, 'gl-matrix': GL_MATRIX, react: REACT };
 
 /** Global name -> package, and the export it is where it is not the whole of it. */
 const GLOBALS: ReadonlyMap<string, readonly [string, string?]> = new Map([
@@ -14,6 +15,8 @@ const GLOBALS: ReadonlyMap<string, readonly [string, string?]> = new Map([
   ['createVector', ['p5', 'createVector']],
   ['Victor', ['victor', 'default']],
   ['glMatrix', ['gl-matrix']],
+  ['React', ['react']],
+  ...['useRef', 'useCallback', 'useMemo'].map((n): [string, [string, string]] => [n, ['react', n]]),
   ...['vec2', 'vec3', 'vec4', 'mat2', 'mat3'].map((n): [string, [string, string]] => [n, ['gl-matrix', n]]),
 ]);
 
