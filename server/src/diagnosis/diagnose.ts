@@ -2,11 +2,11 @@ import type { FindingCode } from '@visviva/shared';
 import type { SubjectRequest, SubjectResult } from '../comparison/subject';
 import type { Span } from '../text/span';
 import type { Candidate } from './search/candidates/candidate';
-import { trimmed, type Edit } from './search/edits';
+import { composed, trimmed, type Edit } from './search/edits';
 import { Search } from './search/search';
 import { findDeclarationChange } from './declaration';
 import { unreadCandidates } from './search/unread';
-import { isProgress, isRepair, type Recheck } from './verify';
+import { isNoWorse, isProgress, isRepair, type Recheck } from './verify';
 
 /** One thing that is wrong with the code of a function. */
 export interface Fault {
@@ -30,6 +30,7 @@ export interface Diagnosis {
 const MOST_TRIES = 8;
 const MOST_UNTRIED = 8;
 const MOST_FIRST_STEPS = 3;
+const MOST_HALVES = 5;
 
 /** Looks for what is wrong with a function whose claims differ, and for an edit that makes them right. */
 export async function diagnose(request: SubjectRequest, result: SubjectResult, source: string, recheck: Recheck): Promise<Diagnosis | undefined> {
@@ -46,12 +47,14 @@ export async function diagnose(request: SubjectRequest, result: SubjectResult, s
   if (single) return repaired([single], source, undefined);
   // Where one edit of the code does not do, one of the declaration may.
   const declaration = findDeclarationChange(request.derived, result.claims);
-  const steps = await inSteps(request, search, result, recheck);
-  if (steps) return repaired(steps, source, declaration);
+  const steps = await inSteps(request, distinct(search.partial()).slice(0, MOST_FIRST_STEPS), isProgress, result, source, recheck);
+  if (steps) return { ...steps, declaration };
   for (const { first, second } of search.pairs().slice(0, MOST_TRIES)) {
     if (!request.budget.look()) break;
     if (await verify([...first.edits, ...second.edits])) return repaired([first, second], source, declaration);
   }
+  const halves = await inSteps(request, search.halves().slice(0, MOST_HALVES), isNoWorse, result, source, recheck);
+  if (halves) return { ...halves, declaration };
   return { faults: [], edits: undefined, place: search.places[0]?.span, declaration };
 }
 
@@ -73,44 +76,39 @@ async function firstOf(
   return undefined;
 }
 
-/** Two faults that different claims show: one is mended first, then the other is searched for in what that gives. */
-async function inSteps(request: SubjectRequest, search: Search, result: SubjectResult, recheck: Recheck): Promise<Candidate[] | undefined> {
-  for (const first of distinct(search.partial()).slice(0, MOST_FIRST_STEPS)) {
+type IsWorth = (before: SubjectResult, after: SubjectResult) => boolean;
+
+/** Two faults: one is mended first, then the other is searched for in what that gives. */
+async function inSteps(request: SubjectRequest, firsts: readonly Candidate[], isWorth: IsWorth, result: SubjectResult, source: string, recheck: Recheck): Promise<Diagnosis | undefined> {
+  for (const first of firsts) {
     if (!request.budget.look()) return undefined;
     const half = await recheck(first.edits);
-    if (!half || !isProgress(result, half.result)) continue;
+    if (!half || !isWorth(result, half.result)) continue;
     const next = Search.start(half.request, half.result, half.source);
     if (!next) continue;
-    // The second edit is made in the text before the first one, so that both can be told together.
-    const both = (c: Candidate): Candidate | undefined => moved(c, first.edits);
-    const shifted = [...distinct(next.known()).slice(0, MOST_TRIES), ...distinct(next.open()).slice(0, MOST_TRIES)].flatMap((c) => both(c) ?? []);
-    const second = await firstOf(request, shifted, (edits) => isRepair(result, [...first.edits, ...edits], recheck));
-    if (second) return [first, second];
+    const second = await firstOf(request, [...distinct(next.known()).slice(0, MOST_TRIES), ...distinct(next.open()).slice(0, MOST_TRIES)], (edits) =>
+      isRepair(result, composed(source, first.edits, edits), recheck),
+    );
+    if (second) return together(first, second, source);
   }
   return undefined;
 }
 
-/** A candidate found in an edited text, with its places in the text before; undefined where the edits meet. */
-function moved(c: Candidate, before: readonly Edit[]): Candidate | undefined {
-  const back = (span: Span): Span | undefined => {
-    let shift = 0;
-    let grown = 0;
-    for (const e of [...before].sort((a, b) => a.span.start - b.span.start)) {
-      const by = e.text.length - (e.span.end - e.span.start);
-      const start = e.span.start + shift;
-      const end = start + e.text.length;
-      if (span.end <= start && span.start < start) break;
-      if (span.start >= end) shift += by;
-      else if (span.start <= start && span.end >= end && !(span.start === start && span.end === end)) grown += by;
-      else return undefined;
-    }
-    return { start: span.start - shift, end: span.end - shift - grown };
+/** Two edits made one after the other: told as two faults, offered as edits of the text as it is. */
+function together(first: Candidate, second: Candidate, source: string): Diagnosis {
+  const edits = composed(source, first.edits, second.edits);
+  const back = (span: Span): Span => {
+    // Where the second fault lies in the text before the first edit: shifted, or all of what both edits change.
+    const marked = composed(source, first.edits, [{ span, text: '' }]);
+    return marked.find((e) => !first.edits.some((f) => f.span.start === e.span.start && f.span.end === e.span.end))?.span ?? first.site.span;
   };
-  const edits = c.edits.map((e) => ({ text: e.text, span: back(e.span) }));
-  const span = back(c.place ?? c.site.span) ?? back(c.site.span);
-  // An edit around the first one would bring back what that one took away.
-  const safe = c.edits.every((e, i) => edits[i]!.span && e.span.end - e.span.start === edits[i]!.span!.end - edits[i]!.span!.start);
-  return span && safe ? { ...c, place: span, edits: edits.map((e) => ({ text: e.text, span: e.span! })) } : undefined;
+  const fault = (c: Candidate, span: Span): Fault => ({ code: c.code, span, old: c.old, new: c.new });
+  return {
+    faults: [fault(first, first.place ?? first.site.span), fault(second, back(second.place ?? second.site.span))],
+    edits: edits.map((e) => trimmed(e, source)),
+    place: undefined,
+    declaration: undefined,
+  };
 }
 
 function repaired(candidates: readonly Candidate[], source: string, declaration: string | undefined): Diagnosis {

@@ -23,6 +23,14 @@ const everyPairs = Number(argument('pairs') ?? 6);
 const all = process.argv.includes('--all');
 const show = all || process.argv.includes('--show');
 
+// What is measured is what the bundle was made of, whatever is committed meanwhile.
+const commit = (() => {
+  try {
+    return execFileSync('git', ['rev-parse', '--short', 'HEAD'], { encoding: 'utf8' }).trim();
+  } catch {
+    return 'unknown';
+  }
+})();
 const single: Outcome[] = [];
 const pairs: Outcome[] = [];
 let functions = 0;
@@ -87,13 +95,6 @@ function somePairs(mutations: readonly Mutation[]): Mutation[][] {
   return out;
 }
 
-const commit = (() => {
-  try {
-    return execFileSync('git', ['rev-parse', '--short', 'HEAD'], { encoding: 'utf8' }).trim();
-  } catch {
-    return 'unknown';
-  }
-})();
 const run: Run = { single, pairs, functions, languages, alarms, every, commit, date: new Date().toISOString().slice(0, 10) };
 const text = resultsText(run);
 console.log(text);

@@ -100,6 +100,35 @@ export function applyEdits(text: string, edits: readonly Edit[]): string {
   return out;
 }
 
+/**
+ * Edits made one after the other, as edits of the text before both; those that meet become one.
+ * @param second edits of the text that the first ones give
+ */
+export function composed(source: string, first: readonly Edit[], second: readonly Edit[]): Edit[] {
+  const middle = applyEdits(source, first);
+  let shift = 0;
+  const made = [...first]
+    .sort((a, b) => a.span.start - b.span.start)
+    .map((e) => {
+      const start = e.span.start + shift;
+      const by = e.text.length - (e.span.end - e.span.start);
+      shift += by;
+      return { start, end: start + e.text.length, by };
+    });
+  const clusters: { start: number; end: number }[] = [];
+  for (const span of [...made, ...second.map((e) => e.span)].sort((a, b) => a.start - b.start || a.end - b.end)) {
+    const last = clusters.at(-1);
+    if (last && span.start <= last.end) last.end = Math.max(last.end, span.end);
+    else clusters.push({ start: span.start, end: span.end });
+  }
+  return clusters.map(({ start, end }) => {
+    const before = made.filter((m) => m.end < start).reduce((t, m) => t + m.by, 0);
+    const until = made.filter((m) => m.start <= end).reduce((t, m) => t + m.by, 0);
+    const inside = second.filter((e) => start <= e.span.start && e.span.end <= end).map((e) => ({ text: e.text, span: { start: e.span.start - start, end: e.span.end - start } }));
+    return { span: { start: start - before, end: end - until }, text: applyEdits(middle.slice(start, end), inside) };
+  });
+}
+
 export function overlap(a: readonly Edit[], b: readonly Edit[]): boolean {
   return a.some((x) => b.some((y) => x.span.start < y.span.end && y.span.start < x.span.end));
 }

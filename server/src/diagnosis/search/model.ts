@@ -33,10 +33,12 @@ export interface Target {
 
 /** The function in numbers: its claims, the value at every place, and what becomes of the claims when a place changes. */
 export class Model {
+  private readonly shifts = new Map<Expr, Float64Array>();
+
   private constructor(
     readonly derived: Derived,
     readonly tagged: TaggedReading,
-    readonly targets: readonly Target[],
+    private now: readonly Target[],
     readonly n: number,
     private readonly tape: TrialTape,
     private readonly first: TrialTape,
@@ -90,6 +92,47 @@ export class Model {
       targets.push({ index: known[k]![0], found: pairs[k]!.found, expected, base, scale, differs });
     }
     return new Model(derived, tagged, targets, n, tape, first, values, state);
+  }
+
+  get targets(): readonly Target[] {
+    return this.now;
+  }
+
+  /** Runs `use` as if a change had been made. */
+  during<T>(change: Change, use: () => T): T {
+    const columns = change.map(({ evaluation, value }) => {
+      const read = this.value(evaluation.read)!;
+      return { symbol: evaluation.tag, values: value.map((x, s) => x - read[s]!) };
+    });
+    const wide = (n: number, blocks: number) => columns.map(({ symbol, values }) => ({ symbol, values: repeated(values, n, blocks)! }));
+    const before = this.now;
+    return this.tape.during(wide(this.n, BLOCKS), () =>
+      this.first.during(wide(FIRST_STATES, FIRST_BLOCKS), () =>
+        this.values.during(columns, () => {
+          this.now = before.map((t) => {
+            const base = this.tape.baseOf(t.found).slice(0, this.n);
+            return { ...t, base, differs: !base.every((x, s) => Math.abs(x - t.expected[s]!) <= CLOSE * t.scale[s]!) };
+          });
+          for (const c of columns) this.shifts.set(c.symbol, c.values);
+          const result = use();
+          this.shifts.clear();
+          this.now = before;
+          return result;
+        }),
+      ),
+    );
+  }
+
+  /** Whether a place can make a difference to a claim. */
+  reaches(site: Site, target: Target): boolean {
+    return this.evaluations(site).some((e) => this.tape.reaches(e.tag, target.found));
+  }
+
+  /** The value at a place, with the change that is being supposed. */
+  valueAt(e: Evaluation): Float64Array | undefined {
+    const read = this.value(e.read);
+    const shift = this.shifts.get(e.tag);
+    return read && shift ? read.map((x, s) => x + shift[s]!) : read;
   }
 
   /** Evaluations of a place that some claim depends on; empty where none does. */

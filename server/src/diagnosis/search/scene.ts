@@ -14,7 +14,7 @@ export function makeScene(request: SubjectRequest, model: Model, map: SourceMap,
   const valuesOf = (e: Expression, evaluations: readonly Evaluation[]): readonly Float64Array[] | undefined => {
     const own = model.tagged.evaluations.get(map.byNode.get(e)!);
     if (own?.length === evaluations.length) {
-      const values = own.map((x) => model.value(x.read));
+      const values = own.map((x) => model.valueAt(x));
       return values.every((v) => v !== undefined) ? values : undefined;
     }
     const literal = literalValue(e);

@@ -23,6 +23,10 @@ import { MODES, readTagged, type Evaluation } from './tagged';
 
 /** Operations of trials; some seconds. */
 const MOST_WORK = 600_000;
+const MOST_PAIR_WORK = 600_000;
+const MOST_HALVES = 12;
+/** Two edits are to be small ones. */
+const DEAREST_HALF = 2.3;
 
 const BASIC: readonly Maker[] = [signs, assignments, operators, drops, groupings, brackets, names, constants, functions, powers];
 
@@ -128,6 +132,41 @@ export class Search {
     return findPairs(this.model, this.all, (c) => changeOf(this.model, c), this.request.budget);
   }
 
+  /**
+   * First halves of two edits: with each of them supposed, some place is found that one more edit mends. Those with the
+   * likeliest second half come first.
+   */
+  halves(): Candidate[] {
+    const { model } = this;
+    const found: { first: Candidate; cost: number }[] = [];
+    const from = model.work;
+    for (const first of distinctEffects(model, this.all.filter((c) => c.values && c.cost <= DEAREST_HALF).sort(byCost))) {
+      if (model.work - from > MOST_PAIR_WORK || found.length >= MOST_HALVES || !this.request.budget.look()) break;
+      const cost = model.during(changeOf(model, first), () => this.secondCost(first));
+      if (cost !== undefined) found.push({ first, cost: first.cost + cost });
+    }
+    return found.sort((a, b) => a.cost - b.cost).map((f) => f.first);
+  }
+
+  private secondCost(first: Candidate): number | undefined {
+    const { model } = this;
+    const wrong = model.targets.filter((t) => t.differs);
+    let best: number | undefined;
+    for (const site of this.needs.keys()) {
+      const evaluations = model.evaluations(site);
+      if (evaluations.length !== 1 || site === first.site || !wrong.every((t) => model.reaches(site, t))) continue;
+      const needed = solvePlace(model, site, evaluations);
+      if (needed.kind !== 'values') continue;
+      const spot = this.spotOf(site, needed.need);
+      for (const make of this.makers) {
+        make(this.scene, spot, (c) => {
+          if (c.values && c.cost <= DEAREST_HALF && c.cost < (best ?? Infinity) && agree(c.values[0]!, needed.need)) best = c.cost;
+        });
+      }
+    }
+    return best;
+  }
+
   /** Bounded by work, so that what is found does not depend on how fast the machine is. */
   private get mayGoOn(): boolean {
     return this.model.work < MOST_WORK && this.request.budget.look();
@@ -171,9 +210,22 @@ export class Search {
   }
 
   private valuesOf(evaluations: readonly Evaluation[]): Float64Array[] | undefined {
-    const values = evaluations.map((e) => this.model.value(e.read));
+    const values = evaluations.map((e) => this.model.valueAt(e));
     return values.every((v) => v?.every(Number.isFinite)) ? (values as Float64Array[]) : undefined;
   }
+}
+
+/** Of edits that do the same to the claims, the first. */
+function distinctEffects(model: Model, candidates: readonly Candidate[]): Candidate[] {
+  const seen = new Set<string>();
+  const out: Candidate[] = [];
+  model.firstLook(candidates.map((c) => changeOf(model, c)), (k, found) => {
+    const key = model.targets.map((t) => Array.from(found(t), (x) => x.toPrecision(7)).join()).join(';');
+    if (seen.has(key) || key.includes('NaN')) return;
+    seen.add(key);
+    out.push(candidates[k]!);
+  });
+  return out;
 }
 
 function byCost(a: Candidate, b: Candidate): number {

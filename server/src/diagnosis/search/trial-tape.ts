@@ -14,6 +14,7 @@ export class TrialTape {
   private readonly e: Float64Array;
   private readonly base: Float64Array;
   private readonly users = new Map<Expr, Int32Array>();
+  private readonly reached = new Map<Expr, ReadonlySet<Expr>>();
   /** Operations done in trials so far, all states of one counted once. */
   work = 0;
 
@@ -75,6 +76,26 @@ export class TrialTape {
       if (node.op !== 'component') this.restore(this.slot.get(node)!, this.n * (node.op === 'solve' ? (node.data as number) : 1));
     }
     return result;
+  }
+
+  /** Runs `use` as if the unknowns were these from the beginning. */
+  during<T>(settings: readonly { readonly symbol: Expr; readonly values: Float64Array }[], use: () => T): T {
+    const known = settings.filter((s) => this.slot.has(s.symbol));
+    const before = this.base.slice();
+    for (const { symbol, values } of known) this.v.set(values, this.slot.get(symbol)!);
+    for (const i of this.merged(known.map((k) => k.symbol))) this.evaluate(i);
+    this.base.set(this.v);
+    const result = use();
+    this.base.set(before);
+    this.v.set(before);
+    return result;
+  }
+
+  /** Whether a node depends on an unknown. */
+  reaches(symbol: Expr, node: Expr): boolean {
+    let known = this.reached.get(symbol);
+    if (!known) this.reached.set(symbol, (known = new Set(Array.from(this.usersOf(symbol), (i) => this.nodes[i]!))));
+    return known.has(node);
   }
 
   private restore(at: number, length: number): void {

@@ -1,5 +1,6 @@
 import type { Rational } from '../../../expression/rational';
-import { Binding, bindingOf, bracket, replaceSite } from '../edits';
+import { Binding, bindingOf, bracket, replaceSite, type Edit } from '../edits';
+import type { Site } from '../sites';
 import type { Maker, Scene, Spot } from './candidate';
 
 /** A constant in place of a number, or as a factor of a term. */
@@ -13,15 +14,18 @@ export const constants: Maker = (scene, spot, give) => {
       if (x === undefined || Math.abs(x - now) < 1e-12) continue;
       const nice = writeNice(x, scene, node.text);
       if (!nice) continue;
+      // A factor of 1 is not written.
+      const without = nice.value === 1 ? withoutFactor(site, scene.source) : undefined;
       give({
         site,
-        edits: [replaceSite(site, scene.source, nice.text, nice.binding)],
+        edits: [without?.edit ?? replaceSite(site, scene.source, nice.text, nice.binding)],
         code: 'factor',
+        place: site.span,
         cost: 1.1 + 0.1 * nice.size,
         values: values.map((v) => new Float64Array(v.length).fill(nice.value)),
         label: `number ${nice.text}`,
-        old: text,
-        new: nice.text,
+        old: without?.old ?? text,
+        new: without?.new ?? nice.text,
       });
     }
     return;
@@ -49,6 +53,21 @@ export const constants: Maker = (scene, spot, give) => {
     });
   }
 };
+
+/** `x` for `2 * x`, `x * 2` or `x / 2`, in words and as an edit that takes the number and its operator away. */
+function withoutFactor({ parent, span, role }: Site, source: string): { edit: Edit; old: string; new: string } | undefined {
+  const p = parent?.node;
+  if (p?.kind !== 'binary' || (p.op !== '*' && !(p.op === '/' && role === 'right'))) return undefined;
+  const other = role === 'left' ? p.right : p.left;
+  const gap = role === 'left' ? { start: span.start, end: p.opSpan.end } : { start: p.opSpan.start, end: span.end };
+  // Brackets between the number and its operator would lose their partner.
+  if (!/^[\s\w.*/]*$/.test(source.slice(gap.start, gap.end))) return undefined;
+  const more = role === 'left' ? /^\s*/.exec(source.slice(gap.end))![0].length : -/\s*$/.exec(source.slice(0, gap.start))![0].length;
+  const edit = { span: role === 'left' ? { start: gap.start, end: gap.end + more } : { start: gap.start + more, end: gap.end }, text: '' };
+  const old = source.slice(p.span.start, p.span.end);
+  const text = old.slice(0, edit.span.start - p.span.start) + old.slice(edit.span.end - p.span.start);
+  return other.kind === 'number' ? undefined : { edit, old, new: text };
+}
 
 const NUMBERS = [0, 1, 2, 3, 4, 0.5, 1 / 3, 4 / 3, 12, 6];
 const FACTORS = [2, 0.5, 3, 1 / 3, 4, 0.25, 4 / 3, 3 / 4];
