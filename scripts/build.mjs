@@ -58,6 +58,7 @@ async function bundle(outdir, production) {
       entryPoints: {
         server: 'server/src/lsp/main.ts',
         'check-worker': 'server/src/lsp/working/worker.ts',
+        'pool-worker': 'server/src/cli/checking/pool-worker.ts',
         visviva: 'server/src/cli/main.ts',
       },
       outdir,

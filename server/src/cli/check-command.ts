@@ -27,6 +27,7 @@ export function addCheck(program: Command, io: Io, finish: (status: Status) => v
     .option('--function <name>', 'only claims about this function')
     .option('--system <name>', 'only this system')
     .option('--fix', 'make the repairs that were verified, then report')
+    .option('--no-cache', 'check everything anew, and keep no results for the next run')
     .option('--dry-run', 'with --fix: print the repairs as a diff and change nothing')
     .addHelpText('after', () => `\n${formatList()}\n\nExit status: 0 every claim holds, 1 something differs, is unread or wrongly declared, 2 failure.`)
     .action(async (paths: string[], options: Options) => finish(await runCheck(paths, options, io)));

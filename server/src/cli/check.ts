@@ -1,11 +1,12 @@
-import { declarationMark, version, type Problem, type Report, type ReportClaim } from '@visviva/shared';
-import { createDiskFiles } from '../host/files';
+import { version, type Problem, type Report, type ReportClaim } from '@visviva/shared';
+import { createDiskFiles, type DiskFiles } from '../host/files';
 import { absolute, shown, toSlashes } from '../host/paths';
 import { repositoryOf, seenFrom } from '../host/repository';
 import { readTextFile } from '../host/text-file';
 import type { FileDetails, FileResult, Service } from '../service/api';
-import { createService } from '../service/index';
+import { handlesFile } from '../service/handles';
 import { Budget } from '../text/budget';
+import { checkFiles } from './checking/files';
 import { fixFiles } from './fix';
 import { byPath, findInputs, type Skipped } from './inputs';
 import { UsageError, type Io, type Status } from './io';
@@ -17,6 +18,8 @@ export interface CheckOptions {
   readonly system?: string;
   readonly fix?: boolean;
   readonly dryRun?: boolean;
+  /** False: nothing is taken from earlier runs, nothing left for later ones. */
+  readonly cache?: boolean;
 }
 
 export interface Outcome {
@@ -28,38 +31,25 @@ export interface Outcome {
   readonly status: Status;
 }
 
-/** Far more than any file should need; a result must not depend on how busy the machine is. */
-const MILLISECONDS_PER_FILE = 120_000;
+/** Far more than any file should need, as a result should not depend on how busy the machine is; but nothing hangs. */
+const MILLISECONDS_PER_FILE = 30_000;
 
 /** Checks the files that the paths name. Paths in the report are relative to the folder the command runs in. */
 export async function check(paths: readonly string[], options: CheckOptions, io: Io): Promise<Outcome> {
-  const { service, inputs } = openService(paths, io);
-  const skipped: Skipped[] = [...inputs.skipped];
-  const results: FileResult[] = [];
+  const { disk, inputs, service } = openProject(paths, io);
   const budget = () => new Budget({ milliseconds: MILLISECONDS_PER_FILE });
-  const diff = options.fix ? await fixFiles(service, inputs.files, options, budget, io) : '';
-  let read = 0;
-  let failed = false;
-  for (const file of inputs.files) {
-    const text = readTextFile(file);
-    if ('skipped' in text) {
-      skipped.push({ file, reason: text.skipped });
-      continue;
-    }
-    read++;
-    if (!text.text.includes(declarationMark) && !file.endsWith('.visviva')) continue;
-    try {
-      results.push(await service.check(file, budget()));
-    } catch (error) {
-      failed = true;
-      io.log(`Internal failure while checking ${shown(file, io.folder)}: ${describe(error)}`);
-    }
-  }
-  const report = withFingerprints(assemble(results, skipped, read, options, io.folder), (file) => textOf(absolute(file, io.folder)), (file) =>
+  const diff = options.fix ? await fixFiles(await service(), inputs.files, options, budget, io) : '';
+  // What --fix would change is not what the files hold.
+  const useCache = options.cache !== false && !options.fix;
+  const checked = await checkFiles(inputs.files, { disk, projects: inputs.projects, milliseconds: MILLISECONDS_PER_FILE, useCache });
+  for (const { file, failure } of checked.failures) io.log(`Internal failure while checking ${shown(file, io.folder)}: ${failure}`);
+  const skipped = [...inputs.skipped, ...checked.skipped];
+  const report = withFingerprints(assemble(checked.results, skipped, checked.read, options, io.folder), (file) => textOf(absolute(file, io.folder)), (file) =>
     seenFrom(repositoryOf(io.folder), io.folder, file),
   );
-  const details = (file: string) => service.details(toSlashes(absolute(file, io.folder)), budget());
-  return { report, details, status: failed ? 2 : statusOf(report, options), ...(options.fix && options.dryRun ? { diff } : {}) };
+  const details = async (file: string) => (await service()).details(toSlashes(absolute(file, io.folder)), budget());
+  const status = checked.failures.length > 0 ? 2 : statusOf(report, options);
+  return { report, details, status, ...(options.fix && options.dryRun ? { diff } : {}) };
 }
 
 function textOf(file: string): string | undefined {
@@ -67,12 +57,23 @@ function textOf(file: string): string | undefined {
   return 'text' in read ? read.text : undefined;
 }
 
-export function openService(paths: readonly string[], io: Io): { service: Service; inputs: ReturnType<typeof findInputs> } {
-  let projects: readonly string[] = [];
-  const service: Service = createService(createDiskFiles(() => projects, (file) => service.handles(file)));
-  const inputs = findInputs(paths, io.folder, (file) => service.handles(file));
-  projects = inputs.projects;
-  return { service, inputs };
+interface OpenProject {
+  readonly disk: DiskFiles;
+  readonly inputs: ReturnType<typeof findInputs>;
+  /** Loads what checks; not needed where nothing is declared or all is known. */
+  service(): Promise<Service>;
+}
+
+function openProject(paths: readonly string[], io: Io): OpenProject {
+  const inputs = findInputs(paths, io.folder, handlesFile);
+  const disk = createDiskFiles(() => inputs.projects, handlesFile);
+  let made: Promise<Service> | undefined;
+  return { disk, inputs, service: () => (made ??= import('../service/index').then((m) => m.createService(disk))) };
+}
+
+export async function openService(paths: readonly string[], io: Io): Promise<{ service: Service; inputs: ReturnType<typeof findInputs> }> {
+  const { inputs, service } = openProject(paths, io);
+  return { inputs, service: await service() };
 }
 
 function assemble(

@@ -13,7 +13,7 @@ const COMMENT_MARK: Record<DeriveForm, string> = { text: '', tex: '% ', typescri
 
 /** Prints the derived equations of what a file declares. */
 export async function derive(file: string, form: DeriveForm, system: string | undefined, io: Io): Promise<Status> {
-  const { service, inputs } = openService([file], io);
+  const { service, inputs } = await openService([file], io);
   const path = inputs.files[0];
   if (path === undefined || inputs.files.length > 1) {
     const why = inputs.files.length > 1 ? 'is a folder; name one file' : (inputs.skipped[0]?.reason ?? 'holds no source file');
@@ -40,7 +40,7 @@ export async function derive(file: string, form: DeriveForm, system: string | un
  */
 export async function deriveAgainst(file: string, against: string, system: string | undefined, io: Io): Promise<Status> {
   const isFile = existsSync(absolute(against, io.folder));
-  const { service, inputs } = openService(isFile ? [file, against] : [file], io);
+  const { service, inputs } = await openService(isFile ? [file, against] : [file], io);
   for (const path of isFile ? [file, against] : [file]) {
     const skipped = inputs.skipped.find((s) => s.file === toSlashes(absolute(path, io.folder)));
     if (skipped) throw new UsageError(`"${path}": ${skipped.reason}.`);

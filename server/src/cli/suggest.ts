@@ -8,7 +8,7 @@ import { harmless } from './report/width';
  * @returns 1 where there is nothing to suggest
  */
 export async function suggest(file: string, only: string | undefined, io: Io): Promise<Status> {
-  const { service, inputs } = openService([file], io);
+  const { service, inputs } = await openService([file], io);
   const path = inputs.files[0];
   if (path === undefined || inputs.files.length > 1) {
     const why = inputs.files.length > 1 ? 'is a folder; name one file' : (inputs.skipped[0]?.reason ?? 'holds no source file');

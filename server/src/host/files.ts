@@ -1,6 +1,6 @@
 import { declarationMark } from '@visviva/shared';
 import type { Files } from '../service/api';
-import { readTextFile } from './text-file';
+import { readMarkedFile, readTextFile } from './text-file';
 import { walk } from './walk';
 
 /** The files of some folders on disk, as the service asks for them, remembered until told that they changed. */
@@ -19,8 +19,7 @@ export function createDiskFiles(folders: () => readonly string[], handles: (file
 
   const declares = (file: string): boolean => {
     if (file.endsWith('.visviva')) return true;
-    const read = readTextFile(file);
-    return 'text' in read && read.text.includes(declarationMark);
+    return 'text' in readMarkedFile(file, declarationMark);
   };
 
   return {

@@ -1,4 +1,4 @@
-import { readdirSync, readFileSync, realpathSync, statSync } from 'node:fs';
+import { readdirSync, readFileSync, realpathSync, statSync, type Dirent } from 'node:fs';
 import { join } from 'node:path';
 import ignore, { type Ignore } from 'ignore';
 import { toSlashes } from './paths';
@@ -34,25 +34,27 @@ export function walk(root: string, wanted: (file: string) => boolean, fileLimit 
       skipped.push({ file: toSlashes(folder), reason: `it lies more than ${depthLimit} folders deep` });
       return;
     }
-    let names: string[];
+    let entries: Dirent[];
     try {
       const real = realpathSync(folder);
       if (entered.has(real)) return;
       entered.add(real);
-      names = readdirSync(folder).sort();
+      entries = readdirSync(folder, { withFileTypes: true }).sort((a, b) => (a.name < b.name ? -1 : 1));
     } catch (error) {
       skipped.push({ file: toSlashes(folder), reason: `the folder cannot be read (${codeOf(error)})` });
       return;
     }
-    const here = names.includes('.gitignore') ? withRules(rules, folder) : rules;
-    for (const name of names) {
+    const here = entries.some((e) => e.name === '.gitignore') ? withRules(rules, folder) : rules;
+    for (const entry of entries) {
+      const { name } = entry;
       if (neverEntered.has(name)) continue;
       const path = join(folder, name);
       let isFolder: boolean;
       try {
-        const stat = statSync(path);
-        isFolder = stat.isDirectory();
-        if (!isFolder && (!stat.isFile() || !wanted(toSlashes(path)))) continue;
+        // Links, and what the file system does not tell the kind of, are looked at.
+        const kind = entry.isFile() || entry.isDirectory() ? entry : statSync(path);
+        isFolder = kind.isDirectory();
+        if (!isFolder && (!kind.isFile() || !wanted(toSlashes(path)))) continue;
       } catch (error) {
         if (wanted(toSlashes(path))) {
           skipped.push({ file: toSlashes(path), reason: `it cannot be read (${codeOf(error)})` });

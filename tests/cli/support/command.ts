@@ -21,6 +21,10 @@ export function visviva(folder: string, ...args: string[]): Result {
   return visvivaWith({}, folder, ...args);
 }
 
+/** Results of earlier runs are not those of this person's own. */
+const cache = join(tmpdir(), `visviva-cache-${process.pid}`);
+process.on('exit', () => rmSync(cache, { recursive: true, force: true }));
+
 /** What a test runs must not take this machine for a hosted one. */
 const HOSTED = { GITHUB_ACTIONS: '', TF_BUILD: '', TEAMCITY_VERSION: '', GITLAB_CI: '' };
 
@@ -28,7 +32,7 @@ export function visvivaWith(environment: Readonly<Record<string, string>>, folde
   const r = spawnSync(process.execPath, [command, ...args], {
     cwd: folder,
     encoding: 'utf8',
-    env: { ...process.env, NO_COLOR: '1', ...HOSTED, ...environment },
+    env: { ...process.env, NO_COLOR: '1', XDG_CACHE_HOME: cache, ...HOSTED, ...environment },
     maxBuffer: 1 << 26,
   });
   return { status: r.status, out: r.stdout, log: r.stderr };
