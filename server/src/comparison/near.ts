@@ -43,3 +43,15 @@ export function expand(derived: Derived, pairs: readonly Pair[]): Pair[][] {
   }
   return out;
 }
+
+/**
+ * What code that keeps no more than the orders declared must compute: the expansions of the expected values as polynomials
+ * in the coordinates themselves. For the search of faults; verdicts compare order by order.
+ */
+export function polynomials(derived: Derived, expected: readonly Expr[]): Expr[] {
+  const { graph, near } = derived.system;
+  if (!near) return [...expected];
+  const back = new Map([...near.point].map(([symbol, point]) => [symbol, graph.subtract(symbol, point)] as const));
+  const orders = expand(derived, expected.map((e) => ({ found: e, expected: e })));
+  return orders.map((pairs) => substitute(graph, [graph.sum(pairs.map((p) => p.expected))], back)[0]!);
+}

@@ -9,7 +9,7 @@ export function faultText(fault: Fault): string {
     case 'sign':
       return `\`${old}\` has the wrong sign: ${toDo(fault)}`;
     case 'factor':
-      return `\`${old}\` is off by a factor: ${toDo(fault)}`;
+      return /^[\d.]+$/.test(old) ? `the number is wrong: ${toDo(fault)}` : `\`${old}\` is off by a factor: ${toDo(fault)}`;
     case 'missing-term':
       return `a term is missing: ${toDo(fault)}`;
     case 'extra-term':

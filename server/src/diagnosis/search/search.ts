@@ -1,3 +1,4 @@
+import { polynomials } from '../../comparison/near';
 import type { ClaimResult, SubjectRequest, SubjectResult } from '../../comparison/subject';
 import type { Expr } from '../../expression/node';
 import { reachable } from '../../expression/reach';
@@ -12,13 +13,14 @@ import { functions, powers } from './candidates/functions';
 import { names } from './candidates/names';
 import { constants } from './candidates/numbers';
 import { drops, groupings, operators, signs } from './candidates/operators';
+import { vectorEdits } from './candidates/vectors';
 import { insertions, knownTerms } from './candidates/terms';
 import { LogFit } from './log-fit';
 import { findPairs, type CandidatePair } from './pairs';
 import { Model, type Change } from './model';
 import { mapSource, type Site, type SourceMap } from './sites';
 import { makeScene } from './scene';
-import { slotCandidates } from './unread';
+import { sitesOf, slotCandidates } from './unread';
 import { MODES, readTagged, type Evaluation } from './tagged';
 
 /** Operations of trials; some seconds. */
@@ -71,12 +73,16 @@ export class Search {
 
   static start(request: SubjectRequest, result: SubjectResult, source: string): Search | undefined {
     const { derived, program } = request;
-    if (derived.system.near || !result.reading) return undefined;
+    if (!result.reading) return undefined;
     const map = mapSource(program);
+    const claims = expanded(derived, result.claims);
     for (const mode of MODES) {
-      const tagged = readTagged(request, result.claims, map, mode);
-      const model = tagged && Model.make(derived, result.claims, tagged);
-      if (model) return model.targets.some((t) => t.differs) ? new Search(request, result.claims, model, map, source) : undefined;
+      const tagged = readTagged(request, claims, map, mode);
+      const model = tagged && Model.make(derived, claims, tagged);
+      if (!model) continue;
+      // Code that keeps more than the orders declared is right all the same, and not as numbers.
+      if (derived.system.near && model.targets.some((t) => t.differs && claims[t.index]!.decision.verdict === 'holds')) return undefined;
+      return model.targets.some((t) => t.differs) ? new Search(request, claims, model, map, source) : undefined;
     }
     return undefined;
   }
@@ -94,6 +100,7 @@ export class Search {
     exchanges(this.scene, this.map.siblings, (s) => this.model.evaluations(s), (c) => swaps.push(c));
     this.all.push(...swaps);
     if (this.mayGoOn) passed.push(...confirmed(this.model, swaps), ...everywhere(this.model, this.repeated));
+    this.untried.push(...vectorEdits(sitesOf(this.request, this.map), (s) => this.model.evaluations(s).length > 0, this.source));
     this.untried.push(...slotCandidates(this.request, this.claims, this.map, this.source));
     this.untried.sort(byCost);
     return passed.sort(byCost);
@@ -262,6 +269,14 @@ function everywhere(model: Model, repeated: ReadonlyMap<string, readonly Candida
     });
   }
   return confirmed(model, joined.slice(0, 600));
+}
+
+/** Where the declaration is about an expansion, claims with the expanded value. */
+function expanded(derived: Derived, claims: readonly ClaimResult[]): readonly ClaimResult[] {
+  if (!derived.system.near) return claims;
+  const known = claims.filter((c) => c.expected);
+  const values = polynomials(derived, known.map((c) => c.expected!));
+  return claims.map((c) => (c.expected ? { ...c, expected: values[known.indexOf(c)]! } : c));
 }
 
 /** What the code may be made of: claims that are no accelerations, the equations, and the entries of the mass matrix. */

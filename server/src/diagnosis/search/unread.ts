@@ -59,7 +59,8 @@ export function slotCandidates(request: SubjectRequest, claims: readonly ClaimRe
   return out;
 }
 
-function sitesOf({ subject }: SubjectRequest, map: SourceMap): Site[] {
+/** The places of the function that the claims are about. */
+export function sitesOf({ subject }: SubjectRequest, map: SourceMap): Site[] {
   const whole = subject.kind === 'function' ? subject.node.span : undefined;
   return map.sites.filter((s) => !whole || (contains(whole, s.span.start) && contains(whole, s.span.end)));
 }
