@@ -43,6 +43,8 @@ async function bundle(outdir, production) {
     keepNames: production,
     sourcemap: production ? false : 'linked',
     sourcesContent: false,
+    // The form that the package gives to `require` loads its parts in a way that no bundler follows.
+    alias: { 'jsonc-parser': require.resolve('jsonc-parser').replace(/umd([\\/]main\.js)$/, 'esm$1') },
   };
   await Promise.all([
     build({

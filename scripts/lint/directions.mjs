@@ -36,7 +36,7 @@ export const directions = {
     packages: [],
   },
   // The service's contract names what the host has to give; nothing else of it is used there.
-  'server/src/host': { from: ['text', 'shared', 'service/api'], packages: ['ignore', 'tinyglobby'], node: true },
+  'server/src/host': { from: ['text', 'shared', 'service/api'], packages: ['ignore', 'tinyglobby', 'jsonc-parser', 'smol-toml'], node: true },
   'server/src/typeset': { from: [], packages: ['mathjax-full'] },
   'server/src/lsp': {
     from: ['text', 'service', 'host', 'typeset', 'shared'],
@@ -45,7 +45,7 @@ export const directions = {
   },
   'server/src/cli': {
     from: ['text', 'service', 'host', 'diagnosis', 'lsp', 'shared'],
-    packages: ['commander', 'picocolors', 'tinyglobby', 'ignore', 'mathjax-full', 'sarif'],
+    packages: ['commander', 'picocolors', 'tinyglobby', 'ignore', 'mathjax-full', 'sarif', 'chokidar'],
     node: true,
   },
 

@@ -10,6 +10,8 @@ export interface Report {
   readonly skipped: readonly { readonly file: string; readonly reason: string }[];
   /** Findings that a baseline accepts and that are there no more. */
   readonly gone?: readonly KnownFinding[];
+  /** Which part of a run in several parts this is. */
+  readonly shard?: { readonly index: number; readonly count: number };
 }
 
 /** A finding as a baseline file lists it: enough to find it again, and for a person to see what it is. */

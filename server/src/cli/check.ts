@@ -1,25 +1,35 @@
-import { version, type Problem, type Report, type ReportClaim } from '@visviva/shared';
-import { createDiskFiles, type DiskFiles } from '../host/files';
+import type { Report } from '@visviva/shared';
+import { statSync } from 'node:fs';
+import { dirname } from 'node:path';
 import { absolute, shown, toSlashes } from '../host/paths';
 import { repositoryOf, seenFrom } from '../host/repository';
-import { readTextFile } from '../host/text-file';
-import type { FileDetails, FileResult, Service } from '../service/api';
+import { readTextFile, type TextFile } from '../host/text-file';
+import type { FileDetails, Service } from '../service/api';
 import { handlesFile } from '../service/handles';
 import { Budget } from '../text/budget';
-import { checkFiles } from './checking/files';
+import { assemble, type Choice } from './assemble';
+import { againstBaseline, readBaseline, writeBaseline } from './baseline';
+import { touchedSince } from './changed';
+import { checkFiles, type CheckedFiles } from './checking/files';
 import { fixFiles } from './fix';
-import { byPath, findInputs, type Skipped } from './inputs';
+import { projectOf, type Inputs } from './inputs';
 import { UsageError, type Io, type Status } from './io';
+import { judgementOf, statusOf, type Judgement } from './judgement';
 import { withFingerprints } from './report/fingerprint';
+import { openSession, type Session } from './session';
+import { filesOfShard, type Shard } from './shard';
 
-export interface CheckOptions {
-  readonly requireClaims?: boolean;
-  readonly function?: string;
-  readonly system?: string;
+export interface CheckOptions extends Choice, Judgement {
   readonly fix?: boolean;
   readonly dryRun?: boolean;
   /** False: nothing is taken from earlier runs, nothing left for later ones. */
   readonly cache?: boolean;
+  readonly changedSince?: string;
+  readonly shard?: Shard;
+  readonly baseline?: string;
+  readonly updateBaseline?: boolean;
+  /** The text that stands for this file. */
+  readonly typed?: { readonly file: string; readonly text: string };
 }
 
 export interface Outcome {
@@ -36,125 +46,120 @@ const MILLISECONDS_PER_FILE = 30_000;
 
 /** Checks the files that the paths name. Paths in the report are relative to the folder the command runs in. */
 export async function check(paths: readonly string[], options: CheckOptions, io: Io): Promise<Outcome> {
-  const { disk, inputs, service } = openProject(paths, io);
+  return checkSession(openSession(paths, io), options, io);
+}
+
+/** The same in a session that goes on: what did not change is remembered. */
+export async function checkSession(session: Session, options: CheckOptions, io: Io): Promise<Outcome> {
+  const settings = session.settings();
+  const touched = options.changedSince === undefined ? undefined : touchedSince(options.changedSince, io);
+  const inputs = chosenInputs(session, options, io);
   const budget = () => new Budget({ milliseconds: MILLISECONDS_PER_FILE });
-  const diff = options.fix ? await fixFiles(await service(), inputs.files, options, budget, io) : '';
+  const diff = options.fix ? await fixFiles(await session.service(), inputs.files, options, budget, io) : '';
+  const all = options.typed ? await checkTyped(inputs.files[0]!, options.typed.text, session) : await checkNamed(inputs, session, options, io);
+  for (const { file, failure } of all.failures) io.log(`Internal failure while checking ${shown(file, io.folder)}: ${failure}`);
+  const results = touched ? all.results.filter(touched) : all.results;
+  const skipped = [...inputs.skipped, ...all.skipped];
+  const root = repositoryOf(io.folder);
+  const nameOf = (file: string) => seenFrom(root, io.folder, file);
+  const whole = assemble(results, skipped, touched ? results.length : all.read, options, (file) => shown(file, io.folder));
+  const report = withFingerprints({ ...whole, ...(options.shard ? { shard: options.shard } : {}) }, (file) => {
+    const text = textOf(toSlashes(absolute(file, io.folder)), options, io);
+    return 'text' in text ? text.text : undefined;
+  }, nameOf);
+  const checked = new Set(inputs.files.map(nameOf));
+  const partly = options.function !== undefined || options.system !== undefined || touched !== undefined;
+  const known = baselineOf(options, settings, io);
+  const covers = (file: string) => !partly && (checked.has(file) || (!options.shard && !exists(absolute(file, root))));
+  if (options.updateBaseline) updateBaseline(known, report, nameOf, covers, io);
+  const judged = known === undefined ? report : withAcceptedCount(againstBaseline(report, readBaseline(known, io), covers));
+  const details = async (file: string) => (await session.service()).details(toSlashes(absolute(file, io.folder)), budget());
+  const status = all.failures.length > 0 ? 2 : statusOf(judged, judgementOf(options, settings.settings));
+  return { report: judged, details, status, ...(options.fix && options.dryRun ? { diff } : {}) };
+}
+
+function checkNamed(inputs: Inputs, { disk }: Session, options: CheckOptions, io: Io): Promise<CheckedFiles> {
+  const progress = new Progress(io);
   // What --fix would change is not what the files hold.
   const useCache = options.cache !== false && !options.fix;
-  const checked = await checkFiles(inputs.files, { disk, projects: inputs.projects, milliseconds: MILLISECONDS_PER_FILE, useCache });
-  for (const { file, failure } of checked.failures) io.log(`Internal failure while checking ${shown(file, io.folder)}: ${failure}`);
-  const skipped = [...inputs.skipped, ...checked.skipped];
-  const report = withFingerprints(assemble(checked.results, skipped, checked.read, options, io.folder), (file) => textOf(absolute(file, io.folder)), (file) =>
-    seenFrom(repositoryOf(io.folder), io.folder, file),
-  );
-  const details = async (file: string) => (await service()).details(toSlashes(absolute(file, io.folder)), budget());
-  const status = checked.failures.length > 0 ? 2 : statusOf(report, options);
-  return { report, details, status, ...(options.fix && options.dryRun ? { diff } : {}) };
+  const done = (file: string, total: number) => progress.step(file, total);
+  return checkFiles(inputs.files, { disk, projects: inputs.projects, milliseconds: MILLISECONDS_PER_FILE, useCache, done }).finally(() => progress.end());
 }
 
-function textOf(file: string): string | undefined {
-  const read = readTextFile(file);
-  return 'text' in read ? read.text : undefined;
+async function checkTyped(file: string, text: string, session: Session): Promise<CheckedFiles> {
+  const service = await session.service();
+  service.update(file, text);
+  const budget = new Budget({ milliseconds: session.disk.settings(file).timeLimit ?? MILLISECONDS_PER_FILE });
+  return { results: [await service.check(file, budget)], skipped: [], failures: [], read: 1 };
 }
 
-interface OpenProject {
-  readonly disk: DiskFiles;
-  readonly inputs: ReturnType<typeof findInputs>;
-  /** Loads what checks; not needed where nothing is declared or all is known. */
-  service(): Promise<Service>;
-}
-
-function openProject(paths: readonly string[], io: Io): OpenProject {
-  const inputs = findInputs(paths, io.folder, handlesFile);
-  const disk = createDiskFiles(() => inputs.projects, handlesFile);
-  let made: Promise<Service> | undefined;
-  return { disk, inputs, service: () => (made ??= import('../service/index').then((m) => m.createService(disk))) };
-}
-
-export async function openService(paths: readonly string[], io: Io): Promise<{ service: Service; inputs: ReturnType<typeof findInputs> }> {
-  const { inputs, service } = openProject(paths, io);
-  return { inputs, service: await service() };
-}
-
-function assemble(
-  results: readonly FileResult[],
-  skipped: readonly Skipped[],
-  files: number,
-  options: CheckOptions,
-  folder: string,
-): Report {
-  const chosen = results.map((r) => choose(r, options));
-  if (options.system !== undefined && !results.some((r) => r.systems.some((s) => s.name === options.system) || r.claims.some((c) => c.system === options.system))) {
-    throw new UsageError(`No system "${options.system}" is declared in the given paths.${offer(results.flatMap((r) => r.systems.map((s) => s.name)))}`);
+function chosenInputs(session: Session, options: CheckOptions, io: Io): Inputs {
+  const { typed, shard } = options;
+  if (typed) {
+    const file = toSlashes(absolute(typed.file, io.folder));
+    if (!handlesFile(file)) throw new UsageError(`--stdin-filename ${typed.file}: files of this kind are not read.`);
+    session.inputs();
+    return { files: [file], skipped: [], projects: [projectOf(file)], named: new Set([file]) };
   }
-  if (options.function !== undefined && !chosen.some((r) => r.claims.length > 0)) {
-    throw new UsageError(`No claim about a function "${options.function}" is made in the given paths.${offer(results.flatMap((r) => r.claims.map((c) => c.function)))}`);
+  const inputs = session.inputs();
+  return shard ? { ...inputs, files: filesOfShard(inputs.files, shard, sizeOf), skipped: shard.index === 1 ? inputs.skipped : [] } : inputs;
+}
+
+function textOf(file: string, { typed }: CheckOptions, io: Io): TextFile {
+  return typed && toSlashes(absolute(typed.file, io.folder)) === file ? { text: typed.text } : readTextFile(file);
+}
+
+function sizeOf(file: string): number {
+  return statSync(file, { throwIfNoEntry: false })?.size ?? 0;
+}
+
+function exists(file: string): boolean {
+  return statSync(file, { throwIfNoEntry: false }) !== undefined;
+}
+
+/** The baseline's file: of the command line, or of the configuration, whose folder its name is taken from. */
+function baselineOf(options: CheckOptions, { file, settings }: ReturnType<Session['settings']>, io: Io): string | undefined {
+  if (options.baseline !== undefined) return options.baseline;
+  if (settings.baseline !== undefined) return absolute(settings.baseline, dirname(file!));
+  if (options.updateBaseline) throw new UsageError(`--update-baseline writes the file that --baseline names: give both. (From ${io.folder} no configuration names one.)`);
+  return undefined;
+}
+
+function updateBaseline(file: string | undefined, report: Report, nameOf: (file: string) => string, covers: (file: string) => boolean, io: Io): void {
+  const refused = writeBaseline(file!, report, nameOf, covers, io);
+  if (refused !== undefined) throw new UsageError(`The baseline "${file!}" was not written: ${refused}.`);
+}
+
+function withAcceptedCount(report: Report): Report {
+  const accepted = [...report.claims.flatMap((c) => c.findings), ...report.problems].filter((f) => f.accepted).length;
+  return accepted === 0 ? report : { ...report, summary: { ...report.summary, accepted } };
+}
+
+/** A line on standard error for those who wait, gone when the work is done. */
+class Progress {
+  private readonly start = performance.now();
+  private shown = 0;
+  private at = 0;
+
+  constructor(private readonly io: Io) {}
+
+  step(file: string, total: number): void {
+    this.at++;
+    const now = performance.now();
+    if (!this.io.isWatched || now - this.start < 1500 || now - this.shown < 100) return;
+    this.shown = now;
+    this.io.status(`${this.at} of ${total}  ${shown(file, this.io.folder).slice(-60)}`);
   }
-  const show = (file: string) => shown(file, folder);
-  const claims = chosen.flatMap((r) => byLine(r.claims)).map((c) => shownClaim(c, show));
-  const problems = chosen.flatMap((r) => r.problems).map((p) => ({ ...p, file: show(p.file) }));
-  const count = (verdict: string) => claims.filter((c) => c.verdict === verdict).length;
-  return {
-    schema: 1,
-    tool: { name: 'visviva', version },
-    summary: {
-      files,
-      systems: chosen.reduce((n, r) => n + r.systems.length, 0),
-      claims: claims.length,
-      holds: count('holds'),
-      differs: count('differs'),
-      unread: count('unread'),
-      problems: problems.length,
-    },
-    claims,
-    problems,
-    skipped: [...skipped].map((s) => ({ file: show(s.file), reason: s.reason })).sort((a, b) => byPath(a.file, b.file)),
-  };
+
+  end(): void {
+    if (this.shown > 0) this.io.status('');
+  }
 }
 
-function choose(r: FileResult, options: CheckOptions): FileResult {
-  const { system, function: name } = options;
-  if (system === undefined && name === undefined) return r;
-  const claims = r.claims.filter(
-    (c) => (system === undefined || c.system === system) && (name === undefined || isNamed(c.function, name)),
-  );
-  const wanted = system ?? new Set(claims.map((c) => c.system));
-  const systems = r.systems.filter((s) => (typeof wanted === 'string' ? s.name === wanted : wanted.has(s.name)));
-  const problems = r.problems.filter((p) => systems.some((s) => isInside(p, s.range)));
-  return { ...r, claims, systems, problems };
-}
-
-/** `rates` names the function rates and the method Crane.rates. */
-function isNamed(path: string, name: string): boolean {
-  return path === name || path.endsWith(`.${name}`);
-}
-
-function isInside(p: Problem, range: Problem['range']): boolean {
-  return p.range.start.line >= range.start.line && p.range.start.line <= range.end.line;
-}
-
-function byLine(claims: readonly ReportClaim[]): ReportClaim[] {
-  return [...claims].sort((a, b) => a.line - b.line);
-}
-
-function shownClaim(c: ReportClaim, show: (file: string) => string): ReportClaim {
-  return {
-    ...c,
-    file: show(c.file),
-    findings: c.findings.map((f) => (f.file === undefined ? f : { ...f, file: show(f.file) })),
-  };
-}
-
-function statusOf(report: Report, options: CheckOptions): Status {
-  const { claims, differs, unread } = report.summary;
-  if (differs > 0 || unread > 0 || report.problems.some((p) => p.severity === 'error')) return 1;
-  return claims === 0 && options.requireClaims ? 1 : 0;
-}
-
-function offer(names: readonly string[]): string {
-  const known = [...new Set(names)].filter((n) => n !== '').sort(byPath);
-  if (known.length === 0) return '';
-  return ` Known: ${known.slice(0, 12).join(', ')}${known.length > 12 ? ', ...' : ''}.`;
+/** A session with what the paths name, for commands about one file. */
+export async function openService(paths: readonly string[], io: Io): Promise<{ service: Service; inputs: Inputs }> {
+  const session = openSession(paths, io);
+  return { inputs: session.inputs(), service: await session.service() };
 }
 
 export function describe(error: unknown): string {

@@ -2,16 +2,19 @@ import { existsSync, readFileSync } from 'node:fs';
 import { dirname } from 'node:path';
 import ignore, { type Ignore } from 'ignore';
 import { shown, toSlashes } from '../host/paths';
+import { ignoreFiles } from '../host/walk';
 
 /**
- * What the `.gitignore` files above a folder, up to the root of its repository, say about files below the folder. The
+ * What the ignore files above a folder, up to the root of its repository, say about files below the folder. The
  * search through the folder itself reads the ones inside it.
  */
 export function ignoredAbove(folder: string): (file: string) => boolean {
   const rules: { readonly folder: string; readonly matcher: Ignore }[] = [];
   for (let above = dirname(folder), below = folder; !existsSync(`${below}/.git`) && above !== below; ) {
-    const matcher = readRules(`${above}/.gitignore`);
-    if (matcher) rules.push({ folder: above, matcher });
+    for (const name of ignoreFiles) {
+      const matcher = readRules(`${above}/${name}`);
+      if (matcher) rules.push({ folder: above, matcher });
+    }
     below = above;
     above = dirname(above);
   }

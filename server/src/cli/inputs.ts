@@ -1,5 +1,6 @@
 import { existsSync, lstatSync, statSync } from 'node:fs';
 import { dirname } from 'node:path';
+import { globSync, isDynamicPattern } from 'tinyglobby';
 import { absolute, shown, toSlashes } from '../host/paths';
 import { walk } from '../host/walk';
 import { ignoredAbove } from './ignored';
@@ -11,6 +12,8 @@ export interface Inputs {
   readonly skipped: readonly Skipped[];
   /** The folders whose files may declare what these files refer to. */
   readonly projects: readonly string[];
+  /** Files that were named one by one. */
+  readonly named: ReadonlySet<string>;
 }
 
 export interface Skipped {
@@ -32,8 +35,16 @@ export function findInputs(paths: readonly string[], base: string, handles: (fil
   const files = new Set<string>();
   const skipped = new Map<string, string>();
   const projects = new Set<string>();
+  const named = new Set<string>();
   for (const path of paths.length === 0 ? ['.'] : paths) {
     const full = absolute(path, base);
+    if (!exists(full) && isDynamicPattern(path)) {
+      const found = matching(path, base, handles);
+      if (found.length === 0) throw new UsageError(`No source file matches "${path}". Patterns are taken from ${base}.`);
+      for (const f of found) files.add(f);
+      projects.add(base);
+      continue;
+    }
     if (!exists(full)) throw new UsageError(`There is no file or folder "${path}". Paths are taken from ${base}.`);
     if (isFolder(full)) {
       projects.add(full);
@@ -44,6 +55,7 @@ export function findInputs(paths: readonly string[], base: string, handles: (fil
     } else {
       const file = toSlashes(full);
       projects.add(projectOf(file));
+      named.add(file);
       if (handles(file)) files.add(file);
       else skipped.set(file, 'files of this kind are not read');
     }
@@ -52,7 +64,15 @@ export function findInputs(paths: readonly string[], base: string, handles: (fil
     files: [...files].sort(byPath),
     skipped: [...skipped].map(([file, reason]) => ({ file, reason })),
     projects: [...projects].sort(byPath),
+    named,
   };
+}
+
+/** What a pattern matches, less what a search through the folder would leave out. */
+function matching(pattern: string, base: string, handles: (file: string) => boolean): string[] {
+  const matched = new Set(globSync(pattern, { cwd: base, absolute: true, ignore: ['**/node_modules/**', '**/.git/**'] }).map(toSlashes));
+  const ignored = ignoredAbove(base);
+  return walk(base, (file) => matched.has(file) && handles(file)).files.filter((file) => !ignored(file));
 }
 
 /** A fixed order, the same on every machine. */

@@ -4,8 +4,14 @@ export interface Io {
   out(text: string): void;
   /** Everything that is not the report. */
   log(text: string): void;
+  /** A line for those who wait, in the place of the one before; the empty line takes it away. */
+  status(line: string): void;
+  /** All of standard input. */
+  input(): string;
   readonly folder: string;
   readonly colour: boolean;
+  /** True where people watch standard error. */
+  readonly isWatched: boolean;
   readonly environment: Readonly<Record<string, string | undefined>>;
 }
 

@@ -12,6 +12,9 @@ export interface Walk {
 /** Folders that hold no source of the project itself. */
 const neverEntered = new Set(['node_modules', '.git', '.hg', '.svn', 'bower_components', '__pycache__', '.venv']);
 
+/** Both are read; what the second says goes before the first. */
+export const ignoreFiles = ['.gitignore', '.visvivaignore'] as const;
+
 const depthLimit = 64;
 
 interface Rules {
@@ -20,7 +23,7 @@ interface Rules {
 }
 
 /**
- * All files below a folder that `wanted` accepts, without what a `.gitignore` on the way excludes. Symbolic links are
+ * All files below a folder that `wanted` accepts, without what ignore files on the way exclude. Symbolic links are
  * followed, each folder is entered once: links that lead back do no harm.
  */
 export function walk(root: string, wanted: (file: string) => boolean, fileLimit = Infinity): Walk {
@@ -44,7 +47,7 @@ export function walk(root: string, wanted: (file: string) => boolean, fileLimit 
       skipped.push({ file: toSlashes(folder), reason: `the folder cannot be read (${codeOf(error)})` });
       return;
     }
-    const here = entries.some((e) => e.name === '.gitignore') ? withRules(rules, folder) : rules;
+    const here = withRules(rules, folder, ignoreFiles.filter((name) => entries.some((e) => e.name === name)));
     for (const entry of entries) {
       const { name } = entry;
       if (neverEntered.has(name)) continue;
@@ -70,12 +73,16 @@ export function walk(root: string, wanted: (file: string) => boolean, fileLimit 
   return { files, skipped };
 }
 
-function withRules(rules: readonly Rules[], folder: string): readonly Rules[] {
-  try {
-    return [...rules, { folder, matcher: ignore().add(readFileSync(join(folder, '.gitignore'), 'utf8')) }];
-  } catch {
-    return rules;
+function withRules(rules: readonly Rules[], folder: string, names: readonly string[]): readonly Rules[] {
+  let all = rules;
+  for (const name of names) {
+    try {
+      all = [...all, { folder, matcher: ignore().add(readFileSync(join(folder, name), 'utf8')) }];
+    } catch {
+      // What cannot be read excludes nothing.
+    }
   }
+  return all;
 }
 
 /** The innermost file with an opinion decides, as git does it. */

@@ -21,7 +21,8 @@ export interface CheckerContext {
   readonly addresses: Addresses;
   readonly files: OpenFiles;
   readonly clock: Clock;
-  readonly settings: () => Settings;
+  /** Of the editor, with what the project of the file says. */
+  readonly settings: (file: string) => Settings;
   readonly isExcluded: (file: string) => boolean;
   /** True where the editor keeps track of which version a diagnostic belongs to: it then hears of each one checked. */
   readonly tracksVersions: () => boolean;
@@ -82,7 +83,7 @@ export class Checker {
     try {
       await service.prepare(file); // loading a parser is not the file's fault
       const start = clock();
-      const budget = new Budget({ milliseconds: settings().timeLimit * (again ? patience : 1) }, clock, stale);
+      const budget = new Budget({ milliseconds: settings(file).timeLimit * (again ? patience : 1) }, clock, stale);
       const result = await service.check(file, budget, 'verdicts');
       if (stale()) return;
       if (budget.why === 'time' && !again) {
@@ -106,7 +107,7 @@ export class Checker {
     const diagnostics = toDiagnostics(result, {
       uriOf: (name) => this.context.addresses.uriOf(name),
       line: (line) => lineOf(open.document, line),
-      severity: this.context.settings().severity,
+      severity: this.context.settings(open.file).severity,
     });
     this.publish(open, version, diagnostics);
   }
@@ -117,7 +118,7 @@ export class Checker {
     const stale = (): boolean => files.get(uri) !== open || open.document.version !== version;
     setTimeout(() => {
       if (stale()) return;
-      const budget = new Budget({ milliseconds: settings().timeLimit }, clock, stale);
+      const budget = new Budget({ milliseconds: settings(open.file).timeLimit }, clock, stale);
       service.check(open.file, budget, 'repairs').then(
         (result) => {
           if (!stale()) this.show(open, version, result);
@@ -128,7 +129,7 @@ export class Checker {
   }
 
   private reasonToSkip({ document, file }: OpenFile): string | undefined {
-    if (!this.context.settings().enable) return 'Checking is switched off (visviva.enable).';
+    if (!this.context.settings(file).enable) return 'Checking is switched off (visviva.enable).';
     if (this.context.isExcluded(file)) return 'The file is left out by the settings (visviva.exclude).';
     if (!this.context.service.handles(file)) return 'Files of this kind are not read.';
     if (document.getText().length > sizeLimit) return 'The file is too large to be read.';

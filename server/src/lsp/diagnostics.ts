@@ -1,4 +1,4 @@
-import { defaultSettings, type Finding, type ReportClaim, type Settings, type ShownAs, type Verdict } from '@visviva/shared';
+import { defaultSettings, type Finding, type ReportClaim, type Settings, type Severity, type ShownAs, type Verdict } from '@visviva/shared';
 import {
   DiagnosticSeverity,
   type Diagnostic,
@@ -37,6 +37,12 @@ const severityOf: Readonly<Record<Exclude<ShownAs, 'none'>, DiagnosticSeverity>>
   hint: DiagnosticSeverity.Hint,
 };
 
+const ofSeverity: Readonly<Record<Severity, DiagnosticSeverity>> = {
+  error: DiagnosticSeverity.Error,
+  warning: DiagnosticSeverity.Warning,
+  note: DiagnosticSeverity.Information,
+};
+
 /**
  * What the editor shows for a checked file. One fault is shown once, however many claims it breaks; each diagnostic
  * leads to the claims that it belongs to.
@@ -57,10 +63,11 @@ export function toDiagnostics(result: FileResult, context: DiagnosticContext): D
   };
 
   for (const problem of result.problems) {
+    if (problem.accepted) continue;
     const elsewhere = problem.file !== result.file;
     add({
       range: elsewhere ? firstLine : toRange(problem.range),
-      severity: severityOfProblem(problem.severity === 'error', context),
+      severity: problem.severity === 'note' ? DiagnosticSeverity.Information : severityOfProblem(problem.severity === 'error', context),
       code: problem.code,
       source: 'visviva',
       message: problem.message,
@@ -70,7 +77,7 @@ export function toDiagnostics(result: FileResult, context: DiagnosticContext): D
     });
   }
   for (const claim of result.claims) {
-    for (const finding of claim.findings) add(ofFinding(result.file, claim, finding, context));
+    for (const finding of claim.findings) if (!finding.accepted) add(ofFinding(result.file, claim, finding, context));
     if (claim.verdict !== 'holds' && claim.findings.length === 0) add(ofClaim(result.file, claim, context));
   }
   return [...shown.values()].sort(byPlace);
@@ -90,7 +97,7 @@ function ofFinding(file: string, claim: ReportClaim, finding: Finding, context: 
   related.push(toClaim(file, claim, context));
   return {
     range: elsewhere ? claimRange(file, claim, context) : toRange(finding.range),
-    severity: severityOfClaim(claim.verdict, context),
+    severity: finding.severity ? ofSeverity[finding.severity] : severityOfClaim(claim.verdict, context),
     code: finding.code,
     source: 'visviva',
     message: finding.message,

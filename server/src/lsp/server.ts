@@ -32,6 +32,7 @@ import { clock } from '../host/clock';
 import { isExcluded } from '../host/exclude';
 import { createDiskFiles } from '../host/files';
 import { pathOf } from '../host/paths';
+import { isSettingsFile } from '../host/settings-files';
 import type { Files, Service } from '../service/api';
 import { Budget } from '../text/budget';
 import { Addresses } from './addresses';
@@ -47,7 +48,7 @@ import { toFlatSymbols, toSymbols } from './symbols';
 import { registerVisualFeatures, visualCapabilities } from './visual-features';
 
 /** Kinds of files whose change on disk can change a result. */
-export const watchedFiles = '**/*.{ts,tsx,mts,cts,js,jsx,mjs,cjs,htm,html,json,py,visviva}';
+export const watchedFiles = '**/*.{ts,tsx,mts,cts,js,jsx,mjs,cjs,htm,html,json,toml,py,visviva}';
 /** A file that only depends on the one being typed in may wait for a pause. */
 const dependentDelay = 100;
 
@@ -76,7 +77,7 @@ export function serve(connection: Connection, createService: (files: Files, fold
     addresses,
     files,
     clock,
-    settings: () => settings,
+    settings: (file) => ({ ...settings, timeLimit: disk.settings(file).timeLimit ?? settings.timeLimit }),
     isExcluded: (file) => isExcluded(file, folders, settings.exclude),
     tracksVersions: () => capabilities.textDocument?.publishDiagnostics?.versionSupport === true,
   });
@@ -189,7 +190,7 @@ export function serve(connection: Connection, createService: (files: Files, fold
         service.invalidate(file);
         disk.changed(file);
         // A new file may be the one that an import or a name was looking for.
-        const affected = type === FileChangeType.Changed ? files.dependents(file) : files.all();
+        const affected = type === FileChangeType.Changed && !isSettingsFile(file) ? files.dependents(file) : files.all();
         for (const open of affected) again.add(open.document.uri);
       }
       for (const uri of again) checker.request(files.get(uri)!);

@@ -1,4 +1,4 @@
-import type { PanelData, Problem, ReportClaim, ReportPosition, ReportRange } from '@visviva/shared';
+import type { PanelData, Problem, ProjectSettings, ReportClaim, ReportPosition, ReportRange } from '@visviva/shared';
 import type { Budget } from '../text/budget';
 
 /**
@@ -154,6 +154,10 @@ export interface Files {
   read(file: string): string | undefined;
   /** Files that may hold declarations other files refer to by name. */
   declarations(): readonly string[];
+  /** What the project says about a file; nothing where it is absent. */
+  settings?(file: string): ProjectSettings;
+  /** True for files that the project takes out of checking. */
+  isLeftOut?(file: string): boolean;
 }
 
 export interface FileResult {

@@ -4,6 +4,7 @@ import type { Budget } from '../text/budget';
 import { Documents } from '../workspace/documents';
 import { Imports } from '../workspace/imports';
 import { Systems } from '../workspace/systems';
+import { withAcceptances } from './acceptances';
 import { compareSystems, pairDeclarations } from './against';
 import type { Comparison, Files, FileResult, Service } from './api';
 import { checkDocument, fileResult, type BlockOutcome, type Project } from './check';
@@ -17,6 +18,7 @@ import { outcomeAt, panelOf } from './panel/panel';
 import { ResultCache } from './result-cache';
 import { rewritesAt } from './rewrites';
 import { suggestedComments } from './suggested-comments';
+import { withSeverities } from './severity';
 import { symbolsOf } from './symbols';
 
 export type * from './api';
@@ -51,12 +53,13 @@ export function createService(files: Files): Service {
     prepare: (file) => documents.prepare(file),
 
     async check(file: string, budget: Budget, depth: 'verdicts' | 'repairs' = 'repairs'): Promise<FileResult> {
-      const document = await load(file);
+      const document = files.isLeftOut?.(file) ? undefined : await load(file);
       if (!document) {
         return { file, language: languageOf(file)?.id ?? '', systems: [], claims: [], problems: [], dependsOn: [] };
       }
       const outcomes = await checkDocument(project, document, budget);
-      return fileResult(document, await diagnoseOutcomes(project, document, outcomes, budget, depth));
+      const result = fileResult(document, await diagnoseOutcomes(project, document, outcomes, budget, depth));
+      return withSeverities(withAcceptances(result, document.text, depth === 'repairs'), files.settings?.(file) ?? {});
     },
 
     async rewrites(file, range, budget) {

@@ -8,7 +8,8 @@ import { vi } from 'vitest';
 // Every run is a process of its own, and the machine may be busy.
 vi.setConfig({ testTimeout: 120_000 });
 
-const command = fileURLToPath(new URL('../../../dist/visviva.mjs', import.meta.url));
+/** The built command. */
+export const command = fileURLToPath(new URL('../../../dist/visviva.mjs', import.meta.url));
 
 export interface Result {
   readonly status: number | null;
@@ -29,10 +30,15 @@ process.on('exit', () => rmSync(cache, { recursive: true, force: true }));
 const HOSTED = { GITHUB_ACTIONS: '', TF_BUILD: '', TEAMCITY_VERSION: '', GITLAB_CI: '' };
 
 export function visvivaWith(environment: Readonly<Record<string, string>>, folder: string, ...args: string[]): Result {
+  return started({ env: environment }, folder, args);
+}
+
+function started(given: { readonly env?: Readonly<Record<string, string>>; readonly input?: string }, folder: string, args: readonly string[]): Result {
   const r = spawnSync(process.execPath, [command, ...args], {
     cwd: folder,
     encoding: 'utf8',
-    env: { ...process.env, NO_COLOR: '1', XDG_CACHE_HOME: cache, ...HOSTED, ...environment },
+    env: { ...process.env, NO_COLOR: '1', XDG_CACHE_HOME: cache, ...HOSTED, ...given.env },
+    ...(given.input === undefined ? {} : { input: given.input }),
     maxBuffer: 1 << 26,
   });
   return { status: r.status, out: r.stdout, log: r.stderr };
@@ -63,6 +69,11 @@ export class Folder {
 
   runWith(environment: Readonly<Record<string, string>>, ...args: string[]): Result {
     return visvivaWith(environment, this.path, ...args);
+  }
+
+  /** With a text on standard input. */
+  runTyped(input: string, ...args: string[]): Result {
+    return started({ input }, this.path, args);
   }
 
   /** A folder inside this one, to run in. */

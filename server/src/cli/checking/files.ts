@@ -16,6 +16,8 @@ export interface CheckFilesOptions {
   readonly milliseconds: number;
   /** Take results from earlier runs, and leave this run's for later ones. */
   readonly useCache: boolean;
+  /** Told of each file that is done, with how many there are. */
+  readonly done?: (file: string, total: number) => void;
 }
 
 export interface CheckedFiles {
@@ -49,7 +51,7 @@ export async function checkFiles(files: readonly string[], options: CheckFilesOp
     }
     read++;
     if (!('text' in text) && !file.endsWith('.visviva')) continue;
-    const subject = digest(file, 'text' in text ? text.text : '');
+    const subject = digest(file, 'text' in text ? text.text : '', JSON.stringify(options.disk.settings(file)));
     const known = cache?.find(subject);
     if (known) found.set(file, known);
     else open.push({ file, subject });
@@ -57,6 +59,7 @@ export async function checkFiles(files: readonly string[], options: CheckFilesOp
   const subjects = new Map(open.map((o) => [o.file, o.subject]));
   const keep = (file: string, checked: Checked): void => {
     found.set(file, checked.result);
+    options.done?.(file, open.length);
     if (checked.isWhole) cache?.store.add(subjects.get(file)!, checked);
   };
   const threads = Math.min(availableParallelism(), Math.floor(open.length / FILES_PER_THREAD));

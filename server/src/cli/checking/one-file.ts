@@ -28,8 +28,10 @@ export async function checkOneFile(file: string, disk: DiskFiles, milliseconds: 
       declaring = digest(...list);
       return list;
     },
+    settings: (name) => disk.settings(name),
+    isLeftOut: (name) => disk.isLeftOut(name),
   };
-  const budget = new Budget({ milliseconds }, clock);
+  const budget = new Budget({ milliseconds: disk.settings(file).timeLimit ?? milliseconds }, clock);
   const result = await createService(files).check(file, budget);
   return { result, reads, declaring, isWhole: budget.why === undefined };
 }

@@ -7,6 +7,8 @@ export interface Listed {
   readonly code: FindingCode | ProblemCode;
   readonly message: string;
   readonly level: Severity;
+  /** Where the project gives it. */
+  readonly given?: Severity;
   readonly fingerprint: string;
   readonly accepted?: Acceptance;
   readonly repair?: Repair;
@@ -52,6 +54,7 @@ function listed(file: string, f: Finding | Problem, level: Severity): Omit<Liste
     message: f.message,
     level,
     fingerprint: f.fingerprint ?? '',
+    ...('severity' in f && f.severity ? { given: f.severity } : {}),
     ...(f.accepted ? { accepted: f.accepted } : {}),
     ...(repair ? { repair } : {}),
   };

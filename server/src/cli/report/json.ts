@@ -19,6 +19,7 @@ export function jsonReport(report: Report): string {
     claims: claims.map(claimJson),
     problems: problems.map(problemJson),
     skipped: skipped.map((s) => ({ file: s.file, reason: s.reason })),
+    ...(report.shard ? { shard: report.shard } : {}),
     ...(report.gone ? { gone: report.gone } : {}),
   };
   return `${JSON.stringify(ordered, finite, 2)}\n`;
