@@ -82,6 +82,7 @@ describe('where a declaration ends', () => {
     ['singular', ['check a = x', 'read b = y'], ['checks a = x', 'reads b = y'], 'did you mean `checks`?'],
     ['one of a kind', ['coordinate x [m]', 'parameter m [kg] > 0', 'input F'], ['coordinates x [m]', 'parameters m [kg] > 0', 'inputs F'], ''],
     ['a colon after the word', ['coordinates: x, y [m]', 'parameters: m > 0', "checks: a = x''"], ['coordinates x [m]; y [m]', 'parameters m > 0', "checks a = x''"], ''],
+    ['a colon, and one item to a line below', ['coordinates:', '  x [m]', '  y [m]', 'T = 1'], ['coordinates x [m]; y [m]', 'T = 1'], ''],
     ['a section with a colon', ['T = 1', 'parameters: what the crane weighs'], ['T = 1'], ''],
     ['one coordinate in prose', ['T = 1', 'coordinate x is measured from the wall'], ['T = 1'], ''],
     ['U', ['U = m*g*y', 'T = 1'], ['T = 1'], 'unknown statement `U`: energies are T, V, L or D; for a shorthand write `where U = ...`'],

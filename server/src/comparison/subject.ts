@@ -164,7 +164,9 @@ export function readClaims(request: SubjectRequest): SubjectReading {
     results[p.at] = { ...results[p.at]!, decision: { verdict: 'unread', reason, place } };
     return false;
   });
-  return { claims: results, problems, ambiguities: reading.ambiguities, reading, pending };
+  // Names that nobody needs to tell apart, since every claim was read without them, are no finding.
+  const isRead = results.every((r, i) => r.decision.verdict !== 'unread' || pending.some((p) => p.at === i));
+  return { claims: results, problems, ambiguities: isRead ? [] : reading.ambiguities, reading, pending };
 }
 
 /**

@@ -27,6 +27,8 @@ export interface FormulaContext {
 /** The largest family or sum that is written out. */
 const MOST_MEMBERS = 200;
 
+const CODE_WORDS: ReadonlySet<string> = new Set(['this', 'self', 'return']);
+
 /** Evaluates a formula; undefined where it makes no sense, with the reason among the errors. */
 export function evaluate(f: Formula, context: FormulaContext): Quantity | undefined {
   const g = context.scope.graph;
@@ -158,6 +160,11 @@ function evaluateName(f: Formula & { kind: 'name' }, context: FormulaContext): Q
   if (key === 'pi') return scalar(scope.graph.pi);
   if (isFunctionName(f.name)) {
     context.errors.push({ code: 'syntax', message: `\`${f.name}\` is a function: write its argument in brackets`, span: f.span });
+    return undefined;
+  }
+  if (CODE_WORDS.has(f.name)) {
+    const message = `\`${f.name}\` is a word of the code: the right side of an equation is written in the words of the declaration, and what the code has for them stands on the left`;
+    context.errors.push({ code: 'undeclared', message, span: f.span });
     return undefined;
   }
   const near = scope.near(f.name);

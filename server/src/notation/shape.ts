@@ -46,7 +46,7 @@ export function shapeOf(line: string): Shape {
 
 /** True unless what follows the word makes it a word of a sentence, or a variable of a formula. */
 function beginsStatement(word: string, rest: string): boolean {
-  if (rest === '') return true;
+  if (rest === '' || (rest === ':' && !NAMED.has(word))) return true;
   if (/^:\s+\S/.test(rest) && !NAMED.has(word)) return !isProse(word, rest.slice(1).trim()) && looksFormal(word, rest.slice(1));
   if (!/^\s/.test(rest)) return NAMED.has(word) ? rest.startsWith(':') : rest.startsWith('(') && !/=/.test(rest);
   const body = rest.trim();
