@@ -24,6 +24,8 @@ const MOST_WORK = 6_000_000;
 const SYMBOL_SEED = 0x1b873593;
 
 const UNEQUAL = 'a rounded number, or a rule the exact test does not know';
+const TOO_HIGH = 'the degree of its formulas';
+const TOO_LARGE = 'its size';
 
 /**
  * Tries to prove claims that hold at states: both sides are evaluated modulo a prime at random points, where equality of
@@ -76,7 +78,9 @@ function proveTogether(derived: Derived, groups: readonly (readonly Pair[])[]): 
   });
   const degree = rows.reduce((worst, row) => Math.max(worst, degrees.ofDifference(row, zero)), 0);
   const proof = test.decide(degree, degrees.radicands, 1, (run, p) => (rows.some((row) => run.column(row)[p] !== 0) ? 'unequal' : 'equal'), rows);
-  return proof.kind === 'identity' ? groups.map((_, i) => (claims.includes(i) ? proof : undefined)) : nothing;
+  // Claim by claim the formulas are no smaller.
+  const isSettled = proof.kind === 'identity' || proof.stopped === TOO_HIGH || proof.stopped === TOO_LARGE;
+  return isSettled ? groups.map((_, i) => (claims.includes(i) ? proof : undefined)) : nothing;
 }
 
 function proveEach(derived: Derived, groups: readonly (readonly Pair[])[]): Proof[] {
@@ -124,7 +128,7 @@ class Test {
     const none = (stopped: string): Proof => ({ kind: 'none', stopped });
     const { hasRoots, nodes } = this.tape;
     const wanted = pointsFor(degree, hasRoots);
-    if (wanted === undefined) return none('the degree of its formulas');
+    if (wanted === undefined) return none(TOO_HIGH);
     const most = hasRoots ? MOST_DRAWN : wanted + SPARE + 8;
     let valid = 0;
     let seen = 0;
@@ -132,7 +136,7 @@ class Test {
       if (k >= this.runs.length) {
         const points = hasRoots ? 128 : k === 0 ? wanted : SPARE;
         if (this.drawn + points > most) break;
-        if (nodes.length * passes * (this.drawn + points) > MOST_WORK) return none('its size');
+        if (nodes.length * passes * (this.drawn + points) > MOST_WORK) return none(TOO_LARGE);
         this.draw(points);
       }
       const run = this.runs[k]!;
@@ -145,7 +149,7 @@ class Test {
     }
     if (valid < wanted) return none('roots or quotients without a value at the random points');
     const chance = chanceOf(degree, hasRoots ? radicands : undefined, valid, seen);
-    return chance <= WORST_CHANCE ? { kind: 'identity', chance } : none('the degree of its formulas');
+    return chance <= WORST_CHANCE ? { kind: 'identity', chance } : none(TOO_HIGH);
   }
 
   private draw(points: number): void {

@@ -164,9 +164,9 @@ function withUnused(document: Document, outcomes: BlockOutcome[]): BlockOutcome[
     const family = outcomes.flatMap((x) => (x.placed.block.name === system.name && x.entry ? [...x.entry.derived.system.scope.used] : []));
     // Stabilising terms vanish on the constraints: what claims that hold depend on is in use, though no energy has it.
     const right = outcomes.flatMap((x) =>
-      x.placed.block.name === system.name ? (x.result?.claims ?? []).filter((c) => c.decision.verdict === 'holds').flatMap((c) => (c.found ? symbolsOf(c.found) : [])) : [],
+      x.placed.block.name === system.name ? (x.result?.claims ?? []).flatMap((c) => (c.decision.verdict === 'holds' && c.found ? [c.found] : [])) : [],
     );
-    const unused = findUnused(system, new Set([...family, ...right])).map((p) => ({ ...p, span: { start: p.span.start + shift, end: p.span.end + shift } }));
+    const unused = findUnused(system, new Set([...family, ...symbolsOf(...right)])).map((p) => ({ ...p, span: { start: p.span.start + shift, end: p.span.end + shift } }));
     return unused.length > 0 ? { ...o, problems: [...o.problems, ...unused] } : o;
   });
 }
