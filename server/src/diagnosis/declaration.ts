@@ -2,7 +2,10 @@ import { Motion } from '../comparison/motion';
 import { Prober } from '../comparison/prober';
 import { Sampler } from '../comparison/sampling';
 import type { ClaimResult } from '../comparison/subject';
-import type { Expr } from '../expression/node';
+import type { Expr, SymbolData } from '../expression/node';
+import { monomialExpr, normalForm } from '../expression/normal-form';
+import { text } from '../expression/print';
+import { symbolsOf } from '../expression/reach';
 import { Rational } from '../expression/rational';
 import { substitute } from '../expression/substitute';
 import { Derived } from '../mechanics/lagrange';
@@ -33,6 +36,27 @@ export function findDeclarationChange(derived: Derived, claims: readonly ClaimRe
     if (holdsWith(new Derived(variant.make()), claims)) return variant.words;
   }
   return undefined;
+}
+
+const ENERGIES: ReadonlySet<string> = new Set(['E', 'V', 'L', 'H']);
+
+/** Another zero of the potential: all that differs are energies, by what does not depend on the motion. */
+export function findShift(derived: Derived, claims: readonly ClaimResult[]): string | undefined {
+  const wrong = claims.filter((c) => c.decision.verdict === 'differs');
+  const { graph } = derived.system;
+  const moving = (e: Expr): boolean => symbolsOf(e).some((s) => (s.data as SymbolData).role !== 'parameter');
+  let words: string | undefined;
+  for (const c of wrong) {
+    if (!ENERGIES.has(c.quantity) || !c.found || !c.expected) return undefined;
+    const gap = normalForm(graph, graph.subtract(c.found, c.expected), 40);
+    if (!gap || gap.terms.length === 0) return undefined;
+    const shift = graph.sum(gap.terms.map((m) => monomialExpr(graph, m)));
+    if (moving(shift)) return undefined;
+    const own = `V larger by ${text(c.quantity === 'L' ? graph.negate(shift) : shift)} (its zero elsewhere; the motion is the same)`;
+    if (words !== undefined && words !== own) return undefined;
+    words = own;
+  }
+  return words;
 }
 
 function holdsWith(derived: Derived, claims: readonly ClaimResult[]): boolean {

@@ -4,7 +4,7 @@ import type { Span } from '../text/span';
 import type { Candidate } from './search/candidates/candidate';
 import { composed, trimmed, type Edit } from './search/edits';
 import { Search } from './search/search';
-import { findDeclarationChange } from './declaration';
+import { findDeclarationChange, findShift } from './declaration';
 import { unreadCandidates } from './search/unread';
 import { isNoWorse, isProgress, isRepair, type Recheck } from './verify';
 
@@ -44,7 +44,7 @@ export async function diagnose(request: SubjectRequest, result: SubjectResult, s
   const search = has('differs') ? Search.start(request, result, source) : undefined;
   if (!search) return undefined;
   const single = await firstOf(request, oneEdit(search), verify);
-  if (single) return repaired([single], source, undefined);
+  if (single) return repaired([single], source, findShift(request.derived, result.claims));
   // Where one edit of the code does not do, one of the declaration may.
   const declaration = findDeclarationChange(request.derived, result.claims);
   const steps = await inSteps(request, distinct(search.partial()).slice(0, MOST_FIRST_STEPS), isProgress, result, source, recheck);

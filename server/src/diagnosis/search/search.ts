@@ -2,6 +2,7 @@ import { polynomials } from '../../comparison/near';
 import type { ClaimResult, SubjectRequest, SubjectResult } from '../../comparison/subject';
 import type { Expr } from '../../expression/node';
 import { reachable } from '../../expression/reach';
+import { contains } from '../../text/span';
 import type { Derived } from '../../mechanics/lagrange';
 import { solvePlace, type Needed } from './angelic';
 import { assignments } from './candidates/assignments';
@@ -21,7 +22,7 @@ import { Model, type Change } from './model';
 import { mapSource, type Site, type SourceMap } from './sites';
 import { makeScene } from './scene';
 import { sitesOf, slotCandidates } from './unread';
-import { MODES, readTagged, type Evaluation } from './tagged';
+import { modesFor, readTagged, type Evaluation } from './tagged';
 
 /** Operations of trials; some seconds. */
 const MOST_WORK = 600_000;
@@ -76,7 +77,7 @@ export class Search {
     if (!result.reading) return undefined;
     const map = mapSource(program);
     const claims = expanded(derived, result.claims);
-    for (const mode of MODES) {
+    for (const mode of modesFor(map)) {
       const tagged = readTagged(request, claims, map, mode);
       const model = tagged && Model.make(derived, claims, tagged);
       if (!model) continue;
@@ -194,7 +195,9 @@ export class Search {
     const spot = this.spotOf(site, needed.kind === 'values' ? needed.need : undefined);
     const worth: Candidate[] = [];
     const from = this.all.length;
-    const give = (c: Candidate): void => {
+    const more = this.indirectness(site);
+    const give = (made: Candidate): void => {
+      const c = more > 0 && made.code !== 'swapped-symbol' ? { ...made, cost: made.cost + more } : made;
       this.all.push(c);
       if (!c.values) this.untried.push(c);
       else if (needed.kind === 'values' ? agree(c.values[0]!, needed.need) : needed.kind === 'open') worth.push(c);
@@ -203,6 +206,17 @@ export class Search {
     if (needed.kind === 'open' && needed.guess) for (const make of this.makers) make(this.scene, { ...spot, need: needed.guess }, give);
     if (spot.text.length <= 60) this.remember(spot.text, this.all.slice(from));
     return worth;
+  }
+
+  /**
+   * A fault is sooner where a local gets its value than where it is used, and sooner in the function itself than in a helper,
+   * which others may share.
+   */
+  private indirectness({ node, owner, span }: Site): number {
+    const { subject } = this.request;
+    const isHelper = subject.kind === 'function' && !contains(subject.node.span, span.start);
+    const isUse = node.kind === 'name' && this.map.sites.some((s) => s.assignment?.value === s.node && s.owner === owner && s.assignment.target.kind === 'name' && s.assignment.target.name === node.name);
+    return (isHelper ? 0.15 : 0) + (isUse ? 0.15 : 0);
   }
 
   /** Candidates of places with the same text, to be made together: one wrong name used twice. */

@@ -77,9 +77,9 @@ export function readTagged(
 /** Numbers may be tagged only where nothing but arithmetic is done with them. */
 function mayTag(site: Site, mode: Mode): boolean {
   const { node } = site;
-  if (mode !== 'all' && isInLimit(site)) return false;
+  if (!isFull(mode) && isInLimit(site)) return false;
   if (isIndex(site)) return false;
-  if (!site.mayVary && (node.kind === 'number' || node.kind === 'unary')) return false;
+  if (!site.mayVary && (node.kind === 'number' || node.kind === 'unary')) return mode === 'calls' && isCallNumber(site);
   if (node.kind === 'number') {
     if (mode === 'none') return false;
     if (mode === 'arithmetic') return site.role === 'left' || site.role === 'right';
@@ -88,8 +88,23 @@ function mayTag(site: Site, mode: Mode): boolean {
 }
 
 /** Numbers that are needed as plain numbers show only when reading with tags fails: then fewer are tagged. */
-export const MODES = ['all', 'arithmetic', 'none'] as const;
-type Mode = 'all' | 'arithmetic' | 'none';
+const MODES = ['calls', 'all', 'arithmetic', 'none'] as const;
+type Mode = (typeof MODES)[number];
+
+/** The modes worth trying for a program: `calls` only where it makes a difference. */
+export function modesFor(map: SourceMap): readonly Mode[] {
+  return map.sites.some(isCallNumber) ? MODES : MODES.slice(1);
+}
+
+/** A number handed to a function of the program itself: `scale(2, v)`; what others do with it is not known. */
+function isCallNumber(site: Site): boolean {
+  const call = site.parent?.node;
+  return site.node.kind === 'number' && site.role === 'argument' && call?.kind === 'call' && call.callee.kind === 'name' && !isScalarCall(call);
+}
+
+function isFull(mode: Mode): boolean {
+  return mode === 'calls' || mode === 'all';
+}
 
 /** A choice of row or slot, which must stay a whole number. */
 function isIndex(site: Site): boolean {
@@ -111,8 +126,8 @@ function isInLimit(site: Site): boolean {
 function isOperand({ node, parent, role }: Site, mode: Mode): boolean {
   if (node.kind !== 'name' && node.kind !== 'member' && node.kind !== 'index') return false;
   const p = parent?.node;
-  if (role === 'item' || (role === 'whole' && !p)) return mode === 'all';
-  if (p?.kind === 'assign') return role === 'whole' && (p.op !== undefined || mode === 'all');
+  if (role === 'item' || (role === 'whole' && !p)) return isFull(mode);
+  if (p?.kind === 'assign') return role === 'whole' && (p.op !== undefined || isFull(mode));
   if (p?.kind === 'unary') return p.op === '-';
   if (p?.kind === 'binary') return /^[-+*/%]$|\*\*/.test(p.op);
   return p?.kind === 'call' && role === 'argument' && parent!.mayVary && isScalarCall(p);
