@@ -3,6 +3,7 @@ import { findMember } from './class-members';
 import { callSuper, construct } from './classes';
 import { changesReceiver, damage, unknownCall, unknownMethod } from './damage';
 import type { Argument, Expression } from './form';
+import { factsOf } from './facts';
 import { childOf, copyOfGeneric, fallbackOf, genericAt, hasWritesBelow, valueOf } from './generics';
 import { runIntrinsic } from './intrinsics/table';
 import type { ScalarFunction } from './library';
@@ -23,6 +24,8 @@ import { NOTHING, unread, type Assigned, type FunctionValue, type LibraryValue, 
 /** Calls: of the code's own functions, by running them; of the library, by its table; of anything else, not at all. */
 
 const DEEPEST_CALLS = 64;
+/** Calls of a function inside itself, each on a branch that is not decided. */
+const MOST_OPEN_CALLS = 3;
 
 export function evaluateCall(m: Machine, scope: Scope, e: Expression & { kind: 'call' }, place: Place): Value {
   const text = pathOf(e);
@@ -186,7 +189,8 @@ function callObject(m: Machine, scope: Scope, callee: Value & { kind: 'object' }
   }
   if (data.kind !== 'generic') return unknownCall(m, args, place, words);
   const { generic } = data;
-  const known = fallbackOf(m, generic);
+  // A name that is given another function later is not the one it began with.
+  const known = factsOf(scope.frame.module.program).assigned.has(generic.path) ? undefined : fallbackOf(m, generic);
   if (known?.kind === 'function' || known?.kind === 'class') return callValue(m, scope, known, self, args, place, words);
   if (args.length === 0) return getter(m, callee, place);
   const shown = args.map((a) => argumentWords(m, a.value));
@@ -297,7 +301,12 @@ export function invoke(m: Machine, f: FunctionValue, self: Value | undefined, ar
     return unreadable(m, f, self, args, unread(`can't read \`${node.name}\`: it is ${node.opaque}`, place));
   }
   if (m.calls >= DEEPEST_CALLS) return unreadable(m, f, self, args, unread(`can't read \`${node.name}\`: it calls itself, or calls are nested too deeply (recursion)`, place));
+  // A call of itself on a branch that is not decided may go on without end, and doubles the work each time it is two.
+  if (m.running.filter((r) => r.node === node && r.facts < m.facts.length).length >= MOST_OPEN_CALLS) {
+    return unreadable(m, f, self, args, unread(`can't read \`${node.name}\`: how often it calls itself depends on data (recursion)`, place));
+  }
   m.calls++;
+  m.running.push({ node, facts: m.facts.length });
   const base = m.store;
   const receiver = node.inheritsSelf ? (f.self ?? f.scope.frame.self) : (f.self ?? self);
   const home = node.inheritsSelf ? (f.home ?? f.scope.frame.home) : f.home;
@@ -317,6 +326,7 @@ export function invoke(m: Machine, f: FunctionValue, self: Value | undefined, ar
     return runBody(m, scope, base, place);
   });
   m.calls--;
+  m.running.pop();
   return value;
 }
 

@@ -5,6 +5,7 @@ import type { ClassNode, Member } from './form';
 import type { Expr } from '../expression/node';
 import { fieldValue, genericAt, valueOf } from './generics';
 import type { Machine } from './machine';
+import { factsOf, type MemberWrite } from './facts';
 import { memberPath } from './paths';
 import { patternNames, storedParameters } from './scan';
 import { Scope, type ClassInfo, type Frame } from './scope';
@@ -50,16 +51,35 @@ export function staticMember(m: Machine, info: ClassInfo, key: string, place: Pl
     const f: FunctionValue = { kind: 'function', node: member.node, scope: found.info.scope, self, home: found.info };
     return member.kind === 'getter' ? m.invoke(f, self, [], place) : f;
   }
+  if (isStaticWritten(found.info, key)) {
+    const { value: initial } = member;
+    return m.atRoot(() => {
+      const fallback = initial ? { fallback: () => m.evaluate(bodyScope(m, found.info, self), initial) } : {};
+      const state = genericAt(m, `${info.node.name}.${key}`, place, fallback);
+      setStatic(m, found.info, key, state);
+      return state;
+    });
+  }
   if (!member.value) return NOTHING;
   const value = m.atRoot(() => {
     const v = m.evaluate(bodyScope(m, found.info, self), member.value!);
     return settleName(m, key, `${info.node.name}.${key}`, v, m.place(found.info.scope, member.span));
   });
-  m.atRoot(() => {
-    const data = m.store.writable(found.info.statics);
-    if (data.kind === 'record') data.members.set(key, value);
-  });
+  m.atRoot(() => setStatic(m, found.info, key, value));
   return value;
+}
+
+function setStatic(m: Machine, info: ClassInfo, key: string, value: Value): void {
+  const data = m.store.writable(info.statics);
+  if (data.kind === 'record') data.members.set(key, value);
+}
+
+/** True where a static member is written outside its initialiser: `Body.count = 0`, `static { this.count = 0; }`. */
+function isStaticWritten(info: ClassInfo, key: string): boolean {
+  const { node } = info;
+  const writes = factsOf(info.scope.frame.module.program).memberWrites.get(key) ?? [];
+  const inStatic = (w: MemberWrite): boolean => w.owner === node && !node.members.some((x) => x.name === key && !x.isStatic);
+  return writes.some((w) => w.through === node.name || inStatic(w));
 }
 
 /** Python's `Base.method(self, ...)`. */

@@ -233,6 +233,8 @@ function isOutsideThing(m: Machine, v: Value): boolean {
 }
 
 function textEquality(m: Machine, text: string, thing: Value, place: Place): Expr | Unread {
+  // Whether a number is turned into text first is the language's and the operator's own.
+  if (thing.kind === 'scalar' || thing.kind === 'condition') return unread('whether a text and a number are the same', place);
   if (thing.kind !== 'object') return m.graph.false;
   const data = dataOf(m, thing);
   if (data?.kind !== 'generic') return m.graph.false;

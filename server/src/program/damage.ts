@@ -13,15 +13,19 @@ import { unread, type Unread, type Value } from './values';
 
 export function unknownCall(m: Machine, args: readonly ArgumentValue[], place: Place, words: string, why?: string): Unread {
   const isDiscarded = m.discarded?.kind === 'call' && m.discarded.span.start === place.span.start && m.discarded.span.end === place.span.end;
-  const forEffect = isDiscarded && !HARMLESS.test(lastName(words) ?? words);
+  const name = lastName(words) ?? words;
+  const mayChange = !HARMLESS.test(name) && (isDiscarded || !ASKING.test(name));
   const reason = unread(why ?? `can't read the call \`${words}(...)\`: no function of that name is in this project or in the library tables`, place);
   damage(m, args, reason);
-  if (forEffect) for (const { value } of args) breakOutside(m, value, reason);
+  if (mayChange) for (const { value } of args) breakOutside(m, value, reason);
   return reason;
 }
 
 /** What is called for its effect by these names shows, keeps or tests things and leaves them as they are. */
 const HARMLESS = /^(?:assert|check|validate|verify|log|debug|trace|warn|error|info|report|print|plot|draw|paint|render|show|display|emit|notify|record|invariant|expect)(?![a-z])/;
+
+/** What is called for its value by these names works something out of what it is given, and leaves that as it is. */
+const ASKING = /^(?:get|is|has|to|as|of|from|compute|calc|calculate|evaluate|eval|estimate|predict|measure|find|lookup|read|interp|interpolate|sum|mean|count|length|norm|dot|cross|sin|cos|tan|min|max|abs|hypot|clamp|lerp|new|create|make|clone|copy|format|String|Number|Boolean|parse[A-Z]\w*)(?![a-z])/;
 
 function breakOutside(m: Machine, value: Value, why: Unread): void {
   if (value.kind !== 'object') return;

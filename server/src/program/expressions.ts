@@ -5,14 +5,15 @@ import { findMember } from './class-members';
 import { classInfo } from './classes';
 import { comprehend } from './comprehensions';
 import { conditionOf, isOpenFlag, isThing, truthOf } from './conditions';
-import type { Expression, Field } from './form';
+import type { Expression } from './form';
 import { clipped } from './limits';
-import { childOf, copyOfGeneric, valueOf } from './generics';
+import { valueOf } from './generics';
 import { indexValue } from './indexing';
+import { listLiteral, recordLiteral } from './literals';
 import type { Machine } from './machine';
 import { settle } from './settle';
 import { readMember } from './members';
-import { fork, spoilWritten, withEach } from './merging';
+import { fork, spoilWritten } from './merging';
 import { unknownName } from './modules';
 import { dataOf, itemsOf, numeric } from './numbers';
 import { binary, negate } from './operators';
@@ -64,7 +65,7 @@ function evaluateInside(m: Machine, scope: Scope, e: Expression, place: Place): 
     case 'boolean':
       return { kind: 'condition', expr: e.value ? graph.true : graph.false, place };
     case 'nothing':
-      return NOTHING;
+      return e.isNull ? { kind: 'nothing', isNull: true } : NOTHING;
     case 'symbolic':
       return m.scalar(e.expr, place);
     case 'name': {
@@ -271,130 +272,4 @@ function conditional(m: Machine, scope: Scope, e: Expression & { kind: 'conditio
     () => evaluate(m, scope, e.whenFalse),
   );
   return m.request.withinLimits ? clipped(c, value) : value;
-}
-
-/** All parts are worked out first, so that none of their effects is lost where one of them can't be read. */
-function listLiteral(m: Machine, scope: Scope, e: Expression & { kind: 'list' }, place: Place): Value {
-  const parts = e.items.map((item) => ({ value: evaluate(m, scope, item.value), spread: item.spread === true }));
-  const array = scope.frame.module.program.elementwise === true;
-  const open = parts.findIndex((p) => p.spread && p.value.kind === 'choice');
-  if (open >= 0) {
-    return withEach(m, parts[open]!.value, place, (v) => joinParts(m, parts.map((p, k) => (k === open ? { ...p, value: v } : p)), array, place));
-  }
-  return joinParts(m, parts, array, place);
-}
-
-function joinParts(m: Machine, parts: readonly { value: Value; spread: boolean }[], array: boolean, place: Place): Value {
-  const [only] = parts;
-  if (parts.length === 1 && only!.spread && only!.value.kind === 'object' && isOutside(m, only!.value)) {
-    const data = dataOf(m, only!.value);
-    if (data?.kind === 'generic') return copyOfGeneric(m, only!.value.id, data);
-  }
-  const items: Value[] = [];
-  for (const { value, spread } of parts) {
-    if (!spread) {
-      items.push(value);
-      continue;
-    }
-    const inner = itemsOf(m, value);
-    if (!inner) return value.kind === 'unread' ? value : unread('a list that is spread out and whose length is not known', place);
-    items.push(...inner);
-  }
-  return m.list(items, array);
-}
-
-type Part =
-  | { readonly kind: 'member'; readonly name: string; readonly value: Value }
-  | { readonly kind: 'getter'; readonly name: string; readonly value: FunctionValue }
-  | { readonly kind: 'spread'; readonly value: Value };
-
-function recordLiteral(m: Machine, scope: Scope, fields: readonly Field[], place: Place): Value {
-  const parts: Part[] = [];
-  let problem: Value | undefined;
-  for (const field of fields) {
-    if (field.kind === 'field') parts.push({ kind: 'member', name: field.name, value: evaluate(m, scope, field.value) });
-    else if (field.kind === 'getter') parts.push({ kind: 'getter', name: field.name, value: { kind: 'function', node: field.node, scope } });
-    else if (field.kind === 'spread') parts.push({ kind: 'spread', value: evaluate(m, scope, field.value) });
-    else if (field.kind === 'computed') {
-      const key = evaluate(m, scope, field.name);
-      const value = evaluate(m, scope, field.value);
-      const name = key.kind === 'string' ? key.value : key.kind === 'scalar' && key.expr.op === 'number' ? String(key.expr.data) : undefined;
-      if (name === undefined) problem ??= unread('a record with a name that is not known', place);
-      else parts.push({ kind: 'member', name, value });
-    }
-  }
-  return problem ?? joinFields(m, parts, 0, place);
-}
-
-function joinFields(m: Machine, parts: readonly Part[], from: number, place: Place): Value {
-  const open = parts.findIndex((p, k) => k >= from && p.kind === 'spread' && p.value.kind === 'choice');
-  if (open >= 0) {
-    return withEach(m, parts[open]!.value, place, (v) =>
-      joinFields(m, parts.map((p, k) => (k === open ? { kind: 'spread', value: v } : p)), open + 1, place),
-    );
-  }
-  const members = new Map<string, Value>();
-  const getters = new Map<string, FunctionValue>();
-  const outside = parts.findIndex((p) => p.kind === 'spread' && isOutside(m, p.value));
-  if (outside >= 0) return joinOutside(m, parts, outside, place);
-  for (const part of parts) {
-    if (part.kind === 'member') members.set(part.name, part.value);
-    else if (part.kind === 'getter') getters.set(part.name, part.value);
-    else {
-      const problem = spreadInto(m, members, part.value, place);
-      if (problem) return problem;
-    }
-  }
-  return m.object({ kind: 'record', members, getters });
-}
-
-function isOutside(m: Machine, value: Value): boolean {
-  const data = dataOf(m, value);
-  return data?.kind === 'generic';
-}
-
-/**
- * `{ ...state, x: 1 }` of a thing from outside: a copy of it, on which the members that follow are written. What stands
- * before it is a default, as in `{ m: 1, ...options }`.
- */
-function joinOutside(m: Machine, parts: readonly Part[], at: number, place: Place): Value {
-  const spread = parts[at]!;
-  const data = spread.kind === 'spread' ? dataOf(m, spread.value) : undefined;
-  if (spread.kind !== 'spread' || spread.value.kind !== 'object' || data?.kind !== 'generic') return unread('a spread', place);
-  const before = joinFields(m, parts.slice(0, at), 0, place);
-  if (before.kind === 'unread') return before;
-  const defaults = dataOf(m, before);
-  const members = new Map(data.members);
-  const source = data.copyOf ?? spread.value.id;
-  if (defaults?.kind === 'record') {
-    for (const [key, v] of defaults.members) {
-      if (!members.has(key)) members.set(key, childOf(m, source, data.generic, key, place, { fallback: () => v }));
-    }
-  }
-  for (const part of parts.slice(at + 1)) {
-    if (part.kind === 'member') members.set(part.name, part.value);
-    else if (part.kind === 'getter') return unread('a getter beside members that are not known', place);
-    else {
-      const problem = spreadInto(m, members, part.value, place);
-      if (problem) return problem;
-    }
-  }
-  // Methods and getters of a class are not spread.
-  const { info, ...plain } = data.generic;
-  return m.object({ kind: 'generic', generic: info ? plain : data.generic, copyOf: source, members });
-}
-
-function spreadInto(m: Machine, members: Map<string, Value>, value: Value, place: Place): Value | undefined {
-  if (value.kind === 'nothing') return undefined;
-  if (value.kind === 'unread') return value;
-  const data = dataOf(m, value);
-  if (data?.kind === 'record') {
-    for (const [k, v] of data.members) members.set(k, v);
-    return undefined;
-  }
-  if (data?.kind === 'list') {
-    data.items.forEach((v, k) => members.set(String(k), v));
-    return undefined;
-  }
-  return unread('a thing that is spread out and whose members are not known', place);
 }

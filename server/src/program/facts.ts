@@ -13,6 +13,10 @@ export interface Facts {
   readonly usedAsThings: ReadonlySet<string>;
   /** Names of things whose members or elements are written. */
   readonly writtenThings: ReadonlySet<string>;
+  /** Names of things that a call changes: `trail.push(x)`, `Object.assign(options, given)`, `fill(table)`. */
+  readonly changedThings: ReadonlySet<string>;
+  /** Methods that are hung on a class from outside it: `Body.step` for `Body.prototype.step = ...`. */
+  readonly patched: ReadonlySet<string>;
   readonly functions: readonly FunctionNode[];
   /** What a function is a method of: a record literal, or the variable that holds it or is given the function. */
   holderOf(node: FunctionNode): Expression | undefined;
@@ -25,6 +29,8 @@ export interface MemberWrite {
   readonly owner: ClassNode | undefined;
   /** What a constructor sets is an initial value, not a change. */
   readonly inConstructor: boolean;
+  /** The name it is written through: `Body` of `Body.count = 0`. */
+  readonly through?: string;
 }
 
 type Context = MemberWrite;
@@ -48,6 +54,9 @@ function gather(program: Program): Facts {
   const memberWrites = new Map<string, MemberWrite[]>();
   const usedAsThings = new Set<string>();
   const writtenThings = new Set<string>();
+  const changedThings = new Set<string>();
+  const patched = new Set<string>();
+  const passed: { readonly callee: string; readonly at: number; readonly name: string }[] = [];
   const functions: FunctionNode[] = [];
   const holders = new Map<FunctionNode, Expression>();
   const variables = new Map<Expression, Expression>();
@@ -67,7 +76,10 @@ function gather(program: Program): Facts {
       if (place.kind === 'member') {
         if (e.value.kind === 'function' && !e.op && place.object.kind === 'name') holders.set(e.value.node, place.object);
         const own = place.object.kind === 'self';
-        const write = own ? context : { owner: undefined, inConstructor: context.inConstructor };
+        const through = place.object.kind === 'name' ? { through: place.object.name } : {};
+        const write = own ? context : { owner: undefined, inConstructor: context.inConstructor, ...through };
+        const { object } = place;
+        if (object.kind === 'member' && object.name === 'prototype' && object.object.kind === 'name') patched.add(`${object.object.name}.${place.name}`);
         const known = memberWrites.get(place.name);
         if (known) known.push(write);
         else memberWrites.set(place.name, [write]);
@@ -76,6 +88,19 @@ function gather(program: Program): Facts {
       while (root.kind === 'member' || root.kind === 'index') root = root.object;
       if (root.kind === 'name') writtenThings.add(root.name);
     }
+  };
+
+  const onCall = (e: Expression & { kind: 'call' }): void => {
+    const { callee, args } = e;
+    const [first] = args;
+    if (callee.kind === 'member' && CHANGING_METHODS.has(callee.name)) addRoot(callee.object, changedThings);
+    if (callee.kind === 'member' && callee.object.kind === 'name' && CHANGING_FUNCTIONS.has(`${callee.object.name}.${callee.name}`) && first) {
+      addRoot(first.value, changedThings);
+      const of = first.value;
+      if (of.kind === 'member' && of.name === 'prototype' && of.object.kind === 'name') patched.add(`${of.object.name}.*`);
+    }
+    if (callee.kind !== 'name') return;
+    args.forEach((a, at) => a.value.kind === 'name' && passed.push({ callee: callee.name, at, name: a.value.name }));
   };
 
   const nodes: unknown[] = [program.body];
@@ -95,6 +120,7 @@ function gather(program: Program): Facts {
     if (n.kind === 'number' || n.kind === 'string') continue;
     if ((n.kind as string) === 'declare' && n.target?.kind === 'name' && 'value' in n) variables.set(n.value as Expression, { ...n.target });
     if (n.kind === 'assign' && 'target' in n) onAssign(n, context);
+    else if (n.kind === 'call' && 'callee' in n) onCall(n);
     else if ((n.kind === 'member' || n.kind === 'index') && 'object' in n) {
       if (n.object.kind === 'name') usedAsThings.add(n.object.name);
     } else if (n.kind === 'record' && 'fields' in n) {
@@ -131,7 +157,41 @@ function gather(program: Program): Facts {
     const isSole = variable?.kind === 'name' && (values.get(variable.name)?.length ?? (assigned.has(variable.name) ? 2 : 0)) <= 1;
     return isSole ? variable : holder;
   };
-  return { assigned, computed, memberWrites, usedAsThings, writtenThings, functions, holderOf, values };
+  addPassedOn(passed, functions, writtenThings, changedThings);
+  return { assigned, computed, memberWrites, usedAsThings, writtenThings, changedThings, patched, functions, holderOf, values };
+}
+
+const CHANGING_METHODS: ReadonlySet<string> = new Set(
+  'push pop shift unshift splice sort reverse fill copyWithin set add delete clear append extend insert remove update'.split(' '),
+);
+const CHANGING_FUNCTIONS: ReadonlySet<string> = new Set(
+  'Object.assign Object.defineProperty Object.defineProperties Object.setPrototypeOf Reflect.set Reflect.defineProperty'.split(' '),
+);
+
+function addRoot(e: Expression, names: Set<string>): void {
+  let root = e;
+  while (root.kind === 'member' || root.kind === 'index') root = root.object;
+  if (root.kind === 'name') names.add(root.name);
+}
+
+/** What is handed to a function of the file that changes its parameter is changed. */
+function addPassedOn(
+  passed: readonly { readonly callee: string; readonly at: number; readonly name: string }[],
+  functions: readonly FunctionNode[],
+  written: ReadonlySet<string>,
+  changed: Set<string>,
+): void {
+  const byName = new Map<string, FunctionNode[]>();
+  for (const f of functions) byName.set(f.name, [...(byName.get(f.name) ?? []), f]);
+  for (let round = 0, size = -1; size !== changed.size && round < 8; round++) {
+    size = changed.size;
+    for (const { callee, at, name } of passed) {
+      for (const f of byName.get(callee) ?? []) {
+        const p = f.parameters[at]?.pattern;
+        if (p?.kind === 'name' && (written.has(p.name) || changed.has(p.name))) changed.add(name);
+      }
+    }
+  }
 }
 
 function isFunction(n: object): n is FunctionNode {
@@ -161,6 +221,12 @@ export function firstMade(program: Program, name: string): Expression | undefine
   return given?.every(isMaking) ? given[0] : undefined;
 }
 
+/** The function that a variable without a first value is given, once: `let rates; rates = (s) => ...`. */
+export function onlyFunction(program: Program, name: string): Expression | undefined {
+  const given = factsOf(program).values.get(name);
+  return given?.length === 1 && given[0]!.kind === 'function' ? given[0] : undefined;
+}
+
 function isMaking(e: Expression): boolean {
   return e.kind === 'call' && (e.isNew === true || (e.callee.kind === 'name' && /^create[A-Z]/.test(e.callee.name)));
 }
@@ -174,9 +240,9 @@ const digests = new WeakMap<Program, string>();
 export function digestOf(program: Program): string {
   let digest = digests.get(program);
   if (digest === undefined) {
-    const { assigned, computed, memberWrites, usedAsThings, writtenThings } = factsOf(program);
-    const writes = [...memberWrites].map(([name, list]) => `${name}:${list.map((w) => `${w.owner?.name ?? ''}${w.inConstructor ? '*' : ''}`).sort().join(',')}`);
-    digest = [assigned, computed, writes, usedAsThings, writtenThings].map((names) => [...names].sort().join(' ')).join('|');
+    const { assigned, computed, memberWrites, usedAsThings, writtenThings, changedThings, patched } = factsOf(program);
+    const writes = [...memberWrites].map(([name, list]) => `${name}:${list.map((w) => `${w.owner?.name ?? w.through ?? ''}${w.inConstructor ? '*' : ''}`).sort().join(',')}`);
+    digest = [assigned, computed, writes, usedAsThings, writtenThings, changedThings, patched].map((names) => [...names].sort().join(' ')).join('|');
     digests.set(program, digest);
   }
   return digest;

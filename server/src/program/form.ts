@@ -29,6 +29,8 @@ export interface Program {
   /** `*` and `/` between lists are the matrix operations (MATLAB, Julia). */
   readonly matrixProduct?: boolean;
   readonly body: readonly Statement[];
+  /** What its types say, where the language has them. */
+  readonly types?: TypeTable;
   /** Every comment and docstring, with what it stands before or in. */
   readonly comments: readonly Comment[];
   /** Syntax errors of the source itself; functions that contain one are not to be trusted. */
@@ -60,8 +62,8 @@ export type Expression =
   | { readonly kind: 'number'; readonly value: Rational; readonly text: string; readonly integer: boolean; readonly span: Span }
   | { readonly kind: 'string'; readonly value: string; readonly span: Span }
   | { readonly kind: 'boolean'; readonly value: boolean; readonly span: Span }
-  /** null, None, undefined, nil */
-  | { readonly kind: 'nothing'; readonly span: Span }
+  /** null, None, undefined, nil. `isNull`: passed as an argument it is that, and no default stands in for it. */
+  | { readonly kind: 'nothing'; readonly isNull?: boolean; readonly span: Span }
   | { readonly kind: 'name'; readonly name: string; readonly span: Span }
   /** `this`, `self` */
   | { readonly kind: 'self'; readonly span: Span }
@@ -147,6 +149,23 @@ export interface TypeNote {
   /** Of each item of a list. */
   readonly item?: TypeNote;
   readonly member?: (name: string) => TypeNote | undefined;
+}
+
+/** The types of a file by name. */
+export interface TypeTable {
+  /** What a type says that the file declares. */
+  declared(name: string): TypeNote | undefined;
+  /** Where a name comes from that the file imports, as a type or as a value. */
+  imported(name: string): TypeOrigin | undefined;
+  /** What stands behind a name that other files import; undefined where it is the file's own of that name. */
+  exported(name: string): TypeOrigin | { readonly local: string } | undefined;
+  /** Files whose exports are all passed on. */
+  readonly passedOn: readonly string[];
+}
+
+export interface TypeOrigin {
+  readonly from: string;
+  readonly name: string;
 }
 
 export interface FunctionNode {

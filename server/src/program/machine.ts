@@ -69,6 +69,7 @@ export class Machine {
   invoke: (f: FunctionValue, self: Value | undefined, args: readonly ArgumentValue[], place: Place) => Value = () =>
     unread('a call', undefined);
   callFunction: (module: Module, f: Value, args: readonly Value[], place: Place) => Value = () => unread('a call', undefined);
+  openModule: (module: Module, from: string) => Module | undefined = () => undefined;
   exportOf: (module: Module, name: string, place: Place) => Value = () => unread('an import', undefined);
   readElement: (module: Module, object: Value, key: Value, place: Place) => Value = () => unread('an element', undefined);
   /** Runs a function of the file on generic arguments, from the state at the subject's entry. */
@@ -76,6 +77,8 @@ export class Machine {
   /** Set while an output is read, so that values keep the place that made them. */
   keepPlaces = false;
   calls = 0;
+  /** The functions that are running, each with how many undecided conditions held when it was called. */
+  readonly running: { readonly node: FunctionNode; readonly facts: number }[] = [];
   /** The expression of the statement that is being run, whose value goes nowhere. */
   discarded: Expression | undefined;
   /** The call in the project's own code under which a package's meaning is being worked out. */
@@ -98,8 +101,6 @@ export class Machine {
   readonly entries = new Map<string, Value>();
   /** Things from outside that the code names without declaring. */
   readonly globals = new Map<string, Value>();
-  /** `X.prototype.f = ...` of a file's top level. */
-  readonly prototypes: { readonly module: Module; readonly target: Expression; readonly value: Expression }[] = [];
   private depth = 0;
   private stop: Unread | undefined;
 

@@ -1,6 +1,7 @@
 import type { Place } from '../text/span';
 import { isChoiceOfNumbers } from './conditions';
 import { findMember } from './class-members';
+import { factsOf } from './facts';
 import { instanceField, staticMember } from './classes';
 import { childOf, fieldValue } from './generics';
 import { runIntrinsic } from './intrinsics/table';
@@ -9,7 +10,7 @@ import { withEach } from './merging';
 import { countOf, dataOf, describe, scalarOf } from './numbers';
 import { cellAt, writeOpen } from './open-cells';
 import type { ClassInfo, Module } from './scope';
-import { NOTHING, unread, type FunctionValue, type GenericData, type Assigned, type ListData, type ObjectValue, type RecordData, type Value } from './values';
+import { NOTHING, unread, type FunctionValue, type Assigned, type GenericData, type ListData, type ObjectValue, type RecordData, type Value } from './values';
 
 /** Reading and writing members and elements. */
 
@@ -117,6 +118,9 @@ function fromClass(m: Machine, info: ClassInfo, object: ObjectValue, key: string
   const found = findMember(info, key);
   if (found === 'unknown') return unread(`\`.${key}\` of a class whose base is not read`, place);
   if (!found?.member.node) return undefined;
+  const { patched } = factsOf(found.info.scope.frame.module.program);
+  const { name } = found.info.node;
+  if (patched.size > 0 && (patched.has(`${name}.${key}`) || patched.has(`${name}.*`))) return unread(`\`${name}.prototype.${key}\`, which is changed after the class`, place);
   const f: FunctionValue = { kind: 'function', node: found.member.node, scope: found.info.scope, self: object, home: found.info };
   if (found.member.kind === 'getter') return m.invoke(f, object, [], place);
   return found.member.kind === 'method' ? f : undefined;
@@ -236,6 +240,17 @@ export function writeMember(m: Machine, module: Module, object: Value, key: stri
   const before = m.store.data(object.id);
   const info = before.kind === 'record' ? before.info : before.kind === 'generic' ? before.generic.info : undefined;
   if (info && callSetter(m, info, object, key, value, place)) return;
+  if (before.kind === 'record' && before.frozen) {
+    m.breakObject(object.id, unread('a write to a frozen thing', place));
+    return;
+  }
+  const own = before.kind === 'record' ? before.setters?.get(key) : undefined;
+  if (own) {
+    m.invoke(own, object, [{ value }], place);
+    return;
+  }
+  // In strict code a value that only has a getter can't be written to.
+  if (before.kind === 'record' && before.getters?.has(key)) return;
   const data = m.store.writable(object.id);
   if (data.kind === 'record' && m.constructing?.id === object.id) data.members.set(key, fieldValue(m, m.constructing, key, value, place));
   else if (data.kind === 'record' || data.kind === 'generic') data.members.set(key, value);

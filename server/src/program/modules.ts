@@ -7,7 +7,7 @@ import type { Machine } from './machine';
 import { libraryMember, readMember } from './members';
 import { pathOf } from './paths';
 import { bindPattern } from './patterns';
-import { factsOf, firstMade, givenOnce } from './facts';
+import { factsOf, firstMade, givenOnce, onlyFunction } from './facts';
 import { patternNames } from './scan';
 import { Scope, type Frame, type Module } from './scope';
 import { enumValue } from './statements';
@@ -69,7 +69,7 @@ export function addTopLevel(m: Machine, module: Module, scope: Scope, s: Stateme
   }
 }
 
-/** `X.prototype.f = function ...` and `exports.f = ...` at the top level. */
+/** A name that is assigned without having been declared. */
 function addAssigned(m: Machine, module: Module, scope: Scope, e: Expression): void {
   if (e.kind !== 'assign' || e.op || (e.target.kind !== 'place' && e.target.kind !== 'name')) return;
   if (e.target.kind === 'name') {
@@ -78,10 +78,6 @@ function addAssigned(m: Machine, module: Module, scope: Scope, e: Expression): v
     const { name } = e.target;
     lazy(m, scope, name, () => topLevelValue(m, module, scope, name, e.value, true));
     return;
-  }
-  const t = e.target.target;
-  if (t.kind === 'member' && t.object.kind === 'member' && t.object.name === 'prototype') {
-    m.prototypes.push({ module, target: t, value: e.value });
   }
 }
 
@@ -118,6 +114,8 @@ function arrival(scope: Scope, name: string, place: Place): Arrival {
  */
 function topLevelValue(m: Machine, module: Module, scope: Scope, name: string, value: Expression | undefined, mutable: boolean, at?: Place, note?: TypeNote): Value {
   const place = value ? m.place(scope, value.span) : (at ?? m.place(scope, { start: 0, end: 0 }));
+  const only = value ? undefined : onlyFunction(module.program, name);
+  if (only) return m.evaluate(scope, only);
   const made = value && value.kind !== 'nothing' ? value : firstMade(module.program, name);
   const initial = (): Value | undefined => (made ? m.evaluate(scope, made) : undefined);
   const changes = mutable && factsOf(module.program).assigned.has(name);
@@ -132,9 +130,11 @@ function topLevelValue(m: Machine, module: Module, scope: Scope, name: string, v
     if (v?.kind === 'object') {
       const data = m.store.data(v.id);
       if (data.kind === 'generic') return arrive(m, name, v, arrival(scope, name, place));
-      // An empty list is filled elsewhere: it is what \`reads\` says.
+      // An empty list is filled elsewhere: it is what `reads` says.
       if (data.kind === 'list' && data.items.length === 0 && (m.naming.hasRead(name) || m.naming.hasReadBelow(name))) return genericAt(m, name, place);
-      if (!isState(module, name) && data.kind !== 'broken') return arrive(m, name, v, arrival(scope, name, place));
+      const { changedThings } = factsOf(module.program);
+      if (changedThings.has(name) && data.kind === 'list') return genericAt(m, name, place, { origin: `\`${name}\` is changed after it is made` });
+      if (!isState(module, name) && !changedThings.has(name) && data.kind !== 'broken') return arrive(m, name, v, arrival(scope, name, place));
       return genericAt(m, name, place, { fallback: () => v, constant: true, ...givenLater(m, module, scope, name) });
     }
   }
@@ -187,7 +187,7 @@ function broughtIn(m: Machine, module: Module, name: string): Value | undefined 
       if (scalars.has(path) || constants.has(path) || intrinsics.has(path)) return libraryMember(m, module, path, place);
       continue;
     }
-    const other = open(m, module, from);
+    const other = openModule(m, module, from);
     if (other && (other.exports.has(name) || other.scope.variables.has(name))) return exportOf(m, other, name, place);
   }
   return undefined;
@@ -199,7 +199,7 @@ function imported(m: Machine, module: Module, from: string, name: string, local:
     if (name === 'default') return { kind: 'library', path: prefix.replace(/\.$/, ''), module };
     return underName(m, module, local, libraryMember(m, module, prefix + name, place), place);
   }
-  const other = open(m, module, from);
+  const other = openModule(m, module, from);
   if (!other) return genericAt(m, local, place);
   const value = exportOf(m, other, name, place);
   return local === name ? value : underName(m, module, local, value, place);
@@ -214,7 +214,7 @@ function underName(m: Machine, module: Module, local: string, value: Value, plac
 function importedWhole(m: Machine, module: Module, from: string, local: string, place: Place): Value {
   const prefix = module.library.modules.get(from);
   if (prefix !== undefined) return { kind: 'library', path: prefix.replace(/\.$/, ''), module };
-  const other = open(m, module, from);
+  const other = openModule(m, module, from);
   if (!other) return genericAt(m, local, place);
   if (other.isMeaning && other.exports.has('default')) return exportOf(m, other, 'default', place);
   return other.whole ? m.evaluate(other.scope, other.whole) : { kind: 'module', module: other };
@@ -224,7 +224,7 @@ export function requireModule(m: Machine, scope: Scope, from: string, place: Pla
   return importedWhole(m, scope.frame.module, from, from, place);
 }
 
-function open(m: Machine, module: Module, from: string): Module | undefined {
+export function openModule(m: Machine, module: Module, from: string): Module | undefined {
   const found = m.request.importFile(from, module.file);
   if (!found) {
     const meaning = module.library.packageMeaning?.(from);
@@ -270,7 +270,7 @@ export function exportOf(m: Machine, module: Module, name: string, place: Place,
   if (known) return known();
   for (const { from } of module.everythingOf) {
     if (name === 'default' || depth > 16) break;
-    const other = open(m, module, from);
+    const other = openModule(m, module, from);
     const value = other && exportOf(m, other, name, place, depth + 1);
     if (value && value.kind !== 'unread' && value.kind !== 'nothing') return value;
   }

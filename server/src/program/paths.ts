@@ -69,7 +69,7 @@ function argumentText(e: Expression): string | undefined {
 /** A text that two expressions share exactly when they are the same but for places. */
 export function shapeOf(e: Expression): string {
   return JSON.stringify(e, (key, value: unknown) => {
-    if (key === 'span' || key === 'nameSpan' || key === 'opSpan' || key === 'text') return undefined;
+    if (key === 'span' || key === 'nameSpan' || key === 'opSpan' || key === 'text' || key === 'integer') return undefined;
     return typeof value === 'bigint' ? value.toString() : value;
   });
 }

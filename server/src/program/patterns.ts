@@ -36,7 +36,7 @@ export function bindPattern(m: Machine, scope: Scope, pattern: Pattern, value: V
 }
 
 export function bindItem(m: Machine, scope: Scope, item: PatternItem, value: Value, put: Put): void {
-  if (value.kind === 'nothing' && item.initial) {
+  if (value.kind === 'nothing' && !value.isNull && item.initial) {
     bindPattern(m, scope, item.pattern, m.evaluate(scope, item.initial), put, true);
   } else bindPattern(m, scope, item.pattern, value, put);
 }

@@ -10,7 +10,7 @@ import { genericAt } from './generics';
 import { Machine } from './machine';
 import { apply, mergeEndings, type Ending } from './merging';
 import { readElement } from './members';
-import { exportOf, loadModule } from './modules';
+import { exportOf, loadModule, openModule } from './modules';
 import { madeIn, readOutputs, type Ended } from './outputs';
 import type { ClassNode, Expression } from './form';
 import type { Ambiguity, OutputValue, ReadRequest, Reading } from './reading';
@@ -81,6 +81,7 @@ function readOnce(m: Machine): OutputValue[] {
   m.execute = (scope, body) => execute(m, scope, body);
   m.invoke = (f, self, args, place) => invoke(m, f, self, args, place);
   m.callFunction = (module, f, args, place) => callFunctionValue(m, module, f, args, place);
+  m.openModule = (module, from) => openModule(m, module, from);
   m.exportOf = (module, name, place) => exportOf(m, module, name, place);
   m.readElement = (module, object, key, place) => readElement(m, module, object, key, place);
   const module = loadModule(m, request.file, request.program, request.library);
@@ -89,7 +90,10 @@ function readOnce(m: Machine): OutputValue[] {
   const outputs = readOutputs(m, request.outputs, ended);
   if (subject.kind !== 'class') return outputs;
   return outputs.map((o, i) => {
-    if (o.kind === 'unread' || namesMethod(request.outputs[i]!.expression, subject.node)) return o;
+    const { expression } = request.outputs[i]!;
+    // What `reads` gives a meaning may stand in a formula of methods.
+    if (expression.kind === 'name' && m.naming.hasRead(expression.name)) return o;
+    if (o.kind === 'unread' || namesMethod(expression, subject.node)) return o;
     const reason = 'a class computes nothing by itself: claim what a method returns (`step.return`, `H(q)`), or put the claim above the method';
     return { kind: 'unread', reason, place: subjectPlace(request) };
   });

@@ -267,11 +267,23 @@ function executeTry(m: Machine, scope: Scope, s: Statement & { kind: 'try' }, pl
   }
   m.store = after;
   if (ends.length > 0) normal = join(m, base, ends, body.normal, exits.length > 0, place);
-  if (s.finalizer.length > 0 && normal) {
-    const last = execute(m, new Scope(scope, scope.frame), s.finalizer);
-    return { exits: [...exits, ...last.exits], normal: last.normal };
+  return s.finalizer.length > 0 ? finalise(m, scope, s.finalizer, { exits, normal }) : { exits, normal };
+}
+
+/** What stands in `finally` is done on every way out, and may take another. */
+function finalise(m: Machine, scope: Scope, body: readonly Statement[], before: Outcome): Outcome {
+  const after = m.store;
+  const exits: Exit[] = [];
+  for (const x of before.exits) {
+    m.store = x.store.child();
+    const last = execute(m, new Scope(scope, scope.frame), body);
+    exits.push(...last.exits.map((y) => ({ ...y, guard: m.graph.and(x.guard, y.guard) })));
+    if (last.normal) exits.push({ ...x, store: m.store });
   }
-  return { exits, normal };
+  m.store = after;
+  if (!before.normal) return { exits, normal: false };
+  const last = execute(m, new Scope(scope, scope.frame), body);
+  return { exits: [...exits, ...last.exits], normal: last.normal };
 }
 
 function handle(m: Machine, scope: Scope, handler: NonNullable<(Statement & { kind: 'try' })['handler']>, x: Exit, place: Place): Outcome {

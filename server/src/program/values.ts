@@ -12,8 +12,8 @@ export type Value =
   | Scalar
   | Condition
   | { readonly kind: 'string'; readonly value: string }
-  /** `explicit`: null written in the code, against a variable that was never given a value. */
-  | { readonly kind: 'nothing' }
+  /** `isNull`: written in the code as a value of its own, for which no default stands in. */
+  | { readonly kind: 'nothing'; readonly isNull?: boolean }
   /** A list, record, instance or generic thing: its contents are in the store. */
   | ObjectValue
   | FunctionValue
@@ -126,7 +126,10 @@ export interface RecordData {
   readonly kind: 'record';
   readonly members: Map<string, Value>;
   readonly getters?: Map<string, FunctionValue>;
+  readonly setters?: Map<string, FunctionValue>;
   readonly info?: ClassInfo;
+  /** Writing to it does nothing, or throws an error. */
+  readonly frozen?: boolean;
   /** Where members are looked up that it lacks itself. */
   readonly prototype?: number;
 }

@@ -93,7 +93,7 @@ function leaf(c: Context, node: Node): Expression {
     case 'false':
       return { kind: 'boolean', value: node.type === 'true', span };
     case 'none':
-      return { kind: 'nothing', span };
+      return { kind: 'nothing', isNull: true, span };
     case 'string':
     case 'concatenated_string':
       return text(c, node);

@@ -125,6 +125,7 @@ function simple(node: ts.Expression, span: Span): Expression {
     case K.FalseKeyword:
       return { kind: 'boolean', value: node.kind === K.TrueKeyword, span };
     case K.NullKeyword:
+      return { kind: 'nothing', isNull: true, span };
     case K.OmittedExpression:
       return { kind: 'nothing', span };
     case K.ThisKeyword:

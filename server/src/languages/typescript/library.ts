@@ -22,7 +22,7 @@ export const typescriptLibrary: Library = {
     ['Object.values', 'record-values'],
     ['Object.entries', 'record-entries'],
     ['Object.fromEntries', 'record-from-entries'],
-    ['Object.freeze', 'identity'],
+    ['Object.freeze', 'freeze'],
     ['Object.seal', 'identity'],
     ['Object.preventExtensions', 'identity'],
     ['structuredClone', 'deep-copy'],
@@ -46,6 +46,11 @@ export const typescriptLibrary: Library = {
   ignorable: new Set([
     ...'log info warn error debug trace assert table group groupEnd time timeEnd timeLog count'.split(' ').map((n) => `console.${n}`),
     'alert',
+    // What these are given runs later.
+    'setTimeout',
+    'setInterval',
+    'requestAnimationFrame',
+    'queueMicrotask',
     'performance.mark',
     'performance.measure',
     'Error.captureStackTrace',

@@ -6,6 +6,7 @@ import { exportedNames, topStatements } from './exports-object';
 import { scriptsOnly } from './html';
 import { exportsRecord } from './modules';
 import { languageId, parseSource, syntaxErrors } from './source';
+import { typeTable } from './type-table';
 
 /**
  * TypeScript, JavaScript, TSX or JSX, or the scripts of an HTML page, in program form. The file's extension says which.
@@ -25,7 +26,7 @@ export function programOf(file: string, text: string, parse: (code: string) => t
     const converter = new Converter(source, exportedNames(top), errors.map((e) => e.span.start));
     const body = converter.statements(top);
     body.push(...exportsRecord(converter, body));
-    return { language, indexBase: 0, body, comments: findComments(converter), errors };
+    return { language, indexBase: 0, body, types: typeTable(converter), comments: findComments(converter), errors };
   } catch (error) {
     if (!(error instanceof RangeError)) throw error;
     const message = 'Brackets or blocks nest too deeply here to be read; split the expression into named parts.';

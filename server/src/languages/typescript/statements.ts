@@ -49,12 +49,20 @@ function statement(c: Context, node: ts.Statement, siblings: readonly ts.Stateme
   } else if (ts.isExpressionStatement(node)) {
     const exported = exportedValue(c, node.expression, span);
     if (exported) made.push(...exported);
+    else if (changesArguments(node.expression)) made.push({ kind: 'opaque', reason: 'a change of `arguments`', span });
     else expressionStatement(c, node.expression, span, made);
   } else if (ts.isImportDeclaration(node)) made.push(...importDeclaration(c, node, span));
   else if (ts.isImportEqualsDeclaration(node)) made.push(...importEquals(c, node, span));
   else if (ts.isExportDeclaration(node)) made.push(...exportDeclaration(node, span));
   else if (ts.isExportAssignment(node)) made.push(...exportAssignment(c, node, span));
   else made.push(...plain(c, node, span));
+}
+
+/** `arguments[0] = x` changes a parameter in some modes and not in others. */
+function changesArguments(node: ts.Expression): boolean {
+  if (!ts.isBinaryExpression(node) || node.operatorToken.kind < K.FirstAssignment || node.operatorToken.kind > K.LastAssignment) return false;
+  const { left } = node;
+  return ts.isElementAccessExpression(left) && ts.isIdentifier(left.expression) && left.expression.text === 'arguments';
 }
 
 /** True for a plain statement that hands text to `eval`, which sees and changes the variables around it. */

@@ -44,16 +44,21 @@ function unionNote(c: Context, node: ts.UnionTypeNode, depth: number): TypeNote 
   return real.length === 1 ? typeNote(c, real[0], depth + 1) : undefined;
 }
 
+/** What a type says that the file declares by that name. */
+export function declaredNote(c: Context, name: string, depth = 0): TypeNote | undefined {
+  const declared = c.typesByName().get(name);
+  if (!declared) return undefined;
+  if (ts.isTypeAliasDeclaration(declared)) return typeNote(c, declared.type, depth + 1);
+  return { member: (key) => interfaceMember(c, declared, key, depth + 1) };
+}
+
 function referenceNote(c: Context, node: ts.TypeReferenceNode, depth: number): TypeNote | undefined {
   const path = expressionOf(c, node.typeName);
   if (path.kind !== 'name') return { class: path };
   const argument = node.typeArguments?.[0];
   if (argument && LISTS.has(path.name)) return listOf(typeNote(c, argument, depth + 1));
   if (argument && SAME.has(path.name)) return typeNote(c, argument, depth + 1);
-  const declared = c.typesByName().get(path.name);
-  if (!declared) return { class: path };
-  if (ts.isTypeAliasDeclaration(declared)) return typeNote(c, declared.type, depth + 1);
-  return { member: (name) => interfaceMember(c, declared, name, depth + 1) };
+  return declaredNote(c, path.name, depth) ?? { class: path };
 }
 
 function interfaceMember(c: Context, node: ts.InterfaceDeclaration, name: string, depth: number): TypeNote | undefined {

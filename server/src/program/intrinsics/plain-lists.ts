@@ -104,7 +104,7 @@ export const PLAIN_LISTS: IntrinsicTable = {
     const v = given(call, 0) ?? missing(call);
     const data = dataOf(m, v);
     if (data?.kind === 'list') return m.list(data.items, data.array);
-    if (data?.kind === 'record') return m.object({ ...data, members: new Map(data.members) });
+    if (data?.kind === 'record') return m.object({ ...data, frozen: false, members: new Map(data.members) });
     return v;
   },
   /** `d.update(other, a=1)` */

@@ -59,7 +59,13 @@ export const RECORDS: IntrinsicTable = {
     }
     return target;
   },
-  /** `Object.freeze(x)` and the like: the thing itself. */
+  freeze: (m, call) => {
+    const [value] = call.args;
+    const data = value?.kind === 'object' ? m.store.data(value.id) : undefined;
+    if (value?.kind === 'object' && data?.kind === 'record') m.store.set(value.id, { ...data, frozen: true });
+    return value ?? unread('a thing that is not given', call.place);
+  },
+  /** `Object.seal(x)` and the like: the thing itself. */
   identity: (_, call) => call.args[0] ?? unread('a thing that is not given', call.place),
   /** A copy with copies of everything in it. */
   'deep-copy': (m, call) => (call.args[0] ? clone(m, call.args[0], 0) : unread('a thing that is not given', call.place)),
@@ -78,7 +84,7 @@ function clone(m: Machine, v: Value, depth: number): Value {
   if (depth > 16) return unread('a thing nested too deeply', undefined);
   if (data.kind === 'list') return m.list(data.items.map((x) => clone(m, x, depth + 1)), data.array);
   if (data.kind === 'record') {
-    return m.object({ ...data, members: new Map([...data.members].map(([k, x]) => [k, clone(m, x, depth + 1)])) });
+    return m.object({ ...data, frozen: false, members: new Map([...data.members].map(([k, x]) => [k, clone(m, x, depth + 1)])) });
   }
   if (data.kind === 'generic' && data.members.size === 0) {
     // A copy of a thing from outside starts with its members.
