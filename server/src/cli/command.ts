@@ -4,6 +4,7 @@ import { describe } from './check';
 import { addCheck } from './check-command';
 import { derive, deriveAgainst, DERIVE_FORMS, type DeriveForm } from './derive';
 import { explain } from './explain';
+import { addCompare } from './compare';
 import { addMerge } from './merge';
 import { UsageError, type Io, type Status } from './io';
 import { suggest } from './suggest';
@@ -38,6 +39,7 @@ function createProgram(io: Io, finish: (status: Status | undefined) => void): Co
 
   addCheck(program, io, finish);
   addMerge(program, io, finish);
+  addCompare(program, io, finish);
 
   program
     .command('explain')
