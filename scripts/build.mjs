@@ -57,6 +57,14 @@ async function bundle(outdir, production) {
     }),
     build({
       ...common,
+      entryPoints: { panel: 'client/panel/main.ts' },
+      outdir,
+      platform: 'browser',
+      target: 'es2022',
+      format: 'iife',
+    }),
+    build({
+      ...common,
       entryPoints: {
         server: 'server/src/lsp/main.ts',
         'check-worker': 'server/src/lsp/working/worker.ts',

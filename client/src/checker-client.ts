@@ -1,4 +1,24 @@
-import { type FileStatus, statusNotification, type Suggestion, type SuggestParams, suggestRequest, version, visibleNotification, type VisibleParams } from '@visviva/shared';
+import {
+  checkFileRequest,
+  deriveRequest,
+  filesRequest,
+  panelRequest,
+  statusNotification,
+  suggestRequest,
+  themeNotification,
+  version,
+  visibleNotification,
+  type CheckedFile,
+  type ClientOptions,
+  type DerivedText,
+  type DeriveParams,
+  type FileStatus,
+  type PanelData,
+  type PanelParams,
+  type Suggestion,
+  type SuggestParams,
+  type VisibleParams,
+} from '@visviva/shared';
 import * as vscode from 'vscode';
 import {
   CloseAction,
@@ -10,6 +30,7 @@ import {
   type ServerOptions,
 } from 'vscode-languageclient/node';
 import { details, type StatusItem } from './status-item';
+import { currentTheme } from './theme';
 
 const languages = ['typescript', 'javascript', 'typescriptreact', 'javascriptreact', 'html', 'python', 'visviva'];
 
@@ -23,6 +44,10 @@ export class CheckerClient {
   private stops: number[] = [];
   /** What the output says last of each file. */
   private readonly logged = new Map<string, string>();
+
+  private readonly checked = new vscode.EventEmitter<string>();
+  /** An open file has been checked: its address. */
+  readonly onChecked = this.checked.event;
 
   constructor(
     context: vscode.ExtensionContext,
@@ -40,7 +65,7 @@ export class CheckerClient {
         { scheme: 'untitled', language },
       ]),
       outputChannel: output,
-      initializationOptions: { ...vscode.workspace.getConfiguration('visviva') },
+      initializationOptions: { ...vscode.workspace.getConfiguration('visviva'), ...({ panel: true, theme: currentTheme() } satisfies ClientOptions) },
       errorHandler: {
         error: () => ({ action: ErrorAction.Continue }),
         closed: () => this.closed(),
@@ -55,6 +80,10 @@ export class CheckerClient {
         status.running();
         this.tellVisible(vscode.window.visibleTextEditors);
       }),
+      vscode.window.onDidChangeActiveColorTheme(() => {
+        if (this.client.isRunning()) void this.client.sendNotification(themeNotification, currentTheme());
+      }),
+      this.checked,
       vscode.window.onDidChangeVisibleTextEditors((editors) => this.tellVisible(editors)),
     );
   }
@@ -63,6 +92,28 @@ export class CheckerClient {
   async suggest(uri: vscode.Uri, position: vscode.Position): Promise<Suggestion | undefined> {
     const params: SuggestParams = { textDocument: { uri: uri.toString() }, position: { line: position.line, character: position.character } };
     return (await this.client.sendRequest<Suggestion | null>(suggestRequest, params)) ?? undefined;
+  }
+
+  /** What the panel shows of a place; undefined where nothing is declared. */
+  async panel(uri: vscode.Uri, position: vscode.Position, token: vscode.CancellationToken): Promise<PanelData | undefined> {
+    const params: PanelParams = { textDocument: { uri: uri.toString() }, position: { line: position.line, character: position.character } };
+    return (await this.client.sendRequest<PanelData | null>(panelRequest, params, token)) ?? undefined;
+  }
+
+  /** Derived equations or code of the system at a place; undefined where there is none. */
+  async derive(uri: vscode.Uri, position: vscode.Position, as: DeriveParams['as']): Promise<DerivedText | undefined> {
+    const params: DeriveParams = { textDocument: { uri: uri.toString() }, position: { line: position.line, character: position.character }, as };
+    return (await this.client.sendRequest<DerivedText | null>(deriveRequest, params)) ?? undefined;
+  }
+
+  /** All files of the workspace that declare something. */
+  async files(): Promise<vscode.Uri[]> {
+    const found = await this.client.sendRequest<readonly string[] | null>(filesRequest, {});
+    return (found ?? []).map((uri) => vscode.Uri.parse(uri));
+  }
+
+  async checkFile(uri: vscode.Uri, token: vscode.CancellationToken): Promise<CheckedFile | undefined> {
+    return (await this.client.sendRequest<CheckedFile | null>(checkFileRequest, { uri: uri.toString() }, token)) ?? undefined;
   }
 
   private tellVisible(editors: readonly vscode.TextEditor[]): void {
@@ -99,6 +150,7 @@ export class CheckerClient {
 
   private told(status: FileStatus): void {
     this.status.update(status);
+    if (status.counts) this.checked.fire(vscode.Uri.parse(status.uri).toString());
     const { counts, reason, uri } = status;
     const line = reason ?? (counts && counts.systems + counts.problems > 0 ? details(counts) : undefined);
     if (line === this.logged.get(uri)) return;

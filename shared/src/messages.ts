@@ -64,3 +64,44 @@ export interface ClientOptions {
   /** Formulas in hovers may be pictures, in this theme. */
   readonly theme?: Theme;
 }
+
+/** Asks for derived equations or code of the system at a place; answered with null where there is none. */
+export const deriveRequest = 'visviva/derive';
+
+export interface DeriveParams {
+  readonly textDocument: { readonly uri: string };
+  readonly position: { readonly line: number; readonly character: number };
+  /** `code`: a function in the file's own language. */
+  readonly as: 'text' | 'tex' | 'code';
+}
+
+export interface DerivedText {
+  readonly system: string;
+  readonly text: string;
+  /** The document version it was made from. */
+  readonly version: number;
+  /** Where code belongs: below this line (from 0), the last one of the function or declaration. */
+  readonly line: number;
+}
+
+/** Asks for all files of the workspace that declare something, as addresses. */
+export const filesRequest = 'visviva/files';
+
+/** Asks for the claims of one file of the workspace, checked now. */
+export const checkFileRequest = 'visviva/checkFile';
+
+export interface CheckedFile {
+  readonly claims: readonly CheckedClaim[];
+  readonly milliseconds: number;
+}
+
+export interface CheckedClaim {
+  readonly system: string;
+  readonly function: string;
+  readonly output: string;
+  readonly quantity: string;
+  /** From 0. */
+  readonly line: number;
+  readonly verdict: 'holds' | 'differs' | 'unread';
+  readonly message: string;
+}

@@ -17,6 +17,8 @@ export interface PanelData {
   readonly function: string;
   /** Line (from 1) of the function, or of the declaration where there is none. */
   readonly line: number;
+  /** Last line of the function, or of the declaration. */
+  readonly endLine: number;
   /** Why nothing could be derived, in words; the rest is empty then. */
   readonly blocked?: string;
   readonly conventions: readonly string[];

@@ -71,15 +71,18 @@ interface FeatureContext {
 /** Answers what editors ask about the text of declarations. */
 export function registerLanguageFeatures(context: FeatureContext): void {
   const { connection, service, addresses, files, guarded, budgetFor } = context;
-  const openOf = (uri: string): OpenFile | undefined => {
+  /** The time that loading a parser takes is not the budget's. */
+  const openOf = async (uri: string): Promise<OpenFile | undefined> => {
     const open = files.get(uri);
-    return open && context.enabled() && service.handles(open.file) ? open : undefined;
+    if (!open || !context.enabled() || !service.handles(open.file)) return undefined;
+    await service.prepare(open.file);
+    return open;
   };
   const location = (place: FileRange): Location => ({ uri: addresses.uriOf(place.file), range: toRange(place.range) });
 
   connection.onCompletion(
     guarded('completions', null, async ({ textDocument, position }) => {
-      const open = openOf(textDocument.uri);
+      const open = await openOf(textDocument.uri);
       if (!open) return null;
       const items = await service.complete(open.file, fromPosition(position));
       return items.map((item, i) => completionItem(item, i, context.snippets()));
@@ -88,7 +91,7 @@ export function registerLanguageFeatures(context: FeatureContext): void {
 
   connection.onSignatureHelp(
     guarded('signature help', null, async ({ textDocument, position }) => {
-      const open = openOf(textDocument.uri);
+      const open = await openOf(textDocument.uri);
       const signature = open && (await service.signature(open.file, fromPosition(position)));
       if (!signature) return null;
       const { label, description, parameters, active } = signature;
@@ -102,7 +105,7 @@ export function registerLanguageFeatures(context: FeatureContext): void {
 
   connection.onDefinition(
     guarded('the definition', null, async ({ textDocument, position }, token: CancellationToken) => {
-      const open = openOf(textDocument.uri);
+      const open = await openOf(textDocument.uri);
       const place = open && (await service.definition(open.file, fromPosition(position), budgetFor(token)));
       return place ? location(place) : null;
     }),
@@ -110,7 +113,7 @@ export function registerLanguageFeatures(context: FeatureContext): void {
 
   connection.onReferences(
     guarded('references', null, async ({ textDocument, position, context: { includeDeclaration } }, token: CancellationToken) => {
-      const open = openOf(textDocument.uri);
+      const open = await openOf(textDocument.uri);
       const found = open && (await service.references(open.file, fromPosition(position), budgetFor(token)));
       return found ? found.places.filter((p) => includeDeclaration || !p.isDeclaration).map(location) : null;
     }),
@@ -118,7 +121,7 @@ export function registerLanguageFeatures(context: FeatureContext): void {
 
   connection.onDocumentHighlight(
     guarded('highlights', null, async ({ textDocument, position }, token: CancellationToken) => {
-      const open = openOf(textDocument.uri);
+      const open = await openOf(textDocument.uri);
       const found = open && (await service.references(open.file, fromPosition(position), budgetFor(token)));
       return found ? found.places.filter((p) => p.file === open.file).map((p) => ({ range: toRange(p.range) })) : null;
     }),
@@ -126,7 +129,7 @@ export function registerLanguageFeatures(context: FeatureContext): void {
 
   connection.onPrepareRename(
     guarded('renaming', null, async ({ textDocument, position }, token: CancellationToken) => {
-      const open = openOf(textDocument.uri);
+      const open = await openOf(textDocument.uri);
       const found = open && (await service.references(open.file, fromPosition(position), budgetFor(token)));
       if (!found) return null;
       // In code the whole path is one use: what is renamed is the declared name.
@@ -137,7 +140,7 @@ export function registerLanguageFeatures(context: FeatureContext): void {
   );
 
   connection.onRenameRequest(async ({ textDocument, position, newName }, token) => {
-    const open = openOf(textDocument.uri);
+    const open = await openOf(textDocument.uri);
     if (!open) return null;
     const result = await service.rename(open.file, fromPosition(position), newName, budgetFor(token));
     // A failure is for the user to read: editors show the message of the response.
@@ -149,7 +152,7 @@ export function registerLanguageFeatures(context: FeatureContext): void {
 
   connection.onFoldingRanges(
     guarded('folding ranges', null, async ({ textDocument }) => {
-      const open = openOf(textDocument.uri);
+      const open = await openOf(textDocument.uri);
       if (!open) return null;
       const folds = await service.folds(open.file);
       return folds.map((f) => ({ startLine: f.startLine - 1, endLine: f.endLine - 1, kind: FoldingRangeKind.Comment }));
@@ -168,7 +171,7 @@ export function registerLanguageFeatures(context: FeatureContext): void {
 
   connection.languages.semanticTokens.on(
     guarded('semantic tokens', { data: [] as number[] }, async ({ textDocument }) => {
-      const open = openOf(textDocument.uri);
+      const open = await openOf(textDocument.uri);
       const builder = new SemanticTokensBuilder();
       for (const { range, kind, isDeclaration } of open ? await service.tokens(open.file) : []) {
         const { start, end } = toRange(range);

@@ -37,6 +37,7 @@ import type { Files, Service } from '../service/api';
 import { Budget } from '../text/budget';
 import { Addresses } from './addresses';
 import { Checker, describe } from './checker';
+import { registerCommandFeatures } from './command-features';
 import { toCodeActions, toRewriteActions } from './code-actions';
 import { plainText } from './hover';
 import { languageCapabilities, registerLanguageFeatures } from './language-features';
@@ -220,6 +221,7 @@ export function serve(connection: Connection, createService: (files: Files, fold
     settings: () => settings,
     hasPanel: () => options.panel === true,
   });
+  registerCommandFeatures({ connection, service, addresses, files, clock, guarded, budgetFor, declaring: () => disk.declarations() });
   connection.onNotification(themeNotification, (told: Theme) => void (theme = told));
 
   connection.onHover(

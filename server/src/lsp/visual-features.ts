@@ -22,14 +22,17 @@ interface VisualContext {
 /** What is shown beside the code: lenses, equations at the ends of lines, the panel. */
 export function registerVisualFeatures(context: VisualContext): void {
   const { connection, service, files, guarded, budgetFor } = context;
-  const openOf = (uri: string): OpenFile | undefined => {
+  /** The time that loading a parser takes is not the budget's. */
+  const openOf = async (uri: string): Promise<OpenFile | undefined> => {
     const open = files.get(uri);
-    return open && context.settings().enable && service.handles(open.file) ? open : undefined;
+    if (!open || !context.settings().enable || !service.handles(open.file)) return undefined;
+    await service.prepare(open.file);
+    return open;
   };
 
   connection.onCodeLens(
     guarded('code lenses', null, async ({ textDocument }, token: CancellationToken): Promise<CodeLens[] | null> => {
-      const open = openOf(textDocument.uri);
+      const open = await openOf(textDocument.uri);
       if (!open || !context.settings().codeLens) return null;
       const lenses = await service.lenses(open.file, budgetFor(token));
       return lenses.flatMap((lens) => {
@@ -48,7 +51,7 @@ export function registerVisualFeatures(context: VisualContext): void {
 
   connection.languages.inlayHint.on(
     guarded('inlay hints', null, async ({ textDocument, range }, token: CancellationToken) => {
-      const open = openOf(textDocument.uri);
+      const open = await openOf(textDocument.uri);
       if (!open || !context.settings().inlayEquations) return null;
       const inlays = await service.inlays(open.file, budgetFor(token));
       return inlays
@@ -60,7 +63,7 @@ export function registerVisualFeatures(context: VisualContext): void {
   connection.onRequest(
     panelRequest,
     guarded('the panel', null, async ({ textDocument, position }: PanelParams, token: CancellationToken): Promise<PanelData | null> => {
-      const open = openOf(textDocument.uri);
+      const open = await openOf(textDocument.uri);
       if (!open) return null;
       const { version } = open.document;
       const data = await service.panel(open.file, fromPosition(position), budgetFor(token));

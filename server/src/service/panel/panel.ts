@@ -37,6 +37,7 @@ export function panelOf(document: Document, o: BlockOutcome): PanelContent {
     system: block.name,
     function: subjectName(subject),
     line: document.lines.position(span.start).line,
+    endLine: document.lines.position(subject.kind === 'file' ? block.span.end : subject.node.span.end).line,
     claims: derived ? claimsOf(document, o) : [],
   };
   const reason = !derived ? (o.problems[0]?.message ?? 'The declaration was not found.') : derived.system.blocked?.reason;
