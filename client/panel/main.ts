@@ -71,7 +71,8 @@ function summary({ claims }: PanelData): string {
   const [differs, unread] = [count('differs'), count('unread')];
   if (claims.length === 0) return 'Nothing is claimed about the code yet: add a line such as “checks return = x\'\'”.';
   if (differs === 0 && unread === 0) return claims.length === 1 ? 'The claim holds.' : `All ${claims.length} claims hold.`;
-  return `${claims.length - differs - unread} of ${claims.length} claims hold, ${differs} ${differs === 1 ? 'differs' : 'differ'}, ${unread} could not be read.`;
+  const rest = [differs > 0 ? `${differs} ${differs === 1 ? 'differs' : 'differ'}` : '', unread > 0 ? `${unread} could not be read` : ''].filter((r) => r !== '');
+  return `${claims.length - differs - unread} of ${claims.length} claims hold, ${rest.join(', ')}.`;
 }
 
 function section(name: string, id: string, ...children: (HTMLElement | undefined)[]): HTMLElement {

@@ -60,7 +60,7 @@ function plot(title: string, times: readonly number[], lines: readonly Line[], w
       legend: { show: lines.length > 1 },
       // A motion that does not move still needs a scale, and rounding is no motion.
       scales: { x: { time: false }, y: { range: (_, low, high) => spread(low, high) } },
-      axes: [{ ...axis, values: (_, ticks) => ticks.map((t) => `${t} s`) }, { ...axis, size: 58 }],
+      axes: [{ ...axis, values: (_, ticks) => ticks.map((t) => `${t} s`) }, { ...axis, size: 64, values: (_, ticks) => ticks.map(tick) }],
       series: [
         { label: 't', value: (_, t) => (t === null ? '' : `${t.toFixed(2)} s`) },
         ...lines.map((l): uPlot.Series => ({ label: l.label, stroke: l.colour, width: 1.8, ...(l.dash ? { dash: l.dash } : {}), points: { show: false }, value: (_, x) => (x === null ? '' : x.toPrecision(4)) })),
@@ -70,6 +70,10 @@ function plot(title: string, times: readonly number[], lines: readonly Line[], w
     canvas,
   );
   return { name: title, holder, plot: made };
+}
+
+function tick(x: number): string {
+  return x !== 0 && Math.abs(x) < 1e-3 ? x.toExponential(0) : String(Number(x.toPrecision(5)));
 }
 
 function spread(low: number | null, high: number | null): [number, number] {
