@@ -110,7 +110,7 @@ function gather(program: Program): Facts {
     let context = contexts.pop()!;
     if (Array.isArray(node)) {
       for (let i = node.length - 1; i >= 0; i--) {
-        if (node[i] === null || typeof node[i] !== 'object') continue;
+        if (node[i] === null || typeof node[i] !== 'object' || isLeaf(node[i] as object)) continue;
         nodes.push(node[i]);
         contexts.push(context);
       }
@@ -145,7 +145,7 @@ function gather(program: Program): Facts {
     const keys = Object.keys(n);
     for (let i = keys.length - 1; i >= 0; i--) {
       const child = (n as unknown as Record<string, unknown>)[keys[i]!];
-      if (child === null || typeof child !== 'object' || NO_CHILDREN.has(keys[i]!)) continue;
+      if (child === null || typeof child !== 'object' || isLeaf(child) || NO_CHILDREN.has(keys[i]!)) continue;
       nodes.push(child);
       contexts.push(context);
     }
@@ -192,6 +192,12 @@ function addPassedOn(
       }
     }
   }
+}
+
+/** Nothing is below it, and nothing is asked of it. */
+function isLeaf(node: object): boolean {
+  const { kind } = node as { readonly kind?: string };
+  return kind === 'name' || kind === 'number' || kind === 'string' || kind === 'self' || kind === 'boolean';
 }
 
 function isFunction(n: object): n is FunctionNode {
