@@ -323,6 +323,7 @@ export function invoke(m: Machine, f: FunctionValue, self: Value | undefined, ar
   const scope = new Scope(f.scope, frame, true);
   const value = m.meaning(frame.module, place, () => {
     bindParameters(m, scope, node.parameters, args, node.selfParameter ? receiver : undefined, node.selfParameter === true);
+    if (node.allArguments !== undefined) declare(m, scope, node.allArguments, m.list(args.map((x) => x.value)));
     return runBody(m, scope, base, place);
   });
   m.calls--;

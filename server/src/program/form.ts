@@ -182,6 +182,8 @@ export interface FunctionNode {
   readonly inheritsSelf: boolean;
   /** The first parameter is the receiver (Python methods, Rust `&self`). */
   readonly selfParameter?: boolean;
+  /** The name under which the body sees all its arguments as a list, where it uses it: JavaScript's `arguments`. */
+  readonly allArguments?: string;
   /** MATLAB and Fortran: the variables that are the result. */
   readonly results?: readonly { readonly name: string; readonly span: Span }[];
   readonly span: Span;

@@ -20,6 +20,7 @@ export function functionNode(c: Context, node: FunctionSyntax, name?: Name): Fun
     body: insideOf(c, node, () => body(c, node)),
     ...(opaque ? { opaque } : {}),
     inheritsSelf: ts.isArrowFunction(node),
+    ...(seesArguments(c, node) ? { allArguments: 'arguments' } : {}),
     span: spanOf(c, node),
     bodySpan: node.body ? spanOf(c, node.body) : { start: node.end, end: node.end },
   };
@@ -50,6 +51,12 @@ function whyOpaque(node: FunctionSyntax): string | undefined {
   const isGenerator = 'asteriskToken' in node && node.asteriskToken !== undefined;
   if (isAsync) return isGenerator ? 'an async generator function' : 'an async function';
   return isGenerator ? 'a generator function' : undefined;
+}
+
+/** Where there are named parameters too, writing to one of them may change the other. */
+function seesArguments(c: Context, node: FunctionSyntax): boolean {
+  if (ts.isArrowFunction(node) || !node.body || node.parameters.length > 0) return false;
+  return /\barguments\b/.test(c.source.text.slice(node.body.pos, node.body.end));
 }
 
 /** What the parser made of wrong syntax is a guess, and a guess must not be read. */
