@@ -10,7 +10,7 @@ const FUNCTIONS: ReadonlyMap<string, FunctionName> = new Map(
 );
 const OTHER_FUNCTIONS = new Set<string>([
   ...ROTATION_FUNCTIONS,
-  'sqrt', 'atan2', 'min', 'max', 'dot', 'cross', 'norm', 'transpose', 'det', 'sum']);
+  'sqrt', 'atan2', 'min', 'max', 'dot', 'cross', 'norm', 'transpose', 'det', 'diag', 'sum']);
 
 /** The functions of the declaration language, in the order in which messages list them. */
 export const FUNCTION_NAMES: readonly string[] = [...FUNCTIONS.keys(), ...OTHER_FUNCTIONS];
@@ -25,6 +25,7 @@ export function applyFunction(g: Graph, name: string, args: readonly Quantity[])
   if ((ROTATION_FUNCTIONS as readonly string[]).includes(name)) {
     return args.length > 0 ? rotationFunction(g, name, args) : { misfit: `\`${name}\` takes an argument` };
   }
+  if (name === 'diag') return diagonal(g, args);
   const arity = ['atan2', 'dot', 'cross'].includes(name) ? 2 : name === 'min' || name === 'max' ? undefined : 1;
   if (!a || (arity !== undefined && args.length !== arity)) {
     return { misfit: `\`${name}\` takes ${arity === 2 ? 'two arguments' : 'one argument'}, not ${args.length}` };
@@ -32,6 +33,20 @@ export function applyFunction(g: Graph, name: string, args: readonly Quantity[])
   const value = scalarFunction(g, name, args) ?? vectorFunction(g, name, a, b);
   if (isMisfit(value)) return value;
   return 'op' in value ? scalar(value) : value;
+}
+
+/** `diag(a, b, c)`, or of a vector: a matrix with nothing beside its diagonal. */
+function diagonal(g: Graph, args: readonly Quantity[]): Quantity | Misfit {
+  const only = args.length === 1 ? components(args[0]!) : undefined;
+  const entries: Expr[] = only ? [...only] : [];
+  if (!only) {
+    for (const q of args) {
+      if (q.kind !== 'scalar') return { misfit: `\`diag\` takes numbers or one vector, not ${shapeText(q)}` };
+      entries.push(q.expr);
+    }
+  }
+  if (entries.length === 0) return { misfit: '`diag` takes the entries of the diagonal' };
+  return matrix(entries.map((e, i) => entries.map((_, j) => (i === j ? e : g.zero))));
 }
 
 /** Undefined where `name` is a function of vectors or matrices. */

@@ -8,7 +8,7 @@ import type { BinaryOperator, Formula } from './tree';
 import { NOUNS } from './words';
 
 export const FUNCTION_NAMES: ReadonlySet<string> = new Set(
-  ('sin cos tan asin acos atan atan2 sinh cosh tanh exp log sqrt abs sign min max dot cross norm transpose det sum floor').split(' '),
+  ('sin cos tan asin acos atan atan2 sinh cosh tanh exp log sqrt abs sign min max dot cross norm transpose det diag sum floor').split(' '),
 );
 
 interface Infix {

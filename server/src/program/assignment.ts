@@ -3,6 +3,7 @@ import { settleField } from './classes';
 import type { Expression, Pattern } from './form';
 import { clipsVariable } from './limits';
 import type { Machine } from './machine';
+import { assignMasked } from './masks';
 import { readElement, readMember, writeElement, writeMember } from './members';
 import { withEach } from './merging';
 import { itemsOf } from './numbers';
@@ -80,6 +81,8 @@ function assignPlace(m: Machine, scope: Scope, e: Expression & { kind: 'assign' 
     );
   }
   if (target.kind === 'index') {
+    const masked = assignMasked(m, scope, e, target, place);
+    if (masked) return masked;
     const open = openPlace(m, scope, target);
     if (open) {
       const object = m.evaluate(scope, open.root);

@@ -9,6 +9,8 @@ export interface Facts {
   readonly computed: ReadonlySet<string>;
   /** Where members of a name are written. */
   readonly memberWrites: ReadonlyMap<string, readonly MemberWrite[]>;
+  /** Members of whose elements one is written somewhere: `self.x[0] = ...`. */
+  readonly elementWrites: ReadonlySet<string>;
   /** Bare names that are used as things with members or elements. */
   readonly usedAsThings: ReadonlySet<string>;
   /** Names of things whose members or elements are written. */
@@ -52,6 +54,7 @@ function gather(program: Program): Facts {
   const assigned = new Set<string>();
   const computed = new Set<string>();
   const memberWrites = new Map<string, MemberWrite[]>();
+  const elementWrites = new Set<string>();
   const usedAsThings = new Set<string>();
   const writtenThings = new Set<string>();
   const changedThings = new Set<string>();
@@ -85,7 +88,10 @@ function gather(program: Program): Facts {
         else memberWrites.set(place.name, [write]);
       }
       let root = place;
-      while (root.kind === 'member' || root.kind === 'index') root = root.object;
+      while (root.kind === 'member' || root.kind === 'index') {
+        if (root.kind === 'member' && root !== place) elementWrites.add(root.name);
+        root = root.object;
+      }
       if (root.kind === 'name') writtenThings.add(root.name);
     }
   };
@@ -158,7 +164,7 @@ function gather(program: Program): Facts {
     return isSole ? variable : holder;
   };
   addPassedOn(passed, functions, writtenThings, changedThings);
-  return { assigned, computed, memberWrites, usedAsThings, writtenThings, changedThings, patched, functions, holderOf, values };
+  return { assigned, computed, memberWrites, elementWrites, usedAsThings, writtenThings, changedThings, patched, functions, holderOf, values };
 }
 
 const CHANGING_METHODS: ReadonlySet<string> = new Set(

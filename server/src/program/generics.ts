@@ -1,4 +1,5 @@
 import { childNames } from './children';
+import { factsOf } from './facts';
 import type { Construction, Machine } from './machine';
 import { lastName, memberPath } from './paths';
 import { typeFacts, typeOfMember } from './type-notes';
@@ -288,7 +289,12 @@ function countRead(m: Machine, paths: readonly string[]): number | undefined {
 function generalise(m: Machine, id: number, generic: Generic, depth: number) {
   const data = m.store.data(id);
   const base = m.request.program.indexBase;
+  const isFixed = data.kind === 'list' && isFixedList(m, id, generic);
   const one = (v: Value, key: string): Value => {
+    if (isFixed && !m.naming.hasRead(memberPath(generic.path, key)) && !m.naming.hasReadBelow(memberPath(generic.path, key))) {
+      if (v.kind === 'scalar' && v.expr.op === 'number') return v;
+      if (v.kind === 'object' && m.store.data(v.id).kind === 'list') return v;
+    }
     if (v.kind === 'scalar' && m.naming.containsDeclared(v.expr)) {
       // What is state begins with this value, and has another later.
       const path = memberPath(generic.path, key);
@@ -311,4 +317,21 @@ function generalise(m: Machine, id: number, generic: Generic, depth: number) {
     return { ...data, members };
   }
   return data;
+}
+
+/** A vector or matrix that is made of declared symbols once and for all: the zeros in it are zeros. */
+function isFixedList(m: Machine, id: number, generic: Generic): boolean {
+  const name = generic.path.replace(/(?:\[\d+\])+$/, '').split('.').pop()!;
+  if (m.isAssignedMember(name)) return false;
+  for (const module of m.modules.values()) {
+    const { elementWrites, writtenThings, assigned } = factsOf(module.program);
+    if (elementWrites.has(name) || writtenThings.has(name) || assigned.has(name)) return false;
+  }
+  return hasDeclared(m, id, 0);
+}
+
+function hasDeclared(m: Machine, id: number, depth: number): boolean {
+  const data = m.store.data(id);
+  if (data.kind !== 'list' || depth > 4) return false;
+  return data.items.some((v) => (v.kind === 'scalar' ? m.naming.containsDeclared(v.expr) : v.kind === 'object' && hasDeclared(m, v.id, depth + 1)));
 }

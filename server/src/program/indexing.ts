@@ -1,6 +1,7 @@
 import type { Place } from '../text/span';
 import type { Expression } from './form';
 import type { Machine } from './machine';
+import { maskedValue } from './masks';
 import { readElement } from './members';
 import { countOf, dataOf, itemsOf } from './numbers';
 import { openPlace, readOpen } from './open-index';
@@ -13,6 +14,8 @@ import { NOTHING, type Value, type ViewItem } from './values';
 
 export function indexValue(m: Machine, scope: Scope, e: Expression & { kind: 'index' }, place: Place): Value {
   const { module } = scope.frame;
+  const masked = maskedValue(m, scope, e);
+  if (masked) return masked;
   const open = openPlace(m, scope, e);
   if (open) return readOpen(m, scope, open, place);
   const object = m.evaluate(scope, e.object);

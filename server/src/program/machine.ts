@@ -55,6 +55,10 @@ export class Machine {
   /** Local variables that are claimed as outputs. */
   readonly claimedNames = new Set<string>();
   readonly files = new Set<string>();
+  /** Conditions on entries under which the right side of an assignment is being read, by their shapes. */
+  readonly masks: string[] = [];
+  /** True once a matrix was made whose `*` is the product of matrices, so that nothing is known of `*` between lists. */
+  hasMatrices = false;
   /** Above zero while a loop is only looked over, or an output is read: nothing is recorded and nothing replaced. */
   quiet = 0;
   /** Above zero where a count is wanted: fields that hold a literal give it. */

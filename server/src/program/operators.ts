@@ -124,6 +124,7 @@ function onLists(
 ): Value {
   const { elementwise, listConcat, matrixProduct } = module.program;
   if (op === 'matmul' || (op === '*' && matrixProduct && x && y)) return multiplyMatrices(m, a, b, place);
+  if (m.hasMatrices && x && y && ['*', '/', '**'].includes(op)) return unread(`the operator \`${op}\` between lists in a file with \`np.matrix\`, where it may be that of matrices: write \`@\``, place);
   if (op === 'left-divide' && x) return solveLinear(m, a, b, place);
   if (op === '/' && matrixProduct && x && y) {
     const t = solveLinear(m, transpose(m, b, place), transpose(m, a, place), place);

@@ -65,7 +65,9 @@ export function arrive(m: Machine, name: string, value: Value, arrival: Arrival)
     addAlias(m, value, name);
     return settleList(m, name, value, arrival);
   }
-  if (arrival.isAccumulated) return value;
+  // What can't be told otherwise is what `reads` says of it, whatever becomes of the name later.
+  const isLost = value.kind === 'unread' || (value.kind === 'scalar' && m.naming.containsFree(value.expr));
+  if (arrival.isAccumulated && !(isLost && m.naming.hasRead(name))) return value;
   return settleName(m, name, name, value, arrival.place);
 }
 

@@ -107,6 +107,9 @@ const LINALG: Readonly<Record<string, string>> = {
 };
 
 const SINGLE: readonly (readonly [path: string, intrinsic: string])[] = [
+  ['numpy.matrix', 'array-matrix'],
+  ['numpy.mat', 'array-matrix'],
+  ['numpy.asmatrix', 'array-matrix'],
   ['torch.inverse', 'matrix-inverse'],
   ['torch.det', 'matrix-determinant'],
   ['torch.norm', 'array-norm'],

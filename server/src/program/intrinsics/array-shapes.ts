@@ -214,6 +214,12 @@ export const ARRAY_SHAPES: IntrinsicTable = {
     };
     return itemsOf(m, v) ? copy(v) : copyOfOutside(m, v);
   },
+  'array-matrix': (m, call) => {
+    const v = given(call, 0) ?? missing(call);
+    if (v.kind === 'string') return unread('a matrix that is written as text', call.place);
+    m.hasMatrices = true;
+    return itemsOf(m, v) ? atLeast(m, v, 2) : v;
+  },
   'array-item': (m, call) => {
     const v = given(call, 0) ?? missing(call);
     const all = flat(m, v);
