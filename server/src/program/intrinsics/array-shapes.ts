@@ -218,7 +218,8 @@ export const ARRAY_SHAPES: IntrinsicTable = {
     const v = given(call, 0) ?? missing(call);
     if (v.kind === 'string') return unread('a matrix that is written as text', call.place);
     m.hasMatrices = true;
-    return itemsOf(m, v) ? atLeast(m, v, 2) : v;
+    const copy = (x: Value): Value => m.list((itemsOf(m, x) ?? []).map((y) => (itemsOf(m, y) ? copy(y) : y)), true);
+    return itemsOf(m, v) ? atLeast(m, copy(v), 2) : v;
   },
   'array-item': (m, call) => {
     const v = given(call, 0) ?? missing(call);
