@@ -1,44 +1,51 @@
 import { createService } from '../../server/src/service';
 import { Budget } from '../../server/src/text/budget';
+import { armDeclaration, armSource } from './arm-source';
 import { chainSource } from './chain-source';
+import { cpuTime, exponent, median, megabytes, peakMemory, report, type Row } from './measure';
 
 /**
- * A chain of n point masses on rods: declaration by points, code with its own mass matrix and elimination. Declaration and
- * code are read anew and every acceleration is decided at 64 states. The code's elimination alone takes n^3 operations.
- * Processor time, median of several runs; ratios are to n = 1 of the same run.
+ * A chain of n point masses on rods and a spatial arm of turning joints: declaration by points and bodies, code with its
+ * own mass matrix and elimination. Declaration and code are read anew and every acceleration is decided at 64 states, with
+ * the exact test. The code's elimination alone takes n^3 operations. Processor time, median of several runs.
  */
 const sizes = [1, 2, 3, 5, 10, 20, 40];
-const runs = 7;
 
-async function once(n: number, text: string): Promise<number> {
+async function decideAnew(text: string): Promise<{ milliseconds: number; evidence: string }> {
   const service = createService({ read: () => text, declarations: () => [] });
-  const before = process.cpuUsage();
-  const result = await service.check('chain.ts', new Budget({ milliseconds: 60_000 }), 'verdicts');
-  const used = process.cpuUsage(before);
-  const held = result.claims.filter((c) => c.verdict === 'holds').length;
-  if (held !== n) throw new Error(`n = ${n}: ${held} claims hold: ${result.claims[0]?.findings[0]?.message}`);
-  return (used.user + used.system) / 1000;
+  const before = cpuTime();
+  const { claims, problems } = await service.check('bench.ts', new Budget({ milliseconds: 300_000 }), 'verdicts');
+  const milliseconds = cpuTime() - before;
+  const open = claims.find((c) => c.verdict !== 'holds');
+  if (open || claims.length === 0) throw new Error(`${open?.findings[0]?.message ?? problems[0]?.message ?? 'nothing is claimed'}`);
+  return { milliseconds, evidence: claims.every((c) => c.evidence?.kind === 'identity') ? 'identity' : `states (${claims[0]!.evidence!.inexact})` };
 }
 
-const rows: { n: number; milliseconds: number }[] = [];
+async function measured(text: string, runs: number): Promise<{ milliseconds: number; evidence: string }> {
+  const all = [];
+  for (let i = 0; i < runs; i++) all.push(await decideAnew(text));
+  const warm = all.slice(Math.floor(runs / 2));
+  return { milliseconds: median(warm.map((r) => r.milliseconds)), evidence: warm[0]!.evidence };
+}
+
+const rows: Row[] = [];
+const points: [number, number][] = [];
+const add = (name: string, r: { milliseconds: number; evidence: string }, first: number): void =>
+  void rows.push([name, r.milliseconds.toFixed(1), (r.milliseconds / first).toFixed(1), r.evidence]);
+let first = 0;
+// The smallest first, many times: what runs is compiled by then.
+await measured(chainSource(2), 60);
 for (const n of sizes) {
-  const text = chainSource(n);
-  const times: number[] = [];
-  for (let i = 0; i < (n > 10 ? 3 : runs) + 2; i++) {
-    const t = await once(n, text);
-    if (i >= 2) times.push(t);
-  }
-  times.sort((a, b) => a - b);
-  rows.push({ n, milliseconds: times[Math.floor(times.length / 2)]! });
+  const r = await measured(chainSource(n), n > 20 ? 3 : n > 5 ? 8 : 40);
+  first ||= r.milliseconds;
+  points.push([n, r.milliseconds]);
+  add(`chain, n = ${n}`, r, first);
 }
-const first = rows[0]!.milliseconds;
-console.log('chain of n links: declaration, reading and 64 states');
-for (const { n, milliseconds } of rows) {
-  console.log(`  n = ${String(n).padStart(2)}  ${milliseconds.toFixed(1).padStart(8)} ms  ${(milliseconds / first).toFixed(1).padStart(7)} x`);
+for (const n of [3, 5, 7]) {
+  const service = createService({ read: () => `/*\n${armDeclaration(n)}\n*/\n`, declarations: () => [] });
+  const [printed] = await service.derive('arm.ts', 'typescript', new Budget());
+  add(`spatial arm, ${n} joints`, await measured(armSource(n, printed!.text), 10), first);
 }
-// Least squares of log time against log n, from n = 3 up where start-up no longer counts.
-const points = rows.filter((r) => r.n >= 3).map((r) => [Math.log(r.n), Math.log(r.milliseconds)] as const);
-const mean = (k: 0 | 1) => points.reduce((s, p) => s + p[k], 0) / points.length;
-const [mx, my] = [mean(0), mean(1)];
-const slope = points.reduce((s, [x, y]) => s + (x - mx) * (y - my), 0) / points.reduce((s, [x]) => s + (x - mx) ** 2, 0);
-console.log(`  growth about n^${slope.toFixed(2)}`);
+report('chain', 'Derive and decide', ['system', 'ms of processor', 'of n = 1', 'evidence'], rows, [
+  `Growth of the chain from n = 3: n^${exponent(points.filter(([n]) => n >= 3)).toFixed(2)}. Peak memory ${megabytes(peakMemory())}.`,
+]);
