@@ -36,7 +36,7 @@ let first = 0;
 // The smallest first, many times: what runs is compiled by then.
 await measured(chainSource(2), 60);
 for (const n of sizes) {
-  const r = await measured(chainSource(n), n > 20 ? 3 : n > 5 ? 8 : 40);
+  const r = await measured(chainSource(n), n > 20 ? 1 : n > 10 ? 3 : n > 5 ? 8 : 40);
   first ||= r.milliseconds;
   points.push([n, r.milliseconds]);
   add(`chain, n = ${n}`, r, first);
