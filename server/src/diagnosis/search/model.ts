@@ -1,3 +1,4 @@
+import { freeSymbol } from '../../comparison/claims';
 import { Motion } from '../../comparison/motion';
 import { Prober } from '../../comparison/prober';
 import { Sampler } from '../../comparison/sampling';
@@ -50,11 +51,13 @@ export class Model {
     const { system } = derived;
     const known = [...tagged.found].filter(([i]) => claims[i]!.expected && claims[i]!.found);
     const tags = new Set([...tagged.evaluations.values()].flatMap((list) => list.map((e) => e.tag)));
+    // Flags of the code are no symbols that could be drawn; what is assumed of them chose the branch already.
+    const assumed = tagged.reading.assumed.filter((a) => !freeSymbol(a));
     const pairs = known.map(([i, found]) => ({ found, plain: claims[i]!.found!, expected: signedExpected(claims[i]!) }));
     const prober = new Prober(
       new Motion(derived),
       pairs.map((p) => [{ found: p.plain, expected: p.expected }]),
-      [...tagged.reading.assumed, ...symbolsOf(...pairs.flatMap((p) => [p.plain, p.expected]))],
+      [...assumed, ...symbolsOf(...pairs.flatMap((p) => [p.plain, p.expected]))],
     );
     const reads = [...tagged.evaluations.values()].flatMap((list) => list.map((e) => e.read));
     const wanted = new Set<Expr>([...prober.symbols, ...system.parameters.map((p) => p.symbol)]);
@@ -65,7 +68,7 @@ export class Model {
     const { registers, columns } = prober.run(drawn, DRAWN);
     const good: number[] = [];
     for (let s = 0; s < DRAWN && good.length < STATES; s++) {
-      if (!tagged.reading.assumed.every((a) => registers.value(a, s) === 1)) continue;
+      if (!assumed.every((a) => registers.value(a, s) === 1)) continue;
       if (pairs.every((_, k) => prober.compare(registers, k, s).votes)) good.push(s);
     }
     if (good.length < FEWEST) return undefined;

@@ -17,6 +17,8 @@ export function makeScene(request: SubjectRequest, model: Model, map: SourceMap,
       const values = own.map((x) => model.valueAt(x));
       return values.every((v) => v !== undefined) ? values : undefined;
     }
+    // `x ?? 0`: what is declared is there.
+    if (e.kind === 'logical' && e.op === 'coalesce') return valuesOf(e.left, evaluations);
     const literal = literalValue(e);
     return literal === undefined ? undefined : evaluations.map(() => new Float64Array(model.n).fill(literal));
   };

@@ -160,10 +160,14 @@ export function insertions(terms: readonly KnownTerm[], fit: LogFit<Expr>, n: nu
   };
 }
 
-/** Where the values needed are not known: times or divided by anything the code has a name for; in a function's argument also more or less of it. */
+/**
+ * Where the values needed are not known: times or divided by anything the code has a name for; in a function's argument, and
+ * where a place is evaluated several times, also more or less of it.
+ */
 const guesses: Maker = (scene, spot, give) => {
   const { site, values, text } = spot;
   if (isInnerFactor(spot) || site.node.kind === 'number') return;
+  const parent = site.parent?.node;
   const isArgument = site.role === 'argument' && site.parent?.node.kind === 'call' && isScalarCall(site.parent.node);
   const inner = bindingOf(site.node) < Binding.product ? bracket(text) : text;
   for (const atom of scene.atoms) {
@@ -183,18 +187,22 @@ const guesses: Maker = (scene, spot, give) => {
         new: whole,
       });
     }
-    if (!isArgument || atom.compound) continue;
-    for (const op of ['-', '+'] as const) {
+    if ((!isArgument && values.length === 1) || atom.compound || (parent?.kind === 'binary' && isSum(parent.op))) continue;
+    const more = (op: '+' | '-', term: string, seenTerm: readonly Float64Array[]): void =>
       give({
         site,
-        edits: [replaceSite(site, scene.source, `${text} ${op} ${atom.text}`, Binding.sum)],
+        edits: [replaceSite(site, scene.source, `${text} ${op} ${term}`, Binding.sum)],
         code: 'missing-term',
         cost: 2,
-        values: map2(values, seen, op === '+' ? (x, y) => x + y : (x, y) => x - y),
-        label: `${op} ${atom.text}`,
+        values: map2(values, seenTerm, op === '+' ? (x, y) => x + y : (x, y) => x - y),
+        label: `${op} ${term}`,
         old: '',
-        new: `${op} ${atom.text}`,
+        new: `${op} ${term}`,
       });
+    const square = values.length > 1 && /^[\p{L}_]\w*$/u.test(atom.text) ? map2(seen, seen, (x, y) => x * y) : undefined;
+    for (const op of ['-', '+'] as const) {
+      more(op, atom.text, seen);
+      if (square) more(op, `${atom.text} * ${atom.text}`, square);
     }
   }
 };
