@@ -57,6 +57,29 @@ export async function runOnScreen(results) {
       await hover.waitFor();
     });
 
+    await step('its equations are pictures', async () => {
+      await page.locator('.monaco-hover:not(.hidden) img[src^="data:image/svg+xml"]').first().waitFor();
+    });
+
+    await step('the lens above the function opens the panel beside the code', async () => {
+      await page.keyboard.press('Escape');
+      await page.locator('.codelens-decoration a', { hasText: 'show' }).first().click();
+      const panel = page.frameLocator('iframe.webview').frameLocator('iframe#active-frame');
+      await panel.locator('.equation .term.differs').first().waitFor();
+      await panel.locator('.uplot').nth(2).waitFor();
+      await page.waitForTimeout(300);
+    });
+
+    await step('the panel follows the code', async () => {
+      const panel = page.frameLocator('iframe.webview').frameLocator('iframe#active-frame');
+      await page.locator('.view-line', { hasText: /const\sath/ }).click();
+      await page.keyboard.press('End');
+      await page.keyboard.press('ArrowLeft');
+      await page.keyboard.type(' * 2');
+      await panel.locator('.summary', { hasText: /differ/ }).waitFor();
+      await page.keyboard.press('Control+Z');
+    });
+
     await step('the problems panel lists it with its claim', async () => {
       await page.keyboard.press('Escape');
       await page.keyboard.press('Control+Shift+M');

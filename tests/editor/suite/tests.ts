@@ -13,7 +13,7 @@ export const tests: Record<string, () => Promise<void>> = {
 
   'its commands are there': async () => {
     const commands = await vscode.commands.getCommands(true);
-    for (const command of ['visviva.restart', 'visviva.showOutput']) assert.ok(commands.includes(command), command);
+    for (const command of ['restart', 'showOutput', 'suggest', 'show', 'derive', 'copyTex', 'copyText', 'checkWorkspace'].map((c) => `visviva.${c}`)) assert.ok(commands.includes(command), command);
   },
 
   'right code has no finding': async () => {
@@ -62,6 +62,75 @@ export const tests: Record<string, () => Promise<void>> = {
     }, 'the system in the outline');
     const names = symbols.children.map((child) => child.name);
     for (const name of ['x', 'th', 'M', 'F']) assert.ok(names.some((one) => one === name), `${name} in ${names.join()}`);
+    await closeAll();
+  },
+
+  'the lens says the verdict and leads to the panel': async () => {
+    const document = await show('crane.ts');
+    const lenses = await until(async () => {
+      const found = await vscode.commands.executeCommand<vscode.CodeLens[]>('vscode.executeCodeLensProvider', document.uri, 10);
+      return found.some((l) => l.command?.title.includes('differs')) ? found : undefined;
+    }, 'the lenses');
+    assert.deepEqual(lenses.map((l) => l.command!.title), ["1 of 4 claims differs: th''", 'show', 'derive']);
+    await vscode.commands.executeCommand(lenses[1]!.command!.command, ...lenses[1]!.command!.arguments!);
+    const title = await until(
+      () => vscode.window.tabGroups.all.flatMap((g) => g.tabs).find((t) => t.input instanceof vscode.TabInputWebview && t.label === 'rates')?.label,
+      'the panel with the name of the function',
+    );
+    assert.equal(title, 'rates');
+    await closeAll();
+  },
+
+  'the hover shows the equations as pictures': async () => {
+    const document = await show('crane.ts');
+    await shownBy(document, (hover) => hover.includes('data:image/svg+xml;base64,'));
+    await closeAll();
+  },
+
+  'a parameter is renamed in the declaration and stays bound in the code': async () => {
+    const document = await show('pendulum.js');
+    await shownBy(document, (hover) => hover.includes('swing-boat'));
+    const at = document.positionAt(document.getText().indexOf('l*sin('));
+    const edit = await vscode.commands.executeCommand<vscode.WorkspaceEdit>('vscode.executeDocumentRenameProvider', document.uri, at, 'rope');
+    assert.ok(await vscode.workspace.applyEdit(edit));
+    assert.match(document.getText(), /rope\*sin/);
+    await shownBy(document, (hover) => hover.includes('rope') && hover.includes('holds'));
+    assert.deepEqual(messages(document), []);
+    await closeAll();
+  },
+
+  'a symbol of the code leads to its declaration': async () => {
+    const document = await show('crane.ts');
+    const at = document.positionAt(document.getText().indexOf('p.trolley +') + 3);
+    const found = await until(async () => {
+      const places = await vscode.commands.executeCommand<(vscode.Location | vscode.LocationLink)[]>('vscode.executeDefinitionProvider', document.uri, at);
+      const own = places.map((p) => ('range' in p ? p.range : p.targetRange)).find((r) => document.lineAt(r.start.line).text.includes('parameters'));
+      return own;
+    }, 'the definition');
+    assert.equal(document.getText(found), 'M');
+    await closeAll();
+  },
+
+  'completion offers statement words': async () => {
+    const document = await show('crane.ts');
+    await replace(document, ' * gravity', ' * spr\n * gravity');
+    const at = document.positionAt(document.getText().indexOf('* spr') + 5);
+    const list = await until(async () => {
+      const found = await vscode.commands.executeCommand<vscode.CompletionList>('vscode.executeCompletionItemProvider', document.uri, at);
+      return found.items.some((i) => i.label === 'spring') ? found : undefined;
+    }, 'the completion');
+    assert.ok(list.items.find((i) => i.label === 'spring')!.insertText instanceof vscode.SnippetString);
+    await closeAll();
+  },
+
+  'the derived function is put below the one that is wrong': async () => {
+    const document = await show('crane.ts');
+    const at = document.positionAt(document.getText().indexOf('const ax'));
+    vscode.window.activeTextEditor!.selection = new vscode.Selection(at, at);
+    const before = document.getText().length;
+    await vscode.commands.executeCommand('visviva.derive');
+    await until(() => document.getText().length > before, 'the derived function');
+    assert.ok(document.getText().indexOf('function', before - 20) > document.getText().indexOf('return [s[2]'));
     await closeAll();
   },
 
