@@ -38,7 +38,7 @@ function equation(e: PanelEquation): HTMLElement {
 }
 
 function short(t: PanelTerm): string {
-  return t.factor === 0 ? 'missing in the code' : t.factor === -1 ? 'wrong sign in the code' : `${number(t.factor!)} × in the code`;
+  return t.factor === 0 ? 'missing in the code' : t.factor === -1 ? 'wrong sign in the code' : `${number(t.factor!).replace('-', '−')} × in the code`;
 }
 
 function table(e: PanelEquation): HTMLElement {
