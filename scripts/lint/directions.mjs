@@ -33,7 +33,7 @@ export const directions = {
       'text', 'expression', 'notation', 'program', 'mechanics', 'languages', 'comparison', 'diagnosis', 'workspace',
       'shared',
     ],
-    packages: [],
+    packages: ['decimal.js'],
   },
   // The service's contract names what the host has to give; nothing else of it is used there.
   'server/src/host': { from: ['text', 'shared', 'service/api'], packages: ['ignore', 'tinyglobby', 'jsonc-parser', 'smol-toml'], node: true },

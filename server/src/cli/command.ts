@@ -3,7 +3,10 @@ import { version } from '@visviva/shared';
 import { describe } from './check';
 import { addCheck } from './check-command';
 import { derive, deriveAgainst, DERIVE_FORMS, type DeriveForm } from './derive';
+import { deriveTest } from './derive-test';
 import { explain } from './explain';
+import { guardRunners } from '../service/guard/write';
+import { addCompletions } from './completions';
 import { addCompare } from './compare';
 import { addMerge } from './merge';
 import { UsageError, type Io, type Status } from './io';
@@ -51,12 +54,14 @@ function createProgram(io: Io, finish: (status: Status | undefined) => void): Co
     .command('derive')
     .description('print the equations that follow from what a file declares')
     .argument('<file>')
-    .addOption(new Option('--as <form>', 'how they are written').choices([...DERIVE_FORMS]).default('text'))
+    .addOption(new Option('--as <form>', 'how they are written').choices([...DERIVE_FORMS, 'test']).default('text'))
+    .option('--for <runner>', `with --as test: the runner of the test, ${Object.keys(guardRunners).join(', ')}`)
     .option('--system <name>', 'only this system')
     .option('--against <file or name>', 'tell how they compare with those of another file, or with that system of the same file')
     .addHelpText('after', '\nExit status with --against: 0 the same equations of motion, 1 others or not decided, 2 failure.')
-    .action(async (file: string, options: { as: DeriveForm; system?: string; against?: string }) => {
-      if (options.against !== undefined) finish(await deriveAgainst(file, options.against, options.system, io));
+    .action(async (file: string, options: { as: DeriveForm | 'test'; for?: string; system?: string; against?: string }) => {
+      if (options.as === 'test' || options.for !== undefined) finish(await deriveTest(file, options, io));
+      else if (options.against !== undefined) finish(await deriveAgainst(file, options.against, options.system, io));
       else finish(await derive(file, options.as, options.system, io));
     });
 
@@ -76,6 +81,8 @@ function createProgram(io: Io, finish: (status: Status | undefined) => void): Co
       finish(undefined);
       await import('../lsp/main');
     });
+
+  addCompletions(program, io, finish);
 
   return program;
 }

@@ -1,4 +1,5 @@
 import type { PanelData, Problem, ProjectSettings, ReportClaim, ReportPosition, ReportRange } from '@visviva/shared';
+import type { GuardResult } from './guard/result';
 import type { Budget } from '../text/budget';
 
 /**
@@ -57,6 +58,8 @@ export interface Service {
   rename(file: string, position: ReportPosition, name: string, budget: Budget): Promise<{ readonly edits: readonly FileEdit[] } | { readonly failure: string }>;
   /** The derived equations of every system a file declares. */
   derive(file: string, as: DeriveForm, budget: Budget): Promise<readonly DerivedSystem[]>;
+  /** Calls of a file's functions at some states, and what they must give there, to double precision. */
+  guards(file: string, budget: Budget): Promise<readonly GuardResult[]>;
   /** What stands behind the claims of a file: equations, terms and curves, for reports that show them. */
   details(file: string, budget: Budget): Promise<FileDetails>;
   /** First declarations for functions that look like dynamics and have none, to be completed by a person. */

@@ -114,6 +114,13 @@ export function createService(files: Files): Service {
       return document ? fileDetails(document, await checkDocument(project, document, budget)) : { systems: [], claims: [] };
     },
 
+    async guards(file, budget) {
+      const document = await load(file);
+      if (!document) return [];
+      const { guardOf } = await import('./guard/cases');
+      return (await checkDocument(project, document, budget)).flatMap((o) => guardOf(document, o) ?? []);
+    },
+
     async suggest(file) {
       const document = await load(file);
       return document ? suggestedComments(document) : [];

@@ -26,6 +26,9 @@ export class ScriptedService implements Service {
     return /\.(ts|js|visviva)$/.test(file);
   }
   async prepare(): Promise<void> {}
+  async guards(): Promise<[]> {
+    return [];
+  }
   async details(): Promise<FileDetails> {
     return { systems: [], claims: [] };
   }

@@ -1,0 +1,1 @@
+export declare function packageCommand(folder: string): Promise<void>;
