@@ -129,3 +129,9 @@ function f(th, g, l) { return -g / l * Math.sin(th); }
 `;
   expect(await serviceOf(pendulum).inlays('a.js', new Budget())).toEqual([{ position: { line: 6, column: 24 }, text: "th'' = -g*sin(th)/l" }]);
 });
+
+test('a derived function for JavaScript has no types', async () => {
+  const [derived] = await serviceOf(right).derive('a.js', 'javascript', new Budget());
+  expect(derived!.text).toMatch(/export function craneAccelerations\(state, p\) \{/);
+  expect(derived!.text).not.toContain('number');
+});

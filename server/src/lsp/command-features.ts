@@ -35,7 +35,7 @@ export function registerCommandFeatures({ connection, service, addresses, files,
       if (!open || !service.handles(open.file)) return null;
       const { version } = open.document;
       await service.prepare(open.file);
-      const form: DeriveForm = as !== 'code' ? as : /\.py$/i.test(open.file) ? 'python' : 'typescript';
+      const form: DeriveForm = as !== 'code' ? as : /\.py$/i.test(open.file) ? 'python' : /\.[mc]?tsx?$/i.test(open.file) ? 'typescript' : 'javascript';
       const systems = await service.derive(open.file, form, budgetFor(token));
       const at = fromPosition(position).line;
       const found = systems.findLast((s) => s.range.start.line <= at) ?? systems[0];

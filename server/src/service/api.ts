@@ -149,7 +149,7 @@ export interface Comparison {
 }
 
 /** What derived equations are written in. */
-export type DeriveForm = 'text' | 'tex' | 'typescript' | 'python';
+export type DeriveForm = 'text' | 'tex' | 'typescript' | 'javascript' | 'python';
 
 /** Where documents that are not open come from; given by the rim. Paths are whatever the rim uses, `/` between folders. */
 export interface Files {

@@ -1,5 +1,5 @@
 import { symbolText, type SymbolData } from '../expression/node';
-import { code, equationText, python, tex, texAll, text, typescript, type CodeStyle } from '../expression/print';
+import { code, equationText, javascript, python, tex, texAll, text, typescript, type CodeStyle } from '../expression/print';
 import type { Expr } from '../expression/node';
 import { symbolsOf } from '../expression/reach';
 import { findEquilibria, type Equilibrium } from '../comparison/equilibria';
@@ -14,7 +14,7 @@ import type { Project } from './check';
 
 const LONGEST_ENTRY = 48;
 
-const STYLES = { typescript, python } as const;
+const STYLES = { typescript, javascript, python } as const;
 
 export async function deriveSystems(
   project: Project,

@@ -3,6 +3,6 @@ export { symbolTex, tex, texAll } from './tex';
 export { code, type Code, type CodeOptions } from './code';
 export type { CodeStyle } from './code-style';
 export { python, pythonStyle, type PythonNames } from './python';
-export { typescript } from './typescript';
+export { javascript, typescript } from './typescript';
 export { formatNumber, formatPair, formatQuantity } from './number';
 export type { Printed } from './layout';

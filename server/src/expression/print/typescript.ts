@@ -66,24 +66,35 @@ export const typescript: CodeStyle = {
   component: (solution, index) => atom(`${solution}[${index}]`),
   define: (name, value) => `const ${name} = ${value};`,
   solver: SOLVER,
-  function: (f) =>
-    [
-      ...f.helpers,
-      ...(f.helpers.length > 0 ? [''] : []),
-      `/** ${f.remark} */`,
-      `export function ${camelCase(f.name)}(state: number[], p: { ${f.constants.map((c) => `${c}: number`).join('; ')} }): number[] {`,
-      `  const [${f.state.join(', ')}] = state;`,
-      ...(f.constants.length > 0 ? [`  const { ${f.constants.join(', ')} } = p;`] : []),
-      ...f.statements.map((s) => `  ${s}`),
-      `  return [${f.values.join(', ')}];`,
-      '}',
-    ].join('\n'),
+  function: (f) => functionText(f, `(state: number[], p: { ${f.constants.map((c) => `${c}: number`).join('; ')} }): number[]`),
   identifier(name, order) {
     const clean = name.replace(/[^\p{ID_Continue}$]+/gu, '_').replace(/_+$/, '') || '_';
     const safe = /^\p{ID_Start}|^[$_]/u.test(clean) && !RESERVED.has(clean) ? clean : `_${clean}`;
     return order === 0 ? safe : `${safe}${'D'.repeat(order - 1)}Dot`;
   },
 };
+
+/** The same without types. */
+export const javascript: CodeStyle = {
+  ...typescript,
+  language: 'javascript',
+  solver: SOLVER.replace('(a: number[][], b: number[]): number[]', '(a, b)'),
+  function: (f) => functionText(f, '(state, p)'),
+};
+
+function functionText(f: Parameters<CodeStyle['function']>[0], parameters: string): string {
+  return [
+    ...f.helpers,
+    ...(f.helpers.length > 0 ? [''] : []),
+    `/** ${f.remark} */`,
+    `export function ${camelCase(f.name)}${parameters} {`,
+    `  const [${f.state.join(', ')}] = state;`,
+    ...(f.constants.length > 0 ? [`  const { ${f.constants.join(', ')} } = p;`] : []),
+    ...f.statements.map((s) => `  ${s}`),
+    `  return [${f.values.join(', ')}];`,
+    '}',
+  ].join('\n');
+}
 
 function camelCase(words: string): string {
   return words.replace(/[^A-Za-z0-9]+(.)?/g, (_, c: string | undefined) => (c ? c.toUpperCase() : ''));
