@@ -2,6 +2,7 @@ import { readDeclaration, statements, type Declared, type Drawn } from './declar
 import type { Fixture, Section } from './fixtures';
 import { num, parseFormula } from './formula';
 import { Mechanics, type Instant } from './lagrange';
+import { runPython } from './python-run';
 import { compileRun } from './run-code';
 
 /** What the tests themselves find out about a claim, without the product. */
@@ -90,18 +91,34 @@ export class Judge {
   judge(text: string): Judgement[] {
     const first = this.states[0]!.instant;
     const symbols = [...first].flatMap(([name, series]) => series.map((_, k) => name + "'".repeat(k)));
-    const constants = new Set([...this.system.parameters.map((p) => p.name), ...this.named]);
-    const run = compileRun(this.fixture.file, text, this.section.run, this.claims, symbols, constants, this.others);
+    const run = compileRun(this.fixture.file, text, this.section.run, this.claims, symbols, this.constants, this.others);
+    return this.weigh(this.given.map(run));
+  }
+
+  /** The same for Python, whose code runs in a process of its own. */
+  async judgePython(text: string): Promise<Judgement[]> {
+    const { fixture, section, claims, constants, others } = this;
+    return this.weigh(await runPython({ file: fixture.file, text, run: section.run, claims, constants, others }, this.given));
+  }
+
+  private get constants(): Set<string> {
+    return new Set([...this.system.parameters.map((p) => p.name), ...this.named]);
+  }
+
+  /** The values of all symbols and their rates, state by state. */
+  private get given(): Map<string, number>[] {
+    return this.states.map(({ instant }) => new Map([...instant].flatMap(([name, series]) => series.map((v, k) => [name + "'".repeat(k), v] as const))));
+  }
+
+  private weigh(found: readonly (readonly number[])[]): Judgement[] {
     const worst = this.claims.map(() => 0);
-    for (const { instant, expected } of this.states) {
-      const given = new Map([...instant].flatMap(([name, series]) => series.map((v, k) => [name + "'".repeat(k), v] as const)));
-      const found = run(given);
-      found.forEach((v, i) => {
+    this.states.forEach(({ expected }, k) => {
+      found[k]!.forEach((v, i) => {
         const wanted = this.claims[i]!.op === '-=' ? -expected[i]! : expected[i]!;
         const difference = Math.abs(v - wanted) / (Math.abs(wanted) + 1e-3 * (1 + Math.abs(v)));
         if (!(difference <= worst[i]!)) worst[i] = Number.isNaN(difference) ? Infinity : difference;
       });
-    }
+    });
     return this.claims.map((c, i) => ({ output: c.left, right: c.right, holds: worst[i]! < SAME, worst: worst[i]! }));
   }
 }

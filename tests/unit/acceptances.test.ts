@@ -34,6 +34,7 @@ describe('comments that accept findings', () => {
   const finding = (line: number) => ({ code: 'sign' as const, message: 'm', range: { start: { line, column: 1 }, end: { line, column: 2 } } });
   const result = (line: number): FileResult => ({
     file: 'a.ts', language: 'typescript', systems: [], problems: [], dependsOn: [],
+    unfinished: [],
     claims: [{ file: 'a.ts', language: 'typescript', system: 's', function: 'f', output: 'return[1]', quantity: "th''", line: 1, verdict: 'differs', findings: [finding(line)] }],
   });
 

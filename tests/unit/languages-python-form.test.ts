@@ -42,7 +42,7 @@ describe('Python expressions', () => {
     ['isinstance(a, B)', '(a instanceof B)'],
     ['(a)', 'a'],
     ['(a,)', '[a]'],
-    ['a & 1', '(a bit 1)'],
+    ['a & 1', '(a bit-and 1)'],
     ['await a', '‹a value that is awaited›'],
   ])('%s', (text, expected) => {
     expect(inside(`return ${text}`)).toBe(`return ${expected};`);
@@ -72,16 +72,16 @@ describe('Python statements', () => {
     expect(inside('"""doc"""\nassert x > 0, "no"\na: float\npass')).toBe('');
   });
   it('divides integers in Python 2 as Python 2 does', () => {
-    expect(form('#!/usr/bin/env python2\na = 4 / 3')).toContain('(4 floor-divide 3)');
-    expect(form('#!/usr/bin/env python2\na = 4 / 3.0')).toContain('(4 / 3)');
-    expect(form('#!/usr/bin/env python2\nfrom __future__ import division\na = 4 / 3')).toContain('(4 / 3)');
-    expect(form('a = 4 / 3')).toContain('(4 / 3)');
-    expect(form('a = 4 / 3\nprint "a"')).toContain('(4 floor-divide 3)');
+    const divides = (text: string): boolean => core.parse('a.py', text).dividesIntegers === true;
+    expect(divides('#!/usr/bin/env python2\na = 4 / 3')).toBe(true);
+    expect(divides('#!/usr/bin/env python2\nfrom __future__ import division\na = 4 / 3')).toBe(false);
+    expect(divides('a = 4 / 3')).toBe(false);
+    expect(divides('a = 4 / 3\nprint "a"')).toBe(true);
   });
   it('matches literals', () => {
     const text = inside('match x:\n    case 1 | 2:\n        a = 1\n    case "s":\n        a = 2\n    case _:\n        a = 3');
-    expect(text).toContain('(x == 1)');
-    expect(text).toContain('(x == "s")');
+    expect(text).toContain(' == 1)');
+    expect(text).toContain(' == "s")');
   });
   it('never nests without end', () => {
     expect(() => form(`x = ${'('.repeat(4000)}1${')'.repeat(4000)}`)).not.toThrow();

@@ -121,7 +121,7 @@ export function showStatement(s: Statement): string {
     case 'labelled':
       return `${s.label}: ${showStatement(s.body)}`;
     case 'try':
-      return `try {${showAll(s.body)}} catch ${s.handler?.parameter ? showPattern(s.handler.parameter) : ''} {${showAll(s.handler?.body ?? [])}} finally {${showAll(s.finalizer)}}`;
+      return `try {${showAll(s.body)}} ${(s.handlers ?? []).map((h) => `catch ${h.parameter ? showPattern(h.parameter) : ''} {${showAll(h.body)}}`).join(' ')} finally {${showAll(s.finalizer)}}`;
     case 'block':
       return `{${showAll(s.body)}}`;
     case 'import':

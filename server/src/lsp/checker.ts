@@ -3,6 +3,7 @@ import { DiagnosticSeverity, type Connection, type Diagnostic } from 'vscode-lan
 import type { Clock } from '../host/clock';
 import { sizeLimit } from '../host/text-file';
 import type { FileResult, Service } from '../service/api';
+import { remembered, withLastReading } from '../service/last-reading';
 import { Budget } from '../text/budget';
 import type { Addresses } from './addresses';
 import { CheckQueue, type Run } from './check-queue';
@@ -101,7 +102,10 @@ export class Checker {
     }
   }
 
-  private show(open: OpenFile, version: number, result: FileResult): void {
+  private show(open: OpenFile, version: number, found: FileResult): void {
+    const now = { text: open.document.getText(), result: found };
+    const result = withLastReading(open.known, now);
+    open.known = remembered(open.known, now);
     open.dependsOn = result.dependsOn;
     open.result = { version, result };
     const diagnostics = toDiagnostics(result, {

@@ -1,6 +1,7 @@
 import type { Diagnostic } from 'vscode-languageserver';
 import type { TextDocument } from 'vscode-languageserver-textdocument';
 import type { FileResult } from '../service/api';
+import type { TextResult } from '../service/last-reading';
 
 /** A document that is open in the editor, and what is known of it. */
 export interface OpenFile {
@@ -10,6 +11,8 @@ export interface OpenFile {
   dependsOn: readonly string[];
   /** Its last result, and the version that it is about. */
   result: { readonly version: number; readonly result: FileResult } | undefined;
+  /** What was last known of functions that are being typed now. */
+  known: TextResult | undefined;
   /** The version whose check ran out of time. */
   ranOutAt: number | undefined;
   /** What the editor shows of it now; undefined before the first result. */
@@ -20,7 +23,7 @@ export class OpenFiles {
   private readonly byUri = new Map<string, OpenFile>();
 
   set(file: string, document: TextDocument): OpenFile {
-    const open: OpenFile = { file, document, dependsOn: [], result: undefined, ranOutAt: undefined, published: undefined };
+    const open: OpenFile = { file, document, dependsOn: [], result: undefined, known: undefined, ranOutAt: undefined, published: undefined };
     this.byUri.set(document.uri, open);
     return open;
   }

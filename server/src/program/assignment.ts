@@ -1,12 +1,16 @@
 import type { Place } from '../text/span';
+import { assignInto } from './array-writes';
 import { settleField } from './classes';
-import type { Expression, Pattern } from './form';
+import type { Expr } from '../expression/node';
+import type { BinaryOperator, Expression, Pattern } from './form';
+import { maskOf, writeMasked } from './mask-arrays';
 import { clipsVariable } from './limits';
 import type { Machine } from './machine';
 import { assignMasked } from './masks';
 import { readElement, readMember, writeElement, writeMember } from './members';
+import { heldArray } from './matrix-objects';
 import { withEach } from './merging';
-import { itemsOf } from './numbers';
+import { dataOf, itemsOf } from './numbers';
 import { binary } from './operators';
 import { writeOpen } from './open-cells';
 import { openPlace, readOpen, spoilRoot } from './open-index';
@@ -14,7 +18,7 @@ import { bindPattern } from './patterns';
 import type { ClassInfo, Scope } from './scope';
 import { sliceTargets } from './slices';
 import { arriveAt, declare, readVariable, write } from './variables';
-import { NOTHING, unread, type Value } from './values';
+import { NOTHING, unread, type ObjectValue, type Value } from './values';
 
 /** `a = v`, `a += v`, `i++`. */
 export function assign(m: Machine, scope: Scope, e: Expression & { kind: 'assign' }, place: Place): Value {
@@ -42,25 +46,53 @@ function assignName(m: Machine, scope: Scope, e: Expression & { kind: 'assign' }
 }
 
 function joined(m: Machine, scope: Scope, e: Expression & { kind: 'assign' }, old: Value, given: Value, place: Place): Value {
+  const { listConcat } = scope.frame.module.program;
+  const before = old.kind === 'object' ? dataOf(m, old) : undefined;
+  const isPlain = before?.kind === 'list' && !before.array;
+  const more = isPlain && given.kind === 'object' ? dataOf(m, given) : undefined;
+  const isArray = more?.kind === 'list' && more.array;
+  if (listConcat && e.op === '+' && isPlain && !isArray && old.kind === 'object') return extended(m, old, given, place);
   const value = binary(m, scope.frame.module, e.op!, old, given, place);
-  if (scope.frame.module.program.listConcat && old.kind === 'object' && value.kind === 'object') return inPlace(m, old, value);
+  if (listConcat && old.kind === 'object' && value.kind === 'object') return inPlace(m, old, value, place);
   if (value.kind === 'scalar') m.note(place, value.expr);
   return value;
 }
 
+/** `+=` of a plain list takes over the items of another. */
+function extended(m: Machine, old: ObjectValue, given: Value, place: Place): Value {
+  const items = itemsOf(m, given);
+  const list = m.store.writable(old.id);
+  if (list.kind !== 'list') return list.kind === 'broken' ? list.unread : old;
+  if (items) list.items.push(...items);
+  else {
+    const why = given.kind === 'unread' ? given : unread('a list that is extended by one whose length is not known', place);
+    m.breakObject(old.id, why);
+    return why;
+  }
+  return old;
+}
+
 /** Python's `+=` changes a list or array itself, so that its other names see it. */
-function inPlace(m: Machine, old: Value & { kind: 'object' }, value: Value & { kind: 'object' }): Value {
+function inPlace(m: Machine, old: ObjectValue, value: ObjectValue, place: Place): Value {
   const items = itemsOf(m, value);
   if (!items || !itemsOf(m, old)) return value;
-  const list = m.store.writable(old.id);
-  if (list.kind !== 'list') return value;
-  const { view } = list;
-  list.items = [...items];
-  if (view && view.length !== items.length) return value;
-  view?.forEach((part, k) => {
-    const source = m.store.writable(part.id);
-    if (source.kind === 'list') source.items[part.at] = items[k]!;
-  });
+  const before = m.store.data(old.id);
+  const made = m.store.data(value.id);
+  if (before.kind !== 'list' || made.kind !== 'list') return value;
+  // A plain list and an array make a new array.
+  if (!before.array && made.array) return value;
+  if (!before.array) {
+    const list = m.store.writable(old.id);
+    if (list.kind === 'list') list.items = [...items];
+    return old;
+  }
+  if (before.integer && !made.integer) {
+    const why = unread('an array of integers to which fractions are added in place, which is an error', place);
+    m.breakObject(old.id, why);
+    return why;
+  }
+  if (before.held) m.store.thaw(old.id);
+  assignInto(m, old, value, place);
   return old;
 }
 
@@ -90,8 +122,11 @@ function assignPlace(m: Machine, scope: Scope, e: Expression & { kind: 'assign' 
       return through(m, scope, e, object, place, read, (o, v) => writeOpen(m, o, open.keys, v, place));
     }
     let object = m.evaluate(scope, target.object);
+    if (target.indices.length === 2) object = heldArray(m, object) ?? object;
     if (target.indices.some((i) => i.kind === 'slice')) return assignSlice(m, scope, e, target, object, place);
     const keys = target.indices.map((i) => m.evaluate(scope, i));
+    const mask = keys.length === 1 ? maskOf(m, keys[0]!) : undefined;
+    if (mask && object.kind === 'object') return writeByMask(m, scope, e, object, mask, place);
     for (const k of keys.slice(0, -1)) object = readElement(m, module, object, k, place);
     const key = keys[keys.length - 1]!;
     if (object.kind === 'unread') spoilRoot(m, scope, target, object);
@@ -135,18 +170,34 @@ function through(
   });
 }
 
+/** A list of the same items, which stays as it is when the list is written to. */
+function shallow(m: Machine, v: Value): Value {
+  const data = dataOf(m, v);
+  return data?.kind === 'list' ? m.list(data.items, data.array) : v;
+}
+
+function writeByMask(m: Machine, scope: Scope, e: Expression & { kind: 'assign' }, object: ObjectValue, mask: readonly Expr[], place: Place): Value {
+  const given = m.evaluate(scope, e.value);
+  const change = (old: Value): Value => (e.op ? binary(m, scope.frame.module, e.op, old, given, place) : given);
+  writeMasked(m, object, mask, given, change, place);
+  return given;
+}
+
 function assignSlice(m: Machine, scope: Scope, e: Expression & { kind: 'assign' }, target: Expression & { kind: 'index' }, object: Value, place: Place): Value {
-  const value = m.evaluate(scope, e.value);
+  return writeSlice(m, scope, target, object, m.evaluate(scope, e.value), place, e.op);
+}
+
+function writeSlice(m: Machine, scope: Scope, target: Expression & { kind: 'index' }, object: Value, given: Value, place: Place, op?: BinaryOperator): Value {
+  const { module } = scope.frame;
+  const value = module.program.listConcat && itemsOf(m, given) ? shallow(m, given) : given;
   const targets = sliceTargets(m, scope, object, target.indices, value, place);
   if ('kind' in targets) {
     if (object.kind === 'object') m.breakObject(object.id, targets);
     return targets;
   }
-  const { module } = scope.frame;
-  for (const t of targets) {
-    const old = e.op ? readElement(m, module, t.object, t.key, place) : NOTHING;
-    writeElement(m, module, t.object, t.key, e.op ? binary(m, module, e.op, old, t.value, place) : t.value, place);
-  }
+  // All is worked out before anything is written: what is written may be a part of what is read.
+  const parts = targets.map((t) => (op ? binary(m, module, op, readElement(m, module, t.object, t.key, place), t.value, place) : t.value));
+  targets.forEach((t, k) => writeElement(m, module, t.object, t.key, parts[k]!, place));
   return value;
 }
 
@@ -161,7 +212,9 @@ export function assignTo(m: Machine, scope: Scope, pattern: Pattern, value: Valu
     const place = m.place(scope, pattern.span);
     const t = pattern.target;
     if (t.kind === 'member') writeMember(m, module, m.evaluate(scope, t.object), t.name, value, place);
-    else if (t.kind === 'index') {
+    else if (t.kind === 'index' && t.indices.some((i) => i.kind === 'slice')) {
+      writeSlice(m, scope, t, m.evaluate(scope, t.object), value, place);
+    } else if (t.kind === 'index') {
       let object = m.evaluate(scope, t.object);
       const keys = t.indices.map((i) => m.evaluate(scope, i));
       for (const k of keys.slice(0, -1)) object = readElement(m, module, object, k, place);

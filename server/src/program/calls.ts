@@ -5,10 +5,10 @@ import { changesReceiver, damage, unknownCall, unknownMethod } from './damage';
 import type { Argument, Expression } from './form';
 import { factsOf } from './facts';
 import { childOf, copyOfGeneric, fallbackOf, genericAt, hasWritesBelow, valueOf } from './generics';
-import { runIntrinsic } from './intrinsics/table';
+import { runIntrinsic, writtenTo } from './intrinsics/table';
 import type { ScalarFunction } from './library';
 import type { Machine } from './machine';
-import { readMember, writeMember } from './members';
+import { readMember } from './members';
 import { apply, mergeEndings, withEach, type Ending } from './merging';
 import { requireModule } from './modules';
 import { dataOf, describe, itemsOf } from './numbers';
@@ -253,25 +253,21 @@ function callLibrary(m: Machine, callee: LibraryValue, args: readonly ArgumentVa
   const intrinsic = library.intrinsics.get(callee.path);
   if (intrinsic) return runIntrinsic(m, callee.module, intrinsic, undefined, args, place);
   const scalar = library.scalars.get(callee.path);
-  if (scalar) return callScalar(m, callee.module, scalar, args, place);
+  if (scalar) return callScalar(m, scalar, args, place);
   const name = lastName(callee.path);
   return unknownCall(m, args, place, callee.path, name === 'random' ? 'a random number' : undefined);
 }
 
 /** Named arguments of a scalar function: a type says nothing, `out` is written to, and any other is not known. */
-function callScalar(m: Machine, module: Module, f: ScalarFunction, args: readonly ArgumentValue[], place: Place): Value {
+function callScalar(m: Machine, f: ScalarFunction, args: readonly ArgumentValue[], place: Place): Value {
   const named = args.filter((a) => a.name !== undefined && a.name !== 'dtype');
-  const value = applyScalar(m, f, args.filter((a) => a.name === undefined).map((a) => a.value), place);
-  if (named.length === 0) return value;
-  const out = named.find((a) => a.name === 'out')?.value;
-  const items = itemsOf(m, value);
-  if (named.length > 1 || out?.kind !== 'object' || !items || itemsOf(m, out)?.length !== items.length) {
-    const why = unread('a function of the library with arguments that are not known', place);
-    damage(m, args, why);
-    return why;
-  }
-  items.forEach((v, k) => writeMember(m, module, out, String(k + module.program.indexBase), v, place));
-  return out;
+  const value = (): Value => applyScalar(m, f, args.filter((a) => a.name === undefined).map((a) => a.value), place);
+  if (named.length === 0) return value();
+  const [only] = named;
+  if (named.length === 1 && only!.name === 'out') return writtenTo(m, only!.value, place, value);
+  const why = unread('a function of the library with arguments that are not known', place);
+  damage(m, args, why);
+  return why;
 }
 
 /** `new F(...)` of a plain function: JavaScript before classes. */
@@ -322,7 +318,7 @@ export function invoke(m: Machine, f: FunctionValue, self: Value | undefined, ar
   };
   const scope = new Scope(f.scope, frame, true);
   const value = m.meaning(frame.module, place, () => {
-    bindParameters(m, scope, node.parameters, args, node.selfParameter ? receiver : undefined, node.selfParameter === true);
+    bindParameters(m, f, scope, args, node.selfParameter ? receiver : undefined);
     if (node.allArguments !== undefined) declare(m, scope, node.allArguments, m.list(args.map((x) => x.value)));
     return runBody(m, scope, base, place);
   });

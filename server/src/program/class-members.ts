@@ -1,4 +1,5 @@
-import type { Member, TypeNote } from './form';
+import type { ClassNode, Expression, FunctionNode, Member, Pattern, TypeNote } from './form';
+import { nodesOf } from './scan';
 import type { ClassInfo, Scope } from './scope';
 
 /** Looking members up in a class and those it extends. */
@@ -37,4 +38,24 @@ export function instanceFieldNote(info: ClassInfo, name: string): { readonly not
     at = here.base();
   }
   return undefined;
+}
+
+/** True where a method reads a field that another method than the constructor writes. */
+export function readsWhatChanges(node: ClassNode, method: FunctionNode): boolean {
+  const read = new Set<string>();
+  for (const n of nodesOf(method.body)) {
+    const e = n as Expression;
+    if (e.kind === 'member' && e.object.kind === 'self') read.add(e.name);
+  }
+  return node.members.some((x) => x.kind !== 'constructor' && x.node && x.node !== method && writesField(x.node, read));
+}
+
+function writesField(f: FunctionNode, names: ReadonlySet<string>): boolean {
+  for (const n of nodesOf(f.body)) {
+    const p = n as Pattern;
+    let at = p.kind === 'place' ? p.target : undefined;
+    while (at?.kind === 'index' || (at?.kind === 'member' && at.object.kind !== 'self')) at = at.object;
+    if (at?.kind === 'member' && names.has(at.name)) return true;
+  }
+  return false;
 }

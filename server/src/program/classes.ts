@@ -149,12 +149,24 @@ function setFields(m: Machine, info: ClassInfo, self: ObjectValue): void {
   const scope = bodyScope(m, info, self);
   for (const member of info.node.members) {
     if (member.kind !== 'field' || member.isStatic || !member.value) continue;
-    const value = m.evaluate(scope, member.value);
     const place = m.place(scope, member.span);
+    const value = shared(m, member, () => m.evaluate(scope, member.value!), place);
     const settled = m.constructing?.id === self.id ? fieldValue(m, m.constructing, member.name, value, place) : settleField(m, info, member.name, value, place);
     const data = m.store.writable(self.id);
     if (data.kind === 'record') data.members.set(member.name, settled);
   }
+}
+
+/** What a class body makes is shared by the instances, where fields belong to the class. */
+function shared(m: Machine, member: Member, make: () => Value, place: Place): Value {
+  const known = m.sharedFields.get(member);
+  if (known) return known;
+  const value = make();
+  const data = value.kind === 'object' && m.request.program.classFields ? m.store.data(value.id) : undefined;
+  if (data?.kind !== 'list' && data?.kind !== 'record') return value;
+  const one = m.atRoot(() => m.object({ ...data, held: unread('a thing of the class that is changed: all instances share it', place) }));
+  m.sharedFields.set(member, one);
+  return one;
 }
 
 /** A literal that a class gives to a field, and nothing else ever does, stands for the symbol of the field's name. */

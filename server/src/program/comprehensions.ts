@@ -5,7 +5,7 @@ import type { Machine } from './machine';
 import { itemsOf } from './numbers';
 import { bindPattern } from './patterns';
 import { Scope } from './scope';
-import { declare } from './variables';
+import { declare, write } from './variables';
 import { isUnread, unread, type Unread, type Value } from './values';
 
 /** `[f(x) for x in xs if c]`, over lists that are known. */
@@ -20,12 +20,16 @@ export function comprehend(m: Machine, scope: Scope, e: Expression & { kind: 'co
     const over = m.evaluate(inner, l.over);
     const list = itemsOf(m, over);
     if (!list) return over.kind === 'unread' ? over : unread('a comprehension over a list that is not known', place);
+    const one = scope.frame.module.program.lateBinding ? new Scope(inner, inner.frame) : undefined;
     for (const item of [...list]) {
       const stopped = m.spend(() => place);
       if (stopped) return stopped;
-      const each = new Scope(inner, inner.frame);
+      const each = one ?? new Scope(inner, inner.frame);
       bindPattern(m, each, l.target, item, (s, p, v) => {
-        if (p.kind === 'name') declare(m, s, p.name, v);
+        if (p.kind !== 'name') return;
+        const known = one?.variables.get(p.name);
+        if (known) write(m, known, v);
+        else declare(m, s, p.name, v);
       });
       let keep = true;
       for (const condition of l.conditions) {

@@ -8,11 +8,14 @@ import { conditionOf, isOpenFlag, isThing, truthOf } from './conditions';
 import type { Expression } from './form';
 import { clipped } from './limits';
 import { valueOf } from './generics';
+import { withDefaults } from './defaults';
 import { indexValue } from './indexing';
-import { listLiteral, recordLiteral } from './literals';
+import { invertMask } from './mask-arrays';
+import { asInteger, isInteger } from './integers';
 import type { Machine } from './machine';
 import { settle } from './settle';
 import { readMember } from './members';
+import { listLiteral, recordLiteral } from './literals';
 import { fork, spoilWritten } from './merging';
 import { unknownName } from './modules';
 import { dataOf, itemsOf, numeric } from './numbers';
@@ -52,14 +55,15 @@ function placed(m: Machine, e: Expression, place: Place, value: Value): Value {
   const { tag } = m.request;
   const expr = tag && !m.quiet ? tag(place, e, value.expr) : value.expr;
   const clip = value.clip && expr === value.expr ? { clip: value.clip } : {};
-  return { kind: 'scalar', expr, place: m.keepPlaces ? value.place : place, ...clip };
+  const integer = value.integer && expr === value.expr ? { integer: true } : {};
+  return { kind: 'scalar', expr, place: m.keepPlaces ? value.place : place, ...clip, ...integer };
 }
 
 function evaluateInside(m: Machine, scope: Scope, e: Expression, place: Place): Value {
   const { graph } = m;
   switch (e.kind) {
     case 'number':
-      return m.scalar(graph.number(e.value), place);
+      return { kind: 'scalar', expr: graph.number(e.value), place, ...(e.integer && m.request.program.integers ? { integer: true } : {}) };
     case 'string':
       return { kind: 'string', value: e.value };
     case 'boolean':
@@ -98,7 +102,7 @@ function evaluateInside(m: Machine, scope: Scope, e: Expression, place: Place): 
       const self = e.node.inheritsSelf ? scope.frame.self : undefined;
       const home = e.node.inheritsSelf ? scope.frame.home : undefined;
       const f: FunctionValue = { kind: 'function', node: e.node, scope, ...(self ? { self } : {}), ...(home ? { home } : {}) };
-      return f;
+      return withDefaults(m, f);
     }
     case 'class':
       return { kind: 'class', info: classInfo(m, scope, e.node) };
@@ -159,12 +163,14 @@ function unary(m: Machine, scope: Scope, e: Expression & { kind: 'unary' }, plac
     case '+': {
       if (itemsOf(m, v)) return v;
       const n = numeric(m, v, place);
-      return isUnread(n) ? n : m.scalar(n, place);
+      return isUnread(n) ? n : asInteger(m.scalar(n, place), isInteger(v));
     }
     case 'transpose':
       return transpose(m, v, place);
     case 'typeof':
       return typeOf(m, v);
+    case 'bit-not':
+      return invertMask(m, v, place);
     case 'bit':
       return unread('an operation on bits', place);
   }

@@ -11,6 +11,8 @@ export interface Exit {
   readonly label?: string;
   readonly value: Value;
   readonly store: Store;
+  /** The class of what is thrown, where the source names it. */
+  readonly thrown?: string;
   /** Taken when this holds and no earlier exit was taken. */
   readonly guard: Expr;
 }

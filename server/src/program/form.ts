@@ -18,6 +18,12 @@ export interface Program {
   readonly elementwise?: boolean;
   /** `+` joins plain lists and `*` repeats them (Python). */
   readonly listConcat?: boolean;
+  /** Integers are numbers of a kind of their own: arrays of them stay such, whatever is written to them. */
+  readonly integers?: boolean;
+  /** `/` between integers drops the rest (Python 2). */
+  readonly dividesIntegers?: boolean;
+  /** Functions see the last value of the variables of a loop or comprehension; defaults are worked out once (Python). */
+  readonly lateBinding?: boolean;
   /** Fields of a class body belong to the class, and are there before any constructor runs (Python). */
   readonly classFields?: boolean;
   /** What the source calls `this`, for messages. */
@@ -56,7 +62,7 @@ export type BinaryOperator =
   | 'integer-divide' | 'floor-divide' | 'remainder-floor'
   | 'matmul' | 'elementwise-multiply' | 'elementwise-divide' | 'elementwise-power' | 'left-divide'
   | '<' | '<=' | '>' | '>=' | '==' | '!='
-  | 'in' | 'instanceof' | 'bit';
+  | 'in' | 'instanceof' | 'bit' | 'bit-and' | 'bit-or';
 
 export type Expression =
   | { readonly kind: 'number'; readonly value: Rational; readonly text: string; readonly integer: boolean; readonly span: Span }
@@ -73,7 +79,7 @@ export type Expression =
   /** Only as an index. `rest`: as many whole ranges as the other indices leave (Python's `...`). */
   | { readonly kind: 'slice'; readonly from?: Expression; readonly to?: Expression; readonly step?: Expression; readonly rest?: boolean; readonly span: Span }
   | { readonly kind: 'call'; readonly callee: Expression; readonly args: readonly Argument[]; readonly isNew?: boolean; readonly optional?: boolean; readonly span: Span }
-  | { readonly kind: 'unary'; readonly op: '-' | '+' | 'not' | 'bit' | 'transpose' | 'typeof'; readonly operand: Expression; readonly span: Span }
+  | { readonly kind: 'unary'; readonly op: '-' | '+' | 'not' | 'bit' | 'bit-not' | 'transpose' | 'typeof'; readonly operand: Expression; readonly span: Span }
   | { readonly kind: 'binary'; readonly op: BinaryOperator; readonly left: Expression; readonly right: Expression; readonly opSpan: Span; readonly span: Span }
   | { readonly kind: 'logical'; readonly op: 'and' | 'or' | 'coalesce'; readonly left: Expression; readonly right: Expression; readonly span: Span }
   | { readonly kind: 'conditional'; readonly condition: Expression; readonly whenTrue: Expression; readonly whenFalse: Expression; readonly span: Span }
@@ -203,12 +209,21 @@ export interface Member {
   /** Private names keep their mark: `#m`. */
   readonly name: string;
   readonly isStatic: boolean;
+  /** A getter that works its value out once and keeps it. */
+  readonly isCached?: boolean;
   /** `readonly`, `final`, `const`: nothing changes it after construction. */
   readonly isConstant?: boolean;
   readonly value?: Expression;
   readonly note?: TypeNote;
   readonly node?: FunctionNode;
   readonly span: Span;
+}
+
+/** `catches` tells whether it takes what is thrown, by its class: undefined where that is not known. Without it, it takes all. */
+export interface Handler {
+  readonly parameter?: Pattern;
+  readonly body: readonly Statement[];
+  readonly catches?: (thrown: string | undefined) => boolean | undefined;
 }
 
 export type Statement =
@@ -227,8 +242,9 @@ export type Statement =
   | { readonly kind: 'switch'; readonly value: Expression; readonly cases: readonly { readonly test?: Expression; readonly body: readonly Statement[]; readonly span: Span }[]; readonly fallsThrough: boolean; readonly span: Span }
   | { readonly kind: 'break' | 'continue'; readonly label?: string; readonly span: Span }
   | { readonly kind: 'labelled'; readonly label: string; readonly body: Statement; readonly span: Span }
-  | { readonly kind: 'throw'; readonly value?: Expression; readonly span: Span }
-  | { readonly kind: 'try'; readonly body: readonly Statement[]; readonly handler?: { readonly parameter?: Pattern; readonly body: readonly Statement[] }; readonly finalizer: readonly Statement[]; readonly span: Span }
+  /** `type`: the class of what is thrown, where the source names it. */
+  | { readonly kind: 'throw'; readonly value?: Expression; readonly type?: string; readonly span: Span }
+  | { readonly kind: 'try'; readonly body: readonly Statement[]; readonly handlers?: readonly Handler[]; readonly finalizer: readonly Statement[]; readonly span: Span }
   | { readonly kind: 'block'; readonly body: readonly Statement[]; readonly span: Span }
   /** `orModules`: a name may also be a file below `from` (Python packages); `all`: every name that `from` exports. */
   | { readonly kind: 'import'; readonly from: string; readonly names: readonly { readonly imported: string; readonly local: string; readonly span: Span }[]; readonly namespace?: string; readonly orModules?: boolean; readonly all?: boolean; readonly span: Span }

@@ -309,12 +309,14 @@ function generalise(m: Machine, id: number, generic: Generic, depth: number) {
     return childOf(m, -id, generic, key, generic.place, { fallback: () => v, constant: constant === true });
   };
   if (data.kind === 'list') {
-    return { ...data, items: data.items.map((v, k) => one(v, String(k + base))) };
+    const { held: _, ...rest } = data;
+    return { ...rest, items: data.items.map((v, k) => one(v, String(k + base))) };
   }
   if (data.kind === 'record') {
     const members = new Map([...data.members].map(([k, v]) => [k, one(v, k)]));
     for (const [k, value] of generic.later ?? []) if (!members.has(k)) members.set(k, childOf(m, -id, generic, k, generic.place, { fallback: value, constant: true }));
-    return { ...data, members };
+    const { held: _, ...rest } = data;
+    return { ...rest, members };
   }
   return data;
 }

@@ -1,14 +1,17 @@
 import type { Place } from '../text/span';
+import { copyOfArray } from './array-writes';
 import type { Expression } from './form';
 import type { Machine } from './machine';
 import { maskedValue } from './masks';
 import { readElement } from './members';
+import { maskOf, picked } from './mask-arrays';
+import { heldArray } from './matrix-objects';
 import { countOf, dataOf, itemsOf } from './numbers';
 import { openPlace, readOpen } from './open-index';
-import { depthOf } from './operators';
+import { depthOf } from './broadcast';
 import type { Scope } from './scope';
 import { positions, sliceItems } from './slices';
-import { NOTHING, type Value, type ViewItem } from './values';
+import { NOTHING, unread, type Value, type ViewItem } from './values';
 
 /** Elements and parts of lists: `y[0]`, `y[2:]`, `M[:, 1]`, `x[..., 0]`. */
 
@@ -18,8 +21,11 @@ export function indexValue(m: Machine, scope: Scope, e: Expression & { kind: 'in
   if (masked) return masked;
   const open = openPlace(m, scope, e);
   if (open) return readOpen(m, scope, open, place);
-  const object = m.evaluate(scope, e.object);
-  if (object.kind === 'nothing' && e.optional) return NOTHING;
+  const given = m.evaluate(scope, e.object);
+  if (given.kind === 'nothing' && e.optional) return NOTHING;
+  const held = heldArray(m, given);
+  if (held && (e.indices.length !== 2 || e.indices.some((i) => i.kind === 'slice'))) return unread('a part of a matrix', place);
+  const object = held ?? given;
   return indexWith(m, scope, object, e.indices, place, module.program.indexBase);
 }
 
@@ -32,7 +38,7 @@ function indexWith(m: Machine, scope: Scope, object: Value, indices: readonly Ex
     return indexWith(m, scope, object, [...ranges, ...rest], place, base);
   }
   if (first.kind === 'slice') {
-    if (rest.length > 0 && isBatch(m, first, object, rest.length)) return indexWith(m, scope, object, rest, place, base);
+    if (rest.length > 0 && rest.every((i) => i.kind !== 'nothing') && isBatch(m, first, object, rest.length)) return indexWith(m, scope, object, rest, place, base);
     const items = sliceItems(m, scope, object, first, place);
     if (!isSlice(items)) return items;
     if (rest.length === 0) return partOf(m, scope, object, first, items, place);
@@ -40,10 +46,12 @@ function indexWith(m: Machine, scope: Scope, object: Value, indices: readonly Ex
   }
   const key = m.evaluate(scope, first);
   if (key.kind === 'nothing' && scope.frame.module.program.listConcat) return m.list([indexWith(m, scope, object, rest, place, base)], true);
+  const mask = maskOf(m, key);
+  if (mask) return rest.length > 0 ? unread('a mask beside another index', place) : picked(m, object, mask, place);
   const list = itemsOf(m, key);
   if (list) {
     const picked = list.map((k) => indexWith(m, scope, readElement(m, scope.frame.module, object, k, place), rest, place, base));
-    return m.list(picked, true);
+    return scope.frame.module.program.listConcat ? copyOfArray(m, m.list(picked, true)) : m.list(picked, true);
   }
   // A single row is indexed by its column where a matrix is a list of rows.
   const element = readElement(m, scope.frame.module, object, key, place);
@@ -66,7 +74,16 @@ function partOf(m: Machine, scope: Scope, object: Value, s: Expression & { kind:
   if (!data.array) return m.list(items);
   const picked = positions(m, scope, s, data.items.length, place) ?? [];
   const view = picked.map((at) => data.view?.[at] ?? { id: object.id, at });
-  return m.object({ kind: 'list', items: [...items], array: true, ...(data.outside ? { outside: true } : {}), view });
+  const held = data.held ?? (data.outside ? unread('a part of a list from outside that is written to: say with `np.array(...)` whether it is a view or a copy', place) : undefined);
+  return m.object({
+    kind: 'list',
+    items: [...items],
+    array: true,
+    view,
+    ...(data.outside ? { outside: true } : {}),
+    ...(data.integer ? { integer: true } : {}),
+    ...(held ? { held } : {}),
+  });
 }
 
 /** A column, `M[:, 1]`, of rows that are lists themselves. */
@@ -78,16 +95,19 @@ function viewOfRows(m: Machine, scope: Scope, rows: readonly Value[], rest: read
   if (k === undefined) return undefined;
   const items: Value[] = [];
   const view: ViewItem[] = [];
+  let integer = true;
   for (const row of rows) {
     const data = dataOf(m, row);
     if (data?.kind !== 'list' || row.kind !== 'object') return undefined;
     const at = k < 0 && negativeIndex ? data.items.length + k : k - indexBase;
     const item = data.items[at];
     if (!item) return undefined;
+    if (!data.array || item.kind === 'object') return undefined;
+    integer &&= data.integer === true;
     items.push(item);
     view.push(data.view?.[at] ?? { id: row.id, at });
   }
-  return m.object({ kind: 'list', items, array: true, view });
+  return m.object({ kind: 'list', items, array: true, view, ...(integer && items.length > 0 ? { integer } : {}) });
 }
 
 function isSlice(x: readonly Value[] | Value): x is readonly Value[] {

@@ -3,13 +3,14 @@ import type { Expr } from '../expression/node';
 import type { Place, Span } from '../text/span';
 import type { ArgumentValue } from './parameters';
 import type { Outcome } from './flow';
-import type { ClassNode, Expression, FunctionNode, Statement } from './form';
+import type { ClassNode, Expression, FunctionNode, Member, Statement } from './form';
 import type { ClassInfo, Module, Scope } from './scope';
 import type { Library } from './library';
-import type { Ambiguity, BindingMade, Meaning, ReadRequest, TraceEntry } from './reading';
+import type { Ambiguity, BindingMade, Drop, Meaning, ReadRequest, TraceEntry } from './reading';
 import { Naming } from './naming';
 import { factsOf, memberIsAssigned, type MemberWrite } from './facts';
 import { Store } from './store';
+import { typedArray } from './integers';
 import { isData, unread, type Assigned, type Data, type FunctionValue, type ObjectValue, type Unread, type Value } from './values';
 
 /** Expressions and statements nested deeper than this are not read, so that the reading never exhausts the stack. */
@@ -52,13 +53,13 @@ export class Machine {
   /** Flags and kinds that `assume` settles, by path. */
   readonly given = new Map<string, Value>();
   readonly trace: TraceEntry[] = [];
+  /** Where integers lost what is behind the point. */
+  readonly drops = new Map<string, Drop>();
   /** Local variables that are claimed as outputs. */
   readonly claimedNames = new Set<string>();
   readonly files = new Set<string>();
   /** Conditions on entries under which the right side of an assignment is being read, by their shapes. */
   readonly masks: string[] = [];
-  /** True once a matrix was made whose `*` is the product of matrices, so that nothing is known of `*` between lists. */
-  hasMatrices = false;
   /** Above zero while a loop is only looked over, or an output is read: nothing is recorded and nothing replaced. */
   quiet = 0;
   /** Above zero where a count is wanted: fields that hold a literal give it. */
@@ -88,6 +89,8 @@ export class Machine {
   /** The call in the project's own code under which a package's meaning is being worked out. */
   callSite: Place | undefined;
   readonly classes = new Map<ClassNode, ClassInfo>();
+  /** Things that a class body made, which all instances share. */
+  readonly sharedFields = new Map<Member, ObjectValue>();
   /** The instance that a constructor is making from generic arguments: what its fields mean by `reads` or name, they are. */
   constructing: Construction | undefined;
   /** Meanings that were taken as said for places of which the code itself says what they are, by path. */
@@ -151,6 +154,10 @@ export class Machine {
     }
   }
 
+  dropped(drop: Drop): void {
+    if (!this.quiet && !this.keepPlaces) this.drops.set(`${drop.place.file} ${drop.place.span.start} ${drop.place.span.end}`, drop);
+  }
+
   note(place: Place, expr: Expr): void {
     if (!this.quiet && !this.keepPlaces) this.trace.push({ place, expr });
   }
@@ -160,7 +167,7 @@ export class Machine {
   }
 
   list(items: readonly Value[], array = false): ObjectValue {
-    return this.object({ kind: 'list', items: [...items], array });
+    return this.object(array && this.request.program.integers ? typedArray(this, items) : { kind: 'list', items: [...items], array });
   }
 
   scalar(expr: Expr, place?: Place): Value {

@@ -1,11 +1,13 @@
 import type { Place } from '../text/span';
 import { isChoiceOfNumbers } from './conditions';
-import { findMember } from './class-members';
+import { findMember, readsWhatChanges } from './class-members';
 import { factsOf } from './facts';
 import { instanceField, staticMember } from './classes';
+import { putItem } from './array-writes';
 import { childOf, fieldValue } from './generics';
 import { runIntrinsic } from './intrinsics/table';
 import type { Machine } from './machine';
+import { heldArray } from './matrix-objects';
 import { withEach } from './merging';
 import { countOf, dataOf, describe, scalarOf } from './numbers';
 import { cellAt, writeOpen } from './open-cells';
@@ -96,6 +98,7 @@ function listMember(m: Machine, module: Module, object: ObjectValue, data: ListD
 }
 
 function recordMember(m: Machine, module: Module, object: ObjectValue, data: RecordData, key: string, place: Place): Value {
+  if (heldArray(m, object)) return methodOf(m, module, 'matrix', object, key, place);
   const own = data.members.get(key);
   if (own) return own;
   const getter = data.getters?.get(key);
@@ -113,6 +116,14 @@ function recordMember(m: Machine, module: Module, object: ObjectValue, data: Rec
   return NOTHING;
 }
 
+/** The value of a getter that keeps it: of a thing from outside it is known only where what it is made of stays as it is. */
+function cachedMember(m: Machine, info: ClassInfo, object: ObjectValue, key: string, f: FunctionValue, place: Place): Value {
+  const value = m.invoke(f, object, [], place);
+  if (m.store.data(object.id).kind === 'record') m.setMember(object, key, value);
+  else if (readsWhatChanges(info.node, f.node)) return unread(`\`.${key}\`, which keeps its first value while what it is made of changes`, place);
+  return value;
+}
+
 /** A getter's value or a method, from the class of an instance. */
 function fromClass(m: Machine, info: ClassInfo, object: ObjectValue, key: string, place: Place): Value | undefined {
   const found = findMember(info, key);
@@ -122,6 +133,7 @@ function fromClass(m: Machine, info: ClassInfo, object: ObjectValue, key: string
   const { name } = found.info.node;
   if (patched.size > 0 && (patched.has(`${name}.${key}`) || patched.has(`${name}.*`))) return unread(`\`${name}.prototype.${key}\`, which is changed after the class`, place);
   const f: FunctionValue = { kind: 'function', node: found.member.node, scope: found.info.scope, self: object, home: found.info };
+  if (found.member.kind === 'getter' && found.member.isCached) return cachedMember(m, info, object, key, f, place);
   if (found.member.kind === 'getter') return m.invoke(f, object, [], place);
   return found.member.kind === 'method' ? f : undefined;
 }
@@ -273,18 +285,11 @@ function callSetter(m: Machine, info: ClassInfo, object: ObjectValue, key: strin
 }
 
 function setItem(m: Machine, object: ObjectValue, data: ListData, k: number, value: Value, place: Place): void {
-  const part = data.view?.[k];
-  if (part) {
-    const source = m.store.writable(part.id);
-    if (source.kind === 'list') source.items[part.at] = value;
-    return;
-  }
   if (k < 0 || k > LONGEST) {
     m.breakObject(object.id, unread('a list written to outside its bounds', place));
     return;
   }
-  while (data.items.length < k) data.items.push(NOTHING);
-  data.items[k] = value;
+  putItem(m, object, data, k, value, place);
 }
 
 export function writeElement(m: Machine, module: Module, object: Value, given: Value, value: Value, place: Place): void {
@@ -316,7 +321,8 @@ export function writeElement(m: Machine, module: Module, object: Value, given: V
     const { negativeIndex, indexBase } = module.program;
     const data = dataOf(m, object);
     if (data?.kind === 'list') {
-      const list = m.store.writable(object.id) as ListData;
+      const list = m.store.writable(object.id);
+      if (list.kind !== 'list') return;
       const k = known < 0 && negativeIndex ? list.items.length + known : known - indexBase;
       const item = list.items[k];
       if (module.program.elementwise && item?.kind === 'object') {

@@ -1,13 +1,18 @@
 import type { Expr } from '../expression/node';
-import { Rational } from '../expression/rational';
+import type { Rational } from '../expression/rational';
 import type { Place } from '../text/span';
+import { depthOf } from './broadcast';
 import { compare } from './conditions';
 import type { BinaryOperator } from './form';
 import { multiplyMatrices, solveLinear, transpose } from './intrinsics/matrices';
 import type { Machine } from './machine';
+import { joinMasks } from './mask-arrays';
+import { heldArray, matrixObject, onMatrixObjects } from './matrix-objects';
 import { mergeValues } from './merging';
-import { countOf, dataOf, describe, itemsOf, numeric } from './numbers';
+import { countOf, dataOf, describe, numeric } from './numbers';
 import type { Module } from './scope';
+import { isInteger } from './integers';
+import { truncated } from './truncate';
 import { isUnread, unread, type ListData, type Unread, type Value } from './values';
 
 /** Arithmetic of values. */
@@ -27,6 +32,9 @@ export function binary(m: Machine, module: Module, op: BinaryOperator, a: Value,
       return contains(m, a, b, place);
     case 'instanceof':
       return instanceOf(m, a, b, place);
+    case 'bit-and':
+    case 'bit-or':
+      return joinMasks(m, op, a, b, place);
     case 'bit':
       return unread('an operation on bits', place);
     default:
@@ -38,6 +46,8 @@ export function binary(m: Machine, module: Module, op: BinaryOperator, a: Value,
   if (b.kind === 'choice') {
     return mergeValues(m, b.condition, binary(m, module, op, a, b.whenTrue, place), binary(m, module, op, a, b.whenFalse, place), place);
   }
+  const made = onMatrixObjects(m, op, a, b, place, (o, p, q) => binary(m, module, o, p, q, place));
+  if (made) return made;
   const x = listOf(m, a);
   const y = listOf(m, b);
   if (x || y) return onLists(m, module, op, a, b, x, y, place);
@@ -46,8 +56,26 @@ export function binary(m: Machine, module: Module, op: BinaryOperator, a: Value,
   if (isUnread(p)) return p;
   const q = numeric(m, b, place);
   if (isUnread(q)) return q;
+  const integer = isInteger(a) && isInteger(b);
+  if (integer && op === '/' && module.program.dividesIntegers) return divided(m, p, q, place);
   const r = arithmetic(m, op, p, q, place);
-  return isUnread(r) ? r : { kind: 'scalar', expr: r, place };
+  if (isUnread(r)) return r;
+  return { kind: 'scalar', expr: r, place, ...(integer && STAYS_INTEGER.has(op) && !isBelowZero(q, op) ? { integer } : {}) };
+}
+
+const STAYS_INTEGER: ReadonlySet<BinaryOperator> = new Set(['+', '-', '*', '**', 'floor-divide', 'integer-divide', 'remainder-floor', '%'] as const);
+
+/** An integer to a power below zero is none. */
+function isBelowZero(exponent: Expr, op: BinaryOperator): boolean {
+  return op === '**' && !(exponent.op === 'number' && (exponent.data as Rational).numerator >= 0n);
+}
+
+/** The quotient of two integers, which drops the rest. */
+function divided(m: Machine, a: Expr, b: Expr, place: Place): Value {
+  const exact = m.graph.divide(a, b);
+  const expr = m.graph.apply('floor', [exact]);
+  if (expr !== exact) m.dropped({ kind: 'division', place, exact });
+  return { kind: 'scalar', expr, place, integer: true };
 }
 
 /** Comparisons of numeric vectors are made item by item where the language has them apart from plain lists. */
@@ -86,11 +114,11 @@ export function arithmetic(m: Machine, op: BinaryOperator, a: Expr, b: Expr, pla
     case 'floor-divide':
       return g.apply('floor', [g.divide(a, b)]);
     case 'integer-divide':
-      return truncated(m, g.divide(a, b));
+      return truncated(m.graph, g.divide(a, b));
     case 'remainder-floor':
       return m.request.withinLimits && isTurn(m, b) ? a : g.subtract(a, g.product([b, g.apply('floor', [g.divide(a, b)])]));
     case '%':
-      return m.request.withinLimits && isTurn(m, b) ? a : g.subtract(a, g.product([b, truncated(m, g.divide(a, b))]));
+      return m.request.withinLimits && isTurn(m, b) ? a : g.subtract(a, g.product([b, truncated(m.graph, g.divide(a, b))]));
     default:
       return unread(`the operator \`${op}\``, place);
   }
@@ -99,17 +127,6 @@ export function arithmetic(m: Machine, op: BinaryOperator, a: Expr, b: Expr, pla
 /** A multiple of pi: the remainder is a wrapped angle. */
 function isTurn(m: Machine, e: Expr): boolean {
   return e === m.graph.pi || (e.op === 'product' && e.args.length === 2 && e.args[0]!.op === 'number' && e.args[1] === m.graph.pi);
-}
-
-/** Rounded towards zero. */
-export function truncated(m: Machine, x: Expr): Expr {
-  const g = m.graph;
-  if (x.op === 'number') {
-    const r = x.data as Rational;
-    return g.number(Rational.of(r.numerator / r.denominator));
-  }
-  const up = g.negate(g.apply('floor', [g.negate(x)]));
-  return g.select(g.less(x, g.zero), up, g.apply('floor', [x]));
 }
 
 function onLists(
@@ -124,7 +141,6 @@ function onLists(
 ): Value {
   const { elementwise, listConcat, matrixProduct } = module.program;
   if (op === 'matmul' || (op === '*' && matrixProduct && x && y)) return multiplyMatrices(m, a, b, place);
-  if (m.hasMatrices && x && y && ['*', '/', '**'].includes(op)) return unread(`the operator \`${op}\` between lists in a file with \`np.matrix\`, where it may be that of matrices: write \`@\``, place);
   if (op === 'left-divide' && x) return solveLinear(m, a, b, place);
   if (op === '/' && matrixProduct && x && y) {
     const t = solveLinear(m, transpose(m, b, place), transpose(m, a, place), place);
@@ -172,16 +188,6 @@ function elementwiseOperation(
   return m.list(y!.items.map((v) => binary(m, module, op, a, v, place)), true);
 }
 
-export function depthOf(m: Machine, v: Value): number {
-  let depth = 0;
-  let items = itemsOf(m, v);
-  while (items && depth < 8) {
-    depth++;
-    items = items.length > 0 ? itemsOf(m, items[0]!) : undefined;
-  }
-  return depth;
-}
-
 function joinTexts(a: Value, b: Value, place: Place): Value {
   const text = (v: Value): string | undefined => {
     if (v.kind === 'string') return v.value;
@@ -215,7 +221,8 @@ function contains(m: Machine, key: Value, thing: Value, place: Place): Value {
 function instanceOf(m: Machine, thing: Value, type: Value, place: Place): Value {
   const answer = (t: boolean): Value => ({ kind: 'condition', expr: t ? m.graph.true : m.graph.false, place });
   const data = dataOf(m, thing);
-  if (type.kind === 'library') return answer(data?.kind === 'list' && /Array$/.test(type.path));
+  if (type.kind === 'library' && !/Array$/.test(type.path)) return unread(`whether a thing is a \`${type.path}\``, place);
+  if (type.kind === 'library') return answer(data?.kind === 'list');
   if (type.kind !== 'class') return unread(`whether a thing is a ${describe(type)}`, place);
   if (!data) return answer(false);
   if (data.kind === 'generic' && !data.generic.info) return unread('the class of a thing from outside', place);
@@ -232,6 +239,8 @@ function instanceOf(m: Machine, thing: Value, type: Value, place: Place): Value 
 export function negate(m: Machine, v: Value, place: Place): Value {
   const items = listOf(m, v);
   if (items) return m.list(items.items.map((x) => negate(m, x, place)), true);
+  const held = heldArray(m, v);
+  if (held) return matrixObject(m, negate(m, held, place), place);
   const n = numeric(m, v, place);
-  return isUnread(n) ? n : { kind: 'scalar', expr: m.graph.negate(n), place };
+  return isUnread(n) ? n : { kind: 'scalar', expr: m.graph.negate(n), place, ...(isInteger(v) ? { integer: true } : {}) };
 }

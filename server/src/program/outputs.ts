@@ -6,6 +6,7 @@ import { evaluate } from './expressions';
 import type { Expression } from './form';
 import { childOf } from './generics';
 import type { Machine } from './machine';
+import { heldArray } from './matrix-objects';
 import { readMember } from './members';
 import { dataOf, numeric } from './numbers';
 import type { OutputRequest, OutputValue } from './reading';
@@ -79,7 +80,7 @@ function claimScope(m: Machine, ended: Ended, store: Store, atExit: boolean): Sc
   }
   if (!atExit) for (const [name, value] of m.entries) declare(m, scope, name, value);
   if (locals.kind === 'record') for (const [name, value] of locals.members) declare(m, scope, name, value);
-  if (atExit) declare(m, scope, 'return', ended.returned);
+  if (atExit) declare(m, scope, 'return', heldArray(m, ended.returned) ?? ended.returned);
   return scope;
 }
 

@@ -45,6 +45,12 @@ function bindList(m: Machine, scope: Scope, items: readonly (PatternItem | undef
   const { module } = scope.frame;
   const star = items.findIndex((i) => i?.rest);
   const known = itemsOf(m, value);
+  const wrong = known && module.program.lateBinding && (star < 0 ? known.length !== items.length : known.length < items.length - 1);
+  if (wrong) {
+    const why = unread(`${items.length} names that are given a list of ${known.length}`, place);
+    for (const item of items) if (item) bindPattern(m, scope, item.pattern, why, put);
+    return;
+  }
   items.forEach((item, k) => {
     if (!item) return;
     const at = m.place(scope, item.pattern.span);

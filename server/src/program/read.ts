@@ -58,6 +58,7 @@ function finished(m: Machine, outputs: readonly OutputValue[], ambiguities: read
     assigned: assignedValues(m),
     assumed: m.assumed,
     trace: m.trace,
+    drops: [...m.drops.values()],
     touched: m.modules.get(m.request.file)?.touched ?? new Set(),
     files: [...m.files],
   };

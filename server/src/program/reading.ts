@@ -119,6 +119,14 @@ export interface TraceEntry {
   readonly expr: Expr;
 }
 
+/** A place at which integers lose what is behind the point. */
+export interface Drop {
+  readonly kind: 'division' | 'element';
+  readonly place: Place;
+  /** The value with its fraction. */
+  readonly exact: Expr;
+}
+
 export interface Reading {
   readonly outputs: readonly OutputValue[];
   readonly bindings: readonly BindingMade[];
@@ -135,6 +143,8 @@ export interface Reading {
   readonly assumed: readonly Expr[];
   /** Every scalar sub-expression read, in order of evaluation. */
   readonly trace: readonly TraceEntry[];
+  /** Where integers lose what is behind the point, in order of evaluation. */
+  readonly drops: readonly Drop[];
   /** Names of the subject's own file, at its top level, that were looked up. */
   readonly touched: ReadonlySet<string>;
   /** Files whose text this reading depends on, beyond the subject's own. */

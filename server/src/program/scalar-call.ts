@@ -1,3 +1,4 @@
+import { broadcast } from './broadcast';
 import type { ScalarFunction } from './library';
 import { unclip } from './limits';
 import type { Machine } from './machine';
@@ -12,13 +13,7 @@ export function applyScalar(m: Machine, f: ScalarFunction, args: readonly Value[
   if (choice >= 0) {
     return withEach(m, args[choice]!, place, (v) => applyScalar(m, f, args.map((a, k) => (k === choice ? v : a)), place));
   }
-  const lists = args.map((a) => itemsOf(m, a));
-  const length = lists.find((l) => l)?.length;
-  if (length !== undefined) {
-    if (lists.some((l) => l && l.length !== length)) return unread('lists of different length', place);
-    const items = Array.from({ length }, (_, k) => applyScalar(m, f, args.map((a, i) => lists[i]?.[k] ?? a), place));
-    return m.list(items, true);
-  }
+  if (args.some((a) => itemsOf(m, a))) return broadcast(m, args, (each) => applyScalar(m, f, each, place), place);
   const exprs = [];
   for (const a of args) {
     const n = numeric(m, a, place);

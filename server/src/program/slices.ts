@@ -3,7 +3,7 @@ import type { Expression } from './form';
 import type { Machine } from './machine';
 import { readElement } from './members';
 import { countOf, dataOf, itemsOf } from './numbers';
-import { depthOf } from './operators';
+import { depthOf } from './broadcast';
 import type { Scope } from './scope';
 import { unread, type Unread, type Value } from './values';
 
@@ -75,7 +75,9 @@ export function sliceTargets(m: Machine, scope: Scope, object: Value, indices: r
     return sliceTargets(m, scope, readElement(m, module, object, key, place), rest, value, place);
   }
   const items = itemsOf(m, object);
-  const values = itemsOf(m, value);
+  // A value of fewer axes than the part it is written to goes to each of its rows.
+  const axes = depthOf(m, object) - indices.filter((i) => i.kind !== 'slice').length;
+  const values = depthOf(m, value) < axes ? undefined : itemsOf(m, value);
   let picked: number[] | undefined;
   if (items) picked = positions(m, scope, first, items.length, place);
   else if (values && rest.length === 0) {

@@ -3,7 +3,8 @@ import type { Place } from '../text/span';
 import { classInfo } from './classes';
 import { compare, conditionOf } from './conditions';
 import { join, split, type Exit, type Outcome } from './flow';
-import type { Pattern, Statement } from './form';
+import { withDefaults } from './defaults';
+import type { FunctionNode, Handler, Pattern, Statement } from './form';
 import { isClipGuard } from './limits';
 import { forEach, loop } from './loops';
 import type { Machine } from './machine';
@@ -91,7 +92,7 @@ function run(m: Machine, scope: Scope, s: Statement, place: Place): Outcome {
       return executeLabelled(m, scope, s, place);
     case 'throw':
       if (s.value) m.evaluate(scope, s.value);
-      return exit(m, 'throw', NOTHING);
+      return { exits: [{ kind: 'throw', value: NOTHING, store: m.store, guard: m.graph.true, ...(s.type === undefined ? {} : { thrown: s.type }) }], normal: false };
     case 'try':
       return executeTry(m, scope, s, place);
     case 'block':
@@ -102,12 +103,22 @@ function run(m: Machine, scope: Scope, s: Statement, place: Place): Outcome {
     case 'opaque':
       return spoil(m, unread(s.reason, place));
     case 'function':
+      redefine(m, scope, s.node);
+      return GOES_ON;
     case 'class':
     case 'import':
     case 'export':
     case 'empty':
       return GOES_ON;
   }
+}
+
+/** Where a definition is a statement, it gives the name its function, and the function its defaults, when it is reached. */
+function redefine(m: Machine, scope: Scope, node: FunctionNode): void {
+  const variable = scope.find(node.name);
+  if (!variable || !scope.frame.module.program.lateBinding) return;
+  const self = node.inheritsSelf ? scope.frame.self : undefined;
+  write(m, variable, withDefaults(m, { kind: 'function', node, scope, ...(self ? { self } : {}) }));
 }
 
 /** A statement that can't be read may do anything: nothing after it is known. */
@@ -256,11 +267,12 @@ function executeTry(m: Machine, scope: Scope, s: Statement & { kind: 'try' }, pl
   const after = m.store;
   let open = m.graph.true;
   for (const x of body.exits) {
-    if (x.kind !== 'throw' || !s.handler) {
+    const handler = x.kind === 'throw' ? handlerOf(s, x, place) : undefined;
+    if (!handler) {
       exits.push({ ...x, guard: m.graph.and(open, x.guard) });
       continue;
     }
-    const handled = handle(m, scope, s.handler, x, place);
+    const handled = 'kind' in handler ? spoilAt(m, x, handler) : handle(m, scope, handler, x, place);
     exits.push(...handled.exits.map((y) => ({ ...y, guard: m.graph.and(open, m.graph.and(x.guard, y.guard)) })));
     if (handled.normal) ends.push({ ...x, store: m.store });
     open = m.graph.and(open, m.graph.not(x.guard));
@@ -286,7 +298,22 @@ function finalise(m: Machine, scope: Scope, body: readonly Statement[], before: 
   return { exits: [...exits, ...last.exits], normal: last.normal };
 }
 
-function handle(m: Machine, scope: Scope, handler: NonNullable<(Statement & { kind: 'try' })['handler']>, x: Exit, place: Place): Outcome {
+/** The handler that takes what is thrown, or why that is not known. */
+function handlerOf(s: Statement & { kind: 'try' }, x: Exit, place: Place): Handler | Unread | undefined {
+  for (const h of s.handlers ?? []) {
+    const takes = h.catches ? h.catches(x.thrown) : true;
+    if (takes === undefined) return unread('which of several handlers takes an error', place);
+    if (takes) return h;
+  }
+  return undefined;
+}
+
+function spoilAt(m: Machine, x: Exit, why: Unread): Outcome {
+  m.store = x.store.child();
+  return spoil(m, why);
+}
+
+function handle(m: Machine, scope: Scope, handler: Handler, x: Exit, place: Place): Outcome {
   m.store = x.store.child();
   const inner = new Scope(scope, scope.frame);
   if (handler.parameter) {

@@ -1,4 +1,4 @@
-import { isData, type Content, type Data, type ListData, type Value, type ViewItem } from './values';
+import { isData, type Content, type Data, type ListData, type Unread, type Value, type ViewItem } from './values';
 
 /**
  * Everything that can change, in layers: a branch writes to a layer of its own, and only what it wrote is merged. A store
@@ -72,10 +72,28 @@ export class Store {
   /** The contents of an object, ready to be changed in this layer. */
   writable(location: number): Data {
     const mine = this.own.get(location);
-    if (mine && isData(mine)) return mine;
-    const copy = copyData(this.data(location));
+    const data = mine && isData(mine) ? mine : this.data(location);
+    if ((data.kind === 'list' || data.kind === 'record') && data.held) return this.break(location, data, data.held);
+    if (mine === data) return data;
+    const copy = copyData(data);
     this.own.set(location, copy);
     return copy;
+  }
+
+  /** Lets a list be written to whose writing was held back. */
+  thaw(location: number): void {
+    const data = this.data(location);
+    if (data.kind !== 'list') return;
+    const { held: _, ...rest } = data;
+    this.own.set(location, copyData(rest));
+  }
+
+  /** Breaks an object, and of a view what it shows. */
+  private break(location: number, data: Data, why: Unread): Data {
+    const broken: Data = { kind: 'broken', unread: why };
+    if (data.kind === 'list') for (const part of data.view ?? []) this.own.set(part.id, broken);
+    this.own.set(location, broken);
+    return broken;
   }
 
   /** What was written since `base`, the newest of each location. */

@@ -1,6 +1,6 @@
 import type { Expr } from '../expression/node';
 import type { Place } from '../text/span';
-import type { FunctionNode } from './form';
+import type { FunctionNode, Parameter } from './form';
 import type { ClassInfo, Module, Scope } from './scope';
 import type { Typed } from './type-notes';
 
@@ -33,6 +33,8 @@ export interface Scalar {
   readonly place?: Place;
   /** Within limits: the clip that was taken out to get here. */
   readonly clip?: Clip;
+  /** In languages that tell them apart: an integer, whatever the values from outside are. */
+  readonly integer?: boolean;
 }
 
 /** The bounds of a clip, and the clip as written. */
@@ -61,6 +63,8 @@ export interface FunctionValue {
   readonly self?: Value;
   /** The class a method belongs to, for `super`. */
   readonly home?: ClassInfo;
+  /** Defaults of parameters that were worked out where the function was defined. */
+  readonly defaults?: ReadonlyMap<Parameter, Value>;
 }
 
 export interface ClassValue {
@@ -113,6 +117,12 @@ export interface ListData {
   readonly outside?: boolean;
   /** A part of other lists: item k is theirs, so that writing to either shows in both. */
   readonly view?: readonly ViewItem[];
+  /** A numeric vector that holds integers only: what is written to it loses its fraction. */
+  readonly integer?: boolean;
+  /** Its length is not known: it takes the shape of what is written to it. */
+  readonly open?: boolean;
+  /** Why it is not known what else a write to it would change. */
+  readonly held?: Unread;
 }
 
 export interface ViewItem {
@@ -132,6 +142,8 @@ export interface RecordData {
   readonly frozen?: boolean;
   /** Where members are looked up that it lacks itself. */
   readonly prototype?: number;
+  /** Why it is not known what else a write to it would change. */
+  readonly held?: Unread;
 }
 
 /** A thing from outside: only the members the code has written are stored. */

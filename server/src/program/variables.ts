@@ -117,7 +117,9 @@ export function settleName(m: Machine, name: string, path: string, value: Value,
   const literal = value.kind === 'scalar' && value.expr.op === 'number';
   const origin = literal ? `${name} = ${literalText(value)}` : path;
   const expr = m.naming.agree(name, path, origin, place);
-  return expr ? { kind: 'scalar', expr, place: value.place ?? place } : value;
+  // An integer literal stays one for the arithmetic of a language that tells them apart.
+  const integer = value.kind === 'scalar' && value.integer && path === name ? { integer: true } : {};
+  return expr ? { kind: 'scalar', expr, place: value.place ?? place, ...integer } : value;
 }
 
 function literalText(value: Value): string {

@@ -171,6 +171,8 @@ export interface FileResult {
   readonly problems: readonly Problem[];
   /** Other files that were read for it: a change there makes the result stale. */
   readonly dependsOn: readonly string[];
+  /** Functions with claims that could not be read because they are being typed. */
+  readonly unfinished: readonly string[];
 }
 
 export interface FileDetails {

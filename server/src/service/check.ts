@@ -199,6 +199,7 @@ export function fileResult(document: Document, outcomes: readonly BlockOutcome[]
       (a, b) => a.range.start.line - b.range.start.line || a.range.start.column - b.range.start.column,
     ),
     dependsOn: [...dependsOn].sort(),
+    unfinished: [...new Set(outcomes.flatMap((o) => (isUnfinished(o.placed.subject) ? [subjectName(o.placed.subject)] : [])))],
   };
 }
 
@@ -279,6 +280,10 @@ function reportWitness(system: System, witness: Parameters<typeof inOrder>[1]): 
   const state: Record<string, number> = Object.create(null) as Record<string, number>;
   for (const [symbol, value] of inOrder(system, witness)) state[symbolText(symbol.data as SymbolData)] = value;
   return { state, expected: witness.expected, found: witness.found };
+}
+
+function isUnfinished(subject: Subject): boolean {
+  return subject.kind === 'function' && /\bsyntax error\b/.test(subject.node.opaque ?? '');
 }
 
 export function subjectName(subject: Subject): string {

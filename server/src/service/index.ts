@@ -55,7 +55,7 @@ export function createService(files: Files): Service {
     async check(file: string, budget: Budget, depth: 'verdicts' | 'repairs' = 'repairs'): Promise<FileResult> {
       const document = files.isLeftOut?.(file) ? undefined : await load(file);
       if (!document) {
-        return { file, language: languageOf(file)?.id ?? '', systems: [], claims: [], problems: [], dependsOn: [] };
+        return { file, language: languageOf(file)?.id ?? '', systems: [], claims: [], problems: [], dependsOn: [], unfinished: [] };
       }
       const outcomes = await checkDocument(project, document, budget);
       const result = fileResult(document, await diagnoseOutcomes(project, document, outcomes, budget, depth));

@@ -19,7 +19,7 @@ function claim(output: string, verdict: ReportClaim['verdict'], ...findings: Fin
 }
 
 function result(parts: Partial<FileResult>): FileResult {
-  return { file: '/a.ts', language: 'typescript', systems: [], claims: [], problems: [], dependsOn: [], ...parts };
+  return { file: '/a.ts', language: 'typescript', systems: [], claims: [], problems: [], dependsOn: [], unfinished: [], ...parts };
 }
 
 test('one fault under several claims is shown once, with each claim', () => {

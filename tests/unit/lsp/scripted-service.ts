@@ -64,6 +64,7 @@ export class ScriptedService implements Service {
       ],
       problems: [],
       dependsOn,
+      unfinished: [],
     };
   }
 
@@ -140,7 +141,7 @@ export class ScriptedService implements Service {
 }
 
 function empty(file: string): FileResult {
-  return { file, language: 'typescript', systems: [], claims: [], problems: [], dependsOn: [] };
+  return { file, language: 'typescript', systems: [], claims: [], problems: [], dependsOn: [], unfinished: [] };
 }
 
 function claim(file: string, verdict: 'differs' | 'unread', range: ReportRange): ReportClaim {

@@ -1,13 +1,11 @@
 import type { Expression, Pattern, Statement } from '../../program/form';
 import { type Context, namePattern, textOf } from './context';
-import { isInteger } from './integers';
 import { child, type Node } from './syntax';
 import { boundNames, isPlain } from './targets';
 
 /** Assignments: the first one to a name declares it. */
 export function assign(c: Context, target: Pattern, value: Expression, span: Statement['span']): Statement[] {
   const names = boundNames(target);
-  if (c.isPython2) for (const n of names) noteInteger(c, n.name, target.kind === 'name' && isInteger(c, value));
   if (isPlain(target)) {
     const fresh = names.filter((n) => c.bindings.bind(n.name));
     if (fresh.length === names.length && names.length > 0) {
@@ -17,11 +15,6 @@ export function assign(c: Context, target: Pattern, value: Expression, span: Sta
     return [...fresh.map((n) => empty(n)), { kind: 'expression', value: { kind: 'assign', target, value, yields: 'new', span }, span }];
   }
   return [...announce(c, target), { kind: 'expression', value: { kind: 'assign', target, value, yields: 'new', span }, span }];
-}
-
-/** A name counts as an integer while every assignment to it was one. */
-function noteInteger(c: Context, name: string, value: boolean): void {
-  c.bindings.noteInteger(name, value && (!c.bindings.isBound(name) || c.bindings.isInteger(name)));
 }
 
 /** Makes the new names of a target known as variables of the function. */

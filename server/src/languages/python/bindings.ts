@@ -27,18 +27,6 @@ export class Bindings {
     this.outer = outer;
   }
 
-  /** Names that have held nothing but integers so far: what Python 2 needs to know of a division. */
-  private readonly integers = new Set<string>();
-
-  noteInteger(name: string, isInteger: boolean): void {
-    if (isInteger) this.integers.add(name);
-    else this.integers.delete(name);
-  }
-
-  isInteger(name: string): boolean {
-    return this.bound.has(name) ? this.integers.has(name) : (this.parent?.isInteger(name) ?? false);
-  }
-
   get isModule(): boolean {
     return this.parent === undefined;
   }

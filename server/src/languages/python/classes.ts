@@ -95,11 +95,11 @@ function method(c: Context, node: Node): Member[] {
   const decorators = node.type === 'decorated_definition' ? namedChildren(node).filter((n) => n.type === 'decorator') : [];
   const inner = node.type === 'decorated_definition' ? child(node, 'definition') : node;
   if (inner?.type !== 'function_definition') return [];
-  const { isStatic, isClassMethod, kind } = decorated(c, decorators);
+  const { isStatic, isClassMethod, isCached, kind } = decorated(c, decorators);
   const made = c.functionNode(inner, { isMethod: !isStatic, decorators });
   const span = spanOf(node);
   if (made.name === '__init__') return [{ kind: 'constructor', name: '__init__', isStatic: false, node: made, span }];
-  const one = { kind, name: made.name, node: made, span } as const;
+  const one = { kind, name: made.name, node: made, span, ...(isCached ? { isCached } : {}) } as const;
   // Reached through the class and through an instance alike.
   if (isStatic || isClassMethod) return [{ ...one, isStatic: true }, { ...one, isStatic: false }];
   return [{ ...one, isStatic: false }];

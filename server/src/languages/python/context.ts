@@ -10,8 +10,6 @@ import type { Node } from './syntax';
  */
 export interface Context {
   readonly text: string;
-  /** `/` between integers drops the remainder. */
-  readonly isPython2: boolean;
   /** The form made of each function and class, for whoever starts from the syntax (comments). */
   readonly functions: Map<Node, FunctionNode>;
   readonly classes: Map<Node, ClassNode>;

@@ -1,6 +1,7 @@
 import type { Expression, Statement } from '../../program/form';
 import { type Context, namePattern, opaque, spanOf, textOf } from './context';
 import { announce, announced, assign } from './assignments';
+import { catcher } from './errors';
 import { child, children, namedChildren, nodesOf, type Node } from './syntax';
 
 /** `if`, `elif`, `else`. What runs only as a script (`if __name__ == "__main__"`) or for type checkers is left out. */
@@ -90,11 +91,15 @@ export function tries(c: Context, node: Node): Statement[] {
   if (c.bindings.isModule) return c.block(child(node, 'body'));
   const body = [...c.block(child(node, 'body')), ...(after ? c.block(inner(after)) : [])];
   const finalizer = last ? c.block(inner(last)) : [];
-  const [first] = handlers;
-  if (!first) return [{ kind: 'try', body, finalizer, span }];
-  const caught = handlers.map((h) => c.block(inner(h)));
-  const error = namePattern('error that was caught', spanOf(first));
-  const one: Statement[] =
-    handlers.length === 1 ? caught[0]! : [{ kind: 'opaque', reason: 'which of several handlers takes an error', span: spanOf(first) }];
-  return [{ kind: 'try', body, handler: { parameter: error, body: one }, finalizer, span }];
+  if (handlers.length === 0) return [{ kind: 'try', body, finalizer, span }];
+  const made = handlers.map((h) => {
+    const parameter = namePattern(caughtName(c, h), spanOf(h));
+    return { parameter, body: [...announce(c, parameter), ...c.block(inner(h))], catches: catcher(c, h) };
+  });
+  return [{ kind: 'try', body, handlers: made, finalizer, span }];
+}
+
+function caughtName(c: Context, handler: Node): string {
+  const alias = child(child(handler, 'value') ?? handler, 'alias');
+  return alias ? textOf(c, alias) : 'error that was caught';
 }

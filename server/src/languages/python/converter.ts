@@ -21,7 +21,6 @@ export class Converter implements Context {
 
   constructor(
     readonly text: string,
-    readonly isPython2: boolean,
     readonly broken: ReadonlySet<number>,
     readonly lost: readonly Lost[],
     changing: ReadonlySet<string>,

@@ -7,6 +7,7 @@ export interface Decorated {
   readonly isClassMethod: boolean;
   readonly kind: 'method' | 'getter' | 'setter';
   readonly isDataclass: boolean;
+  readonly isCached: boolean;
   /** The first decorator whose effect is not known. */
   readonly unknown: string | undefined;
 }
@@ -34,6 +35,7 @@ export function decorated(c: Context, decorators: readonly Node[]): Decorated {
     isStatic: has('staticmethod'),
     isClassMethod: has('classmethod'),
     kind: has('property', 'cached_property', 'abstractproperty', 'getter') ? 'getter' : has('setter') ? 'setter' : 'method',
+    isCached: has('cached_property'),
     isDataclass: names.some((n) => DATACLASSES.has(last(n))),
     unknown: unknown === undefined ? undefined : `@${unknown}`,
   };

@@ -3,7 +3,6 @@ import { call } from './calls';
 import { comprehension } from './comprehensions';
 import { type Context, DEEPEST, bare, name, nameText, opaque, spanOf, textOf } from './context';
 import { elements } from './elements';
-import { isInteger } from './integers';
 import { literalValue } from './numbers';
 import { BINARY, COMPARISONS } from './operators';
 import { subscript } from './subscripts';
@@ -77,8 +76,7 @@ function binary(c: Context, node: Node, left: Expression): Expression {
   const right = operand(c, node, 'right');
   const op = BINARY[sign?.type ?? ''] ?? 'bit';
   const opSpan = sign ? spanOf(sign) : spanOf(node);
-  const dropsRest = op === '/' && c.isPython2 && isInteger(c, left) && isInteger(c, right);
-  return { kind: 'binary', op: dropsRest ? 'floor-divide' : op, left, right, opSpan, span: spanOf(node) };
+  return { kind: 'binary', op, left, right, opSpan, span: spanOf(node) };
 }
 
 function leaf(c: Context, node: Node): Expression {
@@ -165,7 +163,7 @@ function number(c: Context, node: Node): Expression {
 function unary(c: Context, node: Node): Expression {
   const sign = child(node, 'operator')?.type;
   const value = operand(c, node, 'argument');
-  const op = sign === '-' || sign === '+' ? sign : 'bit';
+  const op = sign === '-' || sign === '+' ? sign : 'bit-not';
   return { kind: 'unary', op, operand: value, span: spanOf(node) };
 }
 

@@ -3,25 +3,27 @@ import { ARRAY_PREFIXES, LINALG_PREFIXES } from './library-modules';
 /** Functions of arrays by their last name -> the shared operation they mean. */
 const FUNCTIONS: Readonly<Record<string, string>> = {
   array: 'array-copy',
-  asarray: 'list-array',
-  asfarray: 'list-array',
-  ascontiguousarray: 'list-array',
-  asanyarray: 'list-array',
-  tensor: 'list-array',
-  as_tensor: 'list-array',
+  matrix: 'matrix-object',
+  mat: 'matrix-object',
+  asmatrix: 'matrix-object',
+  asarray: 'array-same',
+  ascontiguousarray: 'array-same',
+  asanyarray: 'array-same',
+  tensor: 'array-copy',
+  as_tensor: 'array-same',
   zeros: 'array-zeros',
-  empty: 'array-zeros',
+  empty: 'array-empty',
   ones: 'array-ones',
   full: 'array-full',
   zeros_like: 'array-zeros-like',
-  empty_like: 'array-zeros-like',
+  empty_like: 'array-empty-like',
   ones_like: 'array-ones-like',
   full_like: 'array-full-like',
   eye: 'matrix-identity',
   identity: 'matrix-identity',
   diag: 'matrix-diagonal',
   diagonal: 'matrix-diagonal',
-  arange: 'list-range',
+  arange: 'array-range',
   concatenate: 'array-concatenate',
   concat: 'array-concatenate',
   cat: 'array-concatenate',
@@ -36,7 +38,7 @@ const FUNCTIONS: Readonly<Record<string, string>> = {
   c_: 'array-columns',
   reshape: 'array-reshape',
   ravel: 'array-flat',
-  flatten: 'array-flat',
+  flatten: 'array-flat-copy',
   squeeze: 'array-squeeze',
   expand_dims: 'array-expand',
   unsqueeze: 'array-expand',
@@ -74,7 +76,7 @@ const FUNCTIONS: Readonly<Record<string, string>> = {
   clamp: 'number-clamp',
   where: 'array-where',
   hypot: 'number-hypot',
-  flip: 'list-reversed',
+  flip: 'array-flip',
   add: 'plus',
   subtract: 'minus',
   multiply: 'times',
@@ -90,7 +92,7 @@ const FUNCTIONS: Readonly<Record<string, string>> = {
 };
 
 const LINALG: Readonly<Record<string, string>> = {
-  solve: 'matrix-solve',
+  solve: 'array-solve',
   inv: 'matrix-inverse',
   pinv: 'matrix-inverse',
   det: 'matrix-determinant',
@@ -98,7 +100,7 @@ const LINALG: Readonly<Record<string, string>> = {
   lstsq: 'least-squares',
   multi_dot: 'matrix-chain',
   matrix_power: 'matrix-power',
-  cho_factor: 'matrix-factor',
+  cho_factor: 'matrix-factor-symmetric',
   lu_factor: 'matrix-factor',
   cho_solve: 'factor-solve',
   lu_solve: 'factor-solve',
@@ -107,9 +109,6 @@ const LINALG: Readonly<Record<string, string>> = {
 };
 
 const SINGLE: readonly (readonly [path: string, intrinsic: string])[] = [
-  ['numpy.matrix', 'array-matrix'],
-  ['numpy.mat', 'array-matrix'],
-  ['numpy.asmatrix', 'array-matrix'],
   ['torch.inverse', 'matrix-inverse'],
   ['torch.det', 'matrix-determinant'],
   ['torch.norm', 'array-norm'],
@@ -119,7 +118,8 @@ const SINGLE: readonly (readonly [path: string, intrinsic: string])[] = [
   ['math.dist', 'distance'],
   ['casadi.vertcat', 'list-numbers'],
   ['casadi.mtimes', 'matrix-multiply'],
-  ['casadi.solve', 'matrix-solve'],
+  ['casadi.solve', 'array-solve'],
+  ['torch.linalg.solve', 'array-solve'],
   ['casadi.inv', 'matrix-inverse'],
   ['casadi.fmin', 'number-min'],
   ['casadi.fmax', 'number-max'],
@@ -130,6 +130,7 @@ const SINGLE: readonly (readonly [path: string, intrinsic: string])[] = [
   ['itertools.accumulate', 'array-running-sum'],
   ['functools.reduce', 'reduce-function-first'],
   ['len', 'list-length'],
+  ['length as sequence', 'sequence-length'],
   ['range', 'list-range'],
   ['xrange', 'list-range'],
   ['enumerate', 'plain-entries'],
@@ -145,6 +146,7 @@ const SINGLE: readonly (readonly [path: string, intrinsic: string])[] = [
   ['all', 'list-all'],
   ['any', 'list-any'],
   ['float', 'number-same'],
+  ['int', 'number-whole'],
   ['bool', 'to-condition'],
   ['dict of pairs', 'record-from-entries'],
   ['copy of array', 'array-copy'],
@@ -168,14 +170,14 @@ const ARRAY_METHODS: Readonly<Record<string, string>> = {
   reshape: 'array-reshape',
   view: 'array-reshape',
   ravel: 'array-flat',
-  flatten: 'array-flat',
+  flatten: 'array-flat-copy',
   squeeze: 'array-squeeze',
   unsqueeze: 'array-expand',
   transpose: 'array-transpose',
   t: 'array-transpose',
   copy: 'array-copy',
   clone: 'array-copy',
-  astype: 'array-copy',
+  astype: 'array-of-kind',
   tolist: 'plain-list',
   item: 'array-item',
   trace: 'array-trace',
@@ -197,11 +199,19 @@ const ARRAY_METHODS: Readonly<Record<string, string>> = {
 };
 
 /** Methods that give back what they are called on, as far as numbers go. */
-const SAME = ['copy', 'clone', 'detach', 'numpy', 'cpu', 'float', 'double', 'astype', 'item', 'squeeze', 'to', 'requires_grad_', 'tolist', 'ravel', 'flatten'];
+const SAME = ['detach', 'numpy', 'cpu', 'float', 'double', 'item', 'squeeze', 'to', 'requires_grad_', 'ravel'];
+
+/** Methods that give a copy. */
+const COPIES = ['copy', 'clone', 'astype', 'tolist', 'flatten'];
 
 /** Methods by the receiver's kind. */
 export const METHODS: ReadonlyMap<string, string> = new Map<string, string>([
-  ...SAME.map((n): [string, string] => [`list.${n}`, 'array-copy']),
+  ...SAME.map((n): [string, string] => [`list.${n}`, 'array-alias']),
+  ...COPIES.flatMap((n): [string, string][] => [
+    [`list.${n}`, 'array-copy'],
+    [`scalar.${n}`, 'identity'],
+    [`generic.${n}`, 'array-copy'],
+  ]),
   ...SAME.flatMap((n): [string, string][] => [
     [`scalar.${n}`, 'identity'],
     [`generic.${n}`, 'identity'],
@@ -210,6 +220,7 @@ export const METHODS: ReadonlyMap<string, string> = new Map<string, string>([
   ['scalar.clip', 'number-clamp'],
   ['scalar.clamp', 'number-clamp'],
   ['scalar.sum', 'identity'],
+  ['matrix.tolist', 'matrix-object-array'],
   ['record.keys', 'record-keys'],
   ['record.values', 'record-values'],
   ['record.items', 'record-entries'],
@@ -224,6 +235,12 @@ export const PROPERTIES: ReadonlyMap<string, string> = new Map<string, string>([
   ['list.size', 'array-size'],
   ['list.ndim', 'array-depth'],
   ['list.flat', 'array-flat'],
+  ['list.dtype', 'array-kind'],
+  ['matrix.T', 'matrix-object-turned'],
+  ['matrix.I', 'matrix-object-inverse'],
+  ['matrix.A', 'matrix-object-array'],
+  ['matrix.A1', 'matrix-object-row'],
+  ['matrix.shape', 'matrix-object-shape'],
   ['scalar.T', 'identity'],
   ['scalar.real', 'identity'],
 ]);

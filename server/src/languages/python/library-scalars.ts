@@ -15,6 +15,12 @@ const cut: One = (g, x) => g.select(g.less(x, g.zero), ceiling(g, x), g.apply('f
 const asinh: One = (g, x) => g.apply('log', [g.add(x, g.sqrt(g.add(g.square(x), g.one)))]);
 const acosh: One = (g, x) => g.apply('log', [g.add(x, g.sqrt(g.subtract(g.square(x), g.one)))]);
 const atanh: One = (g, x) => g.multiply(half(g), g.apply('log', [g.divide(g.add(g.one, x), g.subtract(g.one, x))]));
+/** To the nearest integer. Halves, which go to the even neighbour, are no generic state; only a constant can be one. */
+const rounded: One = (g, x) => {
+  const up = g.apply('floor', [g.add(x, half(g))]);
+  if (x.op !== 'number' || (x.data as Rational).denominator !== 2n || up.op !== 'number') return up;
+  return (up.data as Rational).numerator % 2n === 0n ? up : g.subtract(up, g.one);
+};
 const radians: One = (g, x) => g.divide(g.multiply(x, g.pi), g.number(180));
 const degrees: One = (g, x) => g.divide(g.multiply(x, g.number(180)), g.pi);
 const floorRest: Two = (g, x, y) => g.subtract(x, g.multiply(y, g.apply('floor', [g.divide(x, y)])));
@@ -54,9 +60,9 @@ const ONE: Readonly<Record<string, One>> = {
   ceil: ceiling,
   trunc: cut,
   fix: cut,
-  // Halves, which go to the even neighbour, are no generic state.
-  rint: (g, x) => g.apply('floor', [g.add(x, half(g))]),
-  round: (g, x) => g.apply('floor', [g.add(x, half(g))]),
+  rint: rounded,
+  round: rounded,
+  around: rounded,
   radians,
   deg2rad: radians,
   degrees,
@@ -86,7 +92,7 @@ const TWO: Readonly<Record<string, Two>> = {
   remainder: floorRest,
   fmod: cutRest,
   floor_divide: (g, x, y) => g.apply('floor', [g.divide(x, y)]),
-  copysign: (g, x, y) => g.multiply(g.apply('abs', [x]), g.apply('sign', [y])),
+  copysign: (g, x, y) => g.select(g.less(y, g.zero), g.negate(g.apply('abs', [x])), g.apply('abs', [x])),
 };
 
 /** Functions whose name in one package is not what it is elsewhere. */
@@ -105,7 +111,6 @@ const OWN: readonly (readonly [string, ScalarFunction])[] = [
   // Built in.
   ['abs', one('abs', apply('abs'))],
   ['pow', two('pow', (g, x, y) => g.power(x, y))],
-  ['int', one('int', cut)],
   ['round', (g, [x, digits]) => (!x ? { unread: 'a call of round without an argument' } : digits ? { unread: 'a number that is rounded to some digits' } : ONE['round']!(g, x))],
   ['operator.neg', one('operator.neg', (g, x) => g.negate(x))],
 ];
@@ -145,9 +150,9 @@ export const CONSTANTS: ReadonlyMap<string, (graph: Graph) => Expr> = new Map<st
 ]);
 
 function one(name: string, f: One): ScalarFunction {
-  return (g, [x]) => (x ? f(g, x) : { unread: `a call of ${name} without an argument` });
+  return (g, [x, more]) => (x && !more ? f(g, x) : { unread: `a call of ${name} ${x ? 'with more than one argument' : 'without an argument'}` });
 }
 
 function two(name: string, f: Two): ScalarFunction {
-  return (g, [x, y]) => (x && y ? f(g, x, y) : { unread: `a call of ${name} with fewer than two arguments` });
+  return (g, [x, y, more]) => (x && y && !more ? f(g, x, y) : { unread: `a call of ${name} with ${more ? 'more' : 'fewer'} than two arguments` });
 }

@@ -9,7 +9,7 @@ import { namedChildren, type Node } from './syntax';
 export function programOf(recovered: Recovered): Program {
   const { syntax, broken, lost, errors } = recovered;
   const { root } = syntax;
-  const converter = new Converter(recovered.text, isPython2(recovered.text, root), broken, lost, changingNames(recovered.text, root));
+  const converter = new Converter(recovered.text, broken, lost, changingNames(recovered.text, root));
   const body = converter.statements(root.children);
   const known = new Set(body.flatMap(importedNames));
   const inner = converter.innerImports.filter((s) => importedNames(s).some((n) => !known.has(n)));
@@ -17,6 +17,9 @@ export function programOf(recovered: Recovered): Program {
     language: 'python',
     indexBase: 0,
     listConcat: true,
+    integers: true,
+    ...(isPython2(recovered.text, root) ? { dividesIntegers: true } : {}),
+    lateBinding: true,
     negativeIndex: true,
     exportsAll: true,
     classFields: true,

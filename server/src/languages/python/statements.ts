@@ -2,8 +2,8 @@ import type { Expression, Statement } from '../../program/form';
 import { enumMembers, isEnum } from './classes';
 import { type Context, DEEPEST, namePattern, nameText, opaque, spanOf, textOf } from './context';
 import { announce, announced, assign } from './assignments';
-import { isInteger } from './integers';
 import { conditionals, loopFor, loopWhile, tries, withs } from './control';
+import { raised } from './errors';
 import { importFrom, importModules } from './imports';
 import { matches } from './match';
 import { augmented } from './operators';
@@ -57,7 +57,7 @@ function convert(c: Context, node: Node): Statement[] {
     case 'try_statement':
       return tries(c, node);
     case 'raise_statement':
-      return [{ kind: 'throw', span }];
+      return [throwing(c, node)];
     case 'break_statement':
       return [{ kind: 'break', span }];
     case 'continue_statement':
@@ -84,6 +84,11 @@ function convert(c: Context, node: Node): Statement[] {
     default:
       return [{ kind: 'opaque', reason: 'a statement of this kind', span }];
   }
+}
+
+function throwing(c: Context, node: Node): Statement {
+  const type = raised(c, node);
+  return { kind: 'throw', ...(type === undefined ? {} : { type }), span: spanOf(node) };
 }
 
 /** Imports inside functions are known to the whole file; see `Context.innerImports`. */
@@ -167,7 +172,6 @@ function augmentation(c: Context, node: Node): Statement[] {
   if (!left || !right || !sign) return [{ kind: 'opaque', reason: 'an unfinished assignment', span }];
   const target = c.target(left);
   const given = c.expression(right);
-  if (target.kind === 'name' && !isInteger(c, given)) c.bindings.noteInteger(target.name, false);
   const value: Expression = { kind: 'assign', target, op: augmented(textOf(c, sign)), value: given, yields: 'new', span };
   return [...announced(c, right, span), { kind: 'expression', value, span }];
 }

@@ -240,7 +240,7 @@ function attempt(c: Context, node: ts.TryStatement, span: Span): Statement {
   return {
     kind: 'try',
     body: c.statements(node.tryBlock.statements),
-    ...(clause ? { handler: { ...parameter, body: c.statements(clause.block.statements) } } : {}),
+    ...(clause ? { handlers: [{ ...parameter, body: c.statements(clause.block.statements) }] } : {}),
     finalizer: node.finallyBlock ? c.statements(node.finallyBlock.statements) : [],
     span,
   };

@@ -2,8 +2,10 @@ import type { Expr } from '../../expression/node';
 import { truthOf } from '../conditions';
 import type { Machine } from '../machine';
 import { mergeValues } from '../merging';
-import { binary, depthOf } from '../operators';
-import { countOf, itemsOf, numeric } from '../numbers';
+import { copyOfArray } from '../array-writes';
+import { broadcast, depthOf } from '../broadcast';
+import { binary } from '../operators';
+import { countOf, dataOf, itemsOf, numeric } from '../numbers';
 import type { BinaryOperator } from '../form';
 import { isUnread, unread, type Value } from '../values';
 import { atLeast, axisIn, flat, given, missing, one, shapeOf, zero } from './array-support';
@@ -55,12 +57,8 @@ function extreme(op: 'min' | 'max') {
 function where(m: Machine, call: Call): Value {
   const [condition, yes, no] = call.args;
   if (!condition || !yes || !no) return unread('the places where a condition holds', call.place);
-  const lists = [condition, yes, no].map((v) => itemsOf(m, v));
-  const n = lists.find((l) => l)?.length;
-  if (n !== undefined) {
-    if (lists.some((l) => l && l.length !== n)) return unread('lists of different length', call.place);
-    const at = (k: number): Value[] => [condition, yes, no].map((v, i) => lists[i]?.[k] ?? v);
-    return m.list(Array.from({ length: n }, (_, k) => where(m, { ...call, args: at(k) })), true);
+  if ([condition, yes, no].some((v) => itemsOf(m, v))) {
+    return broadcast(m, [condition, yes, no], (args) => where(m, { ...call, args }), call.place);
   }
   const c = truthOf(m, condition, call.place);
   if (isUnread(c)) return c;
@@ -79,14 +77,13 @@ function dot(m: Machine, call: Call): Value {
 }
 
 function kron(m: Machine, call: Call): Value {
+  const flatOnes = call.args.every((v) => depthOf(m, v) < 2);
   const [a, b] = call.args.map((v) => atLeast(m, v, 2));
   if (!a || !b) return missing(call);
   const rows = itemsOf(m, a)!.map((r) => itemsOf(m, r) ?? []);
   const other = itemsOf(m, b)!.map((r) => itemsOf(m, r) ?? []);
-  return m.list(
-    rows.flatMap((r) => other.map((o) => m.list(r.flatMap((x) => o.map((y) => binary(m, call.module, '*', x, y, call.place))), true))),
-    true,
-  );
+  const made = rows.flatMap((r) => other.map((o) => m.list(r.flatMap((x) => o.map((y) => binary(m, call.module, '*', x, y, call.place))), true)));
+  return flatOnes ? made[0]! : m.list(made, true);
 }
 
 /** `einsum("ij,j->i", A, b)` with a pattern written out. */
@@ -128,6 +125,9 @@ function scan(op: '+' | '*') {
   return (m: Machine, call: Call): Value => {
     const items = itemsIn(m, call, 0);
     if (!isItems(items)) return items;
+    const axis = axisIn(m, call, call.args[0]!);
+    // Without an axis the numbers of a matrix are taken in a row.
+    if (depthOf(m, call.args[0]!) > 1 && axis !== 0) return unread('a running sum along an axis', call.place);
     const made: Value[] = [];
     for (const v of items) made.push(made.length === 0 ? v : binary(m, call.module, op, made[made.length - 1]!, v, call.place));
     return m.list(made, true);
@@ -139,6 +139,50 @@ function isSquare(m: Machine, v: Value): boolean {
   return shape.length === 2 && shape[0] === shape[1];
 }
 
+/** Under this name a factorisation holds its matrix; no source can spell it. */
+const FACTORED = '(factored)';
+
+/** A factorisation can only be solved with. Of a symmetric matrix it looks at one triangle. */
+function factored(m: Machine, call: Call, symmetric: boolean): Value {
+  const lower = given(call, 1, 'lower');
+  const isLower = lower?.kind === 'condition' && lower.expr === m.graph.true;
+  if (lower && lower.kind !== 'condition') return unread('a factorisation of a triangle that is not known', call.place);
+  const v = given(call, 0) ?? missing(call);
+  const matrix = symmetric ? mirrored(m, call, v, isLower) : v;
+  if (matrix.kind === 'unread') return matrix;
+  const held = m.object({ kind: 'record', members: new Map([[FACTORED, copyOfArray(m, matrix)]]) });
+  return m.list([held, { kind: 'nothing' }]);
+}
+
+/** The symmetric matrix of which one triangle is given. */
+export function mirrored(m: Machine, call: Call, v: Value, isLower: boolean): Value {
+  if (!isSquare(m, v)) return v.kind === 'unread' ? v : unread('a matrix that is not square', call.place);
+  const rows = itemsOf(m, v)!.map((r) => itemsOf(m, r)!);
+  const at = (i: number, j: number): Value => ((isLower ? i >= j : i <= j) ? rows[i]![j]! : rows[j]![i]!);
+  return m.list(rows.map((r, i) => m.list(r.map((_, j) => at(i, j)), true)), true);
+}
+
+/** `solve(A, b)`; told that A is symmetric, it looks at one triangle only. */
+function solve(m: Machine, call: Call): Value {
+  const a = given(call, 0, 'a') ?? missing(call);
+  const b = given(call, 1, 'b') ?? missing(call);
+  const kind = call.named.get('assume_a');
+  const isPositive = call.named.get('sym_pos');
+  const symmetric = (kind && !(kind.kind === 'string' && kind.value === 'gen')) || (isPositive?.kind === 'condition' && isPositive.expr === m.graph.true);
+  if (kind && !(kind.kind === 'string' && /^(?:gen|sym|her|pos|symmetric|hermitian|positive definite|general)$/.test(kind.value))) {
+    return unread('a linear system of a kind that is not known', call.place);
+  }
+  const lower = call.named.get('lower');
+  if (call.args.length > 2 || (lower && lower.kind !== 'condition')) return unread('a linear system with arguments that are not known', call.place);
+  const isLower = lower?.kind === 'condition' && lower.expr === m.graph.true;
+  const made = solveLinear(m, symmetric && kind?.kind === 'string' && kind.value !== 'general' ? mirrored(m, call, a, isLower) : a, b, call.place);
+  // What it may overwrite holds nothing of use any more.
+  for (const [name, v] of [['overwrite_a', a], ['overwrite_b', b]] as const) {
+    if (call.named.has(name) && v.kind === 'object') m.breakObject(v.id, unread(`an array that \`${name}\` may have changed`, call.place));
+  }
+  return made;
+}
+
 /** An operator by its name: `add(a, b)`. */
 function operator(op: BinaryOperator) {
   return (m: Machine, call: Call): Value => {
@@ -148,6 +192,7 @@ function operator(op: BinaryOperator) {
 }
 
 export const ARRAY_NUMBERS: IntrinsicTable = {
+  'array-solve': solve,
   'array-sum': reduction(fold('+', zero)),
   'array-product': reduction(fold('*', one)),
   'array-min': reduction(extreme('min')),
@@ -159,7 +204,7 @@ export const ARRAY_NUMBERS: IntrinsicTable = {
   'array-running-product': scan('*'),
   'array-differences': (m, call) => {
     const items = itemsIn(m, call, 0);
-    if (!isItems(items) || call.args.length > 1) return isItems(items) ? unread('differences of higher order', call.place) : items;
+    if (!isItems(items) || call.args.length > 1 || call.named.size > 0 || depthOf(m, call.args[0]!) > 1) return isItems(items) ? unread('differences of higher order', call.place) : items;
     return m.list(items.slice(1).map((v, k) => binary(m, call.module, '-', v, items[k]!, call.place)), true);
   },
   'array-where': where,
@@ -179,6 +224,7 @@ export const ARRAY_NUMBERS: IntrinsicTable = {
   'array-trace': (m, call) => {
     const rows = itemsIn(m, call, 0);
     if (!isItems(rows)) return rows;
+    if (call.args.length > 1) return unread('the trace of another diagonal', call.place);
     return sumOf(m, call, rows.map((r, k) => itemsOf(m, r)?.[k] ?? unread('the trace of something that is no matrix', call.place)));
   },
   'array-norm': (m, call) => {
@@ -200,11 +246,13 @@ export const ARRAY_NUMBERS: IntrinsicTable = {
     const lost = unread('what least squares gives beside the solution', call.place);
     return m.list([solveLinear(m, a, b, call.place), lost, lost, lost]);
   },
-  'matrix-factor': (m, call) => m.list([given(call, 0) ?? missing(call), { kind: 'nothing' }]),
+  'matrix-factor': (m, call) => factored(m, call, false),
+  'matrix-factor-symmetric': (m, call) => factored(m, call, true),
   'factor-solve': (m, call) => {
     const factor = call.args[0] && itemsOf(m, call.args[0]);
-    const [a] = factor ?? [];
-    if (!a || !call.args[1]) return unread('a factorisation that is not known', call.place);
+    const held = factor?.[0] && dataOf(m, factor[0]);
+    const a = held?.kind === 'record' ? held.members.get(FACTORED) : undefined;
+    if (!a || !call.args[1] || call.args.length > 2) return unread('a factorisation that is not known', call.place);
     return solveLinear(m, a, call.args[1], call.place);
   },
   'matrix-power': (m, call) => {

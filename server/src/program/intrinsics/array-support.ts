@@ -1,5 +1,5 @@
 import type { Machine } from '../machine';
-import { depthOf } from '../operators';
+import { depthOf } from '../broadcast';
 import { countOf, itemsOf } from '../numbers';
 import { unread, type Value } from '../values';
 import type { Call } from './table';
@@ -37,7 +37,7 @@ export function shapeIn(m: Machine, call: Call, from: number): number[] | undefi
   const first = given(call, from, 'shape') ?? call.named.get('size');
   if (!first) return undefined;
   const list = itemsOf(m, first);
-  const rest = call.args.slice(from + 1).filter((v) => v.kind === 'scalar');
+  const rest = list ? [] : call.args.slice(from + 1).filter((v) => v.kind === 'scalar');
   const shape = (list ?? [first, ...rest]).map((v) => countOf(m, v, call.place));
   return shape.includes(undefined) ? undefined : (shape as number[]);
 }

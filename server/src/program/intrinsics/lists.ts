@@ -134,7 +134,7 @@ export const LISTS: IntrinsicTable = {
     if (step === 0) return unread('a range of step zero', call.place);
     for (let k = from; step > 0 ? k < to : k > to; k += step) {
       if (items.length > 2001) return unread('a range that is too long', call.place);
-      items.push(m.scalar(m.graph.number(k), call.place));
+      items.push({ kind: 'scalar', expr: m.graph.number(k), place: call.place, integer: true });
     }
     return m.list(items);
   },
@@ -238,7 +238,7 @@ export const LISTS: IntrinsicTable = {
   },
   'list-length': (m, call) => {
     const items = itemsIn(m, call, 0);
-    return isItems(items) ? m.scalar(m.graph.number(items.length), call.place) : items;
+    return isItems(items) ? { kind: 'scalar', expr: m.graph.number(items.length), place: call.place, integer: true } : items;
   },
   'list-keys': (m, call) => {
     const items = itemsIn(m, call, 0);

@@ -1,8 +1,10 @@
 import type { Expr } from '../../expression/node';
 import type { Place } from '../../text/span';
 import type { Machine } from '../machine';
-import { itemsOf, numeric } from '../numbers';
+import { heldArray, matrixObject } from '../matrix-objects';
+import { countOf, itemsOf, numeric } from '../numbers';
 import { isUnread, unread, type Unread, type Value } from '../values';
+import { kindIn, leavesOf, ofKind, viewOf } from './array-views';
 import type { Call, IntrinsicTable } from './table';
 
 /** Vectors are lists, matrices lists of rows. */
@@ -83,7 +85,7 @@ export function multiplyMatrices(m: Machine, a: Value, b: Value, place: Place): 
   const cols = columns(right as Expr[][]);
   if (!aIsMatrix) {
     // A plain list before a single row is a column.
-    if ((right as Expr[][]).length === 1 && left.length !== 1) {
+    if ((right as Expr[][]).length === 1 && left.length !== 1 && !m.request.program.listConcat) {
       return rowsOf(m, (left as Expr[]).map((x) => (right as Expr[][])[0]!.map((y) => m.graph.product([x, y]))), place);
     }
     if (left.length !== right.length) return wrong;
@@ -109,7 +111,11 @@ export function transpose(m: Machine, v: Value, place: Place): Value {
   const n = rows[0]!.length;
   if (rows.some((r) => r.length !== n)) return unread('a matrix whose rows differ in length', place);
   if (n === 1 && m.columnsMatter) return m.list(rows.map((r) => r[0]!), true);
-  return m.list(Array.from({ length: n }, (_, k) => m.list(rows.map((r) => r[k]!), true)), true);
+  const columns = Array.from({ length: n }, (_, k) => rows.map((r) => r[k]!));
+  if (!m.request.program.listConcat) return m.list(columns.map((c) => m.list(c, true)), true);
+  // The same numbers, seen by columns.
+  const leaves = leavesOf(m, v);
+  return m.list(columns.map((c, k) => (leaves.length === n * rows.length ? viewOf(m, v, rows.map((_, i) => leaves[i * n + k]!)) : m.list(c, true))), true);
 }
 
 /** x of A x = b, as one node with several outputs; b may be a matrix of right-hand sides. */
@@ -140,7 +146,9 @@ export function solveLinear(m: Machine, a: Value, b: Value, place: Place): Value
   return listOf(m, x, place);
 }
 
-function inverse(m: Machine, call: Call): Value {
+export function inverse(m: Machine, call: Call): Value {
+  const held = call.args[0] && heldArray(m, call.args[0]);
+  if (held) return matrixObject(m, inverse(m, { ...call, args: [held] }), call.place);
   const rows = matrix(m, call.args[0] ?? unread('a matrix that is not given', call.place), call.place);
   if (isUnreadList(rows)) return rows;
   const n = rows.length;
@@ -181,13 +189,17 @@ export const MATRICES: IntrinsicTable = {
     return m.scalar(determinant(m, rows), call.place);
   },
   'matrix-identity': (m, call) => {
-    const n = numericCount(m, call);
-    if (n === undefined) return unread('an identity matrix whose size is not known', call.place);
-    const rows = Array.from({ length: n }, (_, i) => Array.from({ length: n }, (_x, j) => (i === j ? m.graph.one : m.graph.zero)));
-    return rowsOf(m, rows, call.place);
+    const n = numericCount(m, call.args[0], call);
+    const columns = call.args[1] && call.args[1].kind !== 'nothing' ? numericCount(m, call.args[1], call) : n;
+    const k = offset(m, call, 2);
+    if (n === undefined || columns === undefined || k === undefined) return unread('an identity matrix whose size is not known', call.place);
+    const rows = Array.from({ length: n }, (_, i) => Array.from({ length: columns }, (_x, j) => (i + k === j ? m.graph.one : m.graph.zero)));
+    return ofKind(m, call, rowsOf(m, rows, call.place), kindIn(call));
   },
   'matrix-diagonal': (m, call) => {
     const [first] = call.args;
+    const shift = offset(m, call, 1);
+    if (shift !== 0) return shift === undefined ? unread('a diagonal that is not known', call.place) : shiftedDiagonal(m, call, first, shift);
     if (first && isMatrix(m, first)) {
       const rows = matrix(m, first, call.place);
       return isUnreadList(rows) ? rows : listOf(m, rows.map((r, k) => r[k]!).filter((e) => e !== undefined), call.place);
@@ -238,8 +250,27 @@ function isUnreadPair(x: [Expr[], Expr[]] | Unread): x is Unread {
   return !Array.isArray(x);
 }
 
-function numericCount(m: Machine, call: Call): number | undefined {
-  const v = call.args[0];
+/** How far a diagonal lies above the main one: `k=1`. */
+function offset(m: Machine, call: Call, at: number): number | undefined {
+  const v = call.args[at] ?? call.named.get('k') ?? call.named.get('offset');
+  return v ? countOf(m, v, call.place) : 0;
+}
+
+/** A diagonal beside the main one, of a matrix or as a matrix. */
+function shiftedDiagonal(m: Machine, call: Call, v: Value | undefined, k: number): Value {
+  const given = v ?? unread('a vector that is not given', call.place);
+  if (isMatrix(m, given)) {
+    const rows = matrix(m, given, call.place);
+    return isUnreadList(rows) ? rows : listOf(m, rows.map((r, i) => r[i + k]).filter((e) => e !== undefined), call.place);
+  }
+  const entries = vector(m, given, call.place);
+  if (isUnreadList(entries)) return entries;
+  const n = entries.length + Math.abs(k);
+  const at = (i: number, j: number): Expr => (i + k === j ? entries[k > 0 ? i : j]! : m.graph.zero);
+  return rowsOf(m, Array.from({ length: n }, (_, i) => Array.from({ length: n }, (_x, j) => at(i, j))), call.place);
+}
+
+function numericCount(m: Machine, v: Value | undefined, call: Call): number | undefined {
   if (!v) return undefined;
   const n = numeric(m, v, call.place);
   if (isUnread(n) || n.op !== 'number') return undefined;

@@ -1,8 +1,10 @@
 import type { Expr } from '../../expression/node';
+import { broadcast } from '../broadcast';
 import { truthOf } from '../conditions';
 import { areSwapped, unclip } from '../limits';
 import type { Machine } from '../machine';
 import { itemsOf, numeric } from '../numbers';
+import { truncated } from '../truncate';
 import { NOTHING, isUnread, unread, type Unread, type Value } from '../values';
 import type { Call, IntrinsicTable } from './table';
 
@@ -21,10 +23,7 @@ function isReason(x: Expr[] | Unread): x is Unread {
 }
 
 function each(m: Machine, call: Call, f: (args: readonly Value[]) => Value): Value {
-  const lists = call.args.map((a) => itemsOf(m, a));
-  const length = lists.find((l) => l)?.length;
-  if (length === undefined) return f(call.args);
-  return m.list(Array.from({ length }, (_, k) => f(call.args.map((a, i) => lists[i]?.[k] ?? a))), true);
+  return broadcast(m, call.args, f, call.place);
 }
 
 /** min and max of several numbers; a clip within limits passes its argument. */
@@ -55,12 +54,17 @@ function passed(m: Machine, call: Call, op: 'min' | 'max', args: readonly Value[
   return { kind: 'scalar', expr: inner, place: call.place, clip: { ...bounds, whole } };
 }
 
+/** A bound that is given by name. */
+function bound(call: Call, k: number): Value | undefined {
+  return k === 0 ? undefined : (call.named.get(k === 1 ? 'a_min' : 'a_max') ?? call.named.get(k === 1 ? 'min' : 'max'));
+}
+
 export const NUMBERS: IntrinsicTable = {
   'number-min': limited('min'),
   'number-max': limited('max'),
   /** `clamp(x, low, high)` */
   'number-clamp': (m, call) =>
-    each(m, { ...call, args: [...call.args, ...call.named.values()] }, (args) => {
+    each(m, { ...call, args: [0, 1, 2].map((k) => call.args[k] ?? bound(call, k) ?? NOTHING) }, (args) => {
       const exprs = numbersIn(m, call, args.filter((a) => a.kind !== 'nothing'));
       if (isReason(exprs)) return exprs;
       const [x, low, high] = exprs;
@@ -70,6 +74,7 @@ export const NUMBERS: IntrinsicTable = {
     }),
   'number-hypot': (m, call) => {
     const only = call.args.length === 1 ? itemsOf(m, call.args[0]!) : undefined;
+    if (!only && call.args.some((a) => itemsOf(m, a))) return each(m, call, (args) => NUMBERS['number-hypot']!(m, { ...call, args }));
     const exprs = numbersIn(m, call, only ?? call.args);
     return isReason(exprs) ? exprs : m.scalar(m.graph.sqrt(m.graph.sum(exprs.map((x) => m.graph.square(x)))), call.place);
   },
@@ -85,5 +90,12 @@ export const NUMBERS: IntrinsicTable = {
     if (itemsOf(m, v)) return v;
     const n = numeric(m, v, call.place);
     return isUnread(n) ? n : m.scalar(n, call.place);
+  },
+  /** `int(x)`: what is behind the point is dropped. */
+  'number-whole': (m, call) => {
+    const [v, base] = call.args;
+    if (!v || base) return unread('a number made of a text', call.place);
+    const n = numeric(m, v, call.place);
+    return isUnread(n) ? n : { kind: 'scalar', expr: truncated(m.graph, n), place: call.place, integer: true };
   },
 };

@@ -1,5 +1,6 @@
 import { truthOf } from '../conditions';
 import type { Machine } from '../machine';
+import { asInteger } from '../integers';
 import { binary } from '../operators';
 import { countOf, dataOf, itemsOf } from '../numbers';
 import { isUnread, unread, type Value } from '../values';
@@ -36,7 +37,7 @@ export const PLAIN_LISTS: IntrinsicTable = {
   'plain-sum': (m, call) => {
     const items = itemsIn(m, call, 0);
     if (!isItems(items)) return items;
-    const start = given(call, 1, 'start') ?? zero(m);
+    const start = given(call, 1, 'start') ?? asInteger(zero(m), true);
     return items.reduce((a, b) => binary(m, call.module, '+', a, b, call.place), start);
   },
   'plain-entries': (m, call) => {
@@ -45,7 +46,7 @@ export const PLAIN_LISTS: IntrinsicTable = {
     const from = given(call, 1, 'start');
     const start = from ? countOf(m, from, call.place) : 0;
     if (start === undefined) return unread('a count whose start is not known', call.place);
-    return m.list(items.map((v, k) => m.list([m.scalar(m.graph.number(k + start), call.place), v])));
+    return m.list(items.map((v, k) => m.list([{ kind: 'scalar', expr: m.graph.number(k + start), place: call.place, integer: true }, v])));
   },
   'plain-product': (m, call) => {
     const lists = call.args.map((v) => itemsOf(m, v));
@@ -74,6 +75,13 @@ export const PLAIN_LISTS: IntrinsicTable = {
     if (data?.kind !== 'list' || k === undefined || !value) m.breakObject(list.id, unread('a list that is changed at a place that is not known', call.place));
     else data.items.splice(k < 0 ? Math.max(0, data.items.length + k) : k, 0, value);
     return { kind: 'nothing' };
+  },
+  /** The length of a list; -1 of what is known to be none. */
+  'sequence-length': (m, call) => {
+    const v = given(call, 0) ?? missing(call);
+    const data = dataOf(m, v);
+    if (v.kind === 'unread' || data?.kind === 'generic') return v.kind === 'unread' ? v : unread('whether a thing from outside is a list', call.place);
+    return { kind: 'scalar', expr: m.graph.number(data?.kind === 'list' ? data.items.length : -1), place: call.place, integer: true };
   },
   'list-all': (m, call) => allOf(m, call, true),
   'list-any': (m, call) => allOf(m, call, false),

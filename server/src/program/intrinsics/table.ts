@@ -1,14 +1,17 @@
 import type { Place } from '../../text/span';
+import { assignInto } from '../array-writes';
+import { damage } from '../damage';
 import type { ArgumentValue } from '../parameters';
 import type { Machine } from '../machine';
 import { withEach } from '../merging';
-import { scalarOf } from '../numbers';
+import { itemsOf, scalarOf } from '../numbers';
 import { applyScalar } from '../scalar-call';
 import type { Module } from '../scope';
 import { changesOpen } from '../open-cells';
 import { NOTHING, unread, type Value } from '../values';
 import { ARRAY_NUMBERS } from './array-numbers';
 import { ARRAY_SHAPES } from './array-shapes';
+import { unknownName } from './keywords';
 import { LISTS } from './lists';
 import { HIGHER_ORDER } from './higher-order';
 import { MATRICES } from './matrices';
@@ -60,5 +63,25 @@ export function runIntrinsic(m: Machine, module: Module, name: string, self: Val
   const intrinsic = INTRINSICS.get(name);
   if (!intrinsic) return unread(`can't read \`${name}\``, place);
   const named = new Map(args.filter((a) => a.name !== undefined).map((a) => [a.name!, a.value]));
+  const out = named.get('out');
+  if (out && out.kind !== 'nothing') return writtenTo(m, out, place, () => runIntrinsic(m, module, name, self, args.filter((a) => a.name !== 'out'), place));
+  named.delete('out');
+  const unknown = unknownName(name, named.keys());
+  if (unknown !== undefined) {
+    const why = unread(`a call of the library with \`${unknown}=\`, whose effect is not known`, place);
+    damage(m, args, why);
+    return why;
+  }
   return intrinsic(m, { module, args: all, named, place, isMethod: self !== undefined });
+}
+
+/** `out=`: what a function gives is written into an array that is there. */
+export function writtenTo(m: Machine, out: Value, place: Place, value: () => Value): Value {
+  if (out.kind !== 'object' || !itemsOf(m, out)) {
+    const why = unread('a result that is written to something that is not known', place);
+    damage(m, [{ value: out }], why);
+    return why;
+  }
+  assignInto(m, out, value(), place);
+  return out;
 }
