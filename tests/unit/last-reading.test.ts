@@ -52,7 +52,7 @@ async function typed(file: string, texts: readonly string[]): Promise<TextResult
 test.each([
   ['boom.py', PYTHON, 'return g / l', 'return (g / l', 'a = -g / l', 'a = -(g / l'],
   ['boom.ts', TYPESCRIPT, 'return g / l', 'return (g / l', 'a = -g / l', 'a = -(g / '],
-])('%s: what was known of a function stays, marked, while it is typed', async (file, text, old, half, other, otherHalf) => {
+])('%s: what was known of a function stays, marked, while it is typed', { timeout: 120_000 }, async (file, text, old, half, other, otherHalf) => {
   const [whole, typing, longer, again] = await typed(file, [text, text.replace(old, half), `\n${text.replace(old, half)}`, text]);
   expect(whole!.claims.map((c) => c.verdict)).toEqual(['differs', 'holds']);
   expect(typing!.claims.map((c) => c.verdict)).toEqual(['differs', 'holds']);
