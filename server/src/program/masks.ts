@@ -70,7 +70,8 @@ function isEntrywise(m: Machine, scope: Scope, e: Expression, key: string): bool
     case 'binary':
       return ['+', '-', '*', '/', '**'].includes(e.op) && isEntrywise(m, scope, e.left, key) && isEntrywise(m, scope, e.right, key);
     case 'index':
-      return e.indices.length === 1 && shapeOf(e.indices[0]!) === key;
+      if (e.indices.length === 1 && shapeOf(e.indices[0]!) === key) return true;
+      return itemsOf(m, m.evaluate(scope, e)) === undefined;
     case 'name':
     case 'member':
       return itemsOf(m, m.evaluate(scope, e)) === undefined;
