@@ -11,7 +11,7 @@ const folder = join(root, 'tests', 'bench');
 const outdir = join(root, '.artifacts', 'bench');
 const wanted = process.argv.slice(2);
 /** What the benches share. */
-const notBenches = new Set(['arm-source.ts', 'chain-source.ts', 'measure.ts']);
+const notBenches = new Set(['arm-source.ts', 'chain-source.ts', 'reading-source.ts', 'measure.ts']);
 const names = readdirSync(folder)
   .filter((file) => file.endsWith('.ts') && !notBenches.has(file))
   .map((file) => basename(file, '.ts'))

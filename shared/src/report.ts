@@ -97,7 +97,9 @@ export type FindingCode =
   | 'sign' | 'factor' | 'missing-term' | 'extra-term' | 'swapped-symbol' | 'swapped-rows' | 'wrong-function'
   | 'wrong-power' | 'wrong-operator' | 'grouping' | 'rounded-constant' | 'differs' | 'unread';
 
+/** Findings beside the claims: about declarations, and `wrong-operator` where a division of integers loses its fraction. */
 export type ProblemCode =
+  | 'wrong-operator'
   | 'syntax' | 'undeclared' | 'unused' | 'ambiguous' | 'dimension' | 'not-quadratic' | 'singular' | 'inconsistent';
 
 export interface Finding {

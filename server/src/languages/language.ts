@@ -3,8 +3,11 @@ import type { Library } from '../program/library';
 
 /** What a language's own folder gives. */
 export interface LanguageCore {
-  /** Never throws; syntax errors are in the program. Spans are UTF-16 offsets into `text`. */
-  parse(file: string, text: string): Program;
+  /**
+   * Never throws; syntax errors are in the program. Spans are UTF-16 offsets into `text`.
+   * @param version of the language, where the project says which; else what the text says of itself
+   */
+  parse(file: string, text: string, version?: number): Program;
   readonly library: Library;
   /**
    * The file that an import's text means, seen from the file it stands in; undefined for anything outside the project.

@@ -18,6 +18,7 @@ import type { Document, Documents, PlacedBlock } from '../workspace/documents';
 import type { Imports } from '../workspace/imports';
 import { declares, type SystemEntry, type Systems } from '../workspace/systems';
 import type { FileResult } from './api';
+import { lostFractions } from './lost-fractions';
 import type { Remembered, ResultCache } from './result-cache';
 
 /** Everything that was found out about one declaration. */
@@ -180,6 +181,7 @@ export function fileResult(document: Document, outcomes: readonly BlockOutcome[]
     for (const p of o.problems) {
       problems.push({ file, code: p.code, message: p.message, range: lines.range(p.span), severity: p.severity });
     }
+    problems.push(...lostFractions(document, o.result?.reading?.drops ?? []));
     for (const a of o.ambiguities) {
       problems.push({ file: a.place.file, code: 'ambiguous', message: a.message, range: lines.range(a.place.span), severity: 'error' });
     }

@@ -92,7 +92,7 @@ export async function recheckWith(
 /** The document with a text of its own; the project's documents stay as they are. */
 function editedDocument(document: Document, edits: readonly Edit[]): Document | undefined {
   const text = applyEdits(document.text, edits);
-  const program = document.core.parse(document.file, text);
+  const program = document.core.parse(document.file, text, document.version);
   if (program.errors.length > document.program.errors.length) return undefined;
   const blocks = program.comments.flatMap((c) => findBlocks(text, c).map((block) => ({ block, subject: c.subject })));
   return { ...document, text, program, lines: new LineIndex(text), blocks };

@@ -13,6 +13,7 @@ import { deriveSystems } from './derive';
 import { fileDetails } from './details';
 import { editingService } from './editing';
 import { allHovers, hoverAt } from './hover';
+import { languageVersion } from './language-version';
 import { inlaysOf, lensesOf } from './lenses';
 import { outcomeAt, panelOf } from './panel/panel';
 import { ResultCache } from './result-cache';
@@ -25,7 +26,7 @@ export type * from './api';
 
 /** The service over some files. It keeps what it has read until told of a change. */
 export function createService(files: Files): Service {
-  const documents = new Documents((file) => files.read(file));
+  const documents = new Documents((file) => files.read(file), (file, language) => languageVersion(files, file, language));
   const imports = new Imports(documents);
   const systems = new Systems(documents, () => files.declarations(), (d) => imports.reader(d));
   const results = new ResultCache<Diagnosis>((file) => documents.text(file));
@@ -37,7 +38,7 @@ export function createService(files: Files): Service {
   };
 
   const tryOut = (texts: ReadonlyMap<string, string>, file: string, budget: Budget): Promise<FileResult> => {
-    const changed: Files = { read: (f) => texts.get(f) ?? documents.text(f), declarations: () => files.declarations() };
+    const changed: Files = { read: (f) => texts.get(f) ?? documents.text(f), declarations: () => files.declarations(), ...(files.settings ? { settings: (f) => files.settings!(f) } : {}) };
     return createService(changed).check(file, budget, 'verdicts');
   };
 

@@ -8,6 +8,7 @@ import { Imports } from '../workspace/imports';
 import { declares, Systems, type SystemEntry } from '../workspace/systems';
 import type { Files } from './api';
 import { checkDocument, subjectName, type BlockOutcome } from './check';
+import { languageVersion } from './language-version';
 import { ResultCache } from './result-cache';
 
 /** What some files say of physics, and whether their code does it. */
@@ -37,7 +38,7 @@ export interface ClaimedFunction {
 
 /** Reads and checks every declaration of the files. */
 export async function readPhysics(files: Files, milliseconds: number): Promise<Physics> {
-  const documents = new Documents((file) => files.read(file));
+  const documents = new Documents((file) => files.read(file), (file, language) => languageVersion(files, file, language));
   const imports = new Imports(documents);
   const systems = new Systems(documents, () => files.declarations(), (d) => imports.reader(d));
   const project = { documents, systems, imports, results: new ResultCache<Diagnosis>((file) => documents.text(file)) };

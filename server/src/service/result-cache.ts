@@ -55,7 +55,7 @@ export class ResultCache<Extra> {
     const entry = key === undefined ? undefined : this.entries.get(key);
     if (!entry || entry.derived !== derived || !key) return undefined;
     const block = blockPiece(document, placed);
-    if (block.text !== entry.block.text || digestOf(document.program) !== entry.facts) return undefined;
+    if (block.text !== entry.block.text || factsOf(document) !== entry.facts) return undefined;
     if (entry.imported.some((f) => this.read(f.file) !== f.text)) return undefined;
     const now = piecesOf(document, placed, touchedOf(entry.result));
     if (!now || now.length !== entry.pieces.length) return undefined;
@@ -94,7 +94,7 @@ export class ResultCache<Extra> {
       derived,
       block: blockPiece(document, placed),
       pieces,
-      facts: digestOf(document.program),
+      facts: factsOf(document),
       imported,
       // What led to the result is not asked for again, and is large.
       result: { ...result, reading: { ...result.reading, trace: [] } },
@@ -105,6 +105,11 @@ export class ResultCache<Extra> {
     if (this.entries.size > MOST_ENTRIES) this.entries.delete(this.entries.keys().next().value!);
     return { ...none, keep: (extra) => (entry.extra = extra) };
   }
+}
+
+/** What a result depends on beside the pieces it was made from. */
+function factsOf(document: Document): string {
+  return `${document.version ?? ''} ${document.program.dividesIntegers ?? false} ${digestOf(document.program)}`;
 }
 
 /** Scripts depend on everything in their file, so they are not kept. */
@@ -179,6 +184,7 @@ function moved(result: SubjectResult, file: string, relocate: Relocate): Subject
     reading: result.reading && {
       ...result.reading,
       bindings: result.reading.bindings.map((b) => ({ ...b, place: place(b.place) })),
+      drops: result.reading.drops.map((d) => ({ ...d, place: place(d.place) })),
     },
   };
 }

@@ -15,6 +15,8 @@ export interface Document {
   readonly file: string;
   readonly text: string;
   readonly language: string;
+  /** Of the language, where the project says which. */
+  readonly version: number | undefined;
   readonly core: LanguageCore;
   readonly program: Program;
   readonly lines: LineIndex;
@@ -30,7 +32,11 @@ export class Documents {
   private readonly parsed = new Map<string, Document>();
   private readonly cores = new Map<string, LanguageCore>();
 
-  constructor(private readonly read: (file: string) => string | undefined) {}
+  /** @param version the version of a language (by its id) that the project says a file is written in */
+  constructor(
+    private readonly read: (file: string) => string | undefined,
+    private readonly version: (file: string, language: string) => number | undefined = () => undefined,
+  ) {}
 
   update(file: string, text: string): void {
     this.open.set(file, text);
@@ -59,16 +65,17 @@ export class Documents {
   get(file: string): Document | undefined {
     const overlay = this.open.get(file);
     const known = this.parsed.get(file);
-    if (known && (overlay === undefined || known.text === overlay)) return known;
     const language = languageOf(file);
+    const version = language && this.version(file, language.id);
+    if (known && (overlay === undefined || known.text === overlay) && known.version === version) return known;
     const core = language && this.cores.get(language.id);
     const text = overlay ?? this.read(file);
     if (!core || text === undefined) return undefined;
-    const program = core.parse(file, text);
+    const program = core.parse(file, text, version);
     const blocks = mayDeclare(text)
       ? program.comments.flatMap((c) => findBlocks(text, c).map((block) => ({ block, subject: c.subject })))
       : [];
-    const document = { file, text, language: language.id, core, program, lines: new LineIndex(text), blocks };
+    const document = { file, text, language: language.id, version, core, program, lines: new LineIndex(text), blocks };
     this.parsed.delete(file);
     this.parsed.set(file, document);
     this.evict();

@@ -100,15 +100,19 @@ function isInIndex(site: Site): boolean {
   return s.role === 'other' && s.parent?.node.kind === 'index';
 }
 
-/** Names of the code and the declaration that are almost the same. */
+/** Names of the code and the declaration that are almost the same as one which names nothing here. */
 function spellings(request: SubjectRequest, site: Site, name: string, give: Give, map: SourceMap): void {
   const { system } = request.derived;
-  const known = new Set<string>([...system.parameters, ...system.inputs, ...system.coordinates].map((d) => d.name));
+  const inCode = new Set<string>();
   for (const f of map.functions) {
     if (!contains(f.span, site.span.start)) continue;
-    for (const n of [...f.parameters.flatMap((p) => patternNames(p.pattern)), ...localsOf(f, site.span.start)]) known.add(n);
+    for (const n of [...f.parameters.flatMap((p) => patternNames(p.pattern)), ...localsOf(f, site.span.start)]) inCode.add(n);
   }
-  for (const s of map.sites) if (s.node.kind === 'member' && site.node.kind === 'member') known.add(s.node.name);
+  const isMember = site.node.kind === 'member';
+  // A name that stands for something is not misspelt, nor is a member that the code names again.
+  if (isMember ? map.sites.some((s) => s !== site && s.node.kind === 'member' && s.node.name === name) : inCode.has(name)) return;
+  const known = new Set<string>([...[...system.parameters, ...system.inputs, ...system.coordinates].map((d) => d.name), ...inCode]);
+  if (isMember) for (const s of map.sites) if (s.node.kind === 'member') known.add(s.node.name);
   const span = { start: site.span.end - name.length, end: site.span.end };
   for (const other of known) {
     const distance = editDistance(name, other);

@@ -7,7 +7,7 @@ import { resolveImport } from './resolve';
 export async function load(): Promise<LanguageCore> {
   const parser = await loadParser();
   return {
-    parse: (file, text) => parser.parse(file, text),
+    parse: (file, text, version) => parser.parse(file, text, version),
     library: pythonLibrary,
     resolveImport,
   };

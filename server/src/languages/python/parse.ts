@@ -5,8 +5,11 @@ import { Converter } from './converter';
 import type { Recovered } from './recover';
 import { namedChildren, type Node } from './syntax';
 
-/** A module in program form. `comments` holds only those comments and docstrings that contain `@visviva`. */
-export function programOf(recovered: Recovered): Program {
+/**
+ * A module in program form. `comments` holds only those comments and docstrings that contain `@visviva`.
+ * @param version 2 or 3, where the project says which
+ */
+export function programOf(recovered: Recovered, version?: number): Program {
   const { syntax, broken, lost, errors } = recovered;
   const { root } = syntax;
   const converter = new Converter(recovered.text, broken, lost, changingNames(recovered.text, root));
@@ -18,7 +21,7 @@ export function programOf(recovered: Recovered): Program {
     indexBase: 0,
     listConcat: true,
     integers: true,
-    ...(isPython2(recovered.text, root) ? { dividesIntegers: true } : {}),
+    ...(dividesIntegers(recovered.text, root, version) ? { dividesIntegers: true } : {}),
     lateBinding: true,
     negativeIndex: true,
     exportsAll: true,
@@ -35,13 +38,14 @@ function importedNames(s: Statement): string[] {
   return [...s.names.map((n) => n.local), ...(s.namespace === undefined ? [] : [s.namespace]), ...(s.all ? [`* of ${s.from}`] : [])];
 }
 
-/** Python 2 by its first line or by a `print` statement, unless it asks for true division. */
-function isPython2(text: string, root: Node): boolean {
+/** Python 2, as the project says, or by its first line or a `print` statement, unless it asks for true division. */
+function dividesIntegers(text: string, root: Node, version: number | undefined): boolean {
   const top = namedChildren(root);
   const asksForDivision = top.some(
     (n) => n.type === 'future_import_statement' && /\bdivision\b/.test(text.slice(n.start, n.end)),
   );
   if (asksForDivision) return false;
+  if (version !== undefined) return version === 2;
   if (/^#!.*\bpython2(?:\.\d+)?\b/.test(text)) return true;
   if (/^#!.*\bpython3/.test(text)) return false;
   return /^[ \t]*print[ \t]+["'\w]/m.test(text) && hasPrintStatement(root);

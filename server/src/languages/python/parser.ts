@@ -26,7 +26,7 @@ export class PythonParser {
   ) {}
 
   /** Never throws; syntax errors are in the program. Spans are UTF-16 offsets into `text`. */
-  parse(file: string, text: string): Program {
+  parse(file: string, text: string, version?: number): Program {
     let first = true;
     return programOf(
       recover(text, (source) => {
@@ -34,6 +34,7 @@ export class PythonParser {
         first = false;
         return isWhole ? this.whole(file, source) : this.once(source);
       }),
+      version,
     );
   }
 
