@@ -12,13 +12,14 @@ export function writeWholeFile(name: string, text: string): string | undefined {
   let beside: string | undefined;
   try {
     const before = statOf(name);
-    // A link stays a link: what it leads to is replaced.
-    if (before) path = realpathSync(name);
     if (before?.isDirectory()) return 'it is a folder';
     if (before && !before.isFile()) {
+      // By the name it was given: what `/dev/stdout` leads to may have none of its own.
       writeAll(path, 'w', 0o666, text);
       return undefined;
     }
+    // A link stays a link: what it leads to is replaced.
+    if (before) path = realpathSync(name);
     // Otherwise the new file would take the place of one that was to stay as it is.
     if (before) closeSync(openSync(path, 'r+'));
     const next = join(dirname(path), `.${basename(path).slice(0, 40)}.${randomBytes(6).toString('hex')}`);
