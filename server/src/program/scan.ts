@@ -105,6 +105,7 @@ export function isConstantLike(e: Expression): boolean {
 /** Parameters that a constructor stores in fields just as they are: `this.mass = mass`, `self.l = l or 1.0`. */
 export function storedParameters(constructor: FunctionNode): Map<string, string[]> {
   const fields = new Map<string, string[]>();
+  for (const p of constructor.parameters) if (p.field && p.pattern.kind === 'name') fields.set(p.pattern.name, [p.pattern.name]);
   for (const n of nodesOf(constructor.body, false)) {
     const e = n as Expression;
     if (e.kind !== 'assign' || e.op || !('target' in e) || e.target.kind !== 'place') continue;
