@@ -1,0 +1,3 @@
+import { testFixtures } from '../support/test-fixtures';
+
+testFixtures('typescript', 2, 3);
