@@ -4,7 +4,9 @@ const results = process.env['VISVIVA_RESULTS'];
 
 export default defineConfig({
   test: {
-    testTimeout: 30_000,
+    testTimeout: 60_000,
+    // All cores: nobody types meanwhile.
+    maxWorkers: '100%',
     reporters: results ? ['default', ['json', { outputFile: results }]] : ['default'],
     projects: [
       {
