@@ -27,6 +27,7 @@ describe('symbols', () => {
   reads('inputs τ₁, τ₂ [N m]', 'inputs τ₁ [N m]; τ₂ [N m]');
   reads('coordinates x [m]', 'coordinates x [m]');
   reads('parameters L = 2*pi', 'parameters L = 2*pi');
+  reads('parameters m = 1, l [m] = 2', 'parameters m = 1; l [m] = 2');
 
   test('one item to a line, each with its remark', () =>
     expect(statements('coordinates x [m],   the cart', '  th [rad]   the swing')).toEqual(['coordinates x [m] "the cart"; th [rad] "the swing"']));

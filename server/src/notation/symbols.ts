@@ -159,12 +159,12 @@ export function parseInterval(c: Cursor): { low: Formula; high: Formula } {
   return { low, high };
 }
 
-/** In `M, m [kg] > 0` unit and bound belong to both: a name with neither takes those of the next name that has some. */
+/** In `M, m [kg] > 0` unit and bound belong to both: a name with neither, and no value, takes those of the next name. */
 function shareBack(items: Draft[]): void {
   let source: Draft | undefined;
   for (let i = items.length - 1; i >= 0; i--) {
     const item = items[i]!;
-    if (item.unit || item.bounds.length) source = item;
+    if (item.unit || item.bounds.length || item.typical) source = item;
     else if (source) {
       item.unit = source.unit;
       item.bounds = source.bounds;
