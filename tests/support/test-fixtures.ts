@@ -1,5 +1,5 @@
 import { describe, expect, test } from 'vitest';
-import { checkText } from './check';
+import { checkText, verdictsOf } from './check';
 import { mismatches } from './compare';
 import { loadFixtures, withFault } from './fixtures';
 import { Judge } from './judge';
@@ -21,7 +21,7 @@ export function testFixtures(folder: string, part: number, parts: number): void 
       const judge = section.run.length > 0 ? new Judge(fixture, section, others) : undefined;
       test.each(section.faults)(`${section.name}: $name`, async (fault) => {
         const text = withFault(fixture, fault);
-        const result = await checkText(fixture.file, text, others);
+        const result = await verdictsOf(fixture.file, text, others);
         if (judge) expect(mismatches(result, fixture, section, judge.judge(text))).toEqual([]);
         else expect(result.claims.some((c) => c.verdict === 'differs' && c.witness)).toBe(true);
       });
