@@ -1,5 +1,5 @@
 import { describe, expect, test } from 'vitest';
-import { checkText } from '../support/check';
+import { checkText, verdictsOf } from '../support/check';
 import { mismatches } from '../support/compare';
 import { loadFixtures, withFault } from '../support/fixtures';
 
@@ -14,7 +14,7 @@ describe.each(fixtures)('$file', (fixture) => {
 
   for (const section of fixture.sections) {
     test.each(section.faults)(`${section.name}: $name`, async (fault) => {
-      const result = await checkText(fixture.file, withFault(fixture, fault), others);
+      const result = await verdictsOf(fixture.file, withFault(fixture, fault), others);
       const inside = result.claims.filter((c) => c.line >= section.startLine && c.line < section.endLine);
       expect(inside.filter((c) => c.verdict === 'unread').map((c) => c.findings[0]?.message)).toEqual(
         section.expectations.filter((e) => e.verdict === 'unread').map((e) => expect.stringContaining(e.words)),
