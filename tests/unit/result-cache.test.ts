@@ -97,6 +97,18 @@ describe('remembered results', () => {
     expect((await checkAgain(text)).verdicts).toEqual(['differs']);
   });
 
+  test('what is not told of yet is not taken for read', async () => {
+    const others = new Map([['b.ts', 'export function pull(x, k) { return k * x; }\n']]);
+    const { service, check } = await session(others);
+    const text = `import { pull } from './b';\n${DECLARATION}${one(0)}`;
+    expect((await check(text)).verdicts).toEqual(['holds']);
+    // The file on disk is newer already when the text is checked again, for a hover say, and the news of it comes later.
+    others.set('b.ts', 'export function pull(x, k) { return 2 * k * x; }\n');
+    expect((await check(text)).verdicts).toEqual(['holds']);
+    service.invalidate('b.ts');
+    expect((await check(text)).verdicts).toEqual(['differs']);
+  });
+
   test('whether a name is assigned anywhere counts', async () => {
     const { check } = await session();
     const constant = `${DECLARATION}let scale = 1;\n${one(0, '-scale * k * x / m')}`;

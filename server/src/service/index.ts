@@ -29,7 +29,7 @@ export function createService(files: Files): Service {
   const documents = new Documents((file) => files.read(file), (file, language) => languageVersion(files, file, language));
   const imports = new Imports(documents);
   const systems = new Systems(documents, () => files.declarations(), (d) => imports.reader(d));
-  const results = new ResultCache<Diagnosis>((file) => documents.text(file));
+  const results = new ResultCache<Diagnosis>((file) => documents.readText(file));
   const project: Project = { documents, systems, imports, results };
 
   const load = async (file: string) => {

@@ -41,7 +41,7 @@ export async function readPhysics(files: Files, milliseconds: number): Promise<P
   const documents = new Documents((file) => files.read(file), (file, language) => languageVersion(files, file, language));
   const imports = new Imports(documents);
   const systems = new Systems(documents, () => files.declarations(), (d) => imports.reader(d));
-  const project = { documents, systems, imports, results: new ResultCache<Diagnosis>((file) => documents.text(file)) };
+  const project = { documents, systems, imports, results: new ResultCache<Diagnosis>((file) => documents.readText(file)) };
   const found: { name: string; file: string; entry: SystemEntry; declaration: string; functions: ClaimedFunction[] }[] = [];
   const claimed: { name: string; from: string; function: ClaimedFunction }[] = [];
   for (const file of files.declarations()) {

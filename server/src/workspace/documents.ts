@@ -55,6 +55,14 @@ export class Documents {
     return this.open.get(file) ?? this.read(file);
   }
 
+  /**
+   * The text that a check of now goes by: that of the document as it was parsed, which a newer one on disk does not change
+   * before it is told of.
+   */
+  readText(file: string): string | undefined {
+    return this.get(file)?.text ?? this.text(file);
+  }
+
   /** Loads what reads a file's language. */
   async prepare(file: string): Promise<void> {
     const language = languageOf(file);
