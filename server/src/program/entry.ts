@@ -1,14 +1,15 @@
 import { classInfo } from './classes';
 import { evaluate } from './expressions';
-import type { ClassNode, FunctionNode, Parameter, Pattern, TypeNote } from './form';
+import type { Expression, ClassNode, FunctionNode, Parameter, Pattern, TypeNote } from './form';
 import { addAlias, genericAt } from './generics';
 import type { Machine } from './machine';
 import { addTopLevel } from './modules';
 import { factsOf } from './facts';
+import { nodesOf } from './scan';
 import { Scope, type ClassInfo, type Frame, type Module } from './scope';
 import { typeFacts, type Typed } from './type-notes';
-import { declare } from './variables';
-import type { Value } from './values';
+import { declare, write } from './variables';
+import { unread, type Value } from './values';
 
 /** The state in which a function is entered: generic arguments, a generic receiver, the functions around it. */
 
@@ -97,7 +98,19 @@ function surroundings(m: Machine, module: Module, node: FunctionNode): Scope {
     const self = f.inheritsSelf ? scope.frame.self : undefined;
     scope = new Scope(scope, { module, node: f, names, depth: 0, isAround: true, ...(self ? { self } : {}) }, true);
     for (const p of f.parameters) enterParameter(m, scope, p);
+    forgetChanged(m, scope, f);
     for (const s of f.body) addTopLevel(m, module, scope, s);
   }
   return scope;
+}
+
+/** A parameter that the function around changes by its own statements is no longer what it was handed in as. */
+function forgetChanged(m: Machine, scope: Scope, f: FunctionNode): void {
+  for (const n of nodesOf(f.body, false)) {
+    const e = n as Expression;
+    if (e.kind !== 'assign' || !('target' in e) || e.target.kind !== 'name') continue;
+    const variable = scope.variables.get(e.target.name);
+    if (!variable) continue;
+    write(m, variable, unread(`\`${e.target.name}\`, which \`${f.name}\` changes: put the declaration above \`${f.name}\``, m.place(scope, e.span)));
+  }
 }
