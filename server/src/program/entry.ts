@@ -5,7 +5,7 @@ import { addAlias, genericAt } from './generics';
 import type { Machine } from './machine';
 import { addTopLevel } from './modules';
 import { factsOf } from './facts';
-import { nodesOf } from './scan';
+import { nodesOf, patternNames } from './scan';
 import { Scope, type ClassInfo, type Frame, type Module } from './scope';
 import { typeFacts, type Typed } from './type-notes';
 import { declare, write } from './variables';
@@ -108,9 +108,11 @@ function surroundings(m: Machine, module: Module, node: FunctionNode): Scope {
 function forgetChanged(m: Machine, scope: Scope, f: FunctionNode): void {
   for (const n of nodesOf(f.body, false)) {
     const e = n as Expression;
-    if (e.kind !== 'assign' || !('target' in e) || e.target.kind !== 'name') continue;
-    const variable = scope.variables.get(e.target.name);
-    if (!variable) continue;
-    write(m, variable, unread(`\`${e.target.name}\`, which \`${f.name}\` changes: put the declaration above \`${f.name}\``, m.place(scope, e.span)));
+    if (e.kind !== 'assign' || !('target' in e)) continue;
+    for (const name of patternNames(e.target)) {
+      const variable = scope.variables.get(name);
+      if (!variable) continue;
+      write(m, variable, unread(`\`${name}\`, which \`${f.name}\` changes: put the declaration above \`${f.name}\``, m.place(scope, e.span)));
+    }
   }
 }
