@@ -57,6 +57,7 @@ export function readMember(m: Machine, module: Module, object: Value, key: strin
       return data.unread;
     }
     case 'list':
+      if (key === 'return' && m.keepPlaces) return unread('a call means its value already: leave out `.return`', place);
       return listMember(m, module, object, data, key, place);
     case 'record':
       return recordMember(m, module, object, data, key, place);

@@ -156,8 +156,8 @@ function toOutput(m: Machine, value: Value, place: Place | undefined, isComputed
     case 'object':
       return objectOutput(m, value, place, isComputed, depth);
     case 'function': {
-      const name = value.node.name ? `\`${value.node.name}\`` : 'a function';
-      return lost(value.node.opaque !== undefined ? `this is ${name}, which is ${value.node.opaque}` : `this is ${name}, not what it returns`);
+      const name = /^\w+$/.test(value.node.name) ? `the function \`${value.node.name}\`` : 'a function';
+      return lost(value.node.opaque !== undefined ? `this is ${name}, which is ${value.node.opaque}` : `this is ${name}, not what it returns: put the declaration above that function`);
     }
     default:
       return lost('this is no number, list or record');

@@ -88,7 +88,7 @@ function claimsOf(document: Document, o: BlockOutcome): PanelClaim[] {
     const base = { output: c.output, quantity: c.quantity, verdict: decision.verdict, range: document.lines.range(here) };
     switch (decision.verdict) {
       case 'holds':
-        return { ...base, message: decision.proof?.kind === 'identity' ? 'proved: the same function' : `equal at ${decision.states} states` };
+        return { ...base, message: decision.proof?.kind === 'identity' ? 'identity, failure chance below 1e-15' : `equal at ${decision.states} states` };
       case 'unread':
         return { ...base, message: decision.reason };
       case 'differs': {
